@@ -3,18 +3,23 @@
 
 /** Exit 1: findings over their limit, or outputs that are not what their manifest says. */
 const findings = {
+  stale: 'The {what} moved since this was built. Build again.',
 } as const;
 
 /** Exit 2: usage and settings. */
 const usage = {
+  'nothing-selected': 'No texture matches {selector}. Check the path, the extensions and the exclude globs.',
 } as const;
 
 /** Exit 3: a source that could not be read. */
 const sources = {
+  'not-downloaded':
+    'This is a Git LFS pointer, not the image: {bytes} bytes are expected. Fetch it with `git lfs pull` and build again.',
 } as const;
 
 /** Exit 4: outputs that could not be written. */
 const outputs = {
+  'output-busy': 'Another program holds this file open; it could not be replaced within {seconds} s. Close it and build again.',
 } as const;
 
 export const words = { ...findings, ...usage, ...sources, ...outputs } as const;
