@@ -1,5 +1,5 @@
 import type { Codes, Depth, Extent } from '../raster/raster.ts';
-import type { Taps } from './taps.ts';
+import type { Taps } from '../kernel/taps.ts';
 
 // The rows phase: source rows go in once, finished rows of every level and target come out. One interface for every
 // engine; an engine is right when its float rows equal those of plain.ts bit for bit.
