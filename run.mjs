@@ -1,0 +1,228 @@
+// Starter: `npm start`, `npm test` and the rest come through here. Written in ES2018 and importing nothing before the
+// version check, so that an old Node gets as far as saying that it is too old.
+
+const OLDEST_NODE_MAJOR = 20;
+
+/** What esbuild makes, each one file. */
+const BUNDLES = [
+  { entry: 'extension/cli/main.ts', file: 'dist/cli.js', head: '#!/usr/bin/env node\n' },
+  { entry: 'extension/node/pool.worker.ts', file: 'dist/pool.worker.js', head: '' },
+];
+
+/** Rooms with a tsconfig of their own. */
+const ROOMS = ['core', 'extension/node', 'extension/cli', 'test'];
+
+const COMMANDS = { start, test, build, types, lint, mutate, paint, schema };
+
+const nodeVersion = process.versions.node;
+if (Number(nodeVersion.split('.')[0]) < OLDEST_NODE_MAJOR) {
+  console.error(
+    `Sizeproof needs Node ${OLDEST_NODE_MAJOR} or newer, and this is Node ${nodeVersion}. ` +
+      'Install a newer Node (https://nodejs.org) and run the same command again.',
+  );
+  process.exitCode = 1;
+} else {
+  main(process.argv[2], process.argv.slice(3)).then(
+    (code) => {
+      process.exitCode = code;
+    },
+    (error) => {
+      console.error(error instanceof Stop ? error.message : error);
+      process.exitCode = 1;
+    },
+  );
+}
+
+async function main(name, rest) {
+  const command = Object.hasOwn(COMMANDS, name) ? COMMANDS[name] : null;
+  if (command === null) {
+    const given = name === undefined ? 'no command was given' : `there is no command "${name}"`;
+    throw new Stop(`Expected one of ${Object.keys(COMMANDS).join(', ')}, but ${given}.`);
+  }
+  const { fileURLToPath } = await import('node:url');
+  process.chdir(fileURLToPath(new URL('.', import.meta.url)));
+  return command(rest);
+}
+
+async function start() {
+  await build();
+  const code = await run(['dist/cli.js', 'build', 'test/demo', '--out', 'dist/demo']);
+  if (code === 0) {
+    console.log(`
+The demo's textures are in test/demo (its settings: test/demo/sizeproof.json), what was built from them is in dist/demo.
+Now a folder of your own:
+
+  node dist/cli.js init PATH                 writes a sizeproof.json to start from
+  node dist/cli.js build PATH --out DIR      builds every texture below PATH into DIR
+  node dist/cli.js check PATH --out DIR      says whether what is in DIR is still what PATH asks for
+  node dist/cli.js --help                    the rest`);
+  }
+  return code;
+}
+
+async function test(rest) {
+  await types();
+  await lint();
+  await bundle();
+  const { readFileSync, rmSync } = await import('node:fs');
+  const results = 'dist/test-results.json';
+  rmSync(results, { force: true });
+  const code = await run([
+    'node_modules/vitest/vitest.mjs',
+    'run',
+    '--config',
+    'test/vitest.config.ts',
+    '--reporter=default',
+    '--reporter=json',
+    `--outputFile.json=${results}`,
+    ...rest,
+  ]);
+  const report = JSON.parse(readFileSync(results, 'utf8'));
+  // A file that could not even be loaded has no tests to count, and is a failure all the same.
+  const unloaded = report.testResults.filter((each) => each.status === 'failed' && each.assertionResults.length === 0);
+  const failed = report.numFailedTests + unloaded.length;
+  if (report.numPendingTests > 0) console.log(`${report.numPendingTests} skipped`);
+  console.log(`${report.numPassedTests} passed, ${failed} failed`);
+  return failed > 0 && code === 0 ? 1 : code;
+}
+
+async function build() {
+  await install('.');
+  await bundle();
+  return 0;
+}
+
+async function types() {
+  await install('.');
+  await install('test');
+  for (const room of ROOMS) {
+    await step(`Types of ${room}`, ['node_modules/typescript/bin/tsc', '-p', room]);
+  }
+  return 0;
+}
+
+async function lint() {
+  await install('test');
+  await step('Lint', ['test/node_modules/@biomejs/biome/bin/biome', 'check']);
+  return 0;
+}
+
+function mutate(rest) {
+  return runSource('test/house/mutate.ts', rest);
+}
+
+function paint(rest) {
+  return runSource('test/demo/paint/paint.ts', rest);
+}
+
+function schema(rest) {
+  return runSource('test/house/schema.ts', rest);
+}
+
+/** Bundles one TypeScript program of the test room into dist/ and runs it from the top of the tree. */
+async function runSource(entry, rest) {
+  await install('.');
+  const { basename } = await import('node:path');
+  const file = `dist/house/${basename(entry, '.ts')}.js`;
+  await bundleOne({ entry, file, head: '' });
+  return run([file, ...rest]);
+}
+
+async function bundle() {
+  const { chmodSync, existsSync } = await import('node:fs');
+  for (const each of BUNDLES) {
+    if (!existsSync(each.entry)) continue;
+    await bundleOne(each);
+    if (each.head !== '') chmodSync(each.file, 0o755);
+  }
+}
+
+async function bundleOne({ entry, file, head }) {
+  const esbuild = await import('esbuild');
+  try {
+    await esbuild.build({
+      entryPoints: [entry],
+      outfile: file,
+      bundle: true,
+      platform: 'node',
+      target: 'node20',
+      format: 'esm',
+      legalComments: 'eof',
+      // Dependencies in CommonJS call `require` for Node's own modules, which an ES module does not have.
+      banner: {
+        js: `${head}import { createRequire as createRequireHere } from 'node:module';\nconst require = createRequireHere(import.meta.url);`,
+      },
+    });
+  } catch (error) {
+    if (!Array.isArray(error.errors)) throw error;
+    // esbuild has printed what is wrong and where.
+    throw new Stop(`${entry} could not be bundled.`);
+  }
+}
+
+/** `npm ci` in a folder, unless its node_modules came from this very lock file on this kind of machine. */
+async function install(folder) {
+  const { createHash } = await import('node:crypto');
+  const { existsSync, readFileSync, writeFileSync } = await import('node:fs');
+  const stampFile = `${folder}/node_modules/.installed-from`;
+  const lock = createHash('sha256').update(readFileSync(`${folder}/package-lock.json`));
+  const stamp = `${lock.digest('hex')} ${process.platform} ${process.arch}\n`;
+  if (existsSync(stampFile) && readFileSync(stampFile, 'utf8') === stamp) return;
+  const what = folder === '.' ? 'what compiles and ships' : 'what only the tests need';
+  console.log(`Installing ${what} ...`);
+  // Development dependencies are asked for by name: NODE_ENV=production would leave them out.
+  const code = await run([await findNpm(), 'ci', '--include=dev', '--loglevel=error'], folder);
+  if (code !== 0)
+    throw new Stop(`npm ci failed in ${folder === '.' ? 'the top folder' : folder} with exit code ${code}.`);
+  writeFileSync(stampFile, stamp);
+}
+
+/** npm's own script, run by this Node: Windows has no `npm` that can be started without a shell. */
+async function findNpm() {
+  const { existsSync, realpathSync } = await import('node:fs');
+  const { basename, delimiter, dirname, join } = await import('node:path');
+  const given = process.env.npm_execpath;
+  if (given !== undefined && basename(given) === 'npm-cli.js' && existsSync(given)) return given;
+  const beside = join('node_modules', 'npm', 'bin', 'npm-cli.js');
+  const folders = [
+    dirname(process.execPath),
+    ...(process.env.PATH || '').split(delimiter).filter((each) => each !== ''),
+  ];
+  for (const folder of folders) {
+    for (const file of [join(folder, beside), join(folder, '..', 'lib', beside)]) {
+      if (existsSync(file)) return file;
+    }
+    const link = join(folder, 'npm');
+    if (existsSync(link) && basename(realpathSync(link)) === 'npm-cli.js') return realpathSync(link);
+  }
+  throw new Stop('npm was found neither beside this Node nor on the PATH. Install npm and run the same command again.');
+}
+
+async function step(title, args) {
+  console.log(`${title} ...`);
+  const code = await run(args);
+  if (code !== 0) throw new Stop(`${title}: failed with exit code ${code}.`);
+}
+
+/** Runs a script by this Node and resolves to its exit code. */
+async function run(args, folder = '.') {
+  const { spawn } = await import('node:child_process');
+  const { constants } = await import('node:os');
+  // Ctrl-C reaches the child as well; it must be able to tidy up before this process is gone.
+  const wait = () => undefined;
+  process.on('SIGINT', wait);
+  try {
+    return await new Promise((resolve, reject) => {
+      const child = spawn(process.execPath, args, { cwd: folder, stdio: 'inherit' });
+      child.on('error', reject);
+      child.on('close', (code, signal) => resolve(code === null ? 128 + constants.signals[signal] : code));
+    });
+  } finally {
+    process.removeListener('SIGINT', wait);
+  }
+}
+
+/** Ends the run with a sentence in place of a stack trace. */
+function Stop(message) {
+  this.message = message;
+}
