@@ -4,22 +4,61 @@
 /** Exit 1: findings over their limit, or outputs that are not what their manifest says. */
 const findings = {
   stale: 'The {what} moved since this was built. Build again.',
+  interrupted: 'A build was ended while it replaced these outputs: old and new files are mixed. Build again.',
+  orphan: 'The source {source} is gone. Remove its outputs with `build --prune`, or bring the source back.',
+  'orphan-moved': 'The source {source} moved to {to}. Build again with `--prune`.',
+  'orphan-excluded':
+    'The settings no longer build {source}. Remove its outputs with `build --prune`, or select it again.',
+  'output-edited':
+    'This output is no longer asked for, but it was edited after it was built, so it was kept. Remove it by hand.',
+  're-encoded':
+    'Re-encoded, same pixels: the file differs from the recorded one, the image does not. Nothing needs doing.',
+  'manifest-conflict': 'A merge left its conflict markers in this manifest. Build again to write it anew.',
+  'algorithm-moved':
+    'This was built with algorithm {recorded}, this version has {current}. Rebuild with `--new-algorithm` to take the new one.',
+  thinning:
+    'Level {level} keeps {share} of the coverage of level 0; the limit allows a loss of {limit}. Keep coverage, or raise the limit.',
+  'over-budget':
+    'The chain takes {bytes} bytes as {format}; the budget is {budget}. Drop levels, choose a smaller format or raise the budget.',
+  'match-unused': 'The glob {glob} of {rule} matches no texture. Correct or remove it.',
 } as const;
 
 /** Exit 2: usage and settings. */
 const usage = {
   'nothing-selected': 'No texture matches {selector}. Check the path, the extensions and the exclude globs.',
+  'unknown-command': 'There is no command {given}. Did you mean {nearest}? `--help` lists them all.',
+  'unknown-option': 'There is no option {given} here. Did you mean {nearest}? `--help` lists them all.',
+  'option-value': 'Expected {expected} for {option} but received {given}. Correct the command line.',
+  'missing-argument': '{command} needs {what}. Name at least one.',
+  'several-roots': '--out takes one root, but the paths given lie in {count}: {roots}. Run once for each.',
+  'settings-exist': 'There is a settings file here already; it was left as it is. Edit it, or remove it first.',
 } as const;
 
 /** Exit 3: a source that could not be read. */
 const sources = {
   'not-downloaded':
     'This is a Git LFS pointer, not the image: {bytes} bytes are expected. Fetch it with `git lfs pull` and build again.',
+  'source-missing': 'The source is not there. Bring it back, or name its folder with `--source-root`.',
+  'source-moved':
+    'The source has SHA-256 {now}; the manifest was built from {recorded}. Bring that version back, or build again.',
+  'source-unreadable': 'The file could not be read: {reason}. Check its permissions and the disk.',
+  'manifest-newer': 'This manifest has format {format}; this version reads up to {known}. Update Sizeproof.',
+  'manifest-damaged':
+    'This is no manifest: expected {expected} for {where}. Bring it back from version control, or build again.',
+  'worker-ended':
+    'The worker that built this ended: {reason}. Build it alone with `--jobs 1`; if it happens again, report it.',
 } as const;
 
 /** Exit 4: outputs that could not be written. */
 const outputs = {
-  'output-busy': 'Another program holds this file open; it could not be replaced within {seconds} s. Close it and build again.',
+  'output-busy':
+    'Another program holds this file open; it could not be replaced within {seconds} s. Close it and build again.',
+  'output-unwritable':
+    'This could not be written: {reason}. Check the permissions of its folder, or choose another with `--out`.',
+  'disk-full': 'The disk is full: {bytes} bytes could not be written. Free some space and build again.',
+  'leaves-folder':
+    'This output would be written to {resolved}, outside {folder}. Correct the name, the outDir or the link.',
+  'output-is-source': 'This output would replace the source {source}. Choose another outDir or name.',
 } as const;
 
 export const words = { ...findings, ...usage, ...sources, ...outputs } as const;
