@@ -38,6 +38,52 @@ const usage = {
 const sources = {
   'not-downloaded':
     'This is a Git LFS pointer, not the image: {bytes} bytes are expected. Fetch it with `git lfs pull` and build again.',
+  'file-empty': 'The file is empty. Restore it or export it again.',
+  'unknown-format':
+    'The content is not PNG and the extension {extension} is none of {known}. Convert the image or exclude the file.',
+  'extent-out-of-range':
+    'The image is {width} x {height} texels; each axis must be {min}..{max}. Export it within that range.',
+  'png-signature':
+    'The file begins with the bytes {found}, not with the PNG signature {expected}. Restore it from a copy that no text transfer has changed, or export it again.',
+  'png-file-truncated':
+    'The file ends at byte {found}, before the end of chunk {chunk} at byte {expected}. Restore it or export it again.',
+  'png-chunk-name':
+    'The chunk at byte {offset} is named by the bytes {found}, which are not four letters. Restore the file or export it again.',
+  'png-chunk-crc':
+    'Chunk {chunk} at byte {offset} is damaged: its CRC is {found}, the file says {expected}. Restore the file or export it again.',
+  'png-chunk-length':
+    'Chunk {chunk} at byte {offset} holds {found} bytes where {expected} are expected. Export the image again.',
+  'png-chunk-order': 'Chunk {chunk} at byte {offset} is out of place after {after}. Export the image again.',
+  'png-missing-chunk':
+    'Chunk {chunk} is missing: at byte {offset} stands {found} instead. Restore the file or export it again.',
+  'png-unknown-chunk':
+    'Chunk {chunk} at byte {offset} is marked critical and is not part of PNG. Export the image again as plain PNG.',
+  'png-forbidden-chunk':
+    'Chunk {chunk} at byte {offset} is not allowed with color type {colorType}. Export the image again.',
+  'png-header': 'The header says {field} {found}; PNG allows {allowed}. Restore the file or export it again.',
+  'png-palette-size': 'The palette has {found} entries; 1..{allowed} are allowed. Export the image again.',
+  'png-promise':
+    'The header promises {expected} bytes of image data, which {found} compressed bytes cannot hold. Restore the file or export it again.',
+  'png-truncated':
+    'The image data ends after {found} of the {expected} bytes that the header promises. Restore the file or export it again.',
+  'png-surplus':
+    'There is image data beyond the {expected} bytes that the header promises. Open the image in a paint program and save it again.',
+  'png-corrupt-data':
+    'The compressed image data is damaged after {found} of {expected} bytes. Restore the file or export it again.',
+  'png-filter': 'Row {row} names the filter {found}; PNG has the filters 0..4. Restore the file or export it again.',
+  'png-palette-index':
+    'The texel at {x}, {y} uses palette entry {found} of a palette of {entries} (counted from 0). Export the image again.',
+  'tga-header': 'The header says {field} {found}; a TGA image has {allowed}. Restore the file or export it again.',
+  'tga-truncated':
+    'The file ends at byte {found}, before the end of its {part} at byte {expected} or later. Restore it or export it again.',
+  'tga-packet':
+    'The run-length packet at byte {offset} goes {found} texels beyond the end of the image. Restore the file or export it again.',
+  'tga-surplus':
+    '{found} bytes follow the image at byte {offset} and no TGA footer accounts for them. Open the image in a paint program and save it again.',
+  'tga-premultiplied':
+    'The extension area says that colors are multiplied by alpha (attributes type 4). Export the image with straight alpha.',
+  'tga-palette-index':
+    'The texel at {x}, {y} uses color map entry {found}; the map holds {first}..{last}. Export the image again.',
   'source-missing': 'The source is not there. Bring it back, or name its folder with `--source-root`.',
   'source-moved':
     'The source has SHA-256 {now}; the manifest was built from {recorded}. Bring that version back, or build again.',
