@@ -32,6 +32,24 @@ const usage = {
   'missing-argument': '{command} needs {what}. Name at least one.',
   'several-roots': '--out takes one root, but the paths given lie in {count}: {roots}. Run once for each.',
   'settings-exist': 'There is a settings file here already; it was left as it is. Edit it, or remove it first.',
+  'channel-missing':
+    'The settings name channel {letter}, but the file has {channels} channels: {letters}. Export it with that channel, or correct `channels`.',
+  'normal-channels':
+    'A normal needs two or three channels and {found} of the {channels} in the file mean one. Export it as RGB, or correct `content` and `channels`.',
+  'kernel-cannot':
+    'Kernel {kernel} cannot {action} {from} to {to} texels. Use one that can: {others}.',
+  'kernel-both-ways':
+    'Target {target} makes one axis smaller and the other larger; {kernels} cannot be combined so. Use one kernel of weights for both.',
+  'scaler-factor':
+    'Kernel {kernel} magnifies by whole factors made of {factors}, the same on both axes; {from} to {to} is none. Choose such a target or another kernel.',
+  'grid-remainder':
+    'The sheet is {extent} texels; cells of {cell} with {gutter} texels of gutter on each side leave {rest} over. Correct the grid or the sheet.',
+  'grid-target':
+    'Target {target} would make cells of {width} x {height} texels. With a grid only scales that give whole texels can be built.',
+  'roughness-extent':
+    'The roughness map is {found} texels and the normal map {expected}. Export both at one extent.',
+  'too-much-memory':
+    'Building this would hold {bytes} bytes; {limit} are allowed. Raise `--memory`, or make the image smaller.',
 } as const;
 
 /** Exit 3: a source that could not be read. */

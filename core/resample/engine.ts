@@ -1,5 +1,6 @@
-import type { Codes, Depth, Extent } from '../raster/raster.ts';
 import type { Taps } from '../kernel/taps.ts';
+import type { Codes, Depth, Extent } from '../raster/raster.ts';
+import type { Wrap } from '../treatment/treatment.ts';
 
 // The rows phase: source rows go in once, finished rows of every level and target come out. One interface for every
 // engine; an engine is right when its float rows equal those of plain.ts bit for bit.
@@ -37,6 +38,7 @@ export interface Step {
 
 export interface Pass {
   readonly extent: Extent;
+  readonly wrap: { readonly x: Wrap; readonly y: Wrap };
   readonly decoding: Decoding;
   readonly steps: readonly Step[];
 }

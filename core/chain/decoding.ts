@@ -1,0 +1,46 @@
+import { decodeTable } from '../color/transfer.ts';
+import { type Depth, maxCode } from '../raster/raster.ts';
+import type { Decoding } from '../resample/engine.ts';
+import type { Layout, Role } from './layout.ts';
+
+/** The tables that turn a layout's codes into kernel light: colour 0..1 (or code units where it is not transfer-coded),
+ *  alpha and numbers in code units, normals -1..1, roughness as alpha^2 = r^4. */
+export function decodingOf(layout: Layout): Decoding {
+  const { depth, channels, alpha, weighted, normals } = layout;
+  return {
+    depth,
+    channels,
+    tables: layout.roles.map((role) => tableOf(role, depth)),
+    alpha: weighted.length > 0 ? alpha : null,
+    weighted,
+    normals,
+  };
+}
+
+function tableOf(role: Role, depth: Depth): Float32Array {
+  switch (role.kind) {
+    case 'color':
+      return decodeTable(depth, role.transfer);
+    case 'plain':
+    case 'opacity':
+    case 'unused':
+      return decodeTable(depth, 'linear');
+    case 'normal':
+      return madeTable('normal', depth, (share) => share * 2 - 1);
+    case 'roughness':
+      return madeTable('roughness', depth, (share) => share * share * (share * share));
+  }
+}
+
+function madeTable(kind: 'normal' | 'roughness', depth: Depth, of: (share: number) => number): Float32Array {
+  const key = `${kind}${depth}` as const;
+  let table = tables.get(key);
+  if (table === undefined) {
+    const max = maxCode(depth);
+    table = Float32Array.from({ length: max + 1 }, (_, code) => of(code / max));
+    tables.set(key, table);
+  }
+  return table;
+}
+
+const tables = new Map<string, Float32Array>();
