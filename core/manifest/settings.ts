@@ -1,3 +1,4 @@
+import { allows, findKernel } from '../kernel/table.ts';
 import type {
   AlphaTreatment,
   ChannelContent,
@@ -16,6 +17,7 @@ import {
   flag,
   integer,
   list,
+  Misfit,
   nothing,
   number,
   object,
@@ -30,9 +32,25 @@ const transfer = choice<Transfer>('srgb', 'linear');
 
 const wrap = choice<Wrap>('clamp-to-edge', 'repeat', 'mirror-repeat', 'clamp-to-border');
 
-const kernelChoice: Shape<KernelChoice> = object<KernelChoice>({
+/** A kernel of the table with every parameter it has, no other, each in its range. */
+const kernelChoice: Shape<KernelChoice> = (value, at) => {
+  const loose = looseKernel(value, at);
+  const kernel = findKernel(loose.name);
+  if (kernel === undefined) throw new Misfit(`${at}.name`, 'a kernel of this version');
+  const params: Record<string, number> = {};
+  for (const param of kernel.params) {
+    const place = `${at}.params.${param.name}`;
+    params[param.name] = number(param.min, param.max)(loose.params[param.name], place);
+    if (!allows(param, params[param.name])) throw new Misfit(place, `one of ${param.allowed?.join(', ')}`);
+  }
+  if (Object.keys(loose.params).length !== kernel.params.length)
+    throw new Misfit(`${at}.params`, 'its parameters alone');
+  return { name: kernel.name, params };
+};
+
+const looseKernel = object<KernelChoice>({
   name: text(/^[a-z0-9-]{1,32}$/, 'a kernel name'),
-  params: dictionary(number(-1024, 1024), /^[a-zA-Z]{1,32}$/, compareText),
+  params: dictionary(number(-Infinity, Infinity), /^[a-zA-Z]{1,32}$/, compareText),
 });
 
 const alpha: Shape<AlphaTreatment> = object<AlphaTreatment>({

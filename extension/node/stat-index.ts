@@ -1,0 +1,133 @@
+import { createHash } from 'node:crypto';
+import type { Disk, FileStat } from './disk.ts';
+import { DiskError } from './disk.ts';
+import { join, parentOf } from './path.ts';
+import { temporaryFor } from './temporary.ts';
+
+// What files hashed to when they were last read, so that an unchanged one costs a stat. One text file for each root:
+//
+//   sizeproof stat index 1
+//   <sha256> <size> <mtime in ms> <inode> <when hashed, ms since 1970> <path relative to the root>
+//
+// It is a hint: a damaged one is ignored, a missing one is made.
+
+export interface StatIndex {
+  /** SHA-256 of a file, `null` where there is none. Reads it only if its stat moved, or is too fresh to trust. */
+  hash(path: string): Promise<string | null>;
+  /** Keeps what was learned, if anything was. Failing is harmless. */
+  save(): Promise<void>;
+}
+
+interface Entry extends FileStat {
+  readonly sha256: string;
+  readonly hashedMs: number;
+  used: boolean;
+}
+
+/** A file changed within this time of being hashed may change again under the same time stamp: FAT keeps 2 s. */
+const FRESH_MS = 2000;
+
+/** Entries of files that nobody asked for may outnumber the others so far, before they are dropped. */
+const SPARE_ENTRIES = 10_000;
+
+const header = 'sizeproof stat index 1';
+
+/** Opens the index of one root, kept in `cacheFolder`; `null` keeps none. `now` gives milliseconds since 1970. */
+export async function openStatIndex(
+  disk: Disk,
+  cacheFolder: string | null,
+  root: string,
+  now: () => number = Date.now,
+): Promise<StatIndex> {
+  const file = cacheFolder === null ? null : join(cacheFolder, `${sha256Of(Buffer.from(root)).slice(0, 16)}.txt`);
+  const bytes = file === null ? null : await disk.read(file);
+  const entries = bytes === null ? new Map<string, Entry>() : parse(Buffer.from(bytes).toString());
+  let changed = false;
+
+  return { hash, save };
+
+  async function hash(path: string): Promise<string | null> {
+    const stat = await disk.stat(path);
+    const key = keyOf(path);
+    const known = entries.get(key);
+    if (stat === null) {
+      if (known !== undefined) changed = entries.delete(key);
+      return null;
+    }
+    if (known !== undefined && isSame(known, stat) && known.hashedMs - known.mtimeMs >= FRESH_MS) {
+      known.used = true;
+      return known.sha256;
+    }
+    const hashedMs = now();
+    const bytes = await disk.read(path);
+    if (bytes === null) return null;
+    const sha256 = sha256Of(bytes);
+    entries.set(key, { ...stat, sha256, hashedMs, used: true });
+    changed = true;
+    return sha256;
+  }
+
+  async function save(): Promise<void> {
+    if (file === null || !changed) return;
+    const text = print(entries);
+    const temporary = temporaryFor(file);
+    try {
+      await disk.makeFolder(parentOf(file));
+      await disk.write(temporary, text);
+      await disk.rename(temporary, file);
+      changed = false;
+    } catch (error) {
+      if (!(error instanceof DiskError)) throw error;
+      await disk.remove(temporary).catch(() => undefined);
+    }
+  }
+
+  /** Paths below the root are kept relative to it: shorter, and alike on drives that move. */
+  function keyOf(path: string): string {
+    return path.startsWith(`${root}/`) ? path.slice(root.length + 1) : path;
+  }
+}
+
+/** The user's cache folder for this program, by the custom of each system; `null` where no home is known. */
+export function cacheFolder(env: Readonly<Record<string, string | undefined>>, platform: string): string | null {
+  const home = env.HOME || env.USERPROFILE;
+  const base =
+    platform === 'win32'
+      ? env.LOCALAPPDATA || (home && `${home}/AppData/Local`)
+      : platform === 'darwin'
+        ? home && `${home}/Library/Caches`
+        : env.XDG_CACHE_HOME || (home && `${home}/.cache`);
+  return base ? join(base.replaceAll('\\', '/'), 'sizeproof') : null;
+}
+
+function isSame(entry: Entry, stat: FileStat): boolean {
+  return entry.size === stat.size && entry.mtimeMs === stat.mtimeMs && entry.inode === stat.inode;
+}
+
+function parse(text: string): Map<string, Entry> {
+  const entries = new Map<string, Entry>();
+  const lines = text.split('\n');
+  if (lines[0] !== header) return entries;
+  for (const line of lines) {
+    const parts = line.split(' ', 5);
+    const path = line.slice(parts.join(' ').length + 1);
+    const [size, mtimeMs, inode, hashedMs] = parts.slice(1).map(Number);
+    // NaN fails every comparison, so a damaged line is left out.
+    if (parts[0].length !== 64 || path === '' || !(size >= 0 && inode >= 0 && hashedMs - mtimeMs > -Infinity)) continue;
+    entries.set(path, { sha256: parts[0], size, mtimeMs, inode, hashedMs, used: false });
+  }
+  return entries;
+}
+
+function print(entries: ReadonlyMap<string, Entry>): Uint8Array {
+  const used = [...entries].filter(([, entry]) => entry.used);
+  const kept = entries.size > 2 * used.length + SPARE_ENTRIES ? used : [...entries];
+  const lines = kept.map(
+    ([path, each]) => `${each.sha256} ${each.size} ${each.mtimeMs} ${each.inode} ${each.hashedMs} ${path}`,
+  );
+  return Buffer.from(`${header}\n${lines.join('\n')}\n`);
+}
+
+function sha256Of(bytes: Uint8Array): string {
+  return createHash('sha256').update(bytes).digest('hex');
+}
