@@ -24,12 +24,14 @@ export interface ReferenceLevel {
   readonly coverage: number | null;
   readonly alphaScale: number;
   readonly bracket: readonly [number, number];
+  /** Of normals: their mean length over each texel, 0..1. */
+  readonly lengths: Float64Array | null;
 }
 
 /** The whole chain of an image in double precision, for kernels that weigh (weights, area, slopes, and nearest). */
 export function referenceChain(raster: StraightRaster, treatment: Treatment): ReferenceLevel[] {
   const meaning = meaningOf(raster.channels, treatment);
-  const base = decodeRaster(raster, meaning, treatment.light);
+  const base = decodeRaster(raster, meaning);
   const depth = treatment.depth === 'same' ? raster.depth : treatment.depth;
   const carried = [base];
   for (const extent of chainExtents(raster.extent).slice(1)) {
@@ -37,10 +39,11 @@ export function referenceChain(raster: StraightRaster, treatment: Treatment): Re
     carried.push(resampleDoubles(from, extent, treatment.kernel, treatment.wrap));
   }
   const wanted = coverageWanted(raster, treatment, meaning);
+  const lengths = normalLengths(base, carried, treatment, meaning);
   const levels = carried.map((image, level) =>
     level === 0 && depth === raster.depth && treatment.normal.base === 'keep'
       ? baseLevel(raster, base, treatment, meaning)
-      : storedLevel(image, raster.channels, treatment, meaning, depth, level === 0 ? null : wanted),
+      : storedLevel(image, raster.channels, treatment, meaning, depth, level === 0 ? null : wanted, lengths[level]),
   );
   if (meaning.alpha !== null && treatment.fill !== 'none') fillLevels(levels, treatment.fill === 'all' ? 0 : 1);
   return levels;
@@ -60,6 +63,7 @@ function baseLevel(raster: StraightRaster, carried: Doubles, treatment: Treatmen
     coverage: coverageWanted(raster, treatment, meaning),
     alphaScale: 1,
     bracket: [0, 0],
+    lengths: null,
   };
 }
 
@@ -70,8 +74,9 @@ function storedLevel(
   meaning: Meaning,
   depth: Depth,
   wanted: number | null,
+  lengths: Float64Array | null,
 ): ReferenceLevel {
-  const encode = (scale: number): Encoded => encodeDoubles(image, channels, meaning, treatment.light, depth, scale);
+  const encode = (scale: number): Encoded => encodeDoubles(image, channels, meaning, depth, scale, lengths);
   const measure = (scale: number): number =>
     coverage(encode(scale).codes, image, channels, treatment, maxCode(depth), meaning.alpha);
   const search = wanted === null || !treatment.alpha.keepCoverage ? null : searchScale(measure, wanted);
@@ -85,7 +90,31 @@ function storedLevel(
     coverage: wanted === null ? null : measure(alphaScale),
     alphaScale,
     bracket: search?.bracket ?? [0, 0],
+    lengths,
   };
+}
+
+/** Mean length of the normals over each texel of each level, always by box weights: those of the chain itself where it has
+ *  them, else straight from the base. Null where there are no normals. */
+function normalLengths(
+  base: Doubles,
+  carried: readonly Doubles[],
+  treatment: Treatment,
+  meaning: Meaning,
+): (Float64Array | null)[] {
+  const { normal } = meaning;
+  if (normal === null) return carried.map(() => null);
+  const box = { name: 'box', params: {} };
+  const own = treatment.kernel.minify.name === 'box' || treatment.kernel.minify.name === 'even';
+  return carried.map((image) => {
+    const here = own ? image : resampleDoubles(base, image, { minify: box, magnify: box }, treatment.wrap);
+    return Float64Array.from({ length: image.width * image.height }, (_, texel) => {
+      const at = texel * here.channels;
+      const length = Math.hypot(here.values[at + normal.x], here.values[at + normal.y], here.values[at + normal.z]);
+      const weighted = meaning.alpha !== null && meaning.weighted.includes(normal.x);
+      return Math.min(1, weighted ? length / here.values[at + (meaning.alpha ?? 0)] : length);
+    });
+  });
 }
 
 function coverageWanted(raster: StraightRaster, treatment: Treatment, meaning: Meaning): number | null {

@@ -1,35 +1,27 @@
 import { maxCode, type StraightRaster } from '../../core/raster/raster.ts';
-import type { Treatment } from '../../core/treatment/treatment.ts';
 import { type Doubles, doubles } from './doubles.ts';
 import type { Meaning } from './meaning.ts';
 import { decodeNormal } from './normal.ts';
 import { decodeSrgb } from './transfer.ts';
 
-/** What is filtered: light (or codes as fractions), premultiplied where weighted, unit normals. A rebuilt z is an added
- *  last channel. */
-export function decodeRaster(raster: StraightRaster, meaning: Meaning, light: Treatment['light']): Doubles {
+/** What is filtered: light, premultiplied where weighted; unit normals -1..1; roughness as alpha squared, r^4. A normal's
+ *  added z is the last channel. */
+export function decodeRaster(raster: StraightRaster, meaning: Meaning): Doubles {
   const { extent, channels, codes } = raster;
   const max = maxCode(raster.depth);
-  const rebuilt = meaning.normals.filter((normal) => normal.z === null).length;
-  const result = doubles(extent.width, extent.height, channels + rebuilt);
+  const { normal, alpha } = meaning;
+  const result = doubles(extent.width, extent.height, Math.max(channels, (normal?.z ?? 0) + 1));
   for (let texel = 0; texel < extent.width * extent.height; texel++) {
-    const values = Array.from({ length: channels + rebuilt }, (_, c) => {
-      if (c >= channels) return 0;
-      const fraction = codes[texel * channels + c] / max;
-      return meaning.transfer[c] === 'srgb' && light === 'linear' ? decodeSrgb(fraction) : fraction;
+    const values = Array.from(codes.subarray(texel * channels, (texel + 1) * channels), (code, c) => {
+      if (c === meaning.roughness) return (code / max) ** 4;
+      return meaning.transfer[c] === 'srgb' ? decodeSrgb(code / max) : code / max;
     });
-    for (const { x, y, z } of meaning.normals) {
-      const normal = decodeNormal(values[x], values[y], z === null ? null : values[z]);
-      [values[x], values[y], values[z ?? channels]] = normal;
+    if (normal !== null) {
+      const { x, y, z, rebuilt } = normal;
+      [values[x], values[y], values[z]] = decodeNormal(values[x], values[y], rebuilt ? null : values[z]);
     }
-    for (const c of weightedWithZ(meaning, channels)) values[c] *= values[meaning.alpha ?? 0];
+    if (alpha !== null) for (const c of meaning.weighted) values[c] *= values[alpha];
     result.values.set(values, texel * result.channels);
   }
   return result;
-}
-
-/** Weighted channels; a rebuilt z goes with its x and y. */
-export function weightedWithZ(meaning: Meaning, channels: number): number[] {
-  const added = meaning.normals.some((normal) => normal.z === null && meaning.weighted.includes(normal.x));
-  return added ? [...meaning.weighted, channels] : [...meaning.weighted];
 }

@@ -1,8 +1,7 @@
 import { type Codes, type Depth, maxCode, newCodes } from '../../core/raster/raster.ts';
-import type { Treatment } from '../../core/treatment/treatment.ts';
 import type { Doubles } from './doubles.ts';
 import type { Meaning } from './meaning.ts';
-import { unit } from './normal.ts';
+import { roughen, unit } from './normal.ts';
 import { encodeFraction, roundCode } from './transfer.ts';
 
 export interface Encoded {
@@ -13,14 +12,15 @@ export interface Encoded {
   readonly straight: Float64Array;
 }
 
-/** Stored codes of a filtered level: colour = c / a where a > 0, else black; alpha times `alphaScale`. */
+/** Stored codes of a filtered level: colour = c / a where a > 0, else black; alpha times `alphaScale`. `lengths` holds the
+ *  mean length of the normals over each texel. */
 export function encodeDoubles(
   image: Doubles,
   channels: number,
   meaning: Meaning,
-  light: Treatment['light'],
   depth: Depth,
   alphaScale: number,
+  lengths: Float64Array | null,
 ): Encoded {
   const max = maxCode(depth);
   const texels = image.width * image.height;
@@ -31,18 +31,20 @@ export function encodeDoubles(
     const values = Array.from(image.values.subarray(texel * image.channels, (texel + 1) * image.channels));
     const a = meaning.alpha === null ? 1 : values[meaning.alpha];
     for (const c of meaning.weighted) values[c] = a > 0 ? values[c] / a : Number.NaN;
-    for (const { x, y, z } of meaning.normals) {
-      const rebuiltZ = meaning.weighted.includes(x) ? values[channels] / a : values[channels];
-      const normal = unit(values[x], values[y], z === null ? rebuiltZ : values[z]).map((v) => (v + 1) / 2);
-      [values[x], values[y]] = normal;
-      if (z !== null) values[z] = normal[2];
+    if (meaning.normal !== null) {
+      const { x, y, z } = meaning.normal;
+      // The length of a sum needs no division by its alpha.
+      const [u, v, w] = [x, y, z].map((c) => image.values[texel * image.channels + c]);
+      [values[x], values[y], values[z]] = unit(u, v, w).map((component) => (component + 1) / 2);
     }
+    if (meaning.roughness !== null)
+      values[meaning.roughness] = roughen(values[meaning.roughness], lengths?.[texel] ?? 1);
     if (meaning.alpha !== null) values[meaning.alpha] *= alphaScale;
+    if (meaning.unused !== null) values[meaning.unused] = 1;
     for (let c = 0; c < channels; c++) {
       const at = texel * channels + c;
-      const transfer = light === 'linear' ? meaning.transfer[c] : 'linear';
       straight[at] = values[c];
-      fractions[at] = encodeFraction(values[c], transfer, max);
+      fractions[at] = encodeFraction(values[c], meaning.transfer[c], max);
       codes[at] = Number.isNaN(values[c]) ? 0 : roundCode(fractions[at], meaning.transfer[c]);
     }
   }

@@ -3,7 +3,8 @@ import { areaTaps } from './axis.ts';
 import { type Doubles, doubles } from './doubles.ts';
 import { wrapIndex } from './wrap.ts';
 
-/** Bounds of the next level from bounds of this one: every texel with a box weight and one more on each side. */
+/** Bounds of the next level from bounds of this one: every texel with a box weight and one more on each side; a border
+ *  reads 0. */
 export function nextBounds(
   image: Doubles,
   extent: { readonly width: number; readonly height: number },
@@ -17,7 +18,9 @@ export function nextBounds(
     for (let x = 0; x < extent.width; x++) {
       for (let c = 0; c < image.channels; c++) {
         const met = rows[y].flatMap((v) =>
-          columns[x].map((u) => image.values[(v * image.width + u) * image.channels + c]),
+          columns[x].map((u) =>
+            u === null || v === null ? 0 : image.values[(v * image.width + u) * image.channels + c],
+          ),
         );
         result.values[(y * extent.width + x) * image.channels + c] = met.reduce(pick);
       }
@@ -26,10 +29,10 @@ export function nextBounds(
   return result;
 }
 
-function reach(from: number, to: number, wrap: Wrap): number[][] {
+function reach(from: number, to: number, wrap: Wrap): (number | null)[][] {
   return Array.from({ length: to }, (_, j) => {
     const inside = areaTaps(from, to, j).map((tap) => tap.index);
     const all = [inside[0] - 1, ...inside, inside[inside.length - 1] + 1];
-    return all.map((i) => wrapIndex(i, from, wrap)).filter((i) => i !== null);
+    return all.map((i) => wrapIndex(i, from, wrap));
   });
 }

@@ -1,54 +1,59 @@
-import type { Transfer, Treatment } from '../../core/treatment/treatment.ts';
+import type { ChannelContent, Transfer, Treatment } from '../../core/treatment/treatment.ts';
 
 /** What the channels of a file are, read off its treatment. */
 export interface Meaning {
-  /** Transfer function of each stored channel. */
+  /** Transfer function that filtering undoes, for each stored channel. */
   readonly transfer: readonly Transfer[];
   /** The channel that is an alpha of opacity or mask, null where there is none. */
   readonly alpha: number | null;
-  /** Channels weighted by it. */
+  /** An alpha that nobody reads: stored as the largest code. */
+  readonly unused: number | null;
+  /** Channels weighted by alpha. */
   readonly weighted: readonly number[];
-  /** Channels of a normal; z is null where it is rebuilt from x and y. */
-  readonly normals: readonly { readonly x: number; readonly y: number; readonly z: number | null }[];
-  /** Channels of a roughness in the same file. */
-  readonly roughness: readonly number[];
+  /** A normal's channels; z may be an added one behind the file's, and may be rebuilt from x and y. */
+  readonly normal: { readonly x: number; readonly y: number; readonly z: number; readonly rebuilt: boolean } | null;
+  /** The roughness that takes up the spread of the same file's normals. */
+  readonly roughness: number | null;
 }
 
 export function meaningOf(channels: number, treatment: Treatment): Meaning {
-  const content = contentOf(channels, treatment);
-  const alphaUse = treatment.alpha.use === 'opacity' || treatment.alpha.use === 'mask';
-  const alpha = channels % 2 === 0 && alphaUse && treatment.channels === null ? channels - 1 : null;
-  const transfer = content.map((each, c) => transferOf(each, c, alpha, channels, treatment));
-  const others = content.map((_, c) => c).filter((c) => c !== alpha);
-  const weighs = alpha !== null && treatment.alpha.weight;
-  const weighted = !weighs ? [] : others.filter((c) => content[c] !== 'normal' || treatment.alpha.use === 'opacity');
-  const normal = others.filter((c) => content[c] === 'normal');
-  const normals =
-    normal.length < 2
-      ? []
-      : [{ x: normal[0], y: normal[1], z: normal.length > 2 && treatment.normal.count === 3 ? normal[2] : null }];
-  return { transfer, alpha, weighted, normals, roughness: others.filter((c) => content[c] === 'roughness') };
+  const contents = contentsOf(channels, treatment);
+  const { use, weight } = treatment.alpha;
+  const alphaAt = contents.indexOf('alpha');
+  const alpha = alphaAt >= 0 && (use === 'opacity' || use === 'mask') ? alphaAt : null;
+  const of = contents.flatMap((content, c) => (content === 'normal' ? [c] : []));
+  const normal =
+    of.length < 2
+      ? null
+      : { x: of[0], y: of[1], z: of[2] ?? channels, rebuilt: of.length === 2 || treatment.normal.count === 2 };
+  const all = normal !== null && normal.z === channels ? [...contents, 'normal' as const] : contents;
+  const weighted = all.flatMap((content, c) => (c === alpha || (content === 'normal' && use === 'mask') ? [] : [c]));
+  const rough = contents.indexOf('roughness');
+  return {
+    transfer: contents.map((content, c) => transferOf(content, c, treatment)),
+    alpha,
+    unused: alphaAt >= 0 && use === 'none' ? alphaAt : null,
+    weighted: alpha !== null && weight ? weighted : [],
+    normal,
+    roughness: rough >= 0 ? rough : null,
+  };
 }
 
-function contentOf(channels: number, treatment: Treatment): string[] {
-  const letters = channels <= 2 ? ['r', 'a'].slice(0, channels) : ['r', 'g', 'b', 'a'].slice(0, channels);
+type Named = ChannelContent | 'alpha';
+
+function contentsOf(channels: number, treatment: Treatment): Named[] {
+  if (channels === 2 && treatment.content === 'normal' && treatment.channels === null) return ['normal', 'normal'];
+  const letters = [['r'], ['r', 'a'], ['r', 'g', 'b'], ['r', 'g', 'b', 'a']][channels - 1];
   return letters.map((letter) => {
     for (const [group, content] of Object.entries(treatment.channels ?? {})) {
       if (group.includes(letter)) return content;
     }
-    return treatment.content;
+    return letter === 'a' ? 'alpha' : treatment.content;
   });
 }
 
-function transferOf(
-  content: string,
-  channel: number,
-  alpha: number | null,
-  channels: number,
-  treatment: Treatment,
-): Transfer {
-  if (channel === alpha || content === 'normal') return 'linear';
-  if (typeof treatment.transfer !== 'string') return treatment.transfer[channel];
-  if (channels % 2 === 0 && channel === channels - 1) return 'linear';
-  return treatment.transfer;
+function transferOf(content: Named, channel: number, treatment: Treatment): Transfer {
+  if (content === 'alpha' || content === 'normal' || content === 'roughness') return 'linear';
+  if (content === 'color' && treatment.light === 'code') return 'linear';
+  return typeof treatment.transfer === 'string' ? treatment.transfer : treatment.transfer[channel];
 }
