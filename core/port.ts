@@ -25,7 +25,8 @@ export interface DeflateHints {
   readonly strategy: 'default' | 'filtered' | 'huffman' | 'rle';
 }
 
-/** Writes one zlib stream (RFC 1950). The hints may be ignored where the platform has none; the encoder fingerprint tells. */
+/** Writes one zlib stream (RFC 1950) of the pieces, in order. A piece is valid until the next one is asked for, so what is kept
+ *  of it is copied. The hints may be ignored where the platform has none; the encoder fingerprint tells. */
 export type Deflate = (pieces: Iterable<Uint8Array>, hints: DeflateHints) => AsyncIterable<Uint8Array>;
 
 /** SHA-256, fed in pieces. */
