@@ -6,7 +6,7 @@ import { cubeRoot, fifthRoot } from './portable.ts';
 // the joint; the constants that would close it belong to no standard.  [IEC61966, as quoted in KDFS14, sRGB transfer functions]
 
 /** Linear light of an sRGB-encoded value; both 1 at white. Negative values are mirrored, values above 1 go on along the
- *  curve: what overshoots can be measured. Within 8 ulp. */
+ *  curve: what overshoots can be measured. Within 5 ulp. */
 export function decodeSrgb(value: number): number {
   if (value < 0) return -decodeSrgb(-value);
   if (value <= 0.04045) return value / 12.92;
@@ -17,7 +17,7 @@ export function decodeSrgb(value: number): number {
 }
 
 /** sRGB-encoded value of linear light, mirrored and extended as `decodeSrgb`. Not for rounding: codes are found by
- *  thresholds. Within 8 ulp above the linear segment's end. */
+ *  thresholds. Within 5 ulp up to 1. */
 export function encodeSrgb(linear: number): number {
   if (linear < 0) return -encodeSrgb(-linear);
   if (linear <= 0.0031308) return linear * 12.92;

@@ -32,7 +32,7 @@ export const catmullRom: Kernel = {
 };
 
 /** Cubic convolution with the slope a at distance 1. Interpolates, overshoots a step by 4|a|/27; a = -1/2 is the one of
- *  third order. Support 2 texels.  [Keys81, equation 15] */
+ *  third order. Support 2 texels.  [Keys81, the cubic convolution kernel] */
 export const keys: Kernel = {
   name: 'keys',
   params: [{ name: 'a', unit: 'number', min: -2, max: 0, default: -0.5 }],

@@ -52,7 +52,7 @@ export type KernelRule =
 
 const everyScale = { minifies: true, magnifies: true } as const;
 
-/** The source texel that holds the target's centre: floor(u).  [Vulkan, Texel Gathering and nearest filtering] */
+/** The source texel that holds the target's centre: floor(u).  [Vulkan, (u,v,w,a) to (i,j,k,l,n) Transformation] */
 const nearest: Kernel = {
   name: 'nearest',
   params: [],
@@ -99,7 +99,7 @@ const monotone: Kernel = {
   kind: 'slopes',
 };
 
-/** Averages in which texels that differ from their surroundings weigh more.  [Weber16, section 3] */
+/** Averages in which texels that differ from their surroundings weigh more.  [Weber16] */
 const detail: Kernel = {
   name: 'detail',
   params: [{ name: 'lambda', unit: 'number', min: 0, max: 2, default: 0.5, allowed: [0, 0.5, 1, 2] }],
@@ -121,11 +121,11 @@ const majority: Kernel = {
   kind: 'footprint',
 };
 
-/** Pixel-art scaler: 2x by EPX, which equals Scale2x, and 3x by Scale3x.  [Johnston99; Mazzoleni01] */
+/** Pixel-art scaler: 2x by EPX, which equals Scale2x, and 3x by Scale3x.  [MacTech99; Mazzoleni01] */
 const epx: Kernel = {
   name: 'epx',
   params: [],
-  source: 'Johnston99, Mazzoleni01',
+  source: 'MacTech99, Mazzoleni01',
   interpolates: true,
   minifies: false,
   magnifies: true,

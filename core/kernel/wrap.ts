@@ -1,7 +1,7 @@
 import type { Wrap } from '../treatment/treatment.ts';
 
 /** The texel 0..count-1 that is read at index `i`, any distance outside; -1 where the border is read instead.
- *  `mirror-repeat` repeats the edge texel.  [Vulkan, Texel Input Validation: wrapping operation] */
+ *  `mirror-repeat` repeats the edge texel.  [Vulkan, Wrapping Operation] */
 export function wrapIndex(i: number, count: number, wrap: Wrap): number {
   if (i >= 0 && i < count) return i;
   switch (wrap) {

@@ -20,7 +20,7 @@ export interface DetailOptions {
  *  the light that `transfers` name, distances between codes, of weighted channels times alpha, so that no color under alpha 0
  *  counts. Where every texel equals the guide, the guide is the result. Colors are 0 where alpha is. In double precision
  *  throughout. Throws RangeError for another lambda and where the target is larger than the source.
- *  [Weber16, sections 3 and 4] */
+ *  [Weber16] */
 export function detail(raster: StraightRaster, extent: Extent, options: DetailOptions): StraightRaster {
   checkSmaller(raster.extent, extent);
   const power = powers.get(options.lambda);

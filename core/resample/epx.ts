@@ -6,7 +6,7 @@ import { BORDER, holdsBorder, pickTexels } from './pick.ts';
 /** Pixel art magnified by `factor`, a product of twos and threes: twos first, each by EPX (which equals Scale2x), then
  *  threes by Scale3x. Every result texel is a texel of the source; all texels of alpha 0 count as one color. Neighbors outside
  *  are read by `wrap`; the border is clear. Throws RangeError for another factor, 1 included.
- *  [Johnston99, EPX; Mazzoleni01, Scale2x and Scale3x] */
+ *  [MacTech99, EPX; Mazzoleni01, Scale2x and Scale3x] */
 export function epx<R extends StraightRaster | IndexedRaster>(
   raster: R,
   factor: number,
