@@ -28,7 +28,7 @@ const usage = {
   'nothing-selected': 'No texture matches {selector}. Check the path, the extensions and the exclude globs.',
   'unknown-command': 'There is no command {given}. Did you mean {nearest}? `--help` lists them all.',
   'unknown-option': 'There is no option {given} here. Did you mean {nearest}? `--help` lists them all.',
-  'option-value': 'Expected {expected} for {option} but received {given}. Correct the command line.',
+  'option-value': 'Expected {expected} for {option} but received {received}. Correct the command line.',
   'missing-argument': '{command} needs {what}. Name at least one.',
   'several-roots': '--out takes one root, but the paths given lie in {count}: {roots}. Run once for each.',
   'settings-exist': 'There is a settings file here already; it was left as it is. Edit it, or remove it first.',
@@ -111,6 +111,7 @@ const sources = {
     'This is no manifest: expected {expected} for {where}. Bring it back from version control, or build again.',
   'worker-ended':
     'The worker that built this ended: {reason}. Build it alone with `--jobs 1`; if it happens again, report it.',
+  unexpected: 'Something went wrong that should not: {reason}. Report it, with the file if you can.',
 } as const;
 
 /** Exit 4: outputs that could not be written. */

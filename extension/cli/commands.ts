@@ -1,0 +1,87 @@
+/** Every command there is, as `--help` lists them. */
+export const commands = [
+  { name: 'init', takes: '[FOLDER]', least: 0, says: 'Write a commented sizeproof.json to start from.' },
+  { name: 'build', takes: 'PATH...', least: 1, says: 'Build what moved of the textures under the paths.' },
+  {
+    name: 'check',
+    takes: 'PATH...',
+    least: 1,
+    says: 'Say what moved since the last build, and which findings pass their limit.',
+  },
+  {
+    name: 'rebuild',
+    takes: 'MANIFEST-OR-FOLDER...',
+    least: 1,
+    says: 'Make outputs again from manifests and sources, without a settings file.',
+  },
+  {
+    name: 'explain',
+    takes: 'PATH...',
+    least: 1,
+    says: 'Say which treatment each texture gets, and which rule set each setting.',
+  },
+] as const;
+
+export type CommandName = (typeof commands)[number]['name'];
+
+export interface OptionEntry {
+  readonly name: string;
+  /** What the value is called in `--help`; `null` for an option without one. */
+  readonly value: string | null;
+  readonly commands: readonly CommandName[];
+  readonly says: string;
+}
+
+const all: readonly CommandName[] = ['init', 'build', 'check', 'rebuild', 'explain'];
+const project: readonly CommandName[] = ['build', 'check', 'explain'];
+
+/** Every option there is. `--help` and `--version` also stand alone. */
+export const options = [
+  { name: 'settings', value: 'FILE', commands: project, says: 'Use this settings file in place of the nearest one.' },
+  {
+    name: 'out',
+    value: 'DIR',
+    commands: project,
+    says: "Where outputs go or were written; otherwise the settings' outDir.",
+  },
+  { name: 'json', value: null, commands: all, says: 'Print one JSON document on standard output.' },
+  { name: 'quiet', value: null, commands: all, says: 'Print problems alone.' },
+  {
+    name: 'jobs',
+    value: 'COUNT',
+    commands: ['build', 'check', 'rebuild'],
+    says: 'Textures built at a time; otherwise one for each processor.',
+  },
+  {
+    name: 'memory',
+    value: 'SIZE',
+    commands: ['build', 'check', 'rebuild'],
+    says: "Bytes that building may hold, as 512MiB or 2GiB; otherwise a quarter of the machine's memory.",
+  },
+  { name: 'plan', value: null, commands: ['build'], says: 'Say what would be built and why, and build nothing.' },
+  { name: 'watch', value: null, commands: ['build'], says: 'Go on building whenever something changes, until Ctrl-C.' },
+  { name: 'prune', value: null, commands: ['build'], says: 'Remove the outputs of sources that are no longer there.' },
+  {
+    name: 'without-outputs',
+    value: null,
+    commands: ['check'],
+    says: 'Leave the outputs out of it: for manifests kept in version control without them.',
+  },
+  {
+    name: 'source-root',
+    value: 'DIR',
+    commands: ['rebuild'],
+    says: 'Look for sources below this folder: for manifests that were moved.',
+  },
+  {
+    name: 'new-algorithm',
+    value: null,
+    commands: ['rebuild'],
+    says: 'Rebuild what another revision of the algorithm built; pixels may change.',
+  },
+  { name: 'gitattributes', value: null, commands: ['init'], says: 'Add the line for manifests to .gitattributes.' },
+  { name: 'help', value: null, commands: all, says: 'Print this.' },
+  { name: 'version', value: null, commands: all, says: 'Print the version.' },
+] as const satisfies readonly OptionEntry[];
+
+export type OptionName = (typeof options)[number]['name'];
