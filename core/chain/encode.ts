@@ -28,20 +28,11 @@ export function encodeRow(
   const { layout } = encoding;
   layout.roles.forEach((role, channel) => {
     const column = { encoding, floats, codes, offset, channel, clipped };
-    switch (role.kind) {
-      case 'color':
-        return encodeColor(column, role, dividerOf(layout, channel));
-      case 'plain':
-        return encodePlain(column, dividerOf(layout, channel));
-      case 'opacity':
-        return encodePlain(column, null);
-      case 'unused':
-        return fillColumn(column, maxCode(encoding.depth));
-      case 'normal':
-        return;
-      case 'roughness':
-        return encodeRoughness(column, dividerOf(layout, channel), lengths);
-    }
+    if (role.kind === 'color') encodeColor(column, role, dividerOf(layout, channel));
+    else if (role.kind === 'plain') encodePlain(column, dividerOf(layout, channel));
+    else if (role.kind === 'opacity') encodePlain(column, null);
+    else if (role.kind === 'unused') fillColumn(column, maxCode(encoding.depth));
+    else if (role.kind === 'roughness') encodeRoughness(column, dividerOf(layout, channel), lengths);
   });
   for (const group of layout.normals) encodeNormals(encoding, group, floats, codes, offset);
 }
@@ -64,10 +55,10 @@ const round = Math.fround;
 
 function encodeColor(column: Column, role: Role & { kind: 'color' }, divider: number | null): void {
   const { encoding } = column;
-  if (role.transfer === 'linear') return encodePlain(column, divider);
-  if (encoding.light === 'linear') return encodeScaled(column, divider, maxCode(encoding.depth));
-  if (encoding.store === 'premultiplied' && encoding.layout.alpha !== null) return encodePremultiplied(column, divider);
-  encodeTransferred(column, divider, srgbEncoder(encoding.depth));
+  if (role.transfer === 'linear') encodePlain(column, divider);
+  else if (encoding.light === 'linear') encodeScaled(column, divider, maxCode(encoding.depth));
+  else if (encoding.store === 'premultiplied' && encoding.layout.alpha !== null) encodePremultiplied(column, divider);
+  else encodeTransferred(column, divider, srgbEncoder(encoding.depth));
 }
 
 function encodeTransferred(column: Column, divider: number | null, encoder: Encoder): void {
@@ -91,8 +82,8 @@ function encodePlain(column: Column, divider: number | null): void {
   const { encoding } = column;
   const to = maxCode(encoding.depth);
   const from = maxCode(encoding.layout.depth);
-  if (encoding.store === 'premultiplied' && divider !== null) return encodePremultiplied(column, divider);
-  encodeScaled(column, divider, to / from);
+  if (encoding.store === 'premultiplied' && divider !== null) encodePremultiplied(column, divider);
+  else encodeScaled(column, divider, to / from);
 }
 
 /** The value times `scale` is in code units. A scale below 1 divides by its inverse, which is a whole number (257). */

@@ -1,5 +1,5 @@
 import { findKernel, type Kernel, type KernelParams, kernels } from '../kernel/table.ts';
-import { buildTaps, maxTaps, type Taps } from '../kernel/taps.ts';
+import { buildTaps, type Taps } from '../kernel/taps.ts';
 import { refuse } from '../problem.ts';
 import type { Extent } from '../raster/raster.ts';
 import type { KernelChoice, Treatment } from '../treatment/treatment.ts';
@@ -76,8 +76,14 @@ function isTapped(kinds: ReadonlySet<Kernel['kind']>): boolean {
 function tapped(from: Extent, to: Extent, x: AxisKernel | null, y: AxisKernel | null): Method {
   const tapsX = axisTaps(x, from.width, to.width);
   const tapsY = axisTaps(y, from.height, to.height);
-  const kind = maxTaps(tapsX) === 1 && maxTaps(tapsY) === 1 ? 'codes' : 'rows';
-  return { kind, x: tapsX, y: tapsY };
+  const moves = movesTexels(x, from.width, to.width) && movesTexels(y, from.height, to.height);
+  return { kind: moves ? 'codes' : 'rows', x: tapsX, y: tapsY };
+}
+
+/** Whether the axis has one tap a texel by its kernel's nature. */
+function movesTexels(axis: AxisKernel | null, from: number, to: number): boolean {
+  if (axis === null || axis.kernel.kind === 'point') return true;
+  return axis.kernel.kind === 'area' && axis.kernel.magnified === 'nearest' && to > from;
 }
 
 function axisTaps(axis: AxisKernel | null, from: number, to: number): Taps {

@@ -1,0 +1,134 @@
+import { expandIndexed, maxCode, type Raster, type StraightRaster } from '../raster/raster.ts';
+import type { BaseImage } from './base.ts';
+import { boundCodes } from './bounds.ts';
+import { placeInCell } from './cell.ts';
+import { newClipped } from './clip.ts';
+import type { CoverageScale } from './coverage.ts';
+import type { Draft } from './draft.ts';
+import { fillFrom, fillWith } from './fill.ts';
+import { type ChainImage, ImageInWork, type LightSum, sumLight } from './image.ts';
+import { holdsColor } from './layout.ts';
+import { coverageOf, keepCoverage } from './mask.ts';
+import { type ChainPlan, pictureExtent } from './plan.ts';
+import { encodingOf } from './store.ts';
+
+/** The level phase: coverage, then fill from the last level upward, then targets into their cells, then bounds. */
+export function finishImages(
+  plan: ChainPlan,
+  drafts: { readonly levels: readonly (Draft | null)[]; readonly targets: readonly Draft[] },
+  base: BaseImage,
+): readonly ChainImage[] {
+  const scales = plan.keepsCoverage ? keepAll(plan, drafts) : new Map<Draft, CoverageScale>();
+  if (plan.fill !== 'none') fillAll(plan, drafts, base);
+  const images: ChainImage[] = [];
+  for (const draft of drafts.levels) {
+    if (draft !== null && 'shipped' in draft.planned && draft.planned.shipped)
+      images.push(imageOf(plan, draft, scales));
+  }
+  for (const draft of drafts.targets) images.push(imageOf(plan, draft, scales));
+  return plan.treatment.height.minmax ? [...images, ...boundsOf(plan, drafts.levels)] : images;
+}
+
+function keepAll(
+  plan: ChainPlan,
+  { levels, targets }: { readonly levels: readonly (Draft | null)[]; readonly targets: readonly Draft[] },
+): Map<Draft, CoverageScale> {
+  const wanted = coverageOf(plan, levels[0]!.raster as StraightRaster);
+  const scales = new Map<Draft, CoverageScale>();
+  for (const draft of [...levels.slice(1), ...targets]) {
+    if (draft !== null) scales.set(draft, keepCoverage(plan, draft.raster as StraightRaster, draft.work, wanted));
+  }
+  return scales;
+}
+
+function fillAll(
+  plan: ChainPlan,
+  { levels, targets }: { readonly levels: readonly (Draft | null)[]; readonly targets: readonly Draft[] },
+  base: BaseImage,
+): void {
+  const alpha = plan.layout.alpha!;
+  const wants = (draft: Draft): boolean => plan.fill === 'all' || !draft.moved;
+  const mean = meanTexel(plan, base);
+  for (let level = levels.length - 1; level >= 0; level--) {
+    const draft = levels[level];
+    if (draft === null || !wants(draft) || draft.raster.kind !== 'straight') continue;
+    const coarser = levels[level + 1]?.raster;
+    if (coarser === undefined) fillWith(draft.raster, mean, alpha);
+    else fillFrom(draft.raster, straightOf(coarser), alpha);
+  }
+  for (const draft of targets) {
+    if (!wants(draft) || draft.raster.kind !== 'straight') continue;
+    const { width, height } = draft.raster.extent;
+    const coarser = levels.find(
+      (each, level) =>
+        level > 0 &&
+        each !== null &&
+        pictureExtent(each.planned).width <= width &&
+        pictureExtent(each.planned).height <= height,
+    );
+    if (coarser) fillFrom(draft.raster, straightOf(coarser.raster), alpha);
+    else fillWith(draft.raster, mean, alpha);
+  }
+}
+
+/** The mean colour of level 0, weighed by alpha; black where the whole image is transparent. */
+function meanTexel(plan: ChainPlan, base: BaseImage): StraightRaster {
+  const texels = plan.head.extent.width * plan.head.extent.height;
+  const work = new ImageInWork({ width: 1, height: 1 }, encodingOf(plan), { alpha: 'dropped' });
+  work.take(
+    0,
+    Float32Array.from(base.sums, (sum) => sum / texels),
+    null,
+  );
+  return work.straight();
+}
+
+function imageOf(plan: ChainPlan, draft: Draft, scales: ReadonlyMap<Draft, CoverageScale>): ChainImage {
+  const { planned, work, raster } = draft;
+  const { layout, treatment } = plan;
+  const scale = scales.get(draft);
+  const light = work === null ? codesLight(plan, raster) : work.light();
+  const placed = 'place' in planned ? placeInCell(raster, planned.place, layout.alpha) : raster;
+  const normalLength = layout.normals.length === 0 ? undefined : (work?.normalLength() ?? 1);
+  return {
+    use: 'image',
+    ...('level' in planned ? { level: planned.level } : { target: planned.target.name }),
+    extent: placed.extent,
+    raster: placed,
+    ...(layout.alpha !== null && treatment.alpha.use === 'mask' && { coverage: coverageOf(plan, straightOf(raster)) }),
+    ...(scale !== undefined && { coverageScale: scale }),
+    ...(treatment.content === 'color' && holdsColor(layout) && { light }),
+    ...(normalLength !== undefined && { normalLength }),
+    clipped: work?.clipped ?? newClipped(layout.channels),
+  };
+}
+
+/** Luminance of codes that were moved, weighed by the alpha they carry. */
+function codesLight(plan: ChainPlan, raster: Raster): LightSum {
+  const straight = straightOf(raster);
+  const { alpha } = plan.layout;
+  const max = maxCode(straight.depth);
+  const texels = straight.extent.width * straight.extent.height;
+  return sumLight(encodingOf(plan), straight.codes, texels, (texel) =>
+    alpha === null ? 1 : straight.codes[texel * straight.channels + alpha] / max,
+  );
+}
+
+function boundsOf(plan: ChainPlan, levels: readonly (Draft | null)[]): ChainImage[] {
+  const { wrap } = plan.treatment;
+  const images: ChainImage[] = [];
+  for (const use of ['min', 'max'] as const) {
+    let raster = straightOf(levels[0]!.raster);
+    for (const draft of levels.slice(1)) {
+      const { level, extent, shipped } = draft!.planned as ChainPlan['levels'][number];
+      raster = boundCodes(raster, extent, wrap, use);
+      if (shipped) images.push({ use, level, extent, raster, clipped: newClipped(raster.channels) });
+    }
+  }
+  return images;
+}
+
+function straightOf(raster: Raster): StraightRaster {
+  if (raster.kind === 'indexed') return expandIndexed(raster);
+  return { ...raster, kind: 'straight' };
+}

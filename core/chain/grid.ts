@@ -1,0 +1,66 @@
+import { refuse } from '../problem.ts';
+import type { Extent } from '../raster/raster.ts';
+import type { Target, Treatment } from '../treatment/treatment.ts';
+import { levelCount, scaledExtent } from './levels.ts';
+
+type Grid = NonNullable<Treatment['grid']>;
+
+/** A sheet's cells: each `cell` texels with `gutter` texels on every side.
+ *
+ *    | gutter | cell | gutter || gutter | cell | gutter || ...
+ */
+export interface SheetPlan {
+  readonly cell: Extent;
+  readonly gutter: number;
+  readonly columns: number;
+  readonly rows: number;
+  /** Levels at which cells and gutters are whole texels, level 0 included. */
+  readonly levels: number;
+  readonly notes: readonly string[];
+}
+
+/** Throws Refusal where cells leave a remainder of the sheet. */
+export function planSheet(sheet: Extent, grid: Grid): SheetPlan {
+  const { gutter } = grid;
+  const cell: Extent = { width: grid.cell[0], height: grid.cell[1] };
+  const pitch: Extent = { width: cell.width + 2 * gutter, height: cell.height + 2 * gutter };
+  const rest: Extent = { width: sheet.width % pitch.width, height: sheet.height % pitch.height };
+  if (rest.width + rest.height > 0) {
+    refuse('grid-remainder', { extent: say(sheet), cell: say(cell), gutter, rest: say(rest) });
+  }
+  const levels = wholeLevels([cell.width, cell.height, gutter]);
+  const notes: string[] = [];
+  if (levels < levelCount(cell)) {
+    const what = gutter > 0 ? ` and gutters of ${gutter}` : '';
+    notes.push(`The chain stops at level ${levels - 1}: cells of ${say(cell)}${what} are no whole texels below it.`);
+  } else {
+    notes.push(`The chain stops at level ${levels - 1}, where a cell is one texel wide or high.`);
+  }
+  return { cell, gutter, columns: sheet.width / pitch.width, rows: sheet.height / pitch.height, levels, notes };
+}
+
+/** Extent of a cell in a target; only scales that give whole texels on a sheet are refused less. Throws Refusal. */
+export function targetCell(plan: SheetPlan, target: Target): { readonly cell: Extent; readonly gutter: number } {
+  const scale = 'scale' in target ? target.scale : Number.NaN;
+  const [width, height, gutter] = [plan.cell.width, plan.cell.height, plan.gutter].map((texels) => texels * scale);
+  if (![width, height, gutter].every(Number.isInteger)) refuse('grid-target', { target: target.name, width, height });
+  return { cell: scaledExtent(plan.cell, scale), gutter };
+}
+
+export function sheetExtent(plan: SheetPlan, cell: Extent, gutter: number): Extent {
+  return {
+    width: plan.columns * (cell.width + 2 * gutter),
+    height: plan.rows * (cell.height + 2 * gutter),
+  };
+}
+
+/** How often all of these halve into whole numbers of at least 1 (0 halves for ever), counted with level 0. */
+function wholeLevels(texels: readonly number[]): number {
+  let levels = 1;
+  while (texels.every((count) => count % 2 ** levels === 0)) levels++;
+  return levels;
+}
+
+function say(extent: Extent): string {
+  return `${extent.width}x${extent.height}`;
+}
