@@ -1,0 +1,14 @@
+import { mkdirSync, writeFileSync } from 'node:fs';
+import { dirname, join } from 'node:path';
+
+import { encodePiece, gallery } from './gallery.ts';
+
+// Paints the demo's textures into test/demo. Run from the top of the tree, by `npm run demo:paint`.
+
+for (const piece of gallery) {
+  const file = join('test', 'demo', piece.path);
+  const bytes = encodePiece(piece);
+  mkdirSync(dirname(file), { recursive: true });
+  writeFileSync(file, bytes);
+  console.log(`${file}  ${bytes.length} bytes`);
+}
