@@ -31,6 +31,11 @@ export function refuse<C extends Code>(code: C, values: Values<C>, place: Place 
   throw new Refusal({ code, severity: 'error', values, ...place });
 }
 
+/** An error that is handed on rather than thrown: something measured is over its limit. */
+export function finding<C extends Code>(code: C, values: Values<C>, place: Place = {}): Problem {
+  return { code, severity: 'error', values, ...place };
+}
+
 export function warning<C extends Code>(code: C, values: Values<C>, place: Place = {}): Problem {
   return { code, severity: 'warning', values, ...place };
 }
