@@ -148,6 +148,8 @@ async function bundleOne({ entry, file, head }) {
       target: 'node20',
       format: 'esm',
       legalComments: 'eof',
+      // jsonc-parser's `main` hides its parts from a bundler; its `module` does not.
+      mainFields: ['module', 'main'],
       // Dependencies in CommonJS call `require` for Node's own modules, which an ES module does not have.
       banner: {
         js: `${head}import { createRequire as createRequireHere } from 'node:module';\nconst require = createRequireHere(import.meta.url);`,
