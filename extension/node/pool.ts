@@ -1,0 +1,106 @@
+import { availableParallelism } from 'node:os';
+import { Worker } from 'node:worker_threads';
+import type { Problem } from '../../core/problem.ts';
+import { type MemoryGate, openMemoryGate } from './memory.ts';
+import type { Outcome, TextureJob } from './texture-job.ts';
+
+/** Runs jobs, and tells what became of each as it ends. Ends when all have. */
+export type RunJobs = (jobs: readonly TextureJob[], done: (index: number, outcome: Outcome) => void) => Promise<void>;
+
+export interface PoolOptions {
+  /** The bundled pool.worker.ts. */
+  readonly workerUrl: URL;
+  readonly workers: number;
+  /** Bytes that all running jobs may hold together. */
+  readonly memoryBytes: number;
+  /** One Int32 that is 1 when work should stop; shared with the workers. */
+  readonly cancel: SharedArrayBuffer;
+}
+
+export type ToWorker = { readonly kind: 'job'; readonly job: TextureJob } | { readonly kind: 'admitted' };
+
+export type FromWorker =
+  /** The job asks to hold these bytes. */
+  { readonly kind: 'admit'; readonly peakBytes: number } | { readonly kind: 'done'; readonly outcome: Outcome };
+
+/** Runs jobs in worker threads, one at a time in each. A worker that ends takes its job with it, in words, and no other. */
+export function runInWorkers({ workerUrl, workers, memoryBytes, cancel }: PoolOptions): RunJobs {
+  const flag = new Int32Array(cancel);
+  return async (jobs, done) => {
+    const gate = openMemoryGate(memoryBytes);
+    let next = 0;
+    const lane = async () => {
+      let thread: Thread | null = null;
+      while (next < jobs.length) {
+        const index = next++;
+        if (Atomics.load(flag, 0) === 1) {
+          done(index, { kind: 'cancelled' });
+          continue;
+        }
+        thread ??= startThread(workerUrl, cancel);
+        done(index, await thread.run(jobs[index], gate));
+        if (thread.ended()) thread = null;
+      }
+      await thread?.stop();
+    };
+    await Promise.all(Array.from({ length: Math.min(workers, jobs.length) }, lane));
+  };
+}
+
+/** One worker for each processor that this process may use. */
+export function defaultWorkers(): number {
+  return Math.min(256, availableParallelism());
+}
+
+interface Thread {
+  run(job: TextureJob, gate: MemoryGate): Promise<Outcome>;
+  ended(): boolean;
+  stop(): Promise<unknown>;
+}
+
+function startThread(url: URL, cancel: SharedArrayBuffer): Thread {
+  const worker = new Worker(url, { workerData: { cancel } });
+  let ended = false;
+  worker.once('exit', () => {
+    ended = true;
+  });
+
+  return { run, ended: () => ended, stop: () => worker.terminate() };
+
+  async function run(job: TextureJob, gate: MemoryGate): Promise<Outcome> {
+    let heldBytes = 0;
+    try {
+      return await new Promise<Outcome>((resolve) => {
+        const finish = (outcome: Outcome) => {
+          worker.off('message', onMessage).off('error', onError).off('exit', onExit);
+          resolve(outcome);
+        };
+        const onMessage = async (message: FromWorker) => {
+          if (message.kind === 'done') return finish(message.outcome);
+          await gate.enter(message.peakBytes);
+          // It may have ended while it waited.
+          if (ended) return gate.leave(message.peakBytes);
+          heldBytes = message.peakBytes;
+          post({ kind: 'admitted' });
+        };
+        const onError = (error: Error) => {
+          ended = true;
+          finish({ kind: 'failed', problem: endedProblem(job, error.message) });
+        };
+        const onExit = (code: number) => finish({ kind: 'failed', problem: endedProblem(job, `exit code ${code}`) });
+        worker.on('message', onMessage).on('error', onError).on('exit', onExit);
+        post({ kind: 'job', job });
+      });
+    } finally {
+      if (heldBytes > 0) gate.leave(heldBytes);
+    }
+  }
+
+  function post(message: ToWorker): void {
+    worker.postMessage(message);
+  }
+}
+
+function endedProblem(job: TextureJob, reason: string): Problem {
+  return { code: 'worker-ended', severity: 'error', values: { reason }, path: job.image.path };
+}

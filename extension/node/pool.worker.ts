@@ -1,0 +1,6 @@
+import { parentPort, workerData } from 'node:worker_threads';
+import { serve } from './serve.ts';
+
+const cancel = new Int32Array(workerData.cancel);
+
+serve(parentPort, () => Atomics.load(cancel, 0) === 1);

@@ -1,0 +1,41 @@
+import type { MessagePort } from 'node:worker_threads';
+import { buildTexture } from '../../core/chain/texture.ts';
+import type { FromWorker, ToWorker } from './pool.ts';
+import { nodeDisk } from './node-disk.ts';
+import { planJob } from './plan-job.ts';
+import { nodePorts } from './ports.ts';
+import { type Outcome, runTextureJob, type TextureJob } from './texture-job.ts';
+
+/** Answers a pool's messages: builds one texture after another. */
+export function serve(port: MessagePort, isCancelled: () => boolean): void {
+  const cancel = {
+    get cancelled() {
+      return isCancelled();
+    },
+  };
+  let admitted: () => void = () => undefined;
+  port.on('message', async (message: ToWorker) => {
+    if (message.kind === 'admitted') return admitted();
+    answer({ kind: 'done', outcome: await run(message.job) });
+  });
+
+  async function run(job: TextureJob): Promise<Outcome> {
+    try {
+      return await runTextureJob(job, { disk: nodeDisk, ports: nodePorts, cancel, buildTexture, planJob, admit });
+    } catch (error) {
+      const reason = error instanceof Error ? (error.stack ?? error.message).replaceAll(/\s+/g, ' ') : String(error);
+      return { kind: 'failed', problem: { code: 'unexpected', severity: 'error', values: { reason }, path: job.image.path } };
+    }
+  }
+
+  function admit(peakBytes: number): Promise<void> {
+    return new Promise((enter) => {
+      admitted = enter;
+      answer({ kind: 'admit', peakBytes });
+    });
+  }
+
+  function answer(message: FromWorker): void {
+    port.postMessage(message);
+  }
+}
