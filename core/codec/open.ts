@@ -29,7 +29,7 @@ export function formatOf(head: Uint8Array, path: string): 'png' | 'tga' {
     case '.tga':
       return 'tga';
     case null:
-      return refuse('unknown-format', { extension, known: IMAGE_EXTENSIONS.join(', ') });
+      return refuse('unknown-format', { extension: extension || '(none)', known: IMAGE_EXTENSIONS.join(', ') });
   }
 }
 

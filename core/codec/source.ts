@@ -3,7 +3,8 @@ import type { ChannelCount, Codes, Depth, Extent, Palette } from '../raster/rast
 /** A colour chunk of a PNG, as found; whether it is obeyed is the treatment's choice. */
 export interface ColorChunk {
   readonly name: 'cICP' | 'iCCP' | 'sRGB' | 'gAMA' | 'cHRM';
-  /** gAMA: value * 100000; cICP: its four bytes; sRGB: the intent; iCCP: the profile's name. */
+  /** Numbers in decimal with a space between. gAMA: value * 100000; cHRM: white, red, green and blue x and y * 100000;
+   *  cICP: its four bytes; sRGB: the intent; iCCP: the profile's name. */
   readonly value: string;
 }
 
@@ -15,7 +16,11 @@ export interface SourceHeader {
    *  an alpha channel, an indexed file gives indices (then `channels` and `depth` are those of the expanded raster). */
   readonly channels: ChannelCount;
   readonly depth: Depth;
-  readonly indexed: { readonly indexBits: 1 | 2 | 4 | 8; readonly palette: Palette; readonly alphaCount: number } | null;
+  readonly indexed: {
+    readonly indexBits: 1 | 2 | 4 | 8;
+    readonly palette: Palette;
+    readonly alphaCount: number;
+  } | null;
   readonly interlaced: boolean;
   readonly colorChunks: readonly ColorChunk[];
   /** Bytes after the end of the image that no reader needs. */
