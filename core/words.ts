@@ -32,12 +32,15 @@ const usage = {
   'missing-argument': '{command} needs {what}. Name at least one.',
   'several-roots': '--out takes one root, but the paths given lie in {count}: {roots}. Run once for each.',
   'settings-exist': 'There is a settings file here already; it was left as it is. Edit it, or remove it first.',
+  'color-chunk':
+    'The color chunk {chunk} says {value}, which cannot be obeyed. Convert the image to sRGB, or set `colorChunks` to `ignore`.',
+  'roughness-grid':
+    'A roughness map beside a sheet with a grid cannot be built. Pack roughness into the same file, or remove the grid.',
   'channel-missing':
     'The settings name channel {letter}, but the file has {channels} channels: {letters}. Export it with that channel, or correct `channels`.',
   'normal-channels':
     'A normal needs two or three channels and {found} of the {channels} in the file mean one. Export it as RGB, or correct `content` and `channels`.',
-  'kernel-cannot':
-    'Kernel {kernel} cannot {action} {from} to {to} texels. Use one that can: {others}.',
+  'kernel-cannot': 'Kernel {kernel} cannot {action} {from} to {to} texels. Use one that can: {others}.',
   'kernel-both-ways':
     'Target {target} makes one axis smaller and the other larger; {kernels} cannot be combined so. Use one kernel of weights for both.',
   'scaler-factor':
@@ -46,10 +49,64 @@ const usage = {
     'The sheet is {extent} texels; cells of {cell} with {gutter} texels of gutter on each side leave {rest} over. Correct the grid or the sheet.',
   'grid-target':
     'Target {target} would make cells of {width} x {height} texels. With a grid only scales that give whole texels can be built.',
-  'roughness-extent':
-    'The roughness map is {found} texels and the normal map {expected}. Export both at one extent.',
+  'roughness-extent': 'The roughness map is {found} texels and the normal map {expected}. Export both at one extent.',
   'too-much-memory':
     'Building this would hold {bytes} bytes; {limit} are allowed. Raise `--memory`, or make the image smaller.',
+  'settings-syntax': 'This is not JSON with comments: {reason}. Correct the text here.',
+  'settings-unreadable': 'The settings file could not be read. Check that it is there and its permissions.',
+  'settings-encoding': 'The settings file is not UTF-8. Save it as UTF-8.',
+  'folder-unreadable': 'The folder could not be listed. Check its permissions, or exclude it by choosing other paths.',
+  'unknown-key': 'There is no setting "{key}" here; the nearest is "{nearest}". Correct or remove it.',
+  'duplicate-key': '"{key}" was given at {first} already. Keep one of them.',
+  'missing-key': '"{key}" is missing in this object. Add it.',
+  'wrong-type': '{key} takes {expected}, not {received}. Correct the value.',
+  'out-of-range': '{key} takes {expected} but received {received}. Choose a value that fits.',
+  'bad-choice': '{key} has no choice {received}; the nearest is {nearest}. Choose one of {choices}.',
+  'bad-glob': 'The glob {glob} cannot be used: {reason}. Write it otherwise.',
+  'leaves-root':
+    'The path {path} may leave the root: it has a backslash, a drive letter, a leading / or a .. segment. Write it from the root with / alone.',
+  'unknown-placeholder': 'There is no placeholder {placeholder}. Use {known}, and no other braces.',
+  'bad-target-name':
+    'The target name "{name}" cannot be part of a file name, or reads as a level. Use letters, digits, - and _, not digits alone.',
+  'target-twice': 'Two targets are called "{name}". Give one of them another `name`.',
+  'channel-group': '"{group}" is no channel group. Use each of r, g, b and a once at most, in this order.',
+  'channel-shared': 'Channel {letter} is in "{group}" and in "{other}". Leave it in one group.',
+  'channel-count': 'The group "{group}" has {count} letters; {content} takes {expected}. Correct the letters.',
+  'content-twice': 'Both "{group}" and "{other}" are {content}; a file has it once. Make one of them data.',
+  'roughness-alone':
+    'A roughness channel takes up the spread of normals, but no group is normal. Make it data, or name the normal group.',
+  'premultiplied-png': 'PNG cannot hold premultiplied colour. Take png out of `outputs`, or store straight.',
+  'premultiplied-use':
+    'Colour is premultiplied by opacity, but alpha is used as {use}. Set `alpha.use` to opacity, or store straight.',
+  'coverage-use':
+    'Coverage can be kept for a mask, but alpha is used as {use}. Set `alpha.use` to mask, or drop `keepCoverage`.',
+  'coverage-premultiplied':
+    'Keeping coverage scales alpha, which premultiplied colour does not follow. Set `keepCoverage` to false, or store straight.',
+  'border-use':
+    'The border of clamp-to-border is transparent, but alpha is used as {use}. Set `alpha.use` to opacity or mask, or choose another wrap.',
+  'alpha-in-group':
+    'The group "{group}" makes alpha {content}, but it is used as {use}. Set `alpha.use` to data, or take a out of the group.',
+  'normal-transfer': 'Normals are directions, not light. Set `transfer` to linear for their channels.',
+  'normal-count':
+    'The normal has {count} channels, but its group "{group}" does not. Remove `normal.count`; the group tells it.',
+  'roughness-twice':
+    'Roughness is in this file already, as "{group}". Remove `normal.roughness`, or make the channel data.',
+  'roughness-pathless': 'A channel of a roughness map is named, but no map. Add `path`.',
+  'levels-order': 'The first level {first} comes after the last, {last}. Swap them.',
+  'targets-png': 'Targets are written as PNG alone. Add png to `outputs`, or remove the targets with null.',
+  'cell-use':
+    'The rest of the cell {target} is transparent, but alpha is used as {use}. Set `alpha.use` to opacity or mask, or use an extent.',
+  'grid-scale':
+    'Cells of a grid are scaled one by one; the target {target} is one size for a whole image. Use a scale.',
+  'name-lacks': 'Without {placeholder} in `name` the {what} would all be one file. Add it.',
+  'kernel-direction':
+    'Kernel {kernel} cannot {direction}, which {asked} asks for. Use {instead}, or one kernel for each direction.',
+  'kernel-scale':
+    'Kernel {kernel} cannot make the target {target}: it takes 2x, 3x and their products. Choose such a scale, or another kernel.',
+  'bad-output-name':
+    'An output would be called "{name}", which no system may carry: {reason}. Rename the source, or use `name`.',
+  'same-output': '{first} and {second} would both write {output}. Settle it in the settings, such as with {line}.',
+  'output-twice': 'Two results would both be {output}. Give the target another `name`.',
 } as const;
 
 /** Exit 3: a source that could not be read. */
