@@ -57,8 +57,8 @@ const usage = {
   'settings-encoding': 'The settings file is not UTF-8. Save it as UTF-8.',
   'folder-unreadable': 'The folder could not be listed. Check its permissions, or exclude it by choosing other paths.',
   'unknown-key': 'There is no setting "{key}" here; the nearest is "{nearest}". Correct or remove it.',
-  'duplicate-key': '"{key}" was given at {first} already. Keep one of them.',
-  'missing-key': '"{key}" is missing in this object. Add it.',
+  'duplicate-key': 'The key "{key}" was given at {first} already. Keep one of them.',
+  'missing-key': 'The key "{key}" is missing in this object. Add it.',
   'wrong-type': '{key} takes {expected}, not {received}. Correct the value.',
   'out-of-range': '{key} takes {expected} but received {received}. Choose a value that fits.',
   'bad-choice': '{key} has no choice {received}; the nearest is {nearest}. Choose one of {choices}.',
@@ -69,7 +69,7 @@ const usage = {
   'bad-target-name':
     'The target name "{name}" cannot be part of a file name, or reads as a level. Use letters, digits, - and _, not digits alone.',
   'target-twice': 'Two targets are called "{name}". Give one of them another `name`.',
-  'channel-group': '"{group}" is no channel group. Use each of r, g, b and a once at most, in this order.',
+  'channel-group': 'The key "{group}" is no channel group. Use each of r, g, b and a once at most, in this order.',
   'channel-shared': 'Channel {letter} is in "{group}" and in "{other}". Leave it in one group.',
   'channel-count': 'The group "{group}" has {count} letters; {content} takes {expected}. Correct the letters.',
   'content-twice': 'Both "{group}" and "{other}" are {content}; a file has it once. Make one of them data.',
@@ -93,7 +93,7 @@ const usage = {
     'Roughness is in this file already, as "{group}". Remove `normal.roughness`, or make the channel data.',
   'roughness-pathless': 'A channel of a roughness map is named, but no map. Add `path`.',
   'levels-order': 'The first level {first} comes after the last, {last}. Swap them.',
-  'targets-png': 'Targets are written as PNG alone. Add png to `outputs`, or remove the targets with null.',
+  'targets-png': 'Targets are written as PNG alone. Add png to `outputs`, or set `targets` to an empty list.',
   'cell-use':
     'The rest of the cell {target} is transparent, but alpha is used as {use}. Set `alpha.use` to opacity or mask, or use an extent.',
   'grid-scale':
