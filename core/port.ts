@@ -40,6 +40,14 @@ export interface Cancel {
   readonly cancelled: boolean;
 }
 
+/** Thrown where work ends because it was asked to. Nothing is wrong. */
+export class Cancelled extends Error {
+  constructor() {
+    super('cancelled');
+    this.name = 'Cancelled';
+  }
+}
+
 export interface Ports {
   readonly inflate: Inflate;
   readonly deflate: Deflate;

@@ -32,6 +32,8 @@ export interface Chain {
 export interface ChainOptions {
   readonly engine?: Engine;
   readonly light?: Light;
+  /** The gamma that the file's tag names, where it is obeyed. */
+  readonly gamma?: number;
   /** Mean normal lengths that this image's roughness takes up, by level and target. */
   readonly lengthsOf?: (image: PlannedLevel | PlannedTarget) => Float32Array | null;
 }
@@ -43,7 +45,7 @@ export function buildChain(
   options: ChainOptions = {},
 ): Chain {
   if (treatment.grid !== null) return buildSheet(source, treatment, options);
-  const run = new ChainRun(headOf(source), treatment, options);
+  const run = new ChainRun(headOf(source, options.gamma), treatment, options);
   if (source.kind === 'indexed') run.setPalette(source);
   const { width, height } = source.extent;
   const samples = source.kind === 'indexed' ? source.indices : source.codes;
@@ -52,11 +54,13 @@ export function buildChain(
   return run.finish();
 }
 
-export function headOf(source: StraightRaster | IndexedRaster): ChainHead {
+export function headOf(source: StraightRaster | IndexedRaster, gamma?: number): ChainHead {
+  const tag = gamma === undefined ? {} : { gamma };
   if (source.kind === 'straight') {
-    return { extent: source.extent, channels: source.channels, depth: source.depth, indexed: false };
+    return { extent: source.extent, channels: source.channels, depth: source.depth, indexed: false, ...tag };
   }
-  return { extent: source.extent, channels: source.alphaCount > 0 ? 4 : 3, depth: 8, indexed: true };
+  const channels = source.alphaCount > 0 ? 4 : 3;
+  return { extent: source.extent, channels, depth: 8, indexed: gamma === undefined, ...tag };
 }
 
 /** A chain that takes its source row by row. */

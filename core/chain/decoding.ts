@@ -1,5 +1,7 @@
+import { srgbEncoder } from '../color/encoder.ts';
+import { power } from '../color/portable.ts';
 import { decodeTable } from '../color/transfer.ts';
-import { type Depth, maxCode } from '../raster/raster.ts';
+import { type Codes, type Depth, maxCode, newCodes } from '../raster/raster.ts';
 import type { Decoding } from '../resample/engine.ts';
 import type { Layout, Role } from './layout.ts';
 
@@ -10,17 +12,18 @@ export function decodingOf(layout: Layout): Decoding {
   return {
     depth,
     channels,
-    tables: layout.roles.map((role) => tableOf(role, depth)),
+    tables: layout.roles.map((role) => tableOf(role, depth, layout.gamma)),
     alpha: weighted.length > 0 ? alpha : null,
     weighted,
     normals,
   };
 }
 
-function tableOf(role: Role, depth: Depth): Float32Array {
+function tableOf(role: Role, depth: Depth, gamma: number | null): Float32Array {
   switch (role.kind) {
     case 'color':
-      return decodeTable(depth, role.transfer);
+      if (gamma === null || role.transfer === 'linear') return decodeTable(depth, role.transfer);
+      return madeTable(`gamma${gamma}`, depth, (share) => power(share, 1 / gamma));
     case 'plain':
     case 'opacity':
     case 'unused':
@@ -32,8 +35,16 @@ function tableOf(role: Role, depth: Depth): Float32Array {
   }
 }
 
-function madeTable(kind: 'normal' | 'roughness', depth: Depth, of: (share: number) => number): Float32Array {
-  const key = `${kind}${depth}` as const;
+/** The sRGB code of the same light for each code that was encoded with `gamma`. */
+export function recodeTable(depth: Depth, gamma: number): Codes {
+  const encoder = srgbEncoder(depth);
+  const codes = newCodes(depth, maxCode(depth) + 1);
+  for (let code = 0; code < codes.length; code++) codes[code] = encoder.codeOf(power(code / maxCode(depth), 1 / gamma));
+  return codes;
+}
+
+function madeTable(kind: string, depth: Depth, of: (share: number) => number): Float32Array {
+  const key = `${kind} ${depth}`;
   let table = tables.get(key);
   if (table === undefined) {
     const max = maxCode(depth);

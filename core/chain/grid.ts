@@ -39,12 +39,12 @@ export function planSheet(sheet: Extent, grid: Grid): SheetPlan {
   return { cell, gutter, columns: sheet.width / pitch.width, rows: sheet.height / pitch.height, levels, notes };
 }
 
-/** Extent of a cell in a target; only scales that give whole texels on a sheet are refused less. Throws Refusal. */
-export function targetCell(plan: SheetPlan, target: Target): { readonly cell: Extent; readonly gutter: number } {
+/** Extent of the whole sheet as a target. Throws Refusal unless it is a scale that keeps cells and gutters whole texels. */
+export function targetExtent(plan: SheetPlan, target: Target): Extent {
   const scale = 'scale' in target ? target.scale : Number.NaN;
   const [width, height, gutter] = [plan.cell.width, plan.cell.height, plan.gutter].map((texels) => texels * scale);
   if (![width, height, gutter].every(Number.isInteger)) refuse('grid-target', { target: target.name, width, height });
-  return { cell: scaledExtent(plan.cell, scale), gutter };
+  return sheetExtent(plan, scaledExtent(plan.cell, scale), gutter);
 }
 
 export function sheetExtent(plan: SheetPlan, cell: Extent, gutter: number): Extent {

@@ -9,6 +9,9 @@ export interface ChainHead {
   readonly channels: ChannelCount;
   readonly depth: Depth;
   readonly indexed: boolean;
+  /** Exponent that the file's own tag says its colours were encoded with, where it is obeyed: light = code^(1/gamma). Left
+   *  out where colours are sRGB. */
+  readonly gamma?: number;
 }
 
 /** What one channel of the source holds and how its kernel light is reached. */
@@ -34,6 +37,8 @@ export interface Layout {
   /** Channels multiplied by alpha while filtering. */
   readonly weighted: readonly number[];
   readonly normals: readonly NormalGroup[];
+  /** As in the head; null where colours are what their roles say. */
+  readonly gamma: number | null;
   /** Index of the roughness channel that takes up the spread of this file's normals. */
   readonly roughness: number | null;
 }
@@ -61,6 +66,7 @@ export function planLayout(head: ChainHead, treatment: Treatment): Layout {
     alpha,
     weighted: [...weighted, ...rebuilt],
     normals,
+    gamma: head.gamma ?? null,
     roughness: indexOrNull(roles.findIndex((role) => role.kind === 'roughness')),
   };
 }

@@ -62,6 +62,7 @@ export function planChain(head: ChainHead, treatment: Treatment, light: Light = 
     head.indexed && methods.every(movesCodes) && !keepsCoverage && fill !== 'all' && depth === 8 && light === 'coded';
   if (fill === 'all') notes.push('Level 0 is changed: colour under alpha 0 is filled.');
   if (depth !== head.depth) notes.push(`Level 0 is changed: ${head.depth} bits become ${depth}.`);
+  if (head.gamma !== undefined) notes.push(`Level 0 is changed: colours encoded with gamma ${head.gamma} become sRGB.`);
   const renormalised = layout.normals.length > 0 && treatment.normal.base === 'renormalise';
   if (renormalised) notes.push('Level 0 is changed: its normals are made unit.');
   const rows = methods.filter((method) => method.kind === 'rows');

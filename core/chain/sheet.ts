@@ -5,7 +5,7 @@ import type { Treatment } from '../treatment/treatment.ts';
 import { buildChain, type Chain, type ChainOptions, headOf } from './chain.ts';
 import { addClipped, newClipped } from './clip.ts';
 import type { WrapPair } from './coverage.ts';
-import { planSheet, type SheetPlan, sheetExtent, targetCell } from './grid.ts';
+import { planSheet, type SheetPlan, sheetExtent, targetExtent } from './grid.ts';
 import type { ChainImage } from './image.ts';
 import { type ChainPlan, planChain } from './plan.ts';
 import { storeCodes } from './store.ts';
@@ -22,7 +22,7 @@ export function buildSheet(source: StraightRaster | IndexedRaster, treatment: Tr
       cells.push(buildChain(cutRegion(source, left, top, sheet.cell), alone, options));
     }
   }
-  const plan = planChain(headOf(source), { ...alone, targets: [] }, options.light);
+  const plan = planChain(headOf(source, options.gamma), { ...alone, targets: [] }, options.light);
   const images = cells[0].images.map((first, index) => {
     const parts = cells.map((cell) => cell.images[index]);
     return first.level === 0 ? wholeImage(plan, source, sheet, parts) : assemble(sheet, treatment, parts);
@@ -33,7 +33,7 @@ export function buildSheet(source: StraightRaster | IndexedRaster, treatment: Tr
 
 /** The treatment of one cell: its chain ends where the sheet's does. */
 export function cellTreatment(treatment: Treatment, sheet: SheetPlan): Treatment {
-  for (const target of treatment.targets) targetCell(sheet, target);
+  for (const target of treatment.targets) targetExtent(sheet, target);
   const { levels } = treatment;
   if (levels === 'none') return { ...treatment, grid: null };
   const last = Math.min(levels.last ?? sheet.levels - 1, sheet.levels - 1);

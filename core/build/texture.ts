@@ -1,0 +1,140 @@
+import type { ChainImage } from '../chain/image.ts';
+import { encoderFingerprint } from '../codec/encoder.ts';
+import { encodeKtx2 } from '../codec/ktx2/encode.ts';
+import { hashPixels } from '../codec/pixels.ts';
+import { encodePng } from '../codec/png/encode.ts';
+import type { BuildTexture, BuiltFile } from '../job.ts';
+import {
+  ALGORITHM,
+  MANIFEST_FORMAT,
+  type ManifestFile,
+  type ManifestImage,
+  type ManifestSource,
+} from '../manifest/manifest.ts';
+import { type Cancel, Cancelled, type Ports } from '../port.ts';
+import { refuse } from '../problem.ts';
+import { expandIndexed, type Raster } from '../raster/raster.ts';
+import { manifestPath } from '../treatment/names.ts';
+import { type BuiltChains, buildChains } from './chains.ts';
+import { describeImage } from './describe.ts';
+import { containerLayout, type PlannedContainer, type PlannedImage } from './outputs.ts';
+import { peakOf, planBuild, type TexturePlan } from './plan.ts';
+import { buildRoughness } from './roughness.ts';
+import { openSource, readSource } from './source.ts';
+
+/** Builds one texture: decode, chain, encode. What every door calls. */
+export const buildTexture: BuildTexture = async (job, ports, cancel, write) => {
+  const source = openSource(job.texture, job.image, ports);
+  const plan = planBuild(job.texture, source.facts, job.treatment);
+  const bytes = peakOf(source.facts, plan);
+  if (bytes > job.memoryBytes) refuse('too-much-memory', { bytes, limit: job.memoryBytes });
+
+  const chains = await buildChains(source, plan, (take) => readSource(source, 'image', ports, cancel, take));
+  const sources: ManifestSource[] = [chains.source];
+  const roughness = await buildRoughness(job, plan, chains.coded, ports, cancel);
+  if (roughness?.source) sources.push(roughness.source);
+
+  const work: Emission = { plan, chains, folder: folderOf(manifestPath(job.texture)), ports, cancel, write };
+  const images: ManifestImage[] = [];
+  for (const planned of plan.outputs.images) {
+    const from = planned.use === 'roughness' ? roughness!.chain.images : chains.coded.images;
+    images.push(await emitImage(work, planned, findImage(from, planned)));
+  }
+  const containers: ManifestFile[] = [];
+  for (const planned of plan.outputs.containers) {
+    const from = planned.use === 'roughness' ? roughness!.chain.images : null;
+    containers.push(await emitContainer(work, planned, from));
+  }
+  return {
+    format: MANIFEST_FORMAT,
+    algorithm: ALGORITHM,
+    encoder: await encoderFingerprint(ports),
+    sources,
+    settings: job.treatment,
+    levels: images.filter((image) => image.level !== undefined),
+    targets: images.filter((image) => image.target !== undefined),
+    containers,
+    notes: plan.notes,
+  };
+};
+
+interface Emission {
+  readonly plan: TexturePlan;
+  readonly chains: BuiltChains;
+  /** The manifest's folder below the output folder, "" for itself. */
+  readonly folder: string;
+  readonly ports: Ports;
+  readonly cancel: Cancel;
+  readonly write: (file: BuiltFile) => Promise<void>;
+}
+
+async function emitImage(work: Emission, planned: PlannedImage, image: ChainImage): Promise<ManifestImage> {
+  const { ports, chains, plan } = work;
+  const pixels = hashPixels(image.raster, ports.newHash);
+  // A level 0 whose codes are the source's needs no second file.
+  const same = planned.level === 0 && planned.use === 'image' && pixels === chains.source.pixels;
+  const wanted = planned.png !== null && (!same || plan.chain.treatment.png.base);
+  const file = wanted
+    ? await emitFile(work, planned.png!, await encodePng(pngRaster(image.raster), ports.deflate))
+    : null;
+  return describeImage(planned, image, pixels, file);
+}
+
+async function emitContainer(
+  work: Emission,
+  planned: PlannedContainer,
+  own: readonly ChainImage[] | null,
+): Promise<ManifestFile> {
+  const { chains, plan, ports } = work;
+  const coded = own ?? chains.coded.images;
+  const [first] = planned.levels;
+  const { raster } = findImage(coded, { use: planned.use, level: first });
+  const form = raster.kind === 'indexed' ? expandIndexed(raster) : raster;
+  const layout = containerLayout(plan.chain, planned.use, form.channels, form.depth);
+  const from = layout.holds === 'linear-light' && own === null ? chains.linear!.images : coded;
+  const levels = planned.levels.map((level) => {
+    const found = findImage(from, { use: planned.use, level }).raster;
+    return found.kind === 'indexed' ? expandIndexed(found) : found;
+  });
+  const { supercompress } = plan.chain.treatment.ktx2;
+  return emitFile(work, planned.path, await encodeKtx2(levels, layout, { supercompress }, ports.deflate));
+}
+
+async function emitFile(work: Emission, path: string, bytes: Uint8Array): Promise<ManifestFile> {
+  if (work.cancel.cancelled) throw new Cancelled();
+  const hash = work.ports.newHash();
+  hash.update(bytes);
+  await work.write({ path, bytes });
+  return { path: relativeTo(work.folder, path), sha256: hash.hex() };
+}
+
+function findImage(images: readonly ChainImage[], wanted: Pick<PlannedImage, 'use' | 'level' | 'target'>): ChainImage {
+  const found = images.find(
+    (image) =>
+      (image.use === wanted.use || wanted.use === 'roughness') &&
+      image.level === wanted.level &&
+      image.target === wanted.target,
+  );
+  if (found === undefined) throw new RangeError(`Expected an image for ${JSON.stringify(wanted)} but there is none`);
+  return found;
+}
+
+/** PNG holds straight codes; settings refuse premultiplied ones before this. */
+function pngRaster(raster: Raster): Exclude<Raster, { kind: 'premultiplied' }> {
+  if (raster.kind === 'premultiplied')
+    throw new TypeError('Expected a straight raster for PNG but received a premultiplied one');
+  return raster;
+}
+
+function folderOf(path: string): string {
+  return path.slice(0, Math.max(0, path.lastIndexOf('/')));
+}
+
+/** A path below the output folder, seen from a folder below it. */
+export function relativeTo(folder: string, path: string): string {
+  const from = folder === '' ? [] : folder.split('/');
+  const to = path.split('/');
+  let shared = 0;
+  while (shared < from.length && shared < to.length - 1 && from[shared] === to[shared]) shared++;
+  return [...from.slice(shared).map(() => '..'), ...to.slice(shared)].join('/');
+}
