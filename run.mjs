@@ -64,8 +64,10 @@ async function test(rest) {
   await types();
   await lint();
   await bundle();
-  const { readFileSync, rmSync } = await import('node:fs');
-  const results = 'dist/test-results.json';
+  const { existsSync, readFileSync, rmSync } = await import('node:fs');
+  const { resolve } = await import('node:path');
+  // Absolute, since vitest's own root is the test room.
+  const results = resolve('dist/test-results.json');
   rmSync(results, { force: true });
   const code = await run([
     'node_modules/vitest/vitest.mjs',
@@ -77,6 +79,7 @@ async function test(rest) {
     `--outputFile.json=${results}`,
     ...rest,
   ]);
+  if (!existsSync(results)) throw new Stop(`The tests ended without a report, with exit code ${code}.`);
   const report = JSON.parse(readFileSync(results, 'utf8'));
   // A file that could not even be loaded has no tests to count, and is a failure all the same.
   const unloaded = report.testResults.filter((each) => each.status === 'failed' && each.assertionResults.length === 0);

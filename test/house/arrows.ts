@@ -29,7 +29,7 @@ const KTX_PARSE_IMPORTERS = 1;
 
 /** One sentence for each import that is against the plan, and for each file that is in no room of it. */
 export function wrongArrows(imports: readonly Import[]): string[] {
-  const ktxImporters = new Set(imports.filter((each) => each.to === 'ktx-parse').map((each) => each.from));
+  const ktxImporters = new Set(imports.filter((each) => /^ktx-parse($|\/)/.test(each.to)).map((each) => each.from));
   return [
     ...imports.flatMap(wrongArrow),
     ...(ktxImporters.size > KTX_PARSE_IMPORTERS
@@ -75,6 +75,8 @@ function wrongArrow({ from, to, kind }: Import): string[] {
       return [`${from} imports ${to}: core must not know the protocol`];
     return [];
   }
-  const allowed = room.packages.includes(to) || (to.startsWith('node:') && room.packages.includes('node:*'));
+  const allowed = room.packages.some((each) =>
+    each === 'node:*' ? to.startsWith('node:') : to === each || to.startsWith(`${each}/`),
+  );
   return allowed ? [] : [`${from} imports ${to}: ${room.at} must not`];
 }

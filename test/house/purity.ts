@@ -44,10 +44,18 @@ function impurity(node: ts.Node): string | null {
     if (parent.name === node) return null;
   }
   if (node.text === 'Math') {
-    const member = ts.isPropertyAccessExpression(parent) ? parent.name.text : null;
-    return member !== null && EXACT_MATH.has(member) ? null : parent.getText();
+    return takenFromMath(parent).every((member) => EXACT_MATH.has(member)) ? null : parent.getText();
   }
   return IMPURE_GLOBALS.has(node.text) ? node.text : null;
+}
+
+/** Members that `Math.x` and `const { x } = Math` take; anything else might take all of them. */
+function takenFromMath(parent: ts.Node): string[] {
+  if (ts.isPropertyAccessExpression(parent)) return [parent.name.text];
+  if (ts.isVariableDeclaration(parent) && ts.isObjectBindingPattern(parent.name)) {
+    return parent.name.elements.map((each) => (each.propertyName ?? each.name).getText());
+  }
+  return ['all'];
 }
 
 /** A whole power, or a power of two: exact while the result is. */

@@ -2,7 +2,7 @@ import { hash } from './chance.ts';
 import { layers } from './noise.ts';
 import { clamp, mix, smoothMin, smoothstep, wrapped } from './shape.ts';
 
-/** The ground behind colour, normals and roughness: cobbles in damp soil, moss over both. */
+/** The ground behind color, normals and roughness: cobbles in damp soil, moss over both. */
 export interface Ground {
   /** 0..1 of the tile's relief. */
   readonly height: number;

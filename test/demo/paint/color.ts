@@ -12,7 +12,7 @@ export function mixColor(a: Color, b: Color, t: number): Color {
   return [mix(a[0], b[0], t), mix(a[1], b[1], t), mix(a[2], b[2], t)];
 }
 
-/** A function from 0..1 to colours evenly spaced from dark to light. */
+/** A function from 0..1 to colors evenly spaced from dark to light. */
 export function ramp(...stops: readonly string[]): (t: number) => Color {
   const colors = stops.map(hex);
   return (t) => {
@@ -22,7 +22,7 @@ export function ramp(...stops: readonly string[]): (t: number) => Color {
   };
 }
 
-/** The same colour with every code scaled. */
+/** The same color with every code scaled. */
 export function scaled([red, green, blue]: Color, by: number): Color {
   return [red * by, green * by, blue * by];
 }

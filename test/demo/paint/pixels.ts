@@ -1,7 +1,7 @@
 import type { IndexedRaster } from '../../../core/raster/raster.ts';
 import { hex } from './color.ts';
 
-/** Letters of a drawing and the colours they stand for, in palette order; '.' is the transparent first entry. */
+/** Letters of a drawing and the colors they stand for, in palette order; '.' is the transparent first entry. */
 export type Inks = readonly (readonly [letter: string, color: string])[];
 
 /** An indexed picture from rows of letters, all of one length. */

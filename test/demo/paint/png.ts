@@ -4,7 +4,7 @@ import { PNG } from 'pngjs';
 import { crc32 } from '../../../core/codec/crc.ts';
 import type { IndexedRaster, StraightRaster } from '../../../core/raster/raster.ts';
 
-/** PNG colour types by channel count. */
+/** PNG color types by channel count. */
 const COLOR_TYPES = [0, 0, 4, 2, 6] as const;
 
 /** A PNG file of a painted raster. */
