@@ -22,7 +22,7 @@ export function nextBounds(
             u === null || v === null ? 0 : image.values[(v * image.width + u) * image.channels + c],
           ),
         );
-        result.values[(y * extent.width + x) * image.channels + c] = met.reduce(pick);
+        result.values[(y * extent.width + x) * image.channels + c] = met.reduce((a, b) => pick(a, b));
       }
     }
   }

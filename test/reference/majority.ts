@@ -27,7 +27,9 @@ export function majorityTexel(
       if (seen === undefined) votes.set(key, { overlap, distance, texel, number });
       else {
         seen.overlap += overlap;
-        if (distance < seen.distance - 1e-9) Object.assign(seen, { distance, texel, number });
+        const nearer = distance < seen.distance - 1e-9;
+        const level = Math.abs(distance - seen.distance) <= 1e-9;
+        if (nearer || (level && number < seen.number)) Object.assign(seen, { distance, texel, number });
       }
     }
   }
