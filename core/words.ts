@@ -18,6 +18,8 @@ const findings = {
     'This was built with algorithm {recorded}, this version has {current}. Rebuild with `--new-algorithm` to take the new one.',
   thinning:
     'Level {level} keeps {share} of the coverage of level 0; the limit allows a loss of {limit}. Keep coverage, or raise the limit.',
+  halo:
+    'At {image}, texel {x}, {y}, a color overshoots its surroundings by {worst} codes ({share} of the texels overshoot, {clipped} are clipped); the limit is {limit}. Choose a softer kernel, or raise the limit.',
   'over-budget':
     'The chain takes {bytes} bytes as {format}; the budget is {budget}. Drop levels, choose a smaller format or raise the budget.',
   'match-unused': 'The glob {glob} of {rule} matches no texture. Correct or remove it.',
@@ -75,13 +77,13 @@ const usage = {
   'content-twice': 'Both "{group}" and "{other}" are {content}; a file has it once. Make one of them data.',
   'roughness-alone':
     'A roughness channel takes up the spread of normals, but no group is normal. Make it data, or name the normal group.',
-  'premultiplied-png': 'PNG cannot hold premultiplied colour. Take png out of `outputs`, or store straight.',
+  'premultiplied-png': 'PNG cannot hold premultiplied color. Take png out of `outputs`, or store straight.',
   'premultiplied-use':
-    'Colour is premultiplied by opacity, but alpha is used as {use}. Set `alpha.use` to opacity, or store straight.',
+    'Color is premultiplied by opacity, but alpha is used as {use}. Set `alpha.use` to opacity, or store straight.',
   'coverage-use':
     'Coverage can be kept for a mask, but alpha is used as {use}. Set `alpha.use` to mask, or drop `keepCoverage`.',
   'coverage-premultiplied':
-    'Keeping coverage scales alpha, which premultiplied colour does not follow. Set `keepCoverage` to false, or store straight.',
+    'Keeping coverage scales alpha, which premultiplied color does not follow. Set `keepCoverage` to false, or store straight.',
   'border-use':
     'The border of clamp-to-border is transparent, but alpha is used as {use}. Set `alpha.use` to opacity or mask, or choose another wrap.',
   'alpha-in-group':

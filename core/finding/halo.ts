@@ -1,0 +1,185 @@
+import { boundCodes } from '../chain/bounds.ts';
+import { headOf } from '../chain/chain.ts';
+import { CLIP_SLACK } from '../chain/clip.ts';
+import { planSheet } from '../chain/grid.ts';
+import type { Layout, Role } from '../chain/layout.ts';
+import {
+  type ChainPlan,
+  type PlannedLevel,
+  type PlannedTarget,
+  passOf,
+  pictureExtent,
+  planChain,
+} from '../chain/plan.ts';
+import { cellTreatment } from '../chain/sheet.ts';
+import { encodeSrgb } from '../color/transfer.ts';
+import { expandIndexed, type IndexedRaster, maxCode, type StraightRaster } from '../raster/raster.ts';
+import { cutRegion } from '../raster/region.ts';
+import { floatChannels } from '../resample/decode.ts';
+import type { Engine } from '../resample/engine.ts';
+import { plainEngine } from '../resample/plain.ts';
+import type { Treatment } from '../treatment/treatment.ts';
+
+/** Overshoot of one level or target beyond the local range of the source, before anything is clamped. */
+export interface Halo {
+  /** The level's number, or the target's name. */
+  readonly image: number | string;
+  /** Largest overshoot of any channel, in 8-bit codes (16-bit codes / 257). */
+  readonly worst: number;
+  /** Where it is. */
+  readonly x: number;
+  readonly y: number;
+  /** Share of visible texels that overshoot by more than half a code. */
+  readonly share: number;
+  /** Share of visible texels of which clamping changes a channel. */
+  readonly clipped: number;
+}
+
+/** Measures every image of the chain that is made from weights; others do not overshoot. The local range is that of the
+ *  visible source texels that the target's area touches, and one more on each side. Texels whose alpha rounds to 0 are not
+ *  seen and do not count; normals are made unit and do not either. */
+export function measureHalo(
+  source: StraightRaster | IndexedRaster,
+  treatment: Treatment,
+  engine: Engine = plainEngine,
+): readonly Halo[] {
+  const raster = source.kind === 'indexed' ? expandIndexed(source) : source;
+  if (treatment.grid === null) return measureChain(raster, treatment, engine);
+  const sheet = planSheet(raster.extent, treatment.grid);
+  const alone = cellTreatment(treatment, sheet);
+  const pitch = { width: sheet.cell.width + 2 * sheet.gutter, height: sheet.cell.height + 2 * sheet.gutter };
+  const cells: Halo[][] = [];
+  for (let top = sheet.gutter; top < raster.extent.height; top += pitch.height) {
+    for (let left = sheet.gutter; left < raster.extent.width; left += pitch.width) {
+      cells.push([...measureChain(cutRegion(raster, left, top, sheet.cell), alone, engine)]);
+    }
+  }
+  return cells[0].map((_, index) => worstOf(cells.map((cell) => cell[index])));
+}
+
+/** The largest of the same image in all cells; shares are means. */
+function worstOf(cells: readonly Halo[]): Halo {
+  const worst = cells.reduce((most, each) => (each.worst > most.worst ? each : most));
+  const mean = (of: (halo: Halo) => number): number => cells.reduce((sum, each) => sum + of(each), 0) / cells.length;
+  return { ...worst, share: mean((halo) => halo.share), clipped: mean((halo) => halo.clipped) };
+}
+
+function measureChain(raster: StraightRaster, treatment: Treatment, engine: Engine): readonly Halo[] {
+  const plan = planChain(headOf(raster), treatment);
+  const { pass, nodes } = passOf(plan);
+  const ranges = rangesOf(plan, raster);
+  const probes = nodes.map((image) => new Probe(plan.layout, floatChannels(pass.decoding), image, ranges.get(image)!));
+  const run = engine.open(pass, (node, y, floats) => {
+    if (node > 0) probes[node - 1].take(y, floats);
+  });
+  const length = raster.extent.width * raster.channels;
+  for (let y = 0; y < raster.extent.height; y++) run.push(raster.codes.subarray(y * length, (y + 1) * length));
+  const shipped = (image: PlannedLevel | PlannedTarget): boolean => !('level' in image) || image.shipped;
+  return probes.filter((probe) => shipped(probe.image)).map((probe) => probe.halo());
+}
+
+interface Range {
+  readonly min: StraightRaster;
+  readonly max: StraightRaster;
+}
+
+/** Bounds of the visible codes for every image: levels from the level before, targets from level 0. */
+function rangesOf(plan: ChainPlan, raster: StraightRaster): Map<PlannedLevel | PlannedTarget, Range> {
+  const { wrap } = plan.treatment;
+  const base: Range = {
+    min: hiddenAs(raster, plan.layout, maxCode(raster.depth)),
+    max: hiddenAs(raster, plan.layout, 0),
+  };
+  const bound = (range: Range, image: PlannedLevel | PlannedTarget): Range => ({
+    min: boundCodes(range.min, pictureExtent(image), wrap, 'min'),
+    max: boundCodes(range.max, pictureExtent(image), wrap, 'max'),
+  });
+  const ranges = new Map<PlannedLevel | PlannedTarget, Range>();
+  let finer = base;
+  for (const level of plan.levels.slice(1)) {
+    finer = bound(finer, level);
+    ranges.set(level, finer);
+  }
+  for (const target of plan.targets) ranges.set(target, bound(base, target));
+  return ranges;
+}
+
+/** Colour under alpha 0 takes no part in the range: it is set to the code that never decides it. */
+function hiddenAs(raster: StraightRaster, layout: Layout, code: number): StraightRaster {
+  const { alpha } = layout;
+  if (alpha === null || layout.weighted.length === 0) return raster;
+  const codes = raster.codes.slice();
+  for (let at = 0; at < codes.length; at += raster.channels) {
+    if (codes[at + alpha] !== 0) continue;
+    for (let channel = 0; channel < raster.channels; channel++) if (channel !== alpha) codes[at + channel] = code;
+  }
+  return { ...raster, codes };
+}
+
+/** Compares float rows of one image with its range. */
+class Probe {
+  readonly image: PlannedLevel | PlannedTarget;
+  readonly #layout: Layout;
+  readonly #stride: number;
+  readonly #range: Range;
+  #worst = 0;
+  #x = 0;
+  #y = 0;
+  #visible = 0;
+  #over = 0;
+  #clipped = 0;
+
+  constructor(layout: Layout, stride: number, image: PlannedLevel | PlannedTarget, range: Range) {
+    this.image = image;
+    this.#layout = layout;
+    this.#stride = stride;
+    this.#range = range;
+  }
+
+  take(y: number, floats: Float32Array): void {
+    const { channels, alpha, depth, roles, weighted } = this.#layout;
+    const unit = 255 / maxCode(depth);
+    for (let x = 0, at = 0; at < floats.length; x++, at += this.#stride) {
+      if (alpha !== null && floats[at + alpha] * unit < 0.5) continue;
+      this.#visible++;
+      const texel = (y * pictureExtent(this.image).width + x) * channels;
+      let most = 0;
+      let clips = false;
+      for (let channel = 0; channel < channels; channel++) {
+        const role = roles[channel];
+        if (role.kind === 'normal' || role.kind === 'unused' || role.kind === 'roughness') continue;
+        const value = weighted.includes(channel) ? floats[at + channel] / floats[at + alpha!] : floats[at + channel];
+        const code = codeOf(value, role, unit);
+        const above = code - this.#range.max.codes[texel + channel] * unit;
+        const below = this.#range.min.codes[texel + channel] * unit - code;
+        most = Math.max(most, above, below);
+        if (code < -255 * CLIP_SLACK || code > 255 * (1 + CLIP_SLACK)) clips = true;
+      }
+      if (most > 0.5) this.#over++;
+      if (clips) this.#clipped++;
+      if (most > this.#worst) {
+        this.#worst = most;
+        this.#x = x;
+        this.#y = y;
+      }
+    }
+  }
+
+  halo(): Halo {
+    const { image } = this;
+    const share = (count: number): number => (this.#visible === 0 ? 0 : count / this.#visible);
+    return {
+      image: 'level' in image ? image.level : image.target.name,
+      worst: this.#worst,
+      x: this.#x,
+      y: this.#y,
+      share: share(this.#over),
+      clipped: share(this.#clipped),
+    };
+  }
+}
+
+/** The value as an unrounded, unclamped 8-bit code. */
+function codeOf(value: number, role: Role, unit: number): number {
+  return role.kind === 'color' && role.transfer === 'srgb' ? encodeSrgb(value) * 255 : value * unit;
+}
