@@ -1,11 +1,14 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
-import { kernels, LINEAR, seeds, wraps } from '../fixtures/arbitrary.ts';
-import { type noiseRaster, numbers } from '../fixtures/noise.ts';
+import { buildChain } from '../../core/chain/chain.ts';
+import { maxCode } from '../../core/raster/raster.ts';
+import { depths, kernels, LINEAR, oneOf, seeds, smallExtents, wraps } from '../fixtures/arbitrary.ts';
+import { noiseRaster, numbers, withAlpha } from '../fixtures/noise.ts';
 import { lone, painted } from '../fixtures/picture.ts';
 import { both, treatment } from '../fixtures/treatment.ts';
-import { countedCoverage, coverageOf, passingCode, searchScale } from '../reference/coverage.ts';
-import { builders } from './builders.ts';
+import { referenceChain } from '../reference/chain.ts';
+import { countedCoverage, coverageOf, passingCode, sampledCoverage, searchScale } from '../reference/coverage.ts';
+import { builders, engineLevels, straight } from './builders.ts';
 import { holds } from './holds.ts';
 
 describe('the reference', () => {
@@ -64,6 +67,126 @@ describe.each(builders)('$name', (builder) => {
         if (level.extent.width >= 8) expect(Math.abs(seen[i] - seen[0])).toBeLessThan(0.05);
       });
     });
+  });
+});
+
+const masks = fc.record({
+  seed: seeds,
+  extent: smallExtents,
+  depth: depths,
+  kernel: kernels(LINEAR),
+  wrap: wraps,
+  cutoff: oneOf([0.1, 0.25, 0.5, 0.75, 0.9]),
+  test: oneOf(['>=', '>'] as const),
+});
+
+describe('the engine', () => {
+  it('says of each level what a sampler sees in its codes', () => {
+    holds(masks, 50, ({ seed, extent, depth, kernel, wrap, cutoff, test }) => {
+      const image = withAlpha(noiseRaster(seed, extent, 4, depth, 'noise'), seed, 3, 3);
+      for (const keepCoverage of [false, true]) {
+        const alpha = { use: 'mask', keepCoverage, cutoff, test } as const;
+        const one = treatment({ kernel: { minify: kernel, magnify: kernel }, wrap, alpha });
+        const passing = passingCode({ cutoff, test }, maxCode(depth));
+        const { images } = buildChain(image, one);
+        for (const level of images) {
+          const seen = coverageOf({ ...lone(straight(level.raster), 3), wrap }, passing);
+          expect(level.coverage).toBe(seen);
+          if (level.coverageScale === undefined) continue;
+          expect(Math.abs(level.coverageScale.residual - (seen - (images[0].coverage ?? 0)))).toBeLessThan(1e-12);
+        }
+        expect(images[0].coverageScale).toBeUndefined();
+        expect(images.length < 2 || (images[1].coverageScale !== undefined) === keepCoverage).toBe(true);
+      }
+    });
+  });
+
+  it('comes as near to the coverage of level 0 as the reference does', () => {
+    holds(masks, 40, ({ seed, extent, depth, kernel, wrap, cutoff, test }) => {
+      const image = withAlpha(noiseRaster(seed, extent, 4, depth, 'noise'), seed, 3, 3);
+      const alpha = { use: 'mask', keepCoverage: true, cutoff, test } as const;
+      const one = treatment({ kernel: { minify: kernel, magnify: kernel }, wrap, alpha });
+      const reference = referenceChain(image, one);
+      const wanted = reference[0].coverage ?? 0;
+      for (const { level, coverageScale, extent: own } of buildChain(image, one).images) {
+        if (coverageScale === undefined || level === undefined) continue;
+        const found = Math.abs(coverageScale.residual);
+        const best = Math.abs((reference[level].coverage ?? 0) - wanted);
+        // The engine holds alpha in 16 bits while it searches: a sample or two on the edge may fall the other way.
+        expect(Math.abs(found - best)).toBeLessThanOrEqual(2 / (own.width * own.height * 16));
+      }
+    });
+  });
+
+  it('scales stored alpha alone: colours and the next level come from the unscaled floats', () => {
+    holds(masks, 40, ({ seed, extent, depth, kernel, wrap, cutoff }) => {
+      const image = withAlpha(noiseRaster(seed, extent, 4, depth, 'middle'), seed, 2, 4);
+      const one = treatment({
+        kernel: { minify: kernel, magnify: kernel },
+        wrap,
+        fill: 'none',
+        alpha: { use: 'mask', cutoff },
+      });
+      const plain = referenceChain(image, one);
+      const kept = buildChain(image, { ...one, alpha: { ...one.alpha, keepCoverage: true } }).images;
+      const codes = engineLevels(buildChain(image, one));
+      kept.forEach(({ raster, coverageScale }, i) => {
+        const level = straight(raster);
+        const scale = coverageScale?.scale ?? 1;
+        const max = maxCode(depth);
+        for (let at = 0; at < level.codes.length; at++) {
+          if (at % 4 !== 3) expect(level.codes[at]).toBe(codes[i].codes[at]);
+          else {
+            const unscaled = Math.min(1, Math.max(0, plain[i].carried.values[at]));
+            const exact = Math.min(max, scale * unscaled * max);
+            // The 16-bit plane is half a step off, times the scale; 16 at most.
+            expect(Math.abs(level.codes[at] - exact)).toBeLessThanOrEqual(
+              0.5 + (scale * max) / 65535 / 2 + 1e-2 * scale,
+            );
+          }
+        }
+      });
+    });
+  });
+
+  it('calls it a tie where no scale can match, and keeps the nearer side', () => {
+    // One opaque texel in each 2 x 2 block: level 1 is one alpha, 64, everywhere. Coverage is all or nothing.
+    const image = painted({ width: 16, height: 16 }, 4, 8, (x, y) => [9, 9, 9, x % 2 === 0 && y % 2 === 0 ? 255 : 0]);
+    const repeat = { x: 'repeat', y: 'repeat' } as const;
+    const one = treatment({ kernel: both('box'), wrap: repeat, alpha: { use: 'mask', keepCoverage: true } });
+    const [base, level] = buildChain(image, one).images;
+    expect(level.coverageScale?.tie).toBe(true);
+    expect([0, 1]).toContain(level.coverage);
+    expect(Math.abs((level.coverage ?? 0) - (base.coverage ?? 0))).toBeLessThanOrEqual(0.5);
+  });
+
+  it('counts texels on levels of more than 65 536, and samples the rest', () => {
+    const image = painted({ width: 257, height: 256 }, 2, 8, (x, y) => [9, (x * 7 + y * 13) % 5 === 0 ? 255 : 0]);
+    const one = treatment({ kernel: both('triangle'), alpha: { use: 'mask' } });
+    const [base, level] = buildChain(image, one).images;
+    const plane = { ...lone(image, 1), wrap: one.wrap };
+    expect(base.coverage).toBe(countedCoverage(plane, 128));
+    expect(level.coverage).toBe(sampledCoverage({ ...lone(straight(level.raster), 1), wrap: one.wrap }, 128));
+  });
+
+  it('reads outside an image as its wrap says', () => {
+    // Opaque at the left edge only: with a transparent border the edge itself fades.
+    const image = painted({ width: 4, height: 1 }, 4, 8, (x) => [9, 9, 9, x === 0 ? 255 : 0]);
+    const coverage = (mode: 'clamp-to-edge' | 'repeat' | 'mirror-repeat' | 'clamp-to-border'): number | undefined =>
+      buildChain(image, treatment({ wrap: { x: mode, y: 'clamp-to-edge' }, alpha: { use: 'mask' } })).images[0]
+        .coverage;
+    // Of the four samples across texel 0 the outer two lie towards its neighbour outside, the others reach 5/8 and 7/8 of
+    // it; of those across texel 1 the nearest sees 3/8 of it.
+    expect(coverage('clamp-to-edge')).toBe(4 / 16);
+    expect(coverage('mirror-repeat')).toBe(4 / 16);
+    expect(coverage('repeat')).toBe(4 / 16);
+    expect(coverage('clamp-to-border')).toBe(4 / 16);
+    const high = { use: 'mask', cutoff: 0.75 } as const;
+    const inner = (mode: 'clamp-to-edge' | 'clamp-to-border'): number | undefined =>
+      buildChain(image, treatment({ wrap: { x: mode, y: 'clamp-to-edge' }, alpha: high })).images[0].coverage;
+    // Three quarters: 5/8 fails, 7/8 passes; the outer two pass where the edge goes on.
+    expect(inner('clamp-to-edge')).toBe(3 / 16);
+    expect(inner('clamp-to-border')).toBe(2 / 16);
   });
 });
 
