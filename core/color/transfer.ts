@@ -17,7 +17,7 @@ export function decodeSrgb(value: number): number {
 }
 
 /** sRGB-encoded value of linear light, mirrored and extended as `decodeSrgb`. Not for rounding: codes are found by
- *  thresholds. Within 5 ulp up to 1. */
+ *  thresholds. Within 6 ulp up to 1. */
 export function encodeSrgb(linear: number): number {
   if (linear < 0) return -encodeSrgb(-linear);
   if (linear <= 0.0031308) return linear * 12.92;

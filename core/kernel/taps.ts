@@ -16,7 +16,7 @@ export interface Taps {
   readonly weights: Float32Array;
 }
 
-/** Weights are whole multiples of 1 / UNIT: float32 holds each exactly, and any sum of them up to 1. */
+/** Weights are whole multiples of 1 / UNIT, even ones above 1: float32 holds each exactly, and sums of them up to 1. */
 const UNIT = 16777216;
 
 const MAX_EXTENT = 16384;
@@ -135,8 +135,8 @@ interface IntegerTaps {
 }
 
 /** Scales to UNIT, rounds down, and gives what is missing to the largest fractions, one each. In a symmetric phase the two
- *  taps of a mirrored pair have equal fractions and take together; what is odd goes to the middle tap. Taps that come out
- *  as 0 are dropped at both ends. */
+ *  taps of a mirrored pair have equal fractions and take together; what is odd goes to the middle tap. A tap above 1 (sharply
+ *  cut sincs have some) is rounded down to an even multiple and takes none. Taps that come out as 0 are dropped at both ends. */
 function normalised(raw: RawTaps, symmetric: boolean): IntegerTaps {
   const { weights } = raw;
   const last = weights.length - 1;
@@ -146,7 +146,7 @@ function normalised(raw: RawTaps, symmetric: boolean): IntegerTaps {
   let missing = UNIT;
   for (let k = 0; k <= last; k++) {
     const exact = (weights[k] / sum) * UNIT;
-    units[k] = Math.floor(exact);
+    units[k] = exact > UNIT ? 2 * Math.floor(exact / 2) : Math.floor(exact);
     fractions[k] = exact - units[k];
     missing -= units[k];
   }
@@ -154,11 +154,13 @@ function normalised(raw: RawTaps, symmetric: boolean): IntegerTaps {
     units[last / 2]++;
     missing--;
   }
-  const takers = symmetric ? (last + 1) >> 1 : last + 1;
   const each = symmetric ? 2 : 1;
-  const order = Array.from({ length: takers }, (_, k) => k).sort((a, b) => fractions[b] - fractions[a] || a - b);
+  const order = Array.from({ length: symmetric ? (last + 1) >> 1 : last + 1 }, (_, k) => k)
+    .filter((k) => units[k] < UNIT)
+    .sort((a, b) => fractions[b] - fractions[a] || a - b);
   for (let rank = 0; rank * each < missing; rank++) {
-    const k = order[rank];
+    // One more round is needed only where a tap above 1 left two units.
+    const k = order[rank % order.length];
     units[k]++;
     if (symmetric) units[last - k]++;
   }
