@@ -3,7 +3,7 @@ import type { Ktx2Format } from './format.ts';
 import { type Ktx2Level, texelBytes } from './texels.ts';
 
 /** The basic descriptor block of a format whose blocks are single texels, in the field names that the container's writer
- *  takes. [KDF14, "Khronos Basic Data Format Descriptor Block"] */
+ *  takes. [KDFS14, "Khronos Basic Data Format Descriptor Block"] */
 export function describeFormat(format: Ktx2Format, kind: Ktx2Level['kind']): Descriptor {
   const { channels, depth, transfer } = format;
   return {
@@ -49,7 +49,7 @@ interface Descriptor {
   }[];
 }
 
-// Values of KDF14's tables of the same names.
+// Values of KDFS14's tables of the same names.
 const VENDOR_KHRONOS = 0;
 const TYPE_BASIC = 0;
 const VERSION = 2;

