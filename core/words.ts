@@ -4,11 +4,12 @@
 /** Exit 1: findings over their limit, or outputs that are not what their manifest says. */
 const findings = {
   stale: 'The {what} moved since this was built. Build again.',
+  'not-built': 'There is no manifest of this texture. Build it.',
   interrupted: 'A build was ended while it replaced these outputs: old and new files are mixed. Build again.',
   orphan: 'The source {source} is gone. Remove its outputs with `build --prune`, or bring the source back.',
   'orphan-moved': 'The source {source} moved to {to}. Build again with `--prune`.',
   'orphan-excluded':
-    'The settings no longer build {source}. Remove its outputs with `build --prune`, or select it again.',
+    'The settings no longer build {source} to this place. Remove these outputs with `build --prune`, or correct the settings.',
   'output-edited':
     'This output is no longer asked for, but it was edited after it was built, so it was kept. Remove it by hand.',
   're-encoded':
@@ -18,8 +19,7 @@ const findings = {
     'This was built with algorithm {recorded}, this version has {current}. Rebuild with `--new-algorithm` to take the new one.',
   thinning:
     'Level {level} keeps {share} of the coverage of level 0; the limit allows a loss of {limit}. Keep coverage, or raise the limit.',
-  halo:
-    'At {image}, texel {x}, {y}, a color overshoots its surroundings by {worst} codes ({share} of the texels overshoot, {clipped} are clipped); the limit is {limit}. Choose a softer kernel, or raise the limit.',
+  halo: 'At {image}, texel {x}, {y}, a color overshoots its surroundings by {worst} codes ({share} of the texels overshoot, {clipped} are clipped); the limit is {limit}. Choose a softer kernel, or raise the limit.',
   'over-budget':
     'The chain takes {bytes} bytes as {format}; the budget is {budget}. Drop levels, choose a smaller format or raise the budget.',
   'match-unused': 'The glob {glob} of {rule} matches no texture. Correct or remove it.',
@@ -28,6 +28,10 @@ const findings = {
 /** Exit 2: usage and settings. */
 const usage = {
   'nothing-selected': 'No texture matches {selector}. Check the path, the extensions and the exclude globs.',
+  'no-manifest':
+    'There is no manifest at {selector}. Name a file that ends in .mips.json, or a folder that holds some.',
+  'source-root-needed':
+    'The manifest knows {source} from its root alone, which lies elsewhere. Name that folder with `--source-root`.',
   'unknown-command': 'There is no command {given}. Did you mean {nearest}? `--help` lists them all.',
   'unknown-option': 'There is no option {given} here. Did you mean {nearest}? `--help` lists them all.',
   'option-value': 'Expected {expected} for {option} but received {received}. Correct the command line.',

@@ -39,7 +39,7 @@ function describeOption(shape: Shape): string {
     case 'text':
       return grammarWords[shape.grammar];
     case 'list':
-      return 'a list';
+      return `a list${shape.min === shape.max ? ` of ${shape.min}` : ''}, each ${describe(shape.item)}`;
     case 'record':
     case 'group':
       return 'an object';

@@ -12,7 +12,8 @@ export async function listedOutputs(
 ): Promise<ReadonlySet<string>> {
   const listed = new Set<string>();
   for (const { name } of entries) {
-    if (!name.endsWith(MANIFEST_ENDING)) continue;
+    // A build that was ended leaves its manifest under a second name.
+    if (!name.endsWith(MANIFEST_ENDING) && !name.endsWith(`${MANIFEST_ENDING}.next`)) continue;
     const bytes = await tree.read(joinPath(folder, name));
     const text = bytes === null ? null : decodeUtf8(bytes);
     for (const path of outputsIn(text ?? '')) listed.add(path.normalize('NFC'));

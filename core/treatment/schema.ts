@@ -16,6 +16,7 @@ export function jsonSchema(): JsonSchema {
     $schema: 'http://json-schema.org/draft-07/schema#',
     title: 'Sizeproof settings',
     ...objectSchema(fileKeys, nullable),
+    definitions: { kernel: kernelSchema() },
   };
 }
 
@@ -61,7 +62,7 @@ function shapeSchema(shape: Shape): JsonSchema {
     case 'either':
       return anyOf(shape.options.map(shapeSchema));
     case 'kernel':
-      return anyOf([{ enum: kernels.map((kernel) => kernel.name) }, ...kernelObjects()]);
+      return { anyOf: [{ $ref: '#/definitions/kernel' }] };
     case 'channels':
       return {
         type: 'object',
@@ -70,6 +71,10 @@ function shapeSchema(shape: Shape): JsonSchema {
         patternProperties: { '^(?=.)r?g?b?a?$': { enum: channelContents } },
       };
   }
+}
+
+function kernelSchema(): JsonSchema {
+  return anyOf([{ enum: kernels.map((kernel) => kernel.name) }, ...kernelObjects()]);
 }
 
 /** One object for the kernels without parameters, one for each of the rest. */
