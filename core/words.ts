@@ -35,6 +35,7 @@ const usage = {
   'unknown-command': 'There is no command {given}. Did you mean {nearest}? `--help` lists them all.',
   'unknown-option': 'There is no option {given} here. Did you mean {nearest}? `--help` lists them all.',
   'option-value': 'Expected {expected} for {option} but received {received}. Correct the command line.',
+  'options-exclude': '{first} and {second} cannot be used together. Leave one of them out.',
   'missing-argument': '{command} needs {what}. Name at least one.',
   'several-roots': '--out takes one root, but the paths given lie in {count}: {roots}. Run once for each.',
   'settings-exist': 'There is a settings file here already; it was left as it is. Edit it, or remove it first.',
@@ -105,6 +106,8 @@ const usage = {
   'grid-scale':
     'Cells of a grid are scaled one by one; the target {target} is one size for a whole image. Use a scale.',
   'name-lacks': 'Without {placeholder} in `name` the {what} would all be one file. Add it.',
+  'name-beside':
+    'With outputs beside their sources, `name` must keep them in that folder: {pattern} may not. Begin it with the placeholder for the path and use no other slash.',
   'kernel-direction':
     'Kernel {kernel} cannot {direction}, which {asked} asks for. Use {instead}, or one kernel for each direction.',
   'kernel-scale':
@@ -174,6 +177,7 @@ const sources = {
     'This is no manifest: expected {expected} for {where}. Bring it back from version control, or build again.',
   'worker-ended':
     'The worker that built this ended: {reason}. Build it alone with `--jobs 1`; if it happens again, report it.',
+  'watch-failed': 'This folder cannot be watched: {reason}. Build without `--watch`.',
   unexpected: 'Something went wrong that should not: {reason}. Report it, with the file if you can.',
 } as const;
 

@@ -6,7 +6,7 @@ export const MAX_NAME_BYTES = 240;
 export type NameFault = 'empty' | 'device' | 'ending' | 'character' | 'length' | 'segment';
 
 /** Why one segment of a path cannot be a name on every system, or null.
- *  [Microsoft, Naming Files, Paths, and Namespaces] */
+ *  [WinNames] */
 export function fileNameFault(name: string): NameFault | null {
   if (name === '') return 'empty';
   if (name === '.' || name === '..') return 'segment';

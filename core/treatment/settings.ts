@@ -88,7 +88,24 @@ function readFile(reading: Reading, root: Node): Settings | null {
         throw new TypeError(`Expected a known key but received ${field.key.name}`);
     }
   }
-  return { path: reading.path, outDir, exclude, rules: [...defaults, ...treatments] };
+  const rules = [...defaults, ...treatments];
+  if (outDir === '') checkBeside(reading, rules);
+  return { path: reading.path, outDir, exclude, rules };
+}
+
+/** Outputs among sources are told apart by the manifest beside them, so `name` must leave them in that folder. */
+function checkBeside(reading: Reading, rules: readonly Rule[]): void {
+  for (const { key, value, keyAt } of rules.flatMap((rule) => rule.entries)) {
+    if (key !== 'name' || value === null || /^\{path\}\/[^/]+$/.test(value as string)) continue;
+    const { path } = reading;
+    reading.problems.push({
+      code: 'name-beside',
+      severity: 'error',
+      values: { pattern: value as string },
+      path,
+      ...keyAt,
+    });
+  }
 }
 
 function readField(reading: Reading, field: Field): unknown {

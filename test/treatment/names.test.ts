@@ -60,7 +60,7 @@ describe('output paths', () => {
 });
 
 describe('names that no system may carry', () => {
-  // [Microsoft, Naming Files, Paths, and Namespaces]
+  // [WinNames]
   test.each([
     'CON.png',
     'con.png',

@@ -252,6 +252,9 @@ describe('rules between keys', () => {
     [rule('"name":"{path}/{name}"'), '1:30 name-lacks'],
     [rule(`"name":"{path}/{name}",${ktx2}`)],
     [rule('"name":"{name}","levels":"none"')],
+    ['{"outDir":".","defaults":{"name":"mips/{name}.{level}"}}', '1:27 name-beside'],
+    ['{"outDir":"./","defaults":{"name":"{path}/{name}/{level}"}}', '1:28 name-beside'],
+    ['{"outDir":".","defaults":{"name":"{path}/{level}.{name}"}}'],
     [rule('"name":"{name}","levels":"none","targets":["2x"]'), '1:30 name-lacks'],
     [rule('"name":"{name}.{level}","targets":["2x"]'), '1:30 name-lacks'],
     // In `defaults` too, and said once though every treatment has it.
