@@ -30,7 +30,7 @@ export function encodeRow(
     const column = { encoding, floats, codes, offset, channel, clipped };
     if (role.kind === 'color') encodeColor(column, role, dividerOf(layout, channel));
     else if (role.kind === 'plain') encodePlain(column, dividerOf(layout, channel));
-    else if (role.kind === 'opacity') encodePlain(column, null);
+    else if (role.kind === 'opacity') encodeScaled(column, null, plainScale(encoding));
     else if (role.kind === 'unused') fillColumn(column, maxCode(encoding.depth));
     else if (role.kind === 'roughness') encodeRoughness(column, dividerOf(layout, channel), lengths);
   });
@@ -55,9 +55,9 @@ const round = Math.fround;
 
 function encodeColor(column: Column, role: Role & { kind: 'color' }, divider: number | null): void {
   const { encoding } = column;
-  if (role.transfer === 'linear') encodePlain(column, divider);
+  if (multipliesAlpha(encoding)) encodePremultiplied(column, divider);
+  else if (role.transfer === 'linear') encodePlain(column, divider);
   else if (encoding.light === 'linear') encodeScaled(column, divider, maxCode(encoding.depth));
-  else if (encoding.store === 'premultiplied' && encoding.layout.alpha !== null) encodePremultiplied(column, divider);
   else encodeTransferred(column, divider, srgbEncoder(encoding.depth));
 }
 
@@ -80,10 +80,17 @@ function encodeTransferred(column: Column, divider: number | null, encoder: Enco
 /** Code units in, code units out; depths may differ. */
 function encodePlain(column: Column, divider: number | null): void {
   const { encoding } = column;
-  const to = maxCode(encoding.depth);
-  const from = maxCode(encoding.layout.depth);
-  if (encoding.store === 'premultiplied' && divider !== null) encodePremultiplied(column, divider);
-  else encodeScaled(column, divider, to / from);
+  if (multipliesAlpha(encoding)) encodePremultiplied(column, divider);
+  else encodeScaled(column, divider, plainScale(encoding));
+}
+
+function multipliesAlpha({ store, layout }: Encoding): boolean {
+  return store === 'premultiplied' && layout.alpha !== null;
+}
+
+/** From code units of the source to those that are stored. */
+function plainScale({ depth, layout }: Encoding): number {
+  return maxCode(depth) / maxCode(layout.depth);
 }
 
 /** The value times `scale` is in code units. A scale below 1 divides by its inverse, which is a whole number (257). */
@@ -114,9 +121,10 @@ function encodePremultiplied(column: Column, divider: number | null): void {
   const alpha = layout.alpha!;
   const alphaMax = maxCode(layout.depth);
   const role = layout.roles[channel];
-  const coded = role.kind === 'color' && role.transfer === 'srgb';
+  const decoded = role.kind === 'color' && role.transfer === 'srgb';
+  const coded = decoded && encoding.light === 'coded';
   const max = maxCode(encoding.depth);
-  const whole = coded ? 1 : alphaMax;
+  const whole = decoded ? 1 : alphaMax;
   const encoder = srgbEncoder(encoding.depth);
   let below = 0;
   let above = 0;
