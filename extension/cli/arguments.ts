@@ -45,6 +45,11 @@ export function readArguments(words: readonly string[]): Arguments | readonly Pr
   const jobs = note(() => readJobs(values.get('jobs')));
   const memoryBytes = note(() => readMemory(values.get('memory')));
   if (isCommand && !values.has('help')) note(() => checkCount(command, paths));
+  for (const other of ['plan', 'json'] as const) {
+    if (values.has('watch') && values.has(other)) {
+      note(() => refuse('options-exclude', { first: '--watch', second: `--${other}` }));
+    }
+  }
   if (problems.length > 0) return problems;
   return {
     command: values.has('help') ? 'help' : values.has('version') ? 'version' : command,
@@ -83,7 +88,7 @@ function takeOption(
   const option = here.find((each) => `--${each.name}` === given);
   if (option === undefined) {
     const names = here.map((each) => `--${each.name}`);
-    return refuse('unknown-option', { given, nearest: nearest(given, names) });
+    refuse('unknown-option', { given, nearest: nearest(given, names) });
   }
   if (option.value === null) {
     if (attached !== null) refuse('option-value', { expected: 'no value', option: given, received: attached });
@@ -92,7 +97,7 @@ function takeOption(
   }
   const value = attached ?? rest.shift();
   if (value === undefined || value === '') {
-    return refuse('option-value', { expected: option.value, option: given, received: 'nothing' });
+    refuse('option-value', { expected: option.value, option: given, received: 'nothing' });
   }
   values.set(option.name, value);
 }

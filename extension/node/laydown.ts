@@ -4,8 +4,9 @@ import type { Manifest } from '../../core/manifest/manifest.ts';
 import { readManifest } from '../../core/manifest/read.ts';
 import { writeManifest } from '../../core/manifest/write.ts';
 import { type Problem, Refusal, refuse, warning } from '../../core/problem.ts';
+import { pathBelow, resolvePath } from '../../core/treatment/path.ts';
 import { type Disk, DiskError } from './disk.ts';
-import { isWithin, join, parentOf } from './path.ts';
+import { parentOf } from './path.ts';
 import { nextOf, temporaryFor } from './temporary.ts';
 
 // How the outputs of one texture take the place of the former ones. Every file is at every instant wholly old or wholly new, and
@@ -107,7 +108,7 @@ export function openLaydown(disk: Disk, place: Place, wait: Pause = pause): Layd
     if (checkedFolders.has(folder)) return;
     const resolved = await disk.realPath(folder);
     const within = await disk.realPath(place.within);
-    if (!isWithin(resolved, within)) refuse('leaves-folder', { resolved, folder: within }, { path });
+    if (pathBelow(within, resolved) === null) refuse('leaves-folder', { resolved, folder: within }, { path });
     checkedFolders.add(folder);
   }
 
@@ -178,7 +179,7 @@ export function openLaydown(disk: Disk, place: Place, wait: Pause = pause): Layd
 
 /** The output files of a manifest that lies at `manifestPath`: absolute path and recorded SHA-256. */
 export function filesOf(manifest: Manifest, manifestPath: string): [path: string, sha256: string][] {
-  return manifestFiles(manifest).map((file) => [join(parentOf(manifestPath), file.path), file.sha256]);
+  return manifestFiles(manifest).map((file) => [resolvePath(parentOf(manifestPath), file.path), file.sha256]);
 }
 
 /** Removes the files that still have a SHA-256 given for them, and answers a warning for each that does not. Never touches what
@@ -191,7 +192,7 @@ export async function removeUnedited(
   const warnings: Problem[] = [];
   const allowed = await disk.realPath(within);
   for (const [path, recorded] of files) {
-    if (!isWithin(await disk.realPath(parentOf(path)), allowed)) continue;
+    if (pathBelow(allowed, await disk.realPath(parentOf(path))) === null) continue;
     const bytes = await disk.read(path);
     if (bytes === null) continue;
     if (recorded.includes(createHash('sha256').update(bytes).digest('hex')))

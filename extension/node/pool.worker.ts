@@ -3,4 +3,4 @@ import { serve } from './serve.ts';
 
 const cancel = new Int32Array(workerData.cancel);
 
-serve(parentPort, () => Atomics.load(cancel, 0) === 1);
+if (parentPort !== null) serve(parentPort, () => Atomics.load(cancel, 0) === 1);

@@ -1,8 +1,8 @@
 import type { MessagePort } from 'node:worker_threads';
-import { buildTexture } from '../../core/chain/texture.ts';
-import type { FromWorker, ToWorker } from './pool.ts';
+import { buildTexture } from '../../core/build/texture.ts';
 import { nodeDisk } from './node-disk.ts';
 import { planJob } from './plan-job.ts';
+import type { FromWorker, ToWorker } from './pool.ts';
 import { nodePorts } from './ports.ts';
 import { type Outcome, runTextureJob, type TextureJob } from './texture-job.ts';
 
@@ -24,7 +24,10 @@ export function serve(port: MessagePort, isCancelled: () => boolean): void {
       return await runTextureJob(job, { disk: nodeDisk, ports: nodePorts, cancel, buildTexture, planJob, admit });
     } catch (error) {
       const reason = error instanceof Error ? (error.stack ?? error.message).replaceAll(/\s+/g, ' ') : String(error);
-      return { kind: 'failed', problem: { code: 'unexpected', severity: 'error', values: { reason }, path: job.image.path } };
+      return {
+        kind: 'failed',
+        problem: { code: 'unexpected', severity: 'error', values: { reason }, path: job.image.path },
+      };
     }
   }
 

@@ -1,7 +1,7 @@
 import { createHash } from 'node:crypto';
-import type { Disk, FileStat } from './disk.ts';
-import { DiskError } from './disk.ts';
-import { join, parentOf } from './path.ts';
+import { joinPath } from '../../core/treatment/path.ts';
+import { type Disk, DiskError, type FileStat } from './disk.ts';
+import { parentOf } from './path.ts';
 import { temporaryFor } from './temporary.ts';
 
 // What files hashed to when they were last read, so that an unchanged one costs a stat. One text file for each root:
@@ -39,7 +39,7 @@ export async function openStatIndex(
   root: string,
   now: () => number = Date.now,
 ): Promise<StatIndex> {
-  const file = cacheFolder === null ? null : join(cacheFolder, `${sha256Of(Buffer.from(root)).slice(0, 16)}.txt`);
+  const file = cacheFolder === null ? null : joinPath(cacheFolder, `${sha256Of(Buffer.from(root)).slice(0, 16)}.txt`);
   const bytes = file === null ? null : await disk.read(file);
   const entries = bytes === null ? new Map<string, Entry>() : parse(Buffer.from(bytes).toString());
   let changed = false;
@@ -97,7 +97,7 @@ export function cacheFolder(env: Readonly<Record<string, string | undefined>>, p
       : platform === 'darwin'
         ? home && `${home}/Library/Caches`
         : env.XDG_CACHE_HOME || (home && `${home}/.cache`);
-  return base ? join(base.replaceAll('\\', '/'), 'sizeproof') : null;
+  return base ? joinPath(base.replaceAll('\\', '/'), 'sizeproof') : null;
 }
 
 function isSame(entry: Entry, stat: FileStat): boolean {

@@ -1,43 +1,39 @@
+import { joinPath } from '../../core/treatment/path.ts';
 import { type Disk, DiskError } from './disk.ts';
-import { join } from './path.ts';
 import { manifestOfNext, temporaryOwner } from './temporary.ts';
 
-/** What builds left below a folder. Paths are absolute, in code-unit order. */
+/** What builds left in some folders. Paths are absolute. */
 export interface Traces {
-  readonly manifests: readonly string[];
+  readonly manifests: ReadonlySet<string>;
   /** Manifests that a build was ended while replacing. */
-  readonly interrupted: readonly string[];
+  readonly interrupted: ReadonlySet<string>;
   /** Temporary files, whoever made them. */
-  readonly temporaries: readonly string[];
+  readonly temporaries: ReadonlySet<string>;
 }
 
 /** Never looked into: version control, packages. */
 const skipped = new Set(['.git', 'node_modules']);
 
-/** Looks through an output folder. Folder links are not followed. */
-export async function findTraces(disk: Disk, folder: string): Promise<Traces> {
-  const manifests: string[] = [];
-  const interrupted: string[] = [];
-  const temporaries: string[] = [];
-  const open = [folder];
-  for (let next = open.pop(); next !== undefined; next = open.pop()) {
-    for (const { name, kind } of (await disk.list(next)) ?? []) {
-      if (kind === 'folder') {
-        if (!skipped.has(name)) open.push(join(next, name));
-      } else if (kind === 'file') {
-        const path = join(next, name);
-        const manifest = manifestOfNext(path);
-        if (manifest !== null) interrupted.push(manifest);
-        else if (temporaryOwner(name) !== null) temporaries.push(path);
-        else if (name.endsWith('.mips.json')) manifests.push(path);
-      }
+/** Looks through folders, and with `below` through those in them too. Folder links are not followed. */
+export async function findTraces(disk: Disk, folders: Iterable<string>, reach: 'folder' | 'below'): Promise<Traces> {
+  const found = { manifests: new Set<string>(), interrupted: new Set<string>(), temporaries: new Set<string>() };
+  const open = [...folders];
+  for (let folder = open.pop(); folder !== undefined; folder = open.pop()) {
+    for (const { name, kind } of (await disk.list(folder)) ?? []) {
+      if (kind === 'folder' && reach === 'below' && !skipped.has(name)) open.push(joinPath(folder, name));
+      if (kind !== 'file') continue;
+      const path = joinPath(folder, name);
+      const manifest = manifestOfNext(path);
+      if (manifest !== null) found.interrupted.add(manifest);
+      else if (temporaryOwner(name) !== null) found.temporaries.add(path);
+      else if (name.endsWith('.mips.json')) found.manifests.add(path);
     }
   }
-  return { manifests: manifests.sort(), interrupted: interrupted.sort(), temporaries: temporaries.sort() };
+  return found;
 }
 
 /** Removes temporary files, but those of a process that still runs and is not this one. */
-export async function sweep(disk: Disk, temporaries: readonly string[], isAlive = isRunning): Promise<void> {
+export async function sweep(disk: Disk, temporaries: Iterable<string>, isAlive = isRunning): Promise<void> {
   for (const path of temporaries) {
     const owner = temporaryOwner(path.slice(path.lastIndexOf('/') + 1));
     if (owner === null || (owner !== process.pid && isAlive(owner))) continue;

@@ -1,5 +1,6 @@
 import { randomBytes } from 'node:crypto';
-import { join, nameOf, parentOf } from './path.ts';
+import { baseName, joinPath } from '../../core/treatment/path.ts';
+import { parentOf } from './path.ts';
 
 // Temporary files stand beside what they will replace: `.<name>.<process>-<random>.tmp`. The process id tells a sweeper whether
 // the build that made one may still be running.
@@ -11,8 +12,8 @@ const KEPT_BYTES = 200;
 
 /** A new name for the temporary form of `path`. */
 export function temporaryFor(path: string): string {
-  const name = clip(nameOf(path));
-  return join(parentOf(path), `.${name}.${process.pid.toString(36)}-${randomBytes(6).toString('hex')}.tmp`);
+  const name = clip(baseName(path));
+  return joinPath(parentOf(path), `.${name}.${process.pid.toString(36)}-${randomBytes(6).toString('hex')}.tmp`);
 }
 
 /** The process that made a temporary file, by its name; `null` for any other name. */
@@ -23,13 +24,13 @@ export function temporaryOwner(name: string): number | null {
 
 /** The manifest that is laid down before anything is renamed: `.<name>.mips.json.next`. */
 export function nextOf(manifestPath: string): string {
-  return join(parentOf(manifestPath), `.${nameOf(manifestPath)}.next`);
+  return joinPath(parentOf(manifestPath), `.${baseName(manifestPath)}.next`);
 }
 
 /** The manifest that a `.next` file stands for; `null` for any other path. */
 export function manifestOfNext(path: string): string | null {
-  const found = /^\.(.+\.mips\.json)\.next$/.exec(nameOf(path));
-  return found === null ? null : join(parentOf(path), found[1]);
+  const found = /^\.(.+\.mips\.json)\.next$/.exec(baseName(path));
+  return found === null ? null : joinPath(parentOf(path), found[1]);
 }
 
 function clip(name: string): string {

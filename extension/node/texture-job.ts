@@ -2,10 +2,10 @@ import type { BuildPlan, BuildTexture } from '../../core/job.ts';
 import type { Manifest } from '../../core/manifest/manifest.ts';
 import type { Cancel, Ports } from '../../core/port.ts';
 import { type Problem, placed, Refusal, refuse } from '../../core/problem.ts';
+import { joinPath } from '../../core/treatment/path.ts';
 import type { Treatment } from '../../core/treatment/treatment.ts';
 import type { Disk } from './disk.ts';
 import { openLaydown, type Pause } from './laydown.ts';
-import { join } from './path.ts';
 
 /** One texture to build, as it is posted to a worker. Paths are absolute unless they say otherwise. */
 export interface TextureJob {
@@ -74,7 +74,7 @@ export async function runTextureJob(job: TextureJob, bench: Bench): Promise<Outc
       },
       bench.ports,
       bench.cancel,
-      (file) => laydown.write(join(job.outFolder, file.path), file.bytes),
+      (file) => laydown.write(joinPath(job.outFolder, file.path), file.bytes),
     );
     if (bench.cancel.cancelled) {
       await laydown.abort();

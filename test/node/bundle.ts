@@ -1,0 +1,33 @@
+import { existsSync } from 'node:fs';
+import { build } from 'esbuild';
+
+const top = new URL('../../', import.meta.url).pathname;
+
+const entries = { cli: 'extension/cli/main.ts', 'pool.worker': 'extension/node/pool.worker.ts' };
+
+/** Bundles the command line and its worker into a folder of the tests, once a process, and answers the folder. */
+export async function bundleOnce(): Promise<string> {
+  bundled ??= bundle();
+  return bundled;
+}
+
+let bundled: Promise<string> | null = null;
+
+async function bundle(): Promise<string> {
+  const outdir = `${top}dist/test/${process.pid}`;
+  await build({
+    entryPoints: Object.fromEntries(Object.entries(entries).map(([name, path]) => [name, `${top}${path}`])),
+    outdir,
+    bundle: true,
+    platform: 'node',
+    mainFields: ['module', 'main'],
+    target: 'node20',
+    format: 'esm',
+    logLevel: 'error',
+    banner: {
+      js: "import { createRequire as createRequireHere } from 'node:module';\nconst require = createRequireHere(import.meta.url);",
+    },
+  });
+  if (!existsSync(`${outdir}/cli.js`)) throw new Error('The command line was not bundled.');
+  return outdir;
+}
