@@ -100,14 +100,18 @@ describe('Color maps', () => {
     expect(opaque).toMatchObject({ kind: 'indexed', alphaCount: 0 });
   });
 
-  test('are expanded where indices have 16 bits', async () => {
-    const many = Array.from({ length: 300 }, (_, entry) => entry * 0x101);
+  test.each([
+    ['indices have 16 bits', 16, 20],
+    ['they have more entries than 8 bits can name', 8, 300],
+    ['both', 16, 300],
+  ])('are expanded where %s', async (_case, texelBits, length) => {
+    const many = Array.from({ length }, (_, entry) => entry * 0x101);
     const map = { first: 5, entryBits: 24, entries: many };
-    const raster = await decode({ ...base, texelBits: 16, map, texel: (x, y) => 5 + 299 - x - y });
+    const raster = await decode({ ...base, texelBits, map, texel: (x, y) => 5 + 19 - x - y });
     expect(raster).toMatchObject({
       kind: 'straight',
       channels: 3,
-      codes: Uint8Array.from(everyTexel(EXTENT, (x, y) => bytes((299 - x - y) * 0x101)).flat()),
+      codes: Uint8Array.from(everyTexel(EXTENT, (x, y) => bytes((19 - x - y) * 0x101)).flat()),
     });
   });
 
@@ -217,15 +221,12 @@ describe('What does not fit is refused in numbers', () => {
 });
 
 test('a view into a larger buffer reads as the file alone', async () => {
-  const file = writeTga({
-    ...EXTENT,
-    type: 10,
-    texelBits: 32,
-    attributeBits: 8,
-    texel: noisy,
-    trailer: tgaTrailer(500, 3),
-  });
-  const view = concat([new Uint8Array(3).fill(255), file, new Uint8Array(5)]).subarray(3, 3 + file.length);
-  expect(view.byteOffset).toBe(3);
-  expect(await decodeImage(openTga(view))).toEqual(await decodeImage(openTga(file)));
+  const recipe: TgaRecipe = { ...EXTENT, type: 10, texelBits: 32, attributeBits: 8, texel: noisy };
+  const inBuffer = (file: Uint8Array) =>
+    concat([new Uint8Array(3).fill(255), file, new Uint8Array(5)]).subarray(3, 3 + file.length);
+  const file = writeTga(recipe);
+  expect(inBuffer(file).byteOffset).toBe(3);
+  expect(await decodeImage(openTga(inBuffer(file)))).toEqual(await decodeImage(openTga(file)));
+  const premultiplied = writeTga({ ...recipe, trailer: tgaTrailer(file.length, 4) });
+  expect(await problemOf(() => openTga(inBuffer(premultiplied)))).toMatchObject({ code: 'tga-premultiplied' });
 });
