@@ -1,11 +1,11 @@
-import { holdsColor } from '../chain/layout.ts';
+import { frontChannels, holdsColor } from '../chain/layout.ts';
 import type { ChainPlan } from '../chain/plan.ts';
 import { type Ktx2Layout, layoutKtx2 } from '../codec/ktx2/format.ts';
 import type { PlannedFile } from '../job.ts';
 import type { ImageUse } from '../manifest/manifest.ts';
 import type { ChannelCount, Depth, Extent } from '../raster/raster.ts';
 import { outputPath } from '../treatment/names.ts';
-import type { Content, Treatment } from '../treatment/treatment.ts';
+import type { Content, Transfer, Treatment } from '../treatment/treatment.ts';
 
 /** One image that is shipped: what it is, and the PNG that holds it alone, if any. */
 export interface PlannedImage {
@@ -100,7 +100,7 @@ export function containerLayout(plan: ChainPlan, use: ImageUse, channels: Channe
     content: single ? 'data' : texelContent(plan),
     channels,
     depth,
-    transfer: storedTransfer(treatment),
+    transfer: storedTransfer(treatment, channels),
     alpha: single ? 'data' : treatment.alpha.use,
     normalCount: channels === 2 ? 2 : treatment.normal.count,
     format: treatment.ktx2.format,
@@ -121,11 +121,12 @@ function texelContent(plan: ChainPlan): Content {
   return holdsColor(plan.layout) ? 'color' : 'data';
 }
 
-/** One transfer for all colour channels; where they differ no format can say so and codes are handed over as they are. */
-function storedTransfer(treatment: Treatment): 'srgb' | 'linear' {
-  const { transfer } = treatment;
+/** One transfer for all channels before alpha's place; where they differ no format can say so and codes are handed over as
+ *  they are. */
+function storedTransfer({ transfer }: Treatment, channels: ChannelCount): Transfer {
   if (typeof transfer === 'string') return transfer;
-  return transfer.slice(0, 3).every((each) => each === 'srgb') ? 'srgb' : 'linear';
+  const front = Array.from({ length: frontChannels(channels) }, (_, channel) => transfer[channel]);
+  return front.every((each) => each === 'srgb') ? 'srgb' : 'linear';
 }
 
 function boundUses(treatment: Treatment): readonly ImageUse[] {

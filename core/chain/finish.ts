@@ -2,7 +2,7 @@ import { expandIndexed, maxCode, type Raster, type StraightRaster } from '../ras
 import type { BaseImage } from './base.ts';
 import { boundCodes } from './bounds.ts';
 import { placeInCell } from './cell.ts';
-import { newClipped } from './clip.ts';
+import { type Clipped, newClipped } from './clip.ts';
 import type { CoverageScale } from './coverage.ts';
 import type { Draft } from './draft.ts';
 import { fillFrom, fillWith } from './fill.ts';
@@ -99,8 +99,15 @@ function imageOf(plan: ChainPlan, draft: Draft, scales: ReadonlyMap<Draft, Cover
     ...(scale !== undefined && { coverageScale: scale }),
     ...(treatment.content === 'color' && holdsColor(layout) && { light }),
     ...(normalLength !== undefined && { normalLength }),
-    clipped: work?.clipped ?? newClipped(layout.channels),
+    clipped: clippedOf(work, placed, layout.channels),
   };
+}
+
+/** Counts of what was stored: an alpha that the cell gave is never clipped. */
+function clippedOf(work: ImageInWork | null, raster: Raster, channels: number): Clipped {
+  const clipped = work?.clipped ?? newClipped(channels);
+  if (raster.kind === 'indexed' || raster.channels === channels) return clipped;
+  return { below: [...clipped.below, 0], above: [...clipped.above, 0] };
 }
 
 /** Luminance of codes that were moved, weighed by the alpha they carry. */
