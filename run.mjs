@@ -52,7 +52,7 @@ async function start() {
 The demo's textures are in test/demo (its settings: test/demo/sizeproof.json), what was built from them is in dist/demo.
 Now a folder of your own:
 
-  node dist/cli.js init PATH                 writes a sizeproof.json to start from
+  node dist/cli.js init FOLDER               writes a sizeproof.json to start from
   node dist/cli.js build PATH --out DIR      builds every texture below PATH into DIR
   node dist/cli.js check PATH --out DIR      says whether what is in DIR is still what PATH asks for
   node dist/cli.js --help                    the rest`);
@@ -132,9 +132,8 @@ async function runSource(entry, rest) {
 }
 
 async function bundle() {
-  const { chmodSync, existsSync } = await import('node:fs');
+  const { chmodSync } = await import('node:fs');
   for (const each of BUNDLES) {
-    if (!existsSync(each.entry)) continue;
     await bundleOne(each);
     if (each.head !== '') chmodSync(each.file, 0o755);
   }
