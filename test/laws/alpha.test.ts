@@ -97,6 +97,12 @@ describe.each(builders)('$name', (builder) => {
     });
   });
 
+  it('writes an alpha that nobody reads as opaque, and weighs nothing by it', () => {
+    const pair = picture({ width: 2, height: 1 }, 4, 8, [255, 0, 0, 0, 0, 0, 255, 255]);
+    const [, level] = builder.levels(pair, treatment({ kernel: both('box'), alpha: { use: 'none' } }));
+    expect(Array.from(level.codes)).toEqual([188, 0, 188, 255]);
+  });
+
   it('leaves the hidden colours of level 0 alone unless it is told to fill all', () => {
     const image = painted({ width: 4, height: 4 }, 4, 8, (x, y) => (x + y === 0 ? [200, 100, 50, 255] : [9, 8, 7, 0]));
     const one = treatment({ kernel: both('box') });

@@ -18,9 +18,9 @@ export interface Filter {
 
 const reference: Filter = { name: 'reference', filter: resampleDoubles, rounding: 2 ** -53 };
 
-const engine: Filter = { name: 'engine', filter: resampleByEngine, rounding: 2 ** -24 };
+export const engineFilter: Filter = { name: 'engine', filter: resampleByEngine, rounding: 2 ** -24 };
 
-export const filters: readonly Filter[] = [reference, engine];
+export const filters: readonly Filter[] = [reference, engineFilter];
 
 /** The engine takes codes: each texel's code is its own index, and a table per channel holds the values. */
 function resampleByEngine(

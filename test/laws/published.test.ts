@@ -199,6 +199,17 @@ describe.each(builders)('$name, chains', (builder) => {
     expect(builder.levels(row, treatment({ content: 'data' }))[1].codes[0]).toBe(127);
   });
 
+  it.each([
+    // IEEE 754, roundTiesToEven: halves of linear codes go to the even code.
+    [[0, 1], 0],
+    [[1, 2], 2],
+    [[2, 3], 2],
+    [[254, 255], 254],
+  ])('rounds the mean of data %j to %i', (codes, mean) => {
+    const row = picture({ width: 2, height: 1 }, 1, 8, codes);
+    expect(builder.levels(row, treatment({ content: 'data' }))[1].codes[0]).toBe(mean);
+  });
+
   it('renormalises the mean of four normals', () => {
     // (+-.6, 0, .8) and (0, +-.6, .8): mean (0, 0, .8), stored as (0, 0, 1).
     const code = (v: number): number => Math.round(((v + 1) / 2) * 65535);
