@@ -18,7 +18,7 @@ const findings = {
   'algorithm-moved':
     'This was built with algorithm {recorded}, this version has {current}. Rebuild with `--new-algorithm` to take the new one.',
   thinning:
-    'Level {level} keeps {share} of the coverage of level 0; the limit allows a loss of {limit}. Keep coverage, or raise the limit.',
+    'Level {level} keeps {share} of the coverage of level 0; the limit allows a loss of {limit}. Keep coverage, ship fewer levels or raise the limit.',
   halo: 'At {image}, texel {x}, {y}, a color overshoots its surroundings by {worst} codes ({share} of the texels overshoot, {clipped} are clipped); the limit is {limit}. Choose a softer kernel, or raise the limit.',
   'over-budget':
     'The chain takes {bytes} bytes as {format}; the budget is {budget}. Drop levels, choose a smaller format or raise the budget.',

@@ -1,6 +1,9 @@
 import type { Manifest } from '../manifest/manifest.ts';
 import { finding, type Problem } from '../problem.ts';
 
+/** Smaller levels are not judged: a few texels cannot hold a share, and a texture that small is a handful of pixels. */
+const LEAST_TEXELS = 64;
+
 /** The level that loses most of level 0's coverage, where that is more than the limit allows; `null` otherwise, and for what
  *  is no mask. Where level 0 is not shipped the first level that is stands for it. */
 export function thinning(manifest: Manifest): Problem | null {
@@ -11,6 +14,7 @@ export function thinning(manifest: Manifest): Problem | null {
   let level = 0;
   let worst = 0;
   for (const each of covered) {
+    if (each.extent[0] * each.extent[1] < LEAST_TEXELS) continue;
     const loss = 1 - (each.coverage ?? 0) / base;
     if (loss > worst) [worst, level] = [loss, each.level ?? 0];
   }

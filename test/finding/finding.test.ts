@@ -119,15 +119,16 @@ test.each([
   ['at the limit', [0.5, 0.25, 0.5, 0.5], 0.5, null],
   ['the worst level', [0.5, 0.2, 0.1, 0.5], 0.5, { level: 2, share: '20 %', limit: '50 %' }],
   ['all of it', [0.3, 0.3, 0.3, 0], 0.9, { level: 3, share: '0 %', limit: '90 %' }],
+  ['levels of less than 8x8 texels', [0.5, 0.5, 0.5, 0.5, 0, 0, 0], 0, null],
   ['gain', [0.3, 0.9, 1, 1], 0, null],
   ['an empty mask', [0, 0, 0, 0], 0, null],
 ])('thinning: %s', (_, coverages, limit, values) => {
-  const problem = thinning(limited({ thinning: limit }, chain(8, coverages)));
+  const problem = thinning(limited({ thinning: limit }, chain(64, coverages)));
   expect(problem?.values ?? null).toEqual(values);
 });
 
 test('thinning needs a limit and a mask', () => {
-  expect(thinning(limited({}, chain(8, [1, 0, 0, 0])))).toBeNull();
+  expect(thinning(limited({}, chain(64, [1, 0, 0, 0])))).toBeNull();
   expect(thinning(limited({ thinning: 0 }, chain(8)))).toBeNull();
 });
 
@@ -147,7 +148,7 @@ test('a pointer is said to be one, with the bytes that it stands for', () => {
 test('the table names each finding once, and the manifest is judged by all that can be', () => {
   expect(new Set(findings.map((each) => each.name)).size).toBe(findings.length);
   for (const each of findings) expect(each.judge !== undefined).toBe(each.from === 'manifest');
-  const manifest = limited({ thinning: 0, overBudget: { bytes: 0, format: 'written' } }, chain(8, [1, 0, 0, 0]));
+  const manifest = limited({ thinning: 0, overBudget: { bytes: 0, format: 'written' } }, chain(64, [1, 0, 0, 0]));
   expect(judgeManifest(manifest).map((each) => each.code)).toEqual(['thinning', 'over-budget']);
   expect(budgetFormats).toContain('written');
 });

@@ -8,7 +8,13 @@ import { faultyDisk } from './disks.ts';
 import { filesBelow, newFolder } from './folder.ts';
 
 function readingDisk(read: string[]): Disk {
-  return { ...nodeDisk, read: (path) => (read.push(path), nodeDisk.read(path)) };
+  return {
+    ...nodeDisk,
+    read: (path) => {
+      read.push(path);
+      return nodeDisk.read(path);
+    },
+  };
 }
 
 /** A root with one file that was last changed a minute ago, and what reads of it happened. */
