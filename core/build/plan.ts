@@ -78,7 +78,14 @@ function headOf(facts: SourceFacts, treatment: Treatment): ChainHead {
   const { extent, channels, depth, indexed } = facts;
   const colors = treatment.colorChunks === 'obey' && treatment.content === 'color' && treatment.channels === null;
   const gamma = colors ? obeyedGamma(facts.colorChunks) : null;
-  return gamma === null ? { extent, channels, depth, indexed } : { extent, channels, depth, indexed: false, gamma };
+  // Where the settings say that codes are linear light already, no chunk says otherwise.
+  return gamma === null || !holdsSrgb(treatment)
+    ? { extent, channels, depth, indexed }
+    : { extent, channels, depth, indexed: false, gamma };
+}
+
+function holdsSrgb({ transfer }: Treatment): boolean {
+  return typeof transfer === 'string' ? transfer === 'srgb' : transfer.includes('srgb');
 }
 
 /** The file, what decoding and the chains hold, and the largest output twice: as it is laid out and as it is handed over. */

@@ -1,6 +1,6 @@
 import { type Codes, expandIndexed, type IndexedRaster, newCodes, type StraightRaster } from '../raster/raster.ts';
 import { floatChannels } from '../resample/decode.ts';
-import { decodingOf, recodeTable } from './decoding.ts';
+import { decodingOf } from './decoding.ts';
 import type { ChainPlan } from './plan.ts';
 
 /** Level 0 while its rows come in: the source's codes where they are asked for later, and the sums of its kernel light. */
@@ -9,15 +9,12 @@ export class BaseImage {
   readonly sums: Float64Array;
   readonly #plan: ChainPlan;
   readonly #samples: Codes | null;
-  /** What codes become sRGB by, where the file's gamma is obeyed. */
-  readonly #recode: Codes | null;
   #filled = 0;
 
   constructor(plan: ChainPlan) {
-    const { extent, channels, depth, gamma } = plan.head;
+    const { extent, channels, depth } = plan.head;
     const texels = extent.width * extent.height;
     this.#plan = plan;
-    this.#recode = gamma === undefined ? null : recodeTable(depth, gamma);
     this.sums = new Float64Array(floatChannels(decodingOf(plan.layout)));
     if (!plan.keepsBase) this.#samples = null;
     else this.#samples = plan.indexed ? new Uint8Array(texels) : newCodes(depth, texels * channels);
@@ -28,17 +25,7 @@ export class BaseImage {
     if (this.#samples === null) return;
     const row = this.#plan.indexed && indices !== null ? indices : codes;
     this.#samples.set(row, this.#filled);
-    if (this.#recode !== null)
-      this.#recodeRow(this.#recode, this.#samples.subarray(this.#filled, this.#filled + row.length));
     this.#filled += row.length;
-  }
-
-  #recodeRow(table: Codes, row: Codes): void {
-    const { roles, channels } = this.#plan.layout;
-    roles.forEach((role, channel) => {
-      if (role.kind !== 'color' || role.transfer !== 'srgb') return;
-      for (let at = channel; at < row.length; at += channels) row[at] = table[row[at]];
-    });
   }
 
   /** The float row of the source. */

@@ -1,6 +1,6 @@
 import { srgbEncoder } from '../color/encoder.ts';
 import { power } from '../color/portable.ts';
-import { decodeTable } from '../color/transfer.ts';
+import { decodeTable, encodeSrgb } from '../color/transfer.ts';
 import { type Codes, type Depth, maxCode, newCodes } from '../raster/raster.ts';
 import type { Decoding } from '../resample/engine.ts';
 import type { Layout, Role } from './layout.ts';
@@ -22,8 +22,9 @@ export function decodingOf(layout: Layout): Decoding {
 function tableOf(role: Role, depth: Depth, gamma: number | null): Float32Array {
   switch (role.kind) {
     case 'color':
-      if (gamma === null || role.transfer === 'linear') return decodeTable(depth, role.transfer);
-      return madeTable(`gamma${gamma}`, depth, (share) => power(share, 1 / gamma));
+      if (gamma === null || role.stored === 'linear') return decodeTable(depth, role.transfer);
+      if (role.transfer === 'srgb') return madeTable(`gamma${gamma}`, depth, (share) => power(share, 1 / gamma));
+      return madeTable(`code${gamma}`, depth, (share) => encodeSrgb(power(share, 1 / gamma)) * maxCode(depth));
     case 'plain':
     case 'opacity':
     case 'unused':
@@ -35,11 +36,11 @@ function tableOf(role: Role, depth: Depth, gamma: number | null): Float32Array {
   }
 }
 
-/** The sRGB code of the same light for each code that was encoded with `gamma`. */
-export function recodeTable(depth: Depth, gamma: number): Codes {
-  const encoder = srgbEncoder(depth);
-  const codes = newCodes(depth, maxCode(depth) + 1);
-  for (let code = 0; code < codes.length; code++) codes[code] = encoder.codeOf(power(code / maxCode(depth), 1 / gamma));
+/** The sRGB code of depth `to`, of the same light, for each code of depth `from` that was encoded with `gamma`. */
+export function recodeTable(from: Depth, to: Depth, gamma: number): Codes {
+  const encoder = srgbEncoder(to);
+  const codes = newCodes(to, maxCode(from) + 1);
+  for (let code = 0; code < codes.length; code++) codes[code] = encoder.codeOf(power(code / maxCode(from), 1 / gamma));
   return codes;
 }
 

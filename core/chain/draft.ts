@@ -10,7 +10,7 @@ import type { Layout } from './layout.ts';
 import { magnifySlopes } from './magnify.ts';
 import { type Method, movesCodes } from './method.ts';
 import { type ChainPlan, type PlannedLevel, type PlannedTarget, pictureExtent } from './plan.ts';
-import { encodingOf, storeCodes } from './store.ts';
+import { encodingOf, storeCodes, untagged } from './store.ts';
 
 /** A level or target on its way: stored codes before coverage, fill and placing. */
 export interface Draft {
@@ -28,6 +28,11 @@ export function draftImages(
   source: StraightRaster | IndexedRaster | null,
   works: ReadonlyMap<PlannedLevel | PlannedTarget, ImageInWork>,
 ): { readonly levels: readonly (Draft | null)[]; readonly targets: readonly Draft[] } {
+  // Detail measures distances between sRGB codes, so a source of another gamma is recoded for it.
+  if (plan.layout.gamma !== null && source?.kind === 'straight' && usesDetail(plan)) {
+    const layout = { ...plan.layout, gamma: null };
+    return draftImages({ ...plan, layout }, untagged(plan, source), works);
+  }
   const levels: (Draft | null)[] = [];
   let finer = source;
   for (const level of plan.levels) {
@@ -41,6 +46,10 @@ export function draftImages(
   }
   const targets = plan.targets.map((target) => makeDraft(plan, target, target.method, source, works).draft);
   return { levels, targets };
+}
+
+function usesDetail({ levels, targets }: ChainPlan): boolean {
+  return [...levels, ...targets].some(({ method }) => method?.kind === 'footprint' && method.kernel === 'detail');
 }
 
 function baseDraft(plan: ChainPlan, source: StraightRaster | IndexedRaster): Omit<Draft, 'planned'> {

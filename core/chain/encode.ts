@@ -1,4 +1,5 @@
 import { type Encoder, roundedCode, srgbEncoder } from '../color/encoder.ts';
+import { decodeSrgb } from '../color/transfer.ts';
 import { type Codes, type Depth, maxCode } from '../raster/raster.ts';
 import { SHORTEST } from '../resample/decode.ts';
 import type { NormalGroup } from '../resample/engine.ts';
@@ -55,7 +56,9 @@ const round = Math.fround;
 
 function encodeColor(column: Column, role: Role & { kind: 'color' }, divider: number | null): void {
   const { encoding } = column;
-  if (multipliesAlpha(encoding)) encodePremultiplied(column, divider);
+  const asked = multipliesAlpha(encoding) || encoding.light === 'linear';
+  if (asked && role.transfer !== role.stored) encodeLate(column, divider);
+  else if (multipliesAlpha(encoding)) encodePremultiplied(column, divider);
   else if (role.transfer === 'linear') encodePlain(column, divider);
   else if (encoding.light === 'linear') encodeScaled(column, divider, maxCode(encoding.depth));
   else encodeTransferred(column, divider, srgbEncoder(encoding.depth));
@@ -129,7 +132,7 @@ function encodePremultiplied(column: Column, divider: number | null): void {
   let below = 0;
   let above = 0;
   for (let i = 0, o = offset + channel; i < floats.length; i += stride, o += layout.channels) {
-    const through = Math.min(1, Math.max(0, floats[i + alpha] / alphaMax));
+    const through = clamped(floats[i + alpha] / alphaMax);
     const value = divider === null ? floats[i + channel] * through : floats[i + channel] / alphaMax;
     if (value < -CLIP_SLACK * whole) below++;
     else if (value > (through + CLIP_SLACK) * whole) above++;
@@ -138,6 +141,33 @@ function encodePremultiplied(column: Column, divider: number | null): void {
   }
   clipped.below[channel] += below;
   clipped.above[channel] += above;
+}
+
+/** sRGB codes that were filtered as they are, where linear light is stored or multiplied by alpha: decoded after filtering. */
+function encodeLate(column: Column, divider: number | null): void {
+  const { floats, codes, offset, channel, clipped, encoding } = column;
+  const { layout, floatChannels: stride } = encoding;
+  const from = maxCode(layout.depth);
+  const max = maxCode(encoding.depth);
+  const alpha = multipliesAlpha(encoding) ? layout.alpha : null;
+  const encoder = srgbEncoder(encoding.depth);
+  let below = 0;
+  let above = 0;
+  for (let i = 0, o = offset + channel; i < floats.length; i += stride, o += layout.channels) {
+    const value = divider === null ? floats[i + channel] : ratio(floats[i + channel], floats[i + divider]);
+    const share = value / from;
+    if (share < -CLIP_SLACK) below++;
+    else if (share > 1 + CLIP_SLACK) above++;
+    const through = alpha === null ? 1 : clamped(floats[i + alpha] / from);
+    const kept = round(decodeSrgb(clamped(share)) * through);
+    codes[o] = encoding.light === 'coded' ? encoder.codeOf(kept) : roundedCode(round(kept * max), max);
+  }
+  clipped.below[channel] += below;
+  clipped.above[channel] += above;
+}
+
+function clamped(share: number): number {
+  return Math.min(1, Math.max(0, share));
 }
 
 /** Straight colour from weighted colour; black where nothing is there (fill decides later what stands under alpha 0). */

@@ -109,7 +109,7 @@ export function sumLight(encoding: Encoding, codes: Codes, texels: number, weigh
   const { layout, depth } = encoding;
   const { channels } = layout;
   const tables = layout.roles.slice(0, frontChannels(channels)).map((role) => {
-    const coded = encoding.light === 'coded' && role.kind === 'color' && role.transfer === 'srgb';
+    const coded = encoding.light === 'coded' && role.kind === 'color' && role.stored === 'srgb';
     return { table: decodeTable(depth, coded ? 'srgb' : 'linear'), whole: coded ? 1 : maxCode(depth) };
   });
   const [red, green = red, blue = red] = tables;

@@ -16,8 +16,9 @@ export interface ChainHead {
 
 /** What one channel of the source holds and how its kernel light is reached. */
 export type Role =
-  /** Light; `transfer` is the one that filtering undoes. */
-  | { readonly kind: 'color'; readonly transfer: Transfer }
+  /** Light; `transfer` is the one that filtering undoes, `stored` the one that codes stand for. They differ where codes are
+   *  filtered as they are. */
+  | { readonly kind: 'color'; readonly transfer: Transfer; readonly stored: Transfer }
   /** Numbers that are filtered as they are. */
   | { readonly kind: 'plain' }
   /** Alpha used as opacity or mask. */
@@ -106,8 +107,10 @@ export function lettersOf(channels: ChannelCount): readonly string[] {
 
 function roleOf(meaning: ChannelMeaning, channel: number, treatment: Treatment): Role {
   switch (meaning) {
-    case 'color':
-      return { kind: 'color', transfer: treatment.light === 'code' ? 'linear' : transferOf(treatment, channel) };
+    case 'color': {
+      const stored = transferOf(treatment, channel);
+      return { kind: 'color', transfer: treatment.light === 'code' ? 'linear' : stored, stored };
+    }
     case 'alpha':
       return alphaRole(treatment);
     case 'normal':
@@ -116,7 +119,9 @@ function roleOf(meaning: ChannelMeaning, channel: number, treatment: Treatment):
       return { kind: 'roughness' };
     case 'data':
     case 'height':
-      return transferOf(treatment, channel) === 'srgb' ? { kind: 'color', transfer: 'srgb' } : { kind: 'plain' };
+      return transferOf(treatment, channel) === 'srgb'
+        ? { kind: 'color', transfer: 'srgb', stored: 'srgb' }
+        : { kind: 'plain' };
   }
 }
 

@@ -58,16 +58,26 @@ export function planChain(head: ChainHead, treatment: Treatment, light: Light = 
   const depth = treatment.depth === 'same' ? head.depth : treatment.depth;
   const keepsCoverage =
     layout.alpha !== null && treatment.alpha.use === 'mask' && treatment.alpha.keepCoverage && methods.length > 0;
-  const indexed =
-    head.indexed && methods.every(movesCodes) && !keepsCoverage && fill !== 'all' && depth === 8 && light === 'coded';
-  if (fill === 'all') notes.push('Level 0 is changed: colour under alpha 0 is filled.');
+  if (fill === 'all') notes.push('Level 0 is changed: color under alpha 0 is filled.');
   if (depth !== head.depth) notes.push(`Level 0 is changed: ${head.depth} bits become ${depth}.`);
-  if (head.gamma !== undefined) notes.push(`Level 0 is changed: colours encoded with gamma ${head.gamma} become sRGB.`);
+  if (head.gamma !== undefined) notes.push(`Level 0 is changed: colors encoded with gamma ${head.gamma} become sRGB.`);
   const renormalised = layout.normals.length > 0 && treatment.normal.base === 'renormalise';
   if (renormalised) notes.push('Level 0 is changed: its normals are made unit.');
+  const multiplied = layout.alpha !== null && treatment.alpha.store === 'premultiplied';
+  const indexed =
+    head.indexed &&
+    head.gamma === undefined &&
+    methods.every(movesCodes) &&
+    !(keepsCoverage || multiplied || renormalised) &&
+    fill !== 'all' &&
+    depth === 8 &&
+    light === 'coded';
   const rows = methods.filter((method) => method.kind === 'rows');
   const lengthPass =
-    layout.normals.length > 0 && rows.length > 0 && findKernel(treatment.kernel.minify.name)?.kind !== 'area';
+    layout.normals.length > 0 &&
+    [...levels, ...targets].some(
+      (image) => image.method?.kind === 'rows' && !weighsAreas(head.extent, pictureExtent(image), treatment),
+    );
   return {
     head,
     treatment,
@@ -163,6 +173,15 @@ export function pictureExtent(image: PlannedLevel | PlannedTarget): Extent {
 
 function methodsOf(plan: ChainPlan): readonly Method[] {
   return [...plan.levels, ...plan.targets].flatMap((image) => (image.method === null ? [] : [image.method]));
+}
+
+/** Whether the kernels of both axes are areas, so that the chain's own pass measures mean lengths. */
+function weighsAreas(from: Extent, to: Extent, { kernel }: Treatment): boolean {
+  return (['width', 'height'] as const).every((axis) => {
+    if (from[axis] === to[axis]) return true;
+    const { name } = to[axis] < from[axis] ? kernel.minify : kernel.magnify;
+    return findKernel(name)?.kind === 'area';
+  });
 }
 
 function planLevels(base: Extent, treatment: Treatment, fills: boolean, notes: string[]): PlannedLevel[] {

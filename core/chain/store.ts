@@ -1,7 +1,7 @@
 import { type Codes, type Depth, newCodes, type Raster, type StraightRaster } from '../raster/raster.ts';
 import { decodeRow, floatChannels } from '../resample/decode.ts';
 import { newClipped } from './clip.ts';
-import { decodingOf } from './decoding.ts';
+import { decodingOf, recodeTable } from './decoding.ts';
 import { type Encoding, encodeRow } from './encode.ts';
 import type { Layout } from './layout.ts';
 import type { ChainPlan } from './plan.ts';
@@ -17,17 +17,32 @@ export function encodingOf(plan: ChainPlan, layout: Layout = plan.layout): Encod
   };
 }
 
-/** Codes as the source has them, in the form that the plan stores: untouched where that is the source's own. `normals` says
- *  whether they are unit already or wanted as they are, or must be made unit. */
+/** Codes as the source has them, in the form that the plan stores: untouched where that is the source's own, sRGB where the
+ *  source has a gamma of its own. `normals` says whether they are unit already or wanted as they are, or must be made unit. */
 export function storeCodes(plan: ChainPlan, raster: StraightRaster, normals: 'keep' | 'renormalise'): Raster {
   const { treatment, layout } = plan;
   if (treatment.alpha.store === 'premultiplied' && layout.alpha !== null) {
     return { ...recoded(plan, raster), kind: 'premultiplied' };
   }
   if (plan.light === 'linear') return recoded(plan, raster);
-  const rescaled = changeDepth(raster, plan.depth);
+  const rescaled = plan.layout.gamma === null ? changeDepth(raster, plan.depth) : recodeGamma(plan, raster, plan.depth);
   if (layout.normals.length === 0 || normals === 'keep') return rescaled;
   return withNormals(rescaled, recoded(plan, raster), layout);
+}
+
+/** sRGB codes of the source's depth, from codes of its gamma. */
+export function untagged(plan: ChainPlan, raster: StraightRaster): StraightRaster {
+  return recodeGamma(plan, raster, raster.depth);
+}
+
+function recodeGamma({ layout }: ChainPlan, raster: StraightRaster, depth: Depth): StraightRaster {
+  const { codes } = changeDepth({ ...raster, codes: raster.codes.slice() }, depth);
+  const table = recodeTable(raster.depth, depth, layout.gamma!);
+  layout.roles.forEach((role, channel) => {
+    if (role.kind !== 'color' || role.stored !== 'srgb') return;
+    for (let at = channel; at < codes.length; at += layout.channels) codes[at] = table[raster.codes[at]];
+  });
+  return { ...raster, depth, codes };
 }
 
 /** The same numbers at another depth: times 257, or floor(v 255 / 65535 + 1/2).  [PNG3, sample depth rescaling] */
