@@ -7,7 +7,7 @@ import type { Query } from '../../core/treatment/select.ts';
 import { walkSources } from '../../core/treatment/walk.ts';
 import type { Disk } from './disk.ts';
 import { filesOf } from './laydown.ts';
-import { type FoundOrphan, findOrphans, prune } from './orphans.ts';
+import { type FoundOrphan, findOrphans, orphansCanBeTold, prune, withoutAnswered } from './orphans.ts';
 import { parentOf } from './path.ts';
 import { planFromHead } from './plan-job.ts';
 import type { RunJobs } from './pool.ts';
@@ -68,7 +68,7 @@ export interface BuildReport {
 /** Builds what moved. One bad file does not stop the others; names that collide stop their root, before anything is built. */
 export async function buildProject(options: BuildOptions, tools: BuildTools, reporter: Reporter): Promise<BuildReport> {
   const project = await openProject(tools.disk, options.query);
-  const problems = [...project.problems];
+  let problems = [...project.problems];
   const rooms: RootBuild[] = [];
   const pruned: string[] = [];
   for (const root of project.roots) {
@@ -98,16 +98,15 @@ export async function buildProject(options: BuildOptions, tools: BuildTools, rep
     }
   }
   const cancelled = tools.isCancelled();
-  if (options.orphans === 'prune' && !cancelled) {
+  if (options.orphans === 'prune' && !cancelled && orphansCanBeTold(project)) {
     const empty = await openEmptyRoots(tools.disk, options.query, project);
+    const found: FoundOrphan[] = [];
     for (const root of [...rooms.map((room) => room.root), ...empty]) {
       const room = rooms.find((each) => each.root === root);
-      pruned.push(...(await pruneRoot(root, room, options, tools, problems)));
+      found.push(...(await pruneRoot(root, room, options, tools, problems)));
     }
-    // A folder without textures was asked for, and what was left of them is gone.
-    if (empty.length > 0 && pruned.length > 0) {
-      problems.splice(0, problems.length, ...problems.filter((each) => each.code !== 'nothing-selected'));
-    }
+    pruned.push(...found.map((orphan) => orphan.manifest));
+    problems = await withoutAnswered(tools.disk, options.query, problems, found);
   }
   for (const room of rooms) if (options.mode === 'build') await room.index.save();
   const roots = project.roots.map((root) => root.selection.folder);
@@ -278,7 +277,7 @@ async function pruneRoot(
   options: BuildOptions,
   tools: BuildTools,
   problems: Problem[],
-): Promise<string[]> {
+): Promise<FoundOrphan[]> {
   const traces = await findTraces(tools.disk, [root.outFolder], 'below');
   const present: PresentSource[] = (room?.works ?? []).flatMap((work) => work.state.sources);
   const orphans: FoundOrphan[] = await findOrphans(tools.disk, root, traces, present);
@@ -292,5 +291,5 @@ async function pruneRoot(
       problems.push(error.problem);
     }
   }
-  return orphans.map((orphan) => orphan.manifest);
+  return orphans;
 }

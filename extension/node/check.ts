@@ -10,7 +10,7 @@ import { baseName } from '../../core/treatment/path.ts';
 import { unusedTreatments } from '../../core/treatment/resolve.ts';
 import type { Query } from '../../core/treatment/select.ts';
 import type { Disk } from './disk.ts';
-import { type FoundOrphan, findOrphans, orphanProblem } from './orphans.ts';
+import { type FoundOrphan, findOrphans, orphanProblem, orphansCanBeTold, withoutAnswered } from './orphans.ts';
 import { jobFor, openEmptyRoots, openProject, type ProjectRoot, type ProjectTexture } from './project.ts';
 import { reencodedOutputs } from './reencoded.ts';
 import { openStatIndex } from './stat-index.ts';
@@ -72,17 +72,16 @@ export async function checkProject(options: CheckOptions, tools: CheckTools): Pr
       textures.push(judged.texture);
       problems.push(...judged.problems);
     }
-    if (!isCancelled()) {
+    if (!isCancelled() && orphansCanBeTold(project)) {
       const present = states.flatMap((state) => state.sources);
       const found = await findOrphans(disk, root, traces, present);
       orphans.push(...found);
       problems.push(...found.map((each) => orphanProblem(each, options.nameOf)));
-      problems.push(...unused(root));
     }
+    problems.push(...unused(root));
     await index.save();
   }
-  // A folder without textures was asked for, and what is left of them was found.
-  if (empty.length > 0 && orphans.length > 0) problems = problems.filter((each) => each.code !== 'nothing-selected');
+  problems = await withoutAnswered(disk, options.query, problems, orphans);
   return { textures, orphans, problems, cancelled: isCancelled() };
 }
 

@@ -3,10 +3,11 @@ import { movedTo, type Orphan, sourcesByHash } from '../../core/manifest/orphan.
 import type { Problem } from '../../core/problem.ts';
 import { pathBelow, resolvePath } from '../../core/treatment/path.ts';
 import { findRoot } from '../../core/treatment/root.ts';
+import type { Query } from '../../core/treatment/select.ts';
 import type { Disk } from './disk.ts';
 import { filesOf, orRefuse, removeUnedited } from './laydown.ts';
 import { parentOf } from './path.ts';
-import type { ProjectRoot } from './project.ts';
+import type { Project, ProjectRoot } from './project.ts';
 import { type PresentSource, readManifestFile } from './state.ts';
 import type { Traces } from './sweep.ts';
 import { nextOf } from './temporary.ts';
@@ -58,6 +59,28 @@ export async function findOrphans(
     rootOf.set(folder, found);
     return ((await found) ?? root.selection.folder) === root.selection.folder;
   }
+}
+
+/** Whether what is built now is known for sure. Behind a broken settings file or a folder that cannot be listed there may be
+ *  textures whose manifests are no orphans. */
+export function orphansCanBeTold(project: Project): boolean {
+  return project.problems.every((each) => each.severity === 'warning' || each.code === 'nothing-selected');
+}
+
+/** The problems without `nothing-selected` for folders in which orphans were found: there was something to do. */
+export async function withoutAnswered(
+  disk: Disk,
+  query: Query,
+  problems: readonly Problem[],
+  orphans: readonly FoundOrphan[],
+): Promise<Problem[]> {
+  const kept: Problem[] = [];
+  for (const problem of problems) {
+    const selector = problem.code === 'nothing-selected' ? problem.values.selector : null;
+    const folder = selector === null ? null : await disk.realPath(resolvePath(query.folder, String(selector)));
+    if (folder === null || !orphans.some(({ source }) => pathBelow(folder, source) !== null)) kept.push(problem);
+  }
+  return kept;
 }
 
 /** What is to be said of an orphan. */

@@ -46,9 +46,9 @@ export interface SourceReference {
 export async function openProject(disk: Disk, query: Query): Promise<Project> {
   const { roots, problems } = await selectSources(disk, query);
   const out = query.out === undefined ? null : resolvePath(query.folder, query.out);
-  if (out !== null && roots.length > 1) {
-    const folders = roots.map((root) => root.folder).join(', ');
-    const values = { count: roots.length, roots: folders };
+  const busy = roots.filter((root) => root.textures.length > 0);
+  if (out !== null && busy.length > 1) {
+    const values = { count: busy.length, roots: busy.map((root) => root.folder).join(', ') };
     return { roots: [], problems: [...problems, { code: 'several-roots', severity: 'error', values }] };
   }
   const scopes = await foldersOf(disk, query);
