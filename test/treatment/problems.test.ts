@@ -136,7 +136,7 @@ describe('kernels', () => {
     [rule('"kernel":{"minify":"epx"}'), '1:40 kernel-direction'],
     // One name for both directions: only what something asks for must be possible.
     [rule('"kernel":"detail"')],
-    [rule('"kernel":"detail","targets":["0.5x","48x48"]')],
+    [rule('"kernel":"detail","targets":["0.5x","1x","48x48"]')],
     [rule('"kernel":"detail","targets":["2x"]'), '1:30 kernel-direction'],
     [rule('"kernel":"epx"'), '1:30 kernel-direction'],
     [rule('"kernel":"epx","levels":"none","targets":["2x","6x","48x48"]')],

@@ -150,9 +150,27 @@ describe('sources', () => {
     expect((await select(items, ['/p'], { out: '/p/other' })).roots).toEqual([['/p', 'a.png']]);
   });
 
-  test('a folder that cannot be listed is a problem, the others go on', async () => {
-    const items = { '/p/a.png': image, '/p/x': { locked: true } } as const;
-    expect(await select(items, ['/p'])).toEqual({ roots: [['/p', 'a.png']], problems: ['folder-unreadable'] });
+  test('a file system that folds case finds a file under the name that it lists', async () => {
+    const tree = memoryTree({ '/p/Leaf.png': image, '/p/a\u0308.png': image });
+    const folding = {
+      ...tree,
+      kind: async (path: string) => (/png$/i.test(path) ? ('file' as const) : tree.kind(path)),
+    };
+    const { roots } = await selectSources(folding, { folder: '/p', paths: ['LEAF.PNG', '\u00e4.png'] });
+    expect(roots[0].textures.map(({ path, file }) => [path, file])).toEqual([
+      ['Leaf.png', '/p/Leaf.png'],
+      ['\u00e4.png', '/p/a\u0308.png'],
+    ]);
+  });
+
+  test('folders that cannot be listed are problems, in the order of their names; the others go on', async () => {
+    const items = { '/p/a.png': image, '/p/x': { locked: true }, '/p/y': { locked: true } } as const;
+    const { roots, problems } = await selectSources(memoryTree(items), { folder: '/', paths: ['/p'] });
+    expect(problems.map(({ code, path }) => `${code} ${path}`)).toEqual([
+      'folder-unreadable /p/x',
+      'folder-unreadable /p/y',
+    ]);
+    expect(roots.flatMap(({ textures }) => textures.map(({ path }) => path))).toEqual(['a.png']);
   });
 
   test('sources are not read', async () => {
