@@ -110,8 +110,10 @@ async function lint() {
   return 0;
 }
 
-function mutate(rest) {
-  return runSource('test/house/mutate.ts', rest);
+async function mutate(rest) {
+  await install('.');
+  await install('test');
+  return run(['test/mutate/mutate.mjs', ...rest]);
 }
 
 function paint(rest) {
