@@ -29,6 +29,8 @@ export interface BuiltFile {
 
 /** What a treatment makes of an image, known from its header alone. */
 export interface BuildPlan {
+  /** In the order in which they are handed over. A level 0 is among them where its codes may differ from the source's; where
+   *  they turn out the same, it is not written. */
   readonly files: readonly PlannedFile[];
   readonly phases: readonly ('rows' | 'level')[];
   /** Bytes that building holds at its worst, source file and outputs included. */

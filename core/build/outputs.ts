@@ -80,9 +80,10 @@ export function plannedFiles(outputs: OutputPlan): readonly PlannedFile[] {
   return [...pngs, ...containers];
 }
 
-/** Whether level 0 may be stored with other codes than the source's. */
+/** Whether level 0 may be stored with other codes than the source's. Roughness may be one channel of a larger file, or a
+ *  constant that no file holds. */
 export function changesBase(plan: ChainPlan, use: ImageUse): boolean {
-  if (use === 'roughness') return false;
+  if (use === 'roughness') return true;
   const { treatment, head, layout } = plan;
   return (
     plan.fill === 'all' ||

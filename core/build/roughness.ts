@@ -3,8 +3,9 @@ import { lettersOf } from '../chain/layout.ts';
 import type { BuildJob } from '../job.ts';
 import type { ManifestSource } from '../manifest/manifest.ts';
 import type { Cancel, Ports } from '../port.ts';
-import { refuse } from '../problem.ts';
+import { placed, Refusal, refuse } from '../problem.ts';
 import { newCodes, type StraightRaster } from '../raster/raster.ts';
+import { sourcePath } from '../treatment/names.ts';
 import type { Roughness, Treatment } from '../treatment/treatment.ts';
 import type { TexturePlan } from './plan.ts';
 import { openSource, readSource } from './source.ts';
@@ -31,7 +32,10 @@ export async function buildRoughness(
     const raster: StraightRaster = { kind: 'straight', extent, channels: 1, depth: 8, codes };
     return { chain: compensate(raster, job.treatment, normals), source: null };
   }
-  const { raster, source } = await readChannel(job, roughness, plan, ports, cancel);
+  const path = sourcePath(roughness.path, job.texture);
+  const { raster, source } = await readChannel(job, path, roughness.channel, plan, ports, cancel).catch((error) => {
+    throw error instanceof Refusal ? new Refusal(placed(error.problem, path)) : error;
+  });
   return { chain: compensate(raster, job.treatment, normals), source };
 }
 
@@ -58,13 +62,14 @@ function roughnessTreatment(treatment: Treatment): Treatment {
 
 async function readChannel(
   job: BuildJob,
-  roughness: Extract<Roughness, { path: string }>,
+  path: string,
+  letter: Extract<Roughness, { path: string }>['channel'],
   plan: TexturePlan,
   ports: Ports,
   cancel: Cancel,
 ): Promise<{ readonly raster: StraightRaster; readonly source: ManifestSource }> {
   if (job.roughness === undefined) throw new RangeError('Expected a roughness map with the job');
-  const opened = openSource(roughness.path, job.roughness, ports);
+  const opened = openSource(path, job.roughness, ports);
   const { extent, channels, depth } = opened.facts;
   const expected = plan.head.extent;
   if (extent.width !== expected.width || extent.height !== expected.height) {
@@ -72,8 +77,8 @@ async function readChannel(
     refuse('roughness-extent', { found: say(extent), expected: say(expected) });
   }
   const letters = lettersOf(channels);
-  const channel = letters.indexOf(roughness.channel);
-  if (channel < 0) refuse('channel-missing', { letter: roughness.channel, channels, letters: letters.join(', ') });
+  const channel = letters.indexOf(letter);
+  if (channel < 0) refuse('channel-missing', { letter, channels, letters: letters.join(', ') });
   const codes = newCodes(depth, extent.width * extent.height);
   let filled = 0;
   const source = await readSource(opened, 'roughness', ports, cancel, (row) => {

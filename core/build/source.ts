@@ -16,7 +16,7 @@ export interface OpenedSource {
   readonly palette: IndexedRaster | null;
 }
 
-/** Opens an image file of a job; `path` is what problems name. Throws Refusal. */
+/** Opens an image file of a job; `path` tells its extension. Throws Refusal. */
 export function openSource(path: string, job: JobSource, ports: Ports): OpenedSource {
   const image = openImage(job.bytes, path, ports.inflate);
   return { image, job, facts: factsOf(image, job.bytes.length), palette: paletteOf(image) };

@@ -30,11 +30,10 @@ export const buildTexture: BuildTexture = async (job, ports, cancel, write) => {
   if (bytes > job.memoryBytes) refuse('too-much-memory', { bytes, limit: job.memoryBytes });
 
   const chains = await buildChains(source, plan, (take) => readSource(source, 'image', ports, cancel, take));
-  const sources: ManifestSource[] = [chains.source];
   const roughness = await buildRoughness(job, plan, chains.coded, ports, cancel);
-  if (roughness?.source) sources.push(roughness.source);
+  const sources = roughness?.source ? [chains.source, roughness.source] : [chains.source];
 
-  const work: Emission = { plan, chains, folder: folderOf(manifestPath(job.texture)), ports, cancel, write };
+  const work: Emission = { plan, chains, sources, folder: folderOf(manifestPath(job.texture)), ports, cancel, write };
   const images: ManifestImage[] = [];
   for (const planned of plan.outputs.images) {
     const from = planned.use === 'roughness' ? roughness!.chain.images : chains.coded.images;
@@ -45,10 +44,12 @@ export const buildTexture: BuildTexture = async (job, ports, cancel, write) => {
     const from = planned.use === 'roughness' ? roughness!.chain.images : null;
     containers.push(await emitContainer(work, planned, from));
   }
+  const encoder = await encoderFingerprint(ports);
+  if (cancel.cancelled) throw new Cancelled();
   return {
     format: MANIFEST_FORMAT,
     algorithm: ALGORITHM,
-    encoder: await encoderFingerprint(ports),
+    encoder,
     sources,
     settings: job.treatment,
     levels: images.filter((image) => image.level !== undefined),
@@ -61,6 +62,7 @@ export const buildTexture: BuildTexture = async (job, ports, cancel, write) => {
 interface Emission {
   readonly plan: TexturePlan;
   readonly chains: BuiltChains;
+  readonly sources: readonly ManifestSource[];
   /** The manifest's folder below the output folder, "" for itself. */
   readonly folder: string;
   readonly ports: Ports;
@@ -69,10 +71,11 @@ interface Emission {
 }
 
 async function emitImage(work: Emission, planned: PlannedImage, image: ChainImage): Promise<ManifestImage> {
-  const { ports, chains, plan } = work;
+  const { ports, sources, plan } = work;
   const pixels = hashPixels(image.raster, ports.newHash);
   // A level 0 whose codes are the source's needs no second file.
-  const same = planned.level === 0 && planned.use === 'image' && pixels === chains.source.pixels;
+  const source = sources.find(({ use }) => use === planned.use);
+  const same = planned.level === 0 && pixels === source?.pixels;
   const wanted = planned.png !== null && (!same || plan.chain.treatment.png.base);
   const file = wanted
     ? await emitFile(work, planned.png!, await encodePng(pngRaster(image.raster), ports.deflate))
