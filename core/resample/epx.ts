@@ -1,5 +1,5 @@
 import { wrapIndex } from '../kernel/wrap.ts';
-import type { Extent, IndexedRaster, StraightRaster } from '../raster/raster.ts';
+import { type Extent, expandIndexed, type IndexedRaster, type StraightRaster } from '../raster/raster.ts';
 import type { Wrap } from '../treatment/treatment.ts';
 import { BORDER, holdsBorder, pickTexels } from './pick.ts';
 
@@ -28,7 +28,7 @@ function scaledOnce<R extends StraightRaster | IndexedRaster>(
   const { width, height } = raster.extent;
   const extent: Extent = { width: width * factor, height: height * factor };
   const texels = new Int32Array(extent.width * extent.height);
-  const same = sameColor(raster);
+  const colors = new Colors(raster);
   const block = factor === 2 ? scale2x : scale3x;
   const columns = Int32Array.from({ length: width + 2 }, (_, i) => wrapIndex(i - 1, width, wrap.x));
   const around = new Int32Array(9);
@@ -37,73 +37,93 @@ function scaledOnce<R extends StraightRaster | IndexedRaster>(
   for (let y = 0; y < height; y++) {
     const rows = [wrapIndex(y - 1, height, wrap.y), y, wrapIndex(y + 1, height, wrap.y)];
     for (let x = 0; x < width; x++) {
-      for (let k = 0; k < 9; k++) {
-        const row = rows[(k - (k % 3)) / 3];
-        const column = columns[x + (k % 3)];
-        around[k] = row < 0 || column < 0 ? BORDER : row * width + column;
+      for (let v = 0; v < 3; v++) {
+        for (let u = 0; u < 3; u++) {
+          around[3 * v + u] = rows[v] < 0 || columns[x + u] < 0 ? BORDER : rows[v] * width + columns[x + u];
+        }
       }
-      block(around, same, result);
-      for (let k = 0; k < result.length; k++) {
-        const texel = result[k] === BORDER && !borders ? around[4] : result[k];
-        const line = y * factor + (k - (k % factor)) / factor;
-        texels[line * extent.width + x * factor + (k % factor)] = texel;
+      block(around, colors, result);
+      for (let v = 0; v < factor; v++) {
+        const start = (y * factor + v) * extent.width + x * factor;
+        for (let u = 0; u < factor; u++) {
+          const texel = result[v * factor + u];
+          texels[start + u] = texel === BORDER && !borders ? around[4] : texel;
+        }
       }
     }
   }
   return pickTexels(raster, extent, texels);
 }
 
-type Same = (one: number, other: number) => boolean;
-
 /** The texels around E:   A B C      the result:   0 1
  *                          D E F                    2 3
  *                          G H I
  *  EPX's rule that three equal neighbors leave E alone is the test of B, H and of D, F.  [Mazzoleni01, Scale2x] */
-function scale2x([, b, , d, e, f, , h]: Int32Array, same: Same, result: Int32Array): void {
-  if (same(b, h) || same(d, f)) {
-    result.fill(e);
-    return;
-  }
-  result[0] = same(d, b) ? d : e;
-  result[1] = same(f, b) ? f : e;
-  result[2] = same(d, h) ? d : e;
-  result[3] = same(f, h) ? f : e;
+function scale2x(around: Int32Array, colors: Colors, result: Int32Array): void {
+  // By index: destructuring a typed array would run its iterator for every texel.
+  const b = around[1];
+  const d = around[3];
+  const e = around[4];
+  const f = around[5];
+  const h = around[7];
+  result.fill(e);
+  if (colors.same(b, h) || colors.same(d, f)) return;
+  if (colors.same(d, b)) result[0] = d;
+  if (colors.same(f, b)) result[1] = f;
+  if (colors.same(d, h)) result[2] = d;
+  if (colors.same(f, h)) result[3] = f;
 }
 
 /** As scale2x; the result is 0 1 2 / 3 4 5 / 6 7 8.  [Mazzoleni01, Scale3x] */
-function scale3x([a, b, c, d, e, f, g, h, i]: Int32Array, same: Same, result: Int32Array): void {
+function scale3x(around: Int32Array, colors: Colors, result: Int32Array): void {
+  const b = around[1];
+  const d = around[3];
+  const e = around[4];
+  const f = around[5];
+  const h = around[7];
   result.fill(e);
-  if (same(b, h) || same(d, f)) return;
-  const db = same(d, b);
-  const bf = same(b, f);
-  const dh = same(d, h);
-  const hf = same(h, f);
+  if (colors.same(b, h) || colors.same(d, f)) return;
+  const db = colors.same(d, b);
+  const bf = colors.same(b, f);
+  const dh = colors.same(d, h);
+  const hf = colors.same(h, f);
+  const likeA = colors.same(e, around[0]);
+  const likeC = colors.same(e, around[2]);
+  const likeG = colors.same(e, around[6]);
+  const likeI = colors.same(e, around[8]);
   if (db) result[0] = d;
-  if ((db && !same(e, c)) || (bf && !same(e, a))) result[1] = b;
+  if ((db && !likeC) || (bf && !likeA)) result[1] = b;
   if (bf) result[2] = f;
-  if ((db && !same(e, g)) || (dh && !same(e, a))) result[3] = d;
-  if ((bf && !same(e, i)) || (hf && !same(e, c))) result[5] = f;
+  if ((db && !likeG) || (dh && !likeA)) result[3] = d;
+  if ((bf && !likeI) || (hf && !likeC)) result[5] = f;
   if (dh) result[6] = d;
-  if ((dh && !same(e, i)) || (hf && !same(e, g))) result[7] = h;
+  if ((dh && !likeI) || (hf && !likeG)) result[7] = h;
   if (hf) result[8] = f;
 }
 
-/** Whether two texels look the same: equal codes, or both of alpha 0. The border is of alpha 0. */
-function sameColor(raster: StraightRaster | IndexedRaster): Same {
-  const isIndexed = raster.kind === 'indexed';
-  const channels = isIndexed ? 4 : raster.channels;
-  const codes = isIndexed ? raster.palette : raster.codes;
-  const place = isIndexed ? (texel: number) => raster.indices[texel] * 4 : (texel: number) => texel * channels;
-  const isClear = (texel: number) =>
-    texel === BORDER || (channels % 2 === 0 && codes[place(texel) + channels - 1] === 0);
-  return (one, other) => {
-    if (one === other) return true;
-    if (isClear(one) || isClear(other)) return isClear(one) && isClear(other);
-    const left = place(one);
-    const right = place(other);
-    for (let channel = 0; channel < channels; channel++) {
-      if (codes[left + channel] !== codes[right + channel]) return false;
+/** Which texels look the same: those of equal codes, and all of alpha 0, the border among them. A color is two numbers, 32 bits
+ *  each, at texel + 1: first and second channel, third channel and alpha. Both are 0 where alpha is, and there alone. */
+class Colors {
+  readonly #high: Uint32Array;
+  readonly #low: Uint32Array;
+
+  constructor(raster: StraightRaster | IndexedRaster) {
+    const { channels, codes } = raster.kind === 'indexed' ? expandIndexed(raster) : raster;
+    const count = codes.length / channels;
+    const hasAlpha = channels % 2 === 0;
+    this.#high = new Uint32Array(count + 1);
+    this.#low = new Uint32Array(count + 1);
+    for (let texel = 0; texel < count; texel++) {
+      const at = texel * channels;
+      const alpha = hasAlpha ? codes[at + channels - 1] : 1;
+      if (alpha === 0) continue;
+      const isGrey = channels < 3;
+      this.#high[texel + 1] = isGrey ? codes[at] : codes[at] * 65536 + codes[at + 1];
+      this.#low[texel + 1] = isGrey ? alpha : codes[at + 2] * 65536 + alpha;
     }
-    return true;
-  };
+  }
+
+  same(one: number, other: number): boolean {
+    return this.#high[one + 1] === this.#high[other + 1] && this.#low[one + 1] === this.#low[other + 1];
+  }
 }
