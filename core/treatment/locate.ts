@@ -29,7 +29,7 @@ async function locateFile(tree: FileTree, whole: string): Promise<Start | null> 
   const entries = (await tree.list(folder)) ?? [];
   // A file system may find a file under another case or composition than it lists it under.
   const asTyped = baseName(whole);
-  const name = [exact, composed, folded]
+  const name = [exact, folded]
     .map((alike) => entries.find((each) => alike(each.name) === alike(asTyped)))
     .find((each) => each !== undefined)?.name;
   if (name === undefined) return null;
@@ -57,5 +57,4 @@ async function locateGlob(tree: FileTree, folder: string, glob: string): Promise
 }
 
 const exact = (name: string) => name;
-const composed = (name: string) => name.normalize('NFC');
 const folded = (name: string) => name.normalize('NFC').toLowerCase();
