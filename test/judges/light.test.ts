@@ -16,9 +16,9 @@ describe.each(builders)('$name against sharp in linear light', (builder) => {
   ] as const)('%s differs by one code at most on mid-range data', async (ours, theirs) => {
     const image = noiseRaster(9, { width: 64, height: 64 }, 3, 8, 'middle');
     const judged = await sharp(image.codes, { raw: { width: 64, height: 64, channels: 3 } })
-      .pipelineColourspace('scrgb')
+      .pipelineColorspace('scrgb')
       .resize(32, 32, { kernel: theirs, fit: 'fill' })
-      .toColourspace('srgb')
+      .toColorspace('srgb')
       .raw()
       .toBuffer();
     const [, level] = builder.levels(image, treatment({ kernel: both(ours) }));
@@ -34,9 +34,9 @@ describe.each(builders)('$name against sharp in linear light', (builder) => {
   it('agrees that a checkerboard is 188', async () => {
     const board = painted({ width: 32, height: 32 }, 3, 8, (x, y) => ((x + y) % 2 === 0 ? [0, 0, 0] : [255, 255, 255]));
     const judged = await sharp(board.codes, { raw: { width: 32, height: 32, channels: 3 } })
-      .pipelineColourspace('scrgb')
+      .pipelineColorspace('scrgb')
       .resize(16, 16, { kernel: 'linear', fit: 'fill' })
-      .toColourspace('srgb')
+      .toColorspace('srgb')
       .raw()
       .toBuffer();
     const [, level] = builder.levels(board, treatment({ kernel: both('box') }));

@@ -5,7 +5,7 @@ import { both } from '../fixtures/treatment.ts';
 import { filters } from '../laws/filters.ts';
 import { resampleDoubles } from '../reference/resample.ts';
 
-// pica resizes 8-bit codes with 14-bit taps and keeps 15 bits between its passes; aligned centres, taps cut at the edge and
+// pica resizes 8-bit codes with 14-bit taps and keeps 15 bits between its passes; aligned centers, taps cut at the edge and
 // renormalised. So the interior alone is compared, in code space, on mid-range data: it clamps negatives between passes.
 
 const pica = new Pica({ features: ['js'] });

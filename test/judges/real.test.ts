@@ -45,7 +45,7 @@ describe.each(['0003', '0008', '0013', '0020', '0025'])('normal map %s', (name) 
 });
 
 describe('a cloud with soft alpha', () => {
-  it('has no black under alpha 0 and no fringe: colours stay within those that can be seen', async () => {
+  it('has no black under alpha 0 and no fringe: colors stay within those that can be seen', async () => {
     const image = await cloud();
     const seen = [255, 0];
     for (let at = 0; at < image.codes.length; at += 4) {

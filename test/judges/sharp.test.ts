@@ -5,7 +5,7 @@ import { both } from '../fixtures/treatment.ts';
 import { filters } from '../laws/filters.ts';
 import { doubles } from '../reference/doubles.ts';
 
-// sharp (libvips) resamples floats with the same conventions as ours: aligned centres, kernel stretched when minifying,
+// sharp (libvips) resamples floats with the same conventions as ours: aligned centers, kernel stretched when minifying,
 // normalised taps, clamped edges. At ratio 2 all its phases lie on the 1/64 steps of its phase table and it does not shrink
 // by boxes first, so only there is it exact; enlarging, its releases up to 8.18 sample half a target texel off.
 
@@ -32,7 +32,7 @@ describe.each(filters)('$name against sharp, floats, two to one', (filter) => {
       },
     )
       .resize(32, 32, { kernel: theirs, fit: 'fill' })
-      .toColourspace('grey16')
+      .toColorspace('grey16')
       .raw({ depth: 'float' })
       .toBuffer({ resolveWithObject: true });
     const judged = new Float32Array(data.buffer, data.byteOffset, 32 * 32);

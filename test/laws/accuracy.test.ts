@@ -66,7 +66,7 @@ describe('codes equal those of double precision but near a boundary', () => {
     });
   });
 
-  it('colour under opacity', () => {
+  it('color under opacity', () => {
     const cases = fc.tuple(seeds, smallExtents, oneOf([2, 4] as const), depths, kernels(POSITIVE), wraps);
     holds(cases, 60, ([seed, extent, channels, depth, kernel, wrap]) => {
       const raster = withAlpha(noiseRaster(seed, extent, channels, depth, 'noise'), seed, 3, 3);
@@ -76,7 +76,7 @@ describe('codes equal those of double precision but near a boundary', () => {
     });
   });
 
-  it('colour under opacity with negative lobes', () => {
+  it('color under opacity with negative lobes', () => {
     const cases = fc.tuple(seeds, smallExtents, depths, kernels(LINEAR), wraps);
     holds(cases, 60, ([seed, extent, depth, kernel, wrap]) => {
       const raster = withAlpha(noiseRaster(seed, extent, 4, depth, 'middle'), seed, 2, 6);
@@ -180,7 +180,7 @@ function firstFault(
     const fraction = reference.fractions[at];
     const texel = at - (at % channels);
     const underAlpha = alpha !== null && at % channels !== alpha;
-    // Colour where the stored alpha is 0 is the fill's, or black: alpha.test.ts has its laws.
+    // Color where the stored alpha is 0 is the fill's, or black: alpha.test.ts has its laws.
     if (underAlpha && (codes[texel + alpha] === 0 || Number.isNaN(fraction))) continue;
     tally.codes++;
     if (codes[at] === Math.round(fraction) || codes[at] === reference.codes[at]) continue;

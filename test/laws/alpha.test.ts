@@ -20,19 +20,19 @@ import { builders } from './builders.ts';
 import { holds } from './holds.ts';
 
 describe.each(builders)('$name', (builder) => {
-  it('weighs colour by alpha: transparent red beside opaque blue is half-transparent blue', () => {
+  it('weighs color by alpha: transparent red beside opaque blue is half-transparent blue', () => {
     const pair = picture({ width: 2, height: 1 }, 4, 8, [255, 0, 0, 0, 0, 0, 255, 255]);
     // Alpha is 127.5 and rounds to the even code.
     expect(Array.from(builder.levels(pair, treatment({ kernel: both('box') }))[1].codes)).toEqual([0, 0, 255, 128]);
   });
 
-  it('filters straight colours where the treatment says so', () => {
+  it('filters straight colors where the treatment says so', () => {
     const pair = picture({ width: 2, height: 1 }, 4, 8, [255, 0, 0, 0, 0, 0, 255, 255]);
     const straight = treatment({ kernel: both('box'), alpha: { weight: false } });
     expect(Array.from(builder.levels(pair, straight)[1].codes)).toEqual([188, 0, 188, 128]);
   });
 
-  it('keeps colour at low alpha', () => {
+  it('keeps color at low alpha', () => {
     // A library that premultiplies in 8 bits brings (200, 100, 50, 3) back as (170, 85, 0, 3).
     holds(fc.tuple(extents, kernels(LINEAR), wraps), 30, ([extent, kernel, wrap]) => {
       const faint = flat(extent, 8, [200, 100, 50, 3]);
@@ -63,7 +63,7 @@ describe.each(builders)('$name', (builder) => {
       const drawnFirst = builder.levels(over(image, backdrop), { ...one, alpha: { ...one.alpha, use: 'none' } });
       drawnFirst.forEach((level, i) => {
         if (i === 0) return;
-        // Rounding in codes: colour and alpha of the level at most 1/2 + 1/2, both compositions 1/2 each.
+        // Rounding in codes: color and alpha of the level at most 1/2 + 1/2, both compositions 1/2 each.
         for (let at = 0; at < level.codes.length; at++) {
           expect(Math.abs(level.codes[at] - drawnLast[i].codes[at])).toBeLessThanOrEqual(2);
         }
@@ -71,7 +71,7 @@ describe.each(builders)('$name', (builder) => {
     });
   });
 
-  it('gives texels of alpha 0 the colour over them, so that none is black', () => {
+  it('gives texels of alpha 0 the color over them, so that none is black', () => {
     const cases = fc.tuple(seeds, smallExtents, depths, kernels(LINEAR), wraps, oneOf(['hidden', 'all'] as const));
     holds(cases, 60, ([seed, extent, depth, kernel, wrap, fill]) => {
       const image = withAlpha(noiseRaster(seed, extent, 4, depth, 'middle'), seed, 8, 1);
@@ -89,7 +89,7 @@ describe.each(builders)('$name', (builder) => {
         }
       });
       if (image.codes.some((code, i) => i % 4 === 3 && code !== 0) && ['box', 'triangle'].includes(kernel.name)) {
-        // Visible colours lie between 30 % and 70 %: black under alpha 0 could only come from nowhere.
+        // Visible colors lie between 30 % and 70 %: black under alpha 0 could only come from nowhere.
         for (const level of levels.slice(1)) {
           for (let at = 0; at < level.codes.length; at += 4) expect(level.codes[at]).toBeGreaterThan(0);
         }
@@ -103,7 +103,7 @@ describe.each(builders)('$name', (builder) => {
     expect(Array.from(level.codes)).toEqual([188, 0, 188, 255]);
   });
 
-  it('leaves the hidden colours of level 0 alone unless it is told to fill all', () => {
+  it('leaves the hidden colors of level 0 alone unless it is told to fill all', () => {
     const image = painted({ width: 4, height: 4 }, 4, 8, (x, y) => (x + y === 0 ? [200, 100, 50, 255] : [9, 8, 7, 0]));
     const one = treatment({ kernel: both('box') });
     expect(builder.levels(image, one)[0].codes).toEqual(image.codes);

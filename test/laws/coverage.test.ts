@@ -119,7 +119,7 @@ describe('the engine', () => {
     });
   });
 
-  it('scales stored alpha alone: colours and the next level come from the unscaled floats', () => {
+  it('scales stored alpha alone: colors and the next level come from the unscaled floats', () => {
     holds(masks, 40, ({ seed, extent, depth, kernel, wrap, cutoff }) => {
       const image = withAlpha(noiseRaster(seed, extent, 4, depth, 'middle'), seed, 2, 4);
       const one = treatment({
@@ -176,7 +176,7 @@ describe('the engine', () => {
     const coverage = (mode: 'clamp-to-edge' | 'repeat' | 'mirror-repeat' | 'clamp-to-border'): number | undefined =>
       buildChain(image, treatment({ wrap: { x: mode, y: 'clamp-to-edge' }, alpha: { use: 'mask' } })).images[0]
         .coverage;
-    // Of the four samples across texel 0 the outer two lie towards its neighbour outside, the others reach 5/8 and 7/8 of
+    // Of the four samples across texel 0 the outer two lie towards its neighbor outside, the others reach 5/8 and 7/8 of
     // it; of those across texel 1 the nearest sees 3/8 of it.
     expect(coverage('clamp-to-edge')).toBe(4 / 16);
     expect(coverage('mirror-repeat')).toBe(4 / 16);

@@ -35,7 +35,7 @@ it('has taps that sum to exactly one', () => {
   });
 });
 
-it('does not drift: taps are centred on their target texels in the mean', () => {
+it('does not drift: taps are centered on their target texels in the mean', () => {
   holds(fc.tuple(kernels(LINEAR), sizes, sizes), 200, ([kernel, from, to]) => {
     if (kernel.name === 'box' && to > from) return;
     const square = (n: number): Extent => ({ width: n, height: n });

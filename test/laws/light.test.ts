@@ -12,7 +12,7 @@ import { holds } from './holds.ts';
 /** Relative luminance, WCAG 2.2: the standard's four-digit weights. */
 const WEIGHTS = [0.2126, 0.7152, 0.0722];
 
-it('measures luminance of the stored colours, weighed by the alpha that was filtered', () => {
+it('measures luminance of the stored colors, weighed by the alpha that was filtered', () => {
   const cases = fc.tuple(
     seeds,
     smallExtents,

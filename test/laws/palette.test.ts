@@ -19,7 +19,7 @@ const art = fc
   .tuple(seeds, smallExtents, channelCounts, depths)
   .map(([seed, extent, channels, depth]) => withHidden(noiseRaster(seed, extent, channels, depth, 'few'), seed));
 
-describe('no kernel that moves codes makes a colour', () => {
+describe('no kernel that moves codes makes a color', () => {
   it.each(['nearest', 'majority'])('%s, every level', (name) => {
     holds(fc.tuple(art, wraps), 60, ([raster, wrap]) => {
       const palette = colors(raster);
@@ -48,7 +48,7 @@ describe('no kernel that moves codes makes a colour', () => {
   });
 });
 
-it('hides what was hidden: colour under alpha 0 moves with its texel', () => {
+it('hides what was hidden: color under alpha 0 moves with its texel', () => {
   const image = painted({ width: 4, height: 4 }, 4, 8, (x, y) => [
     x * 10 + 1,
     y * 10 + 2,
@@ -60,7 +60,7 @@ it('hides what was hidden: colour under alpha 0 moves with its texel', () => {
   expect(texelAt(level, 0, 0)).toEqual([11, 12, 3, 0]);
 });
 
-it("nearest takes the texel under the target's centre, from the base", () => {
+it("nearest takes the texel under the target's center, from the base", () => {
   holds(fc.tuple(art, wraps), 60, ([raster, wrap]) => {
     for (const level of engineLevels(buildChain(raster, moving('nearest', wrap)))) {
       for (let y = 0; y < level.extent.height; y++) {
@@ -96,7 +96,7 @@ describe('epx', () => {
       const chosen = scale2x(raster.extent, (a, b) => sameColor(raster, a, b));
       chosen.forEach((texel, at) => {
         const [x, y] = [at % target.extent.width, Math.floor(at / target.extent.width)];
-        // Clear texels are one colour, whichever of them is taken.
+        // Clear texels are one color, whichever of them is taken.
         const expected = texelAt(raster, texel % raster.extent.width, Math.floor(texel / raster.extent.width));
         const found = texelAt(target, x, y);
         if (raster.channels % 2 === 0 && expected[raster.channels - 1] === 0)
@@ -106,8 +106,8 @@ describe('epx', () => {
     });
   });
 
-  it('leaves a texel alone where three neighbours are equal', () => {
-    // Without this rule of EPX 340 of the 3125 crosses of five colours would come out otherwise; here is one of them.
+  it('leaves a texel alone where three neighbors are equal', () => {
+    // Without this rule of EPX 340 of the 3125 crosses of five colors would come out otherwise; here is one of them.
     const cross = picture({ width: 3, height: 3 }, 1, 8, [9, 1, 9, 1, 5, 1, 9, 2, 9]);
     const target = double(cross);
     expect([2, 3].flatMap((y) => [2, 3].map((x) => texelAt(target, x, y)[0]))).toEqual([5, 5, 5, 5]);
@@ -144,7 +144,7 @@ describe('an indexed source', () => {
     });
   });
 
-  it('keeps its indices where colours of the palette are equal', () => {
+  it('keeps its indices where colors of the palette are equal', () => {
     // Entries 1 and 3 look alike; only their place tells them apart.
     const palette = Uint8Array.of(0, 0, 0, 255, 9, 9, 9, 255, 50, 50, 50, 255, 9, 9, 9, 255);
     const indices = Uint8Array.of(3, 3, 1, 1, 3, 3, 1, 1, 2, 2, 0, 0, 2, 2, 0, 0);

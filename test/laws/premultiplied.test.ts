@@ -9,7 +9,7 @@ import { referenceChain } from '../reference/chain.ts';
 import { encodeFraction } from '../reference/transfer.ts';
 import { holds } from './holds.ts';
 
-// Colour multiplied by alpha in linear light and then encoded.
+// Color multiplied by alpha in linear light and then encoded.
 
 const cases = fc.record({
   seed: seeds,
@@ -20,7 +20,7 @@ const cases = fc.record({
   transfer: oneOf(['srgb', 'linear'] as const),
 });
 
-it('stores encode(colour times alpha) at every level, level 0 too', () => {
+it('stores encode(color times alpha) at every level, level 0 too', () => {
   holds(fc.tuple(cases, kernels(POSITIVE)), 50, ([{ seed, extent, channels, depth, wrap, transfer }, kernel]) => {
     const image = withAlpha(noiseRaster(seed, extent, channels, depth, 'noise'), seed, 3, 3);
     const one = treatment({
@@ -43,7 +43,7 @@ it('stores encode(colour times alpha) at every level, level 0 too', () => {
   });
 });
 
-it('stores no colour above its alpha', () => {
+it('stores no color above its alpha', () => {
   holds(fc.tuple(cases, kernels(LINEAR)), 50, ([{ seed, extent, channels, depth, wrap }, kernel]) => {
     const image = withAlpha(noiseRaster(seed, extent, channels, depth, 'extremes'), seed, 3, 3);
     const one = treatment({

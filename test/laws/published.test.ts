@@ -48,7 +48,7 @@ describe('the reference itself', () => {
   });
 
   it.each([
-    // Exact taps of a two to one minification, centred: left half, outermost first. Cubics from Mitchell and Netravali 1988 and
+    // Exact taps of a two to one minification, centered: left half, outermost first. Cubics from Mitchell and Netravali 1988 and
     // Keys 1981 in rationals; lanczos2 and kaiser in double precision, eight digits.
     ['box', [1 / 2], 1e-15],
     ['triangle', [1 / 8, 3 / 8], 1e-15],

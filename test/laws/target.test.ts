@@ -77,7 +77,7 @@ describe('a cell', () => {
     });
   });
 
-  it('stands half a texel left and up where it cannot be centred', () => {
+  it('stands half a texel left and up where it cannot be centered', () => {
     expect(cellPlace({ width: 2, height: 1 }, { width: 5, height: 4 })).toEqual({
       extent: { width: 5, height: 3 },
       x: 0,

@@ -23,7 +23,7 @@ describe.each(filters)('$name', (filter) => {
     });
   });
 
-  it('bilinear stays within its four neighbours', () => {
+  it('bilinear stays within its four neighbors', () => {
     holds(fc.tuple(seeds, smallExtents, fc.integer({ min: 1, max: 5 }), wraps), 60, ([seed, from, grow, wrap]) => {
       const image = noise(seed, from.width, from.height);
       const to = { width: from.width + grow, height: from.height + 2 * grow };
@@ -51,8 +51,8 @@ describe.each(filters)('$name', (filter) => {
       const result = filter.filter(image, to, both(name), wrap);
       for (let y = 0; y < from.height; y++) {
         for (let x = 0; x < from.width; x++) {
-          const centre = (factor - 1) / 2;
-          const value = result.values[(y * factor + centre) * to.width + x * factor + centre];
+          const center = (factor - 1) / 2;
+          const value = result.values[(y * factor + center) * to.width + x * factor + center];
           expect(Math.abs(value - image.values[y * from.width + x])).toBeLessThanOrEqual(bound);
         }
       }
@@ -66,7 +66,7 @@ describe.each(filters)('$name', (filter) => {
     ['b-spline', 16],
     ['lanczos3', 36],
   ])('%s draws on %i texels', (name, count) => {
-    // The target texel at (20, 20) of a fourfold enlargement lies at 4.625 between centres, far from every edge.
+    // The target texel at (20, 20) of a fourfold enlargement lies at 4.625 between centers, far from every edge.
     let drawn = 0;
     for (let texel = 0; texel < 121; texel++) {
       const impulse = doubles(11, 11, 1);
@@ -77,7 +77,7 @@ describe.each(filters)('$name', (filter) => {
     expect(drawn).toBe(count);
   });
 
-  it('a cubic takes its slope at a sample from the neighbours on either side', () => {
+  it('a cubic takes its slope at a sample from the neighbors on either side', () => {
     // Sixty-four fold: two targets straddle the sample at 64 * 4 + 31.5; the chord between them differs from the tangent by
     // less than (1/64)^2 / 4 times the third derivative (below 24 for values within -1..1 times 6 * 4 coefficients).
     const row = noise(11, 9, 1);
@@ -87,7 +87,7 @@ describe.each(filters)('$name', (filter) => {
   });
 
   it('a cubic is smoother than bilinear', () => {
-    // Largest change of slope between neighbouring targets of a wave enlarged sixteen times.
+    // Largest change of slope between neighboring targets of a wave enlarged sixteen times.
     const wave = doubles(32, 1, 1);
     for (let i = 0; i < 32; i++) wave.values[i] = Math.fround(0.5 + 0.4 * Math.sin((i * Math.PI) / 4));
     const bend = (name: string): number => {

@@ -163,7 +163,7 @@ export const faults = [
     replace: 'slotOf(at < height ? at : height - 1)',
     tests: 'test/laws/accuracy.test.ts',
   },
-  // Colour.
+  // Color.
   {
     law: "sRGB is decoded by the standard's constants",
     file: 'core/color/transfer.ts',
@@ -228,20 +228,20 @@ export const faults = [
   },
   // Alpha.
   {
-    law: 'colour is weighed by alpha',
+    law: 'color is weighed by alpha',
     file: 'core/resample/decode.ts',
     find: 'round(floats[o + channel] * floats[o + alpha])',
     replace: 'floats[o + channel]',
     tests: 'test/laws/alpha.test.ts',
-    name: 'weighs colour by alpha',
+    name: 'weighs color by alpha',
   },
   {
-    law: 'colour survives low alpha',
+    law: 'color survives low alpha',
     file: 'core/chain/encode.ts',
     find: 'return alpha > 0 ? round(weighted / alpha) : 0;',
     replace: 'return alpha > 4 ? round(weighted / alpha) : 0;',
     tests: 'test/laws/alpha.test.ts',
-    name: 'keeps colour at low alpha',
+    name: 'keeps color at low alpha',
   },
   {
     law: 'an unused alpha is opaque',
@@ -252,14 +252,14 @@ export const faults = [
     name: 'nobody reads',
   },
   {
-    law: 'premultiplied colour is multiplied at every level',
+    law: 'premultiplied color is multiplied at every level',
     file: 'core/chain/encode.ts',
     find: "return store === 'premultiplied' && layout.alpha !== null;",
     replace: "return store === 'premultiplied' && layout.weighted.length > 0;",
     tests: 'test/laws/premultiplied.test.ts',
   },
   {
-    law: 'colour under alpha 0 comes from the texel over it',
+    law: 'color under alpha 0 comes from the texel over it',
     file: 'core/chain/fill.ts',
     find: '((2 * i + 1) * coarse[axis]) / (2 * count)',
     replace: '(i * coarse[axis]) / (2 * count)',
@@ -267,12 +267,12 @@ export const faults = [
     name: 'gives texels of alpha 0',
   },
   {
-    law: 'hidden colours of level 0 stay',
+    law: 'hidden colors of level 0 stay',
     file: 'core/chain/finish.ts',
     find: "plan.fill === 'all' || !draft.moved",
     replace: 'true',
     tests: 'test/laws/alpha.test.ts',
-    name: 'leaves the hidden colours',
+    name: 'leaves the hidden colors',
   },
   // Coverage.
   {
@@ -422,7 +422,7 @@ export const faults = [
     name: 'majority takes',
   },
   {
-    law: 'clear texels vote as one colour',
+    law: 'clear texels vote as one color',
     file: 'core/resample/majority.ts',
     find: '(this.#isClear(one) && this.#isClear(other)) ||',
     replace: '',
@@ -430,10 +430,10 @@ export const faults = [
     name: 'majority takes',
   },
   {
-    law: 'three equal neighbours leave a texel alone',
+    law: 'three equal neighbors leave a texel alone',
     file: 'core/resample/epx.ts',
-    find: 'if (same(b, h) || same(d, f)) {',
-    replace: 'if (same(b, h) && same(d, f)) {',
+    find: 'if (colors.same(b, h) || colors.same(d, f)) return;\n  if (colors.same(d, b))',
+    replace: 'if (colors.same(d, b))',
     tests: 'test/laws/palette.test.ts',
     name: 'epx',
   },

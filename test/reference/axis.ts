@@ -20,7 +20,7 @@ function weighTexel(kernel: KernelChoice, from: number, to: number, j: number): 
   return kernelTaps(kernel, from, to, j);
 }
 
-/** The texel under the target's centre: floor(u). */
+/** The texel under the target's center: floor(u). */
 export function pointTap(from: number, to: number, j: number): Tap[] {
   return [{ index: Math.floor(((2 * j + 1) * from) / (2 * to)), weight: 1 }];
 }
@@ -35,7 +35,7 @@ export function areaTaps(from: number, to: number, j: number): Tap[] {
   return taps;
 }
 
-/** The kernel over source centres, stretched when minifying. The distance of centres in units of the coarser grid is
+/** The kernel over source centers, stretched when minifying. The distance of centers in units of the coarser grid is
  *  ((2i + 1) to - (2j + 1) from) / (2 max(from, to)). */
 function kernelTaps(choice: KernelChoice, from: number, to: number, j: number): Tap[] {
   const kernel = weightKernel(choice);

@@ -15,7 +15,7 @@ export interface ReferenceLevel {
   readonly depth: Depth;
   /** What the next level comes from: unclamped, premultiplied where weighted. */
   readonly carried: Doubles;
-  /** Codes with their fractions before rounding; NaN where colour comes from the fill. */
+  /** Codes with their fractions before rounding; NaN where color comes from the fill. */
   readonly fractions: Float64Array;
   /** Straight values before clamping. */
   readonly straight: Float64Array;

@@ -5,14 +5,14 @@ import { roughen, unit } from './normal.ts';
 import { encodeFraction, roundCode } from './transfer.ts';
 
 export interface Encoded {
-  /** Codes with their fractions, clamped; NaN where colour has no alpha to be divided by. */
+  /** Codes with their fractions, clamped; NaN where color has no alpha to be divided by. */
   readonly fractions: Float64Array;
   readonly codes: Codes;
   /** Straight values before clamping, in light; NaN as above. */
   readonly straight: Float64Array;
 }
 
-/** Stored codes of a filtered level: colour = c / a where a > 0, else black; alpha times `alphaScale`. `lengths` holds the
+/** Stored codes of a filtered level: color = c / a where a > 0, else black; alpha times `alphaScale`. `lengths` holds the
  *  mean length of the normals over each texel. */
 export function encodeDoubles(
   image: Doubles,

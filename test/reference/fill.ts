@@ -8,7 +8,7 @@ export interface CodeLevel {
   readonly codes: Codes;
 }
 
-/** Gives colour to texels of alpha code 0 from the texel over them in the next coarser level, the last level first
+/** Gives color to texels of alpha code 0 from the texel over them in the next coarser level, the last level first
  *  (the push of Gortler et al. 1996, "The Lumigraph"). `first` is the first level that may change. Levels in place. */
 export function fillLevels(levels: readonly CodeLevel[], first: number): void {
   for (let level = levels.length - 2; level >= first; level--) {
@@ -25,7 +25,7 @@ export function fillLevels(levels: readonly CodeLevel[], first: number): void {
   }
 }
 
-/** Index of the coarser level's texel under the centre of the finer one's. */
+/** Index of the coarser level's texel under the center of the finer one's. */
 export function overTexel(fine: Extent, coarse: Extent, x: number, y: number): number {
   const overX = pointTap(coarse.width, fine.width, x)[0].index;
   const overY = pointTap(coarse.height, fine.height, y)[0].index;

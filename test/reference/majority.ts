@@ -1,8 +1,8 @@
 import type { Codes, Extent } from '../../core/raster/raster.ts';
 import { areaTaps } from './axis.ts';
 
-/** Index of the source texel whose colour has the most overlap with target texel (jx, jy). Texels of alpha 0 vote as one.
- *  A tie goes to the tied colour nearest the target's centre, then to the lowest RGBA read as an integer. */
+/** Index of the source texel whose color has the most overlap with target texel (jx, jy). Texels of alpha 0 vote as one.
+ *  A tie goes to the tied color nearest the target's center, then to the lowest RGBA read as an integer. */
 export function majorityTexel(
   source: { readonly extent: Extent; readonly channels: number; readonly codes: Codes },
   target: Extent,

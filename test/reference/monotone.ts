@@ -1,4 +1,4 @@
-/** Monotone cubic at target texel j: Hermite form between the two nearest centres, tangents from the harmonic mean of the
+/** Monotone cubic at target texel j: Hermite form between the two nearest centers, tangents from the harmonic mean of the
  *  secants, 0 where they differ in sign (Fritsch and Butland 1984, uniform spacing). */
 export function slopeRow(read: (i: number) => number, from: number, to: number, j: number): number {
   const u = ((2 * j + 1) * from - to) / (2 * to);
