@@ -1,8 +1,8 @@
 import { layoutKtx2 } from '../codec/ktx2/format.ts';
 import type { Manifest } from '../manifest/manifest.ts';
 import { finding, type Problem } from '../problem.ts';
+import { type GpuFormat, gpuBytes, gpuFormats } from '../raster/gpu-format.ts';
 import type { ChannelCount, Depth } from '../raster/raster.ts';
-import { type GpuFormat, gpuBytes, gpuFormats } from './gpu-format.ts';
 
 /** Bytes that the chain takes on the GPU, against the budget that its settings give it; `null` within it or without one.
  *  Targets are no part of the chain. */

@@ -1,3 +1,4 @@
+import { budgetFormats } from '../raster/gpu-format.ts';
 import {
   choice,
   type Default,
@@ -45,27 +46,6 @@ const target = either(
     targetName,
   ),
 );
-
-/** GPU formats that a budget may be counted in. */
-export const budgetFormats = [
-  'rgba8',
-  'rgba16',
-  'bc1',
-  'bc3',
-  'bc4',
-  'bc5',
-  'bc7',
-  'etc2-rgb',
-  'etc2-rgba',
-  'eac-r11',
-  'eac-rg11',
-  'astc-4x4',
-  'astc-5x5',
-  'astc-6x6',
-  'astc-8x8',
-  'astc-10x10',
-  'astc-12x12',
-] as const;
 
 const bytes = whole('bytes', 1, Number.MAX_SAFE_INTEGER);
 
@@ -300,7 +280,7 @@ export const treatmentKeys: readonly Key[] = [
           spread(['bytes'], bytes),
           group(
             key('bytes', bytes, value(null), 'Most bytes that the chain may take.'),
-            key('format', choice(...budgetFormats), value('rgba8'), 'GPU format that it is counted in.'),
+            key('format', choice(...budgetFormats), value('written'), 'GPU format that it is counted in.'),
           ),
         ),
         inner(),

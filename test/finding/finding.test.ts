@@ -1,5 +1,4 @@
 import { expect, test } from 'vitest';
-import { budgetFormats, gpuBytes, gpuFormats } from '../../core/finding/gpu-format.ts';
 import { notDownloaded, POINTER_BYTES } from '../../core/finding/not-downloaded.ts';
 import { overBudget } from '../../core/finding/over-budget.ts';
 import { stale } from '../../core/finding/stale.ts';
@@ -7,6 +6,7 @@ import { findings, judgeManifest } from '../../core/finding/table.ts';
 import { thinning } from '../../core/finding/thinning.ts';
 import type { Manifest, ManifestImage } from '../../core/manifest/manifest.ts';
 import { say } from '../../core/problem.ts';
+import { budgetFormats, gpuBytes, gpuFormats } from '../../core/raster/gpu-format.ts';
 import type { Limits, Treatment } from '../../core/treatment/treatment.ts';
 import { sampleManifest } from '../manifest/sample.ts';
 
