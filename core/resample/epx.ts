@@ -20,6 +20,17 @@ export function epx<R extends StraightRaster | IndexedRaster>(
   return factor === step ? scaled : epx(scaled, factor / step, wrap);
 }
 
+/** Bytes that `epx` holds beside its source and result, for a raster of that many bytes a texel. */
+export function epxBytes(source: Extent, factor: number, bytesPerTexel: number): number {
+  const before = factor / (factor % 3 === 0 ? 3 : 2);
+  const texels = source.width * source.height;
+  const between = before === 1 ? 0 : texels * before * before * bytesPerTexel;
+  return between + texels * before * before * COLOR_BYTES + texels * factor * factor * 4;
+}
+
+/** The two numbers of a color, and an expanded palette entry. */
+const COLOR_BYTES = 12;
+
 function scaledOnce<R extends StraightRaster | IndexedRaster>(
   raster: R,
   factor: 2 | 3,

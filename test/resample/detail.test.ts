@@ -1,7 +1,7 @@
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import { type Extent, maxCode, type StraightRaster } from '../../core/raster/raster.ts';
-import { type DetailOptions, detail } from '../../core/resample/detail.ts';
+import { type DetailOptions, detail, detailBytes } from '../../core/resample/detail.ts';
 import type { Transfer } from '../../core/treatment/treatment.ts';
 import { areaTaps } from '../reference/axis.ts';
 import { decodeSrgb, encodeSrgb } from '../reference/transfer.ts';
@@ -213,4 +213,9 @@ test('mistakes', () => {
     /^Expected 0, 0\.5, 1, 2 for lambda but received 0\.75$/,
   );
   expect(() => detail(raster, { width: 3, height: 1 }, options(raster, 1))).toThrow(RangeError);
+});
+
+test('bytes held, by hand', () => {
+  // Averages and guide, 8 bytes a sample.
+  expect(detailBytes({ width: 4, height: 4 }, 3)).toBe(2 * 16 * 3 * 8);
 });

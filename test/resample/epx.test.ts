@@ -1,6 +1,6 @@
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
-import { epx } from '../../core/resample/epx.ts';
+import { epx, epxBytes } from '../../core/resample/epx.ts';
 import type { Wrap } from '../../core/treatment/treatment.ts';
 import { scale2x } from '../reference/epx.ts';
 import { cut, indexed, mirrored, pictures, straight, tiled, transposed, turned, words } from './rasters.ts';
@@ -148,4 +148,10 @@ test('products are twos before threes', () => {
 
 test.each([0, 1, 5, 10, 1.5, -2, Number.NaN])('factor %d is a mistake', (times) => {
   expect(() => epx(straight(1, 1, [0]), times, clamp)).toThrow(RangeError);
+});
+
+test('bytes held, by hand', () => {
+  // 2x: 12 a source texel, 4 a result texel. 6x: the doubled raster of 4 bytes a texel beside them.
+  expect(epxBytes({ width: 10, height: 10 }, 2, 4)).toBe(100 * 12 + 400 * 4);
+  expect(epxBytes({ width: 10, height: 10 }, 6, 4)).toBe(400 * 4 + 400 * 12 + 3600 * 4);
 });

@@ -1,7 +1,7 @@
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import type { Extent } from '../../core/raster/raster.ts';
-import { majority } from '../../core/resample/majority.ts';
+import { majority, majorityBytes } from '../../core/resample/majority.ts';
 import { majorityTexel } from '../reference/majority.ts';
 import { indexed, mirrored, pictures, straight, transposed, words } from './rasters.ts';
 
@@ -88,4 +88,9 @@ test('a larger extent is a mistake', () => {
     /^Expected integer 1\.\.2 for target\.width but received 3$/,
   );
   expect(() => majority(straight(2, 1, [1, 2]), { width: 1, height: 0 })).toThrow(RangeError);
+});
+
+test('bytes held, by hand', () => {
+  // A winner of 4 bytes a target texel, 4 bytes a source texel for an expanded palette, 72 a texel of the one footprint of 64.
+  expect(majorityBytes({ width: 8, height: 8 }, one)).toBe(4 + 64 * 4 + 64 * 72);
 });
