@@ -1,9 +1,11 @@
 import { mkdirSync, writeFileSync } from 'node:fs';
 import { dirname, join } from 'node:path';
 
+import { paintLeafLevels } from '../picture/leaf-levels.ts';
 import { encodePiece, gallery } from './gallery.ts';
+import { encodePng } from './png.ts';
 
-// Paints the demo's textures into test/demo. Run from the top of the tree, by `npm run demo:paint`.
+// Paints the demo's textures, and README's picture of one, into test/demo. Run from the top of the tree, by `npm run demo:paint`.
 
 for (const piece of gallery) {
   const file = join('test', 'demo', piece.path);
@@ -12,3 +14,5 @@ for (const piece of gallery) {
   writeFileSync(file, bytes);
   console.log(`${file}  ${bytes.length} bytes`);
 }
+
+writeFileSync(join('test', 'demo', 'picture', 'leaf-levels.png'), encodePng(paintLeafLevels()));
