@@ -5,6 +5,7 @@ import { maxCode, type StraightRaster } from '../../core/raster/raster.ts';
 import type { Treatment } from '../../core/treatment/treatment.ts';
 import {
   depths,
+  extents,
   kernels,
   LINEAR,
   oneOf,
@@ -40,6 +41,12 @@ describe('codes equal those of double precision but near a boundary', () => {
         raster,
         treatment({ content, kernel: { minify: kernel, magnify: kernel }, wrap, alpha: { use: 'data' } }),
       );
+    });
+  });
+
+  it('every extent up to 64 x 64', () => {
+    holds(fc.tuple(rasters(extents, 'noise'), kernels(LINEAR), wraps), 25, ([raster, kernel, wrap]) => {
+      compare(raster, treatment({ kernel: { minify: kernel, magnify: kernel }, wrap, alpha: { use: 'data' } }));
     });
   });
 
@@ -134,11 +141,11 @@ describe('codes equal those of double precision but near a boundary', () => {
   });
 });
 
-it('paints the same image by way of a cubic as the reference does', () => {
-  // One larger image, so that the share of differing codes means something.
-  const raster = noiseRaster(2, { width: 203, height: 157 }, 4, 8, 'noise');
+it.each(['clamp-to-edge', 'repeat', 'mirror-repeat'] as const)('streams a larger image with %s', (wrap) => {
+  // So many rows that few of them are held at a time, and the first come back at the end where the image repeats.
+  const raster = noiseRaster(2, { width: 103, height: 258 }, 4, 8, 'noise');
   for (const name of ['box', 'kaiser', 'mitchell']) {
-    compare(raster, treatment({ kernel: both(name), alpha: { use: 'data' } }));
+    compare(raster, treatment({ kernel: both(name), wrap: { x: wrap, y: wrap }, alpha: { use: 'data' } }));
   }
 });
 

@@ -69,7 +69,7 @@ describe.each(builders)('$name', (builder) => {
 
   it('keeps a constant image constant at every level', () => {
     const cases = fc.tuple(
-      extents,
+      builder.name === 'engine' ? extents : smallExtents,
       channelCounts,
       depths,
       sizes,

@@ -52,7 +52,7 @@ describe.each(builders)('$name', (builder) => {
   });
 
   it('keeps coverage as a sampler sees it, wherever distinct alphas let it', () => {
-    holds(fc.tuple(seeds, kernels(LINEAR), wraps), 6, ([seed, kernel, wrap]) => {
+    holds(fc.tuple(seeds, kernels(LINEAR), wraps), builder.name === 'engine' ? 8 : 2, ([seed, kernel, wrap]) => {
       const image = leaf(seed);
       const one = treatment({
         kernel: { minify: kernel, magnify: kernel },
