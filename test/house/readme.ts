@@ -1,6 +1,6 @@
 import { settingsTable } from '../../core/treatment/settings-table.ts';
 
-const BETWEEN = /(<!-- settings: [^>]*-->\n)[^]*?(<!-- \/settings -->)/;
+const BETWEEN = /(<!-- settings: [^>]*-->\n)[\s\S]*?(<!-- \/settings -->)/;
 
 /** README with its tables of settings made anew. RangeError where it has lost the marks. */
 export function withSettings(readme: string): string {
