@@ -14,6 +14,8 @@ export interface RunOptions {
   /** Words before `node`: a shell's limits, say. */
   readonly before?: readonly string[];
   readonly nodeOptions?: readonly string[];
+  /** Another Node than the one that runs the tests. */
+  readonly node?: string;
   /** Gets the process as soon as it runs. */
   readonly running?: (child: ChildProcess) => void;
 }
@@ -22,7 +24,7 @@ export interface RunOptions {
 export async function sizeproof(words: readonly string[], options: RunOptions): Promise<Ran> {
   const [program, ...args] = [
     ...(options.before ?? []),
-    process.execPath,
+    options.node ?? process.execPath,
     ...(options.nodeOptions ?? []),
     `${await bundleOnce()}/cli.js`,
     ...words,
