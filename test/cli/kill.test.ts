@@ -1,71 +1,85 @@
 import { spawn } from 'node:child_process';
-import * as fs from 'node:fs';
+import { build as bundle } from 'esbuild';
 import { expect, test } from 'vitest';
-import { bundleOnce } from '../node/bundle.ts';
-import { filesBelow, newFolder, putFiles } from '../node/folder.ts';
+import { filesBelow, newFolder } from '../node/folder.ts';
 import { build, check, settingsText, smallPng } from '../node/project.ts';
 
-/** Kills in all; a part of them is made by each of a few folders. */
 const KILLS = 200;
 
-const settings = [{ outputs: ['png', 'ktx2'] }, { kernel: 'box', outputs: ['png'], targets: ['2x'] }].map((defaults) =>
-  settingsText({ defaults }),
-);
+const settings = [{ outputs: ['png', 'ktx2'] }, { kernel: 'box', outputs: ['png'], targets: ['2x'] }];
 
-test(`killed at ${KILLS} random moments, every file is of one build or another, and the next build is whole`, async () => {
-  const cli = `${await bundleOnce()}/cli.js`;
-  const sources = Object.fromEntries(Array.from({ length: 4 }, (_, at) => [`${at}.png`, smallPng(at, 16)]));
+test(`killed at ${KILLS} random moments, every file is of one build or the other, and the next build is whole`, async () => {
+  const program = await bundleEndless();
+  const files = {
+    ...Object.fromEntries(Array.from({ length: 3 }, (_, at) => [`${at}.png`, smallPng(at, 8)])),
+    ...Object.fromEntries(settings.map((defaults, at) => [`${at}.json`, settingsText({ defaults })])),
+  };
+  const using = settings.map((_, at) => ({ query: { settings: `${at}.json` } }));
   const wholes: Record<string, string>[] = [];
-  for (const text of settings) {
-    const folder = newFolder({ ...sources, 'sizeproof.json': text });
-    await build(folder);
+  for (const setting of using) {
+    const folder = newFolder(files);
+    await build(folder, setting);
     wholes.push(filesBelow(`${folder}/built`));
   }
-  const folder = newFolder({ ...sources, 'sizeproof.json': settings[0] });
-  await build(folder);
-  const span = await timeOf(cli, folder, settings[1]);
-  let wasMixed = 0;
+  const folder = newFolder(files);
+  // The machine's own pace: kills fall within two builds, after one that warms up.
+  const spanMs = 2 * (await timeOf(program, folder, 6));
+  let mixtures = 0;
   for (let kill = 0; kill < KILLS; kill++) {
-    putFiles(folder, { 'sizeproof.json': settings[kill % 2] });
-    // The start of the process is not of interest; its writing takes the last part.
-    await killAfter(cli, folder, span * (0.5 + (kill / KILLS) * 0.6));
-    const files = filesBelow(`${folder}/built`);
-    for (const [name, bytes] of Object.entries(files)) {
-      if (!name.startsWith('.')) expect(wholes.some((whole) => whole[name] === bytes)).toBe(true);
+    await killAfter(program, folder, (((kill * 89) % KILLS) / KILLS) * spanMs);
+    const found = Object.entries(filesBelow(`${folder}/built`)).filter(([name]) => !name.startsWith('.'));
+    for (const [name, bytes] of found) expect([wholes[0][name], wholes[1][name]]).toContain(bytes);
+    if (!wholes.some((whole) => JSON.stringify(Object.entries(whole)) === JSON.stringify(found))) {
+      mixtures++;
+      for (const setting of using) expect((await check(folder, setting)).problems).not.toEqual([]);
     }
-    const shown = JSON.stringify(Object.entries(files).filter(([name]) => !name.startsWith('.')));
-    if (!wholes.some((whole) => JSON.stringify(Object.entries(whole)) === shown)) {
-      wasMixed++;
-      expect((await check(folder)).problems.length).toBeGreaterThan(0);
-    }
-    if (kill % 10 === 9) {
-      await build(folder);
+    if (kill % 5 === 0) {
+      await build(folder, using[kill % 2]);
       expect(filesBelow(`${folder}/built`)).toEqual(wholes[kill % 2]);
     }
   }
-  // Otherwise the kills came too early or too late to show anything.
-  expect(wasMixed).toBeGreaterThan(0);
+  // Otherwise the moments were badly chosen and show nothing.
+  expect(mixtures).toBeGreaterThan(KILLS / 10);
 }, 600_000);
 
-function start(cli: string, folder: string) {
-  return spawn(process.execPath, [cli, 'build', '.', '--jobs', '2'], {
-    cwd: folder,
-    stdio: 'ignore',
-    env: { ...process.env, XDG_CACHE_HOME: `${folder}/no/such/cache`.replace('/no', '-no') },
+async function bundleEndless(): Promise<string> {
+  const top = new URL('../../', import.meta.url).pathname;
+  const outfile = `${top}dist/test/${process.pid}/endless.mjs`;
+  await bundle({
+    entryPoints: [`${top}test/cli/endless.ts`],
+    outfile,
+    bundle: true,
+    platform: 'node',
+    mainFields: ['module', 'main'],
+    format: 'esm',
+    logLevel: 'error',
+    banner: { js: "import { createRequire } from 'node:module';\nconst require = createRequire(import.meta.url);" },
+  });
+  return outfile;
+}
+
+/** Milliseconds that one of some builds takes, the first left out. */
+function timeOf(program: string, folder: string, builds: number): Promise<number> {
+  return new Promise((done, fail) => {
+    const child = spawn(process.execPath, [program, folder], { stdio: ['ignore', 'pipe', 'inherit'] });
+    let heard = '';
+    let begin = 0;
+    child.stdout.on('data', (text) => {
+      heard += text;
+      const count = heard.split('\n').length - 1;
+      if (begin === 0) begin = performance.now();
+      if (count > builds) child.kill('SIGKILL');
+    });
+    child.on('error', fail);
+    child.on('close', () => done((performance.now() - begin) / builds));
   });
 }
 
-async function timeOf(cli: string, folder: string, text: string): Promise<number> {
-  putFiles(folder, { 'sizeproof.json': text });
-  const begin = performance.now();
-  await new Promise((done) => start(cli, folder).on('close', done));
-  return performance.now() - begin;
-}
-
-async function killAfter(cli: string, folder: string, ms: number): Promise<void> {
-  const child = start(cli, folder);
-  const timer = setTimeout(() => child.kill('SIGKILL'), ms);
-  await new Promise((done) => child.on('close', done));
-  clearTimeout(timer);
-  fs.rmSync(`${folder}-no`, { recursive: true, force: true });
+function killAfter(program: string, folder: string, ms: number): Promise<void> {
+  return new Promise((done, fail) => {
+    const child = spawn(process.execPath, [program, folder], { stdio: ['ignore', 'pipe', 'inherit'] });
+    child.stdout.once('data', () => setTimeout(() => child.kill('SIGKILL'), ms));
+    child.on('error', fail);
+    child.on('close', (code, signal) => (signal === 'SIGKILL' ? done() : fail(new Error(`ended by itself: ${code}`))));
+  });
 }
