@@ -1,0 +1,124 @@
+// Every message between the extension host and a proof's page. Types and their checks only; no file in core imports this.
+// The page asks by HostCalls and gets a Reply; the host tells by HostEvent. Every message carries the protocol's version.
+
+import type { Problem } from './problem.ts';
+import type { Origin, Treatment } from './treatment/treatment.ts';
+
+/** Raised when a message changes its shape; a page of another version is told to reload. */
+export const PROTOCOL = 1;
+
+/** What the page asks the host for. A call's name fixes the shape of its reply. */
+export interface HostCalls {
+  /** Handshake. Asked again after a reload and when the page becomes visible. */
+  open(): OpenReply;
+  /** The source file's bytes, and those of its roughness map where the treatment names one. */
+  bytes(): { readonly image: ArrayBuffer; readonly roughness: ArrayBuffer | null };
+  /** Builds this texture. Refused where the workspace is not trusted or has no disk. */
+  build(): { readonly built: number; readonly unchanged: number; readonly failed: number };
+  /** Puts settings into the settings file, in an editor beside the proof, unsaved. */
+  adopt(change: AdoptChange): { readonly path: string };
+  /** Shows the settings file at the place of a key, or of the treatment that applies. */
+  showSettings(place: { readonly key: string | null }): Record<string, never>;
+  /** Puts text on the clipboard. */
+  copy(text: { readonly text: string }): Record<string, never>;
+  /** Asks where to, and writes what the page made. `path` is null where the user thought better of it. */
+  save(file: { readonly name: string; readonly bytes: ArrayBuffer }): { readonly path: string | null };
+  /** Shows the outputs of this texture in the explorer. */
+  reveal(): Record<string, never>;
+}
+
+export type HostCall = keyof HostCalls;
+
+/** The argument of a call; null for a call without one. */
+export type Question<K extends HostCall> = Parameters<HostCalls[K]> extends [infer Q] ? Q : null;
+
+export type Reply<K extends HostCall> = { readonly ok: ReturnType<HostCalls[K]> } | { readonly problem: Problem };
+
+/** From the page: one question. `id` is the page's own and comes back with the reply. */
+export interface Request<K extends HostCall = HostCall> {
+  readonly protocol: number;
+  readonly kind: 'ask';
+  readonly id: number;
+  readonly call: K;
+  readonly question: Question<K>;
+}
+
+/** To the page: one reply, with the revision of the source and settings that it speaks of. */
+export interface Response<K extends HostCall = HostCall> {
+  readonly protocol: number;
+  readonly kind: 'reply';
+  readonly id: number;
+  readonly revision: number;
+  readonly reply: Reply<K>;
+}
+
+/** To the page, unasked. */
+export type HostEvent =
+  /** The file's bytes changed on disk, or it is gone (`present` is false). */
+  | { readonly protocol: number; readonly kind: 'source'; readonly revision: number; readonly present: boolean }
+  /** The settings that apply changed, as typed in an editor or on disk. */
+  | { readonly protocol: number; readonly kind: 'settings'; readonly revision: number; readonly settings: SettingsReply }
+  /** The outputs or the manifest changed. */
+  | { readonly protocol: number; readonly kind: 'built'; readonly revision: number; readonly state: BuiltState };
+
+export interface OpenReply {
+  /** File name, and the path relative to its root. */
+  readonly name: string;
+  readonly path: string;
+  readonly byteCount: number;
+  readonly settings: SettingsReply;
+  readonly state: BuiltState;
+  readonly abilities: Abilities;
+  readonly preferences: Preferences;
+  /** Translations of the page's own words, by English text; empty in English. */
+  readonly words: Readonly<Record<string, string>>;
+}
+
+/** What the settings say about this texture; `treatment` is null where they cannot be read, `problems` then says why. */
+export interface SettingsReply {
+  /** Root-relative name of the settings file; null where there is none. */
+  readonly file: string | null;
+  readonly treatment: Treatment | null;
+  readonly origins: readonly Origin[];
+  readonly problems: readonly Problem[];
+  /** The last treatment that matches this texture, with its globs and how many textures it applies to. */
+  readonly matching: { readonly index: number; readonly globs: readonly string[]; readonly textures: number } | null;
+}
+
+export type BuiltState =
+  | { readonly kind: 'not-built' }
+  | { readonly kind: 'built'; readonly images: readonly BuiltImage[] }
+  | { readonly kind: 'stale'; readonly moved: readonly string[]; readonly images: readonly BuiltImage[] }
+  /** Nobody can say here: no disk, or no hash yet. */
+  | { readonly kind: 'unknown' };
+
+/** What the manifest says of one image: enough to compare a print with it. */
+export interface BuiltImage {
+  readonly level: number | null;
+  readonly target: string | null;
+  readonly pixels: string;
+}
+
+/** What can be done here; a text says why not. */
+export interface Abilities {
+  readonly build: true | string;
+  readonly adopt: true | string;
+  readonly reveal: true | string;
+}
+
+/** Settings of the extension that the page follows. */
+export interface Preferences {
+  readonly backdrop: 'checker' | 'black' | 'white' | 'gray';
+  /** Vertical field of view in degrees, and screen height in pixels, where the treatment does not say. */
+  readonly fovY: number;
+  readonly screenHeight: number;
+  /** Least milliseconds between two swaps, 333 or more. */
+  readonly swapDwell: number;
+}
+
+/** Settings to adopt: keys of a treatment as the settings file spells them. */
+export interface AdoptChange {
+  /** `file` adds a last treatment for this file alone; `matching` changes the last treatment that matches. */
+  readonly scope: 'file' | 'matching';
+  readonly settings: Readonly<Record<string, unknown>>;
+}
