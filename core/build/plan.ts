@@ -1,7 +1,8 @@
-import { planSheet, targetExtent } from '../chain/grid.ts';
+import { planSheet, sheetNotes, targetExtent } from '../chain/grid.ts';
 import type { ChainHead } from '../chain/layout.ts';
 import { levelExtent } from '../chain/levels.ts';
-import { type ChainPlan, chainBytes, phasesOf, planChain } from '../chain/plan.ts';
+import { chainBytes, sheetBytes } from '../chain/memory.ts';
+import { type ChainPlan, phasesOf, planChain } from '../chain/plan.ts';
 import { cellTreatment } from '../chain/sheet.ts';
 import type { ColorChunk } from '../codec/source.ts';
 import { obeyedGamma } from '../codec/tag.ts';
@@ -9,7 +10,14 @@ import type { BuildPlan } from '../job.ts';
 import { refuse } from '../problem.ts';
 import type { ChannelCount, Depth, Extent } from '../raster/raster.ts';
 import type { Treatment } from '../treatment/treatment.ts';
-import { type OutputPlan, type PlannedImage, plannedFiles, planOutputs, wantsLinear } from './outputs.ts';
+import {
+  containerLayout,
+  type OutputPlan,
+  type PlannedImage,
+  plannedFiles,
+  planOutputs,
+  wantsLinear,
+} from './outputs.ts';
 
 /** What planning needs to know of a source: its header tells. */
 export interface SourceFacts {
@@ -39,6 +47,8 @@ export interface TexturePlan {
   readonly head: ChainHead;
   readonly chain: ChainPlan;
   readonly outputs: OutputPlan;
+  /** Bytes that one chain, of codes or of linear light, holds at its worst. */
+  readonly chainBytes: number;
   readonly notes: readonly string[];
 }
 
@@ -47,7 +57,8 @@ export function planBuild(texture: string, facts: SourceFacts, treatment: Treatm
   if (treatment.grid === null) {
     const chain = planChain(head, treatment);
     const levels = chain.levels.filter((level) => level.shipped);
-    return { head, chain, outputs: planOutputs(texture, chain, levels), notes: chain.notes };
+    const outputs = planOutputs(texture, chain, levels);
+    return { head, chain, outputs, chainBytes: chainBytes(chain), notes: chain.notes };
   }
   if (treatment.normal.roughness !== null) refuse('roughness-grid', {});
   const sheet = planSheet(facts.extent, treatment.grid);
@@ -66,12 +77,9 @@ export function planBuild(texture: string, facts: SourceFacts, treatment: Treatm
     head,
     chain,
     outputs: planOutputs(texture, chain, levels),
-    notes: [...cell.notes, ...sheetNotes(treatment, sheet.notes)],
+    chainBytes: sheetBytes(whole, cell, sheet.columns * sheet.rows),
+    notes: [...cell.notes, ...sheetNotes(sheet, treatment)],
   };
-}
-
-function sheetNotes(treatment: Treatment, notes: readonly string[]): readonly string[] {
-  return treatment.levels === 'none' ? [] : notes;
 }
 
 function headOf(facts: SourceFacts, treatment: Treatment): ChainHead {
@@ -88,17 +96,30 @@ function holdsSrgb({ transfer }: Treatment): boolean {
   return typeof transfer === 'string' ? transfer === 'srgb' : transfer.includes('srgb');
 }
 
-/** The file, what decoding and the chains hold, and the largest output twice: as it is laid out and as it is handed over. */
-export function peakOf(facts: SourceFacts, { chain, outputs }: TexturePlan): number {
-  const bytesPerTexel = 4 * (chain.depth / 8);
-  const bytesOf = (images: readonly PlannedImage[]): number =>
-    images.reduce((sum, { extent }) => sum + extent.width * extent.height * bytesPerTexel, 0);
-  const containers = outputs.containers.map(({ use, levels }) =>
-    bytesOf(outputs.images.filter((image) => image.use === use && levels.includes(image.level ?? -1))),
+/** The file, what decoding and the chains hold, and the costliest output: as it is laid out, as it is deflated or handed
+ *  over, and the colors of indices where it holds colors. */
+export function peakOf(facts: SourceFacts, { head, chain, outputs, chainBytes }: TexturePlan): number {
+  const { channels } = head;
+  const codeBytes = chain.depth / 8;
+  const containers = outputs.containers.map(({ use, levels }) => {
+    const own = outputs.images.filter((image) => image.use === use && levels.includes(image.level ?? -1));
+    const { format } = containerLayout(chain, use, use === 'roughness' ? 1 : channels, chain.depth);
+    const expanded = head.indexed ? 2 * channels : 0;
+    return texelsOf(own) * (2 * format.channels * codeBytes + expanded);
+  });
+  // A cell adds an alpha.
+  const pngs = outputs.images.map((image) =>
+    image.png === null ? 0 : 2 * texelsOf([image]) * codeBytes * (image.target === undefined ? channels : 4),
   );
-  const pngs = outputs.images.filter((image) => image.png !== null).map((image) => bytesOf([image]));
-  const chains = chainBytes(chain) * (wantsLinear(chain, outputs) ? 2 : 1);
+  const chains = chainBytes * (wantsLinear(chain, outputs) ? 2 : 1);
   // Roughness is one channel of up to 16 bits: its source, its chain of a third, and twice that as a container.
-  const roughness = chain.treatment.normal.roughness === null ? 0 : 6 * facts.extent.width * facts.extent.height;
-  return facts.fileBytes + facts.decodeBytes + chains + roughness + 2 * Math.max(0, ...containers, ...pngs);
+  const roughness = chain.treatment.normal.roughness === null ? 0 : 6 * texelsOf([facts]);
+  return facts.fileBytes + facts.decodeBytes + chains + roughness + Math.max(0, ...containers, ...pngs) + PORT_BYTES;
 }
+
+function texelsOf(images: readonly Pick<PlannedImage, 'extent'>[]): number {
+  return images.reduce((sum, { extent }) => sum + extent.width * extent.height, 0);
+}
+
+/** What the streams of a port hold for themselves: some buffers of up to 256 KiB. */
+const PORT_BYTES = 1 << 20;

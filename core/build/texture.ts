@@ -26,7 +26,7 @@ import { openSource, readSource } from './source.ts';
 export const buildTexture: BuildTexture = async (job, ports, cancel, write) => {
   const source = openSource(job.texture, job.image, ports);
   const plan = planBuild(job.texture, source.facts, job.treatment);
-  const bytes = peakOf(source.facts, plan);
+  const bytes = peakOf(source.facts, plan) + (job.roughness?.bytes.length ?? 0);
   if (bytes > job.memoryBytes) refuse('too-much-memory', { bytes, limit: job.memoryBytes });
 
   const chains = await buildChains(source, plan, (take) => readSource(source, 'image', ports, cancel, take));

@@ -16,7 +16,8 @@ export interface SheetPlan {
   readonly rows: number;
   /** Levels at which cells and gutters are whole texels, level 0 included. */
   readonly levels: number;
-  readonly notes: readonly string[];
+  /** Why there are no more levels. */
+  readonly end: string;
 }
 
 /** Throws Refusal where cells leave a remainder of the sheet. */
@@ -29,19 +30,24 @@ export function planSheet(sheet: Extent, grid: Grid): SheetPlan {
     refuse('grid-remainder', { extent: say(sheet), cell: say(cell), gutter, rest: say(rest) });
   }
   const levels = wholeLevels([cell.width, cell.height, gutter]);
-  const notes: string[] = [];
-  if (levels < levelCount(cell)) {
-    const what = gutter > 0 ? ` and gutters of ${gutter}` : '';
-    notes.push(`The chain stops at level ${levels - 1}: cells of ${say(cell)}${what} are no whole texels below it.`);
-  } else {
-    notes.push(`The chain stops at level ${levels - 1}, where a cell is one texel wide or high.`);
-  }
-  return { cell, gutter, columns: sheet.width / pitch.width, rows: sheet.height / pitch.height, levels, notes };
+  const what = gutter > 0 ? ` and gutters of ${gutter}` : '';
+  const end =
+    levels < levelCount(cell)
+      ? `The chain stops at level ${levels - 1}: cells of ${say(cell)}${what} are no whole texels below it.`
+      : `The chain stops at level ${levels - 1}, where a cell is one texel wide or high.`;
+  return { cell, gutter, columns: sheet.width / pitch.width, rows: sheet.height / pitch.height, levels, end };
+}
+
+/** What a build has to say of a sheet: why its levels end, where the settings ask for all there are. */
+export function sheetNotes({ levels, end }: SheetPlan, treatment: Treatment): readonly string[] {
+  const asked = treatment.levels;
+  return asked === 'none' || (asked.last !== null && asked.last < levels) ? [] : [end];
 }
 
 /** Extent of the whole sheet as a target. Throws Refusal unless it is a scale that keeps cells and gutters whole texels. */
 export function targetExtent(plan: SheetPlan, target: Target): Extent {
-  const scale = 'scale' in target ? target.scale : Number.NaN;
+  if (!('scale' in target)) return refuse('grid-scale', { target: target.name });
+  const { scale } = target;
   const [width, height, gutter] = [plan.cell.width, plan.cell.height, plan.gutter].map((texels) => texels * scale);
   if (![width, height, gutter].every(Number.isInteger)) refuse('grid-target', { target: target.name, width, height });
   return sheetExtent(plan, scaledExtent(plan.cell, scale), gutter);

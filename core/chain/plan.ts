@@ -1,8 +1,7 @@
 import { findKernel } from '../kernel/table.ts';
 import { buildTaps } from '../kernel/taps.ts';
 import type { Depth, Extent } from '../raster/raster.ts';
-import type { Engine, Pass } from '../resample/engine.ts';
-import { plainEngine } from '../resample/plain.ts';
+import type { Pass } from '../resample/engine.ts';
 import type { Target, Treatment } from '../treatment/treatment.ts';
 import { decodingOf } from './decoding.ts';
 import { type ChainHead, type Layout, planLayout } from './layout.ts';
@@ -113,22 +112,6 @@ export function phasesOf(plan: ChainPlan): ('rows' | 'level')[] {
     ...(methods.some((each) => each.kind === 'rows') ? (['rows'] as const) : []),
     ...(level ? (['level'] as const) : []),
   ];
-}
-
-/** Bytes that a chain holds at its worst: rasters of all images, base where it is kept, rows in flight, planes. */
-export function chainBytes(plan: ChainPlan, engine: Engine = plainEngine): number {
-  const { extent, channels } = plan.head;
-  const bytesPerTexel = plan.indexed ? 1 : channels * (plan.depth / 8);
-  const images = [
-    ...plan.levels.slice(1).map((level) => level.extent),
-    ...plan.targets.map((each) => each.place.whole),
-  ];
-  const texels = images.reduce((sum, each) => sum + each.width * each.height, 0);
-  const base = plan.keepsBase ? extent.width * extent.height * bytesPerTexel : 0;
-  const alphaPlanes = plan.keepsCoverage ? texels * 2 : 0;
-  const lengths = plan.layout.normals.length > 0 ? texels * 4 : 0;
-  const bounds = plan.treatment.height.minmax ? 2 * texels * bytesPerTexel : 0;
-  return base + texels * bytesPerTexel + alphaPlanes + lengths + bounds + engine.passBytes(passOf(plan).pass);
 }
 
 /** The pass that makes every image of the plan that is made from rows. `nodes[i]` says which image node i + 1 is. */

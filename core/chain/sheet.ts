@@ -5,7 +5,7 @@ import type { Treatment } from '../treatment/treatment.ts';
 import { buildChain, type Chain, type ChainOptions, headOf } from './chain.ts';
 import { addClipped, newClipped } from './clip.ts';
 import type { WrapPair } from './coverage.ts';
-import { planSheet, type SheetPlan, sheetExtent, targetExtent } from './grid.ts';
+import { planSheet, type SheetPlan, sheetExtent, sheetNotes, targetExtent } from './grid.ts';
 import type { ChainImage } from './image.ts';
 import { type ChainPlan, planChain } from './plan.ts';
 import { storeCodes } from './store.ts';
@@ -27,7 +27,7 @@ export function buildSheet(source: StraightRaster | IndexedRaster, treatment: Tr
     const parts = cells.map((cell) => cell.images[index]);
     return first.level === 0 ? wholeImage(plan, source, sheet, parts) : assemble(sheet, treatment, parts);
   });
-  const notes = [...new Set([...cells[0].notes, ...(treatment.levels === 'none' ? [] : sheet.notes)])];
+  const notes = [...cells[0].notes, ...sheetNotes(sheet, treatment)];
   return { images, notes, lengths: new Map(), plan };
 }
 

@@ -13,7 +13,7 @@ import type { TextureJob } from './texture-job.ts';
 export function planJob(job: TextureJob, image: Uint8Array, roughness: Uint8Array | null): BuildPlan {
   const opened = openImage(image, job.image.path, inflate);
   if (job.roughness !== null && roughness !== null) checkImage(roughness, job.roughness.path);
-  return planTexture(job.texture, factsOf(opened, image.length), job.treatment);
+  return planTexture(job.texture, factsOf(opened, image.length + (roughness?.length ?? 0)), job.treatment);
 }
 
 /** Plans a texture from the head of its file, as far as that tells: enough for the names of its outputs. Throws Refusal. */
