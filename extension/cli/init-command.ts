@@ -1,6 +1,7 @@
 import { type Problem, Refusal } from '../../core/problem.ts';
 import { joinPath, resolvePath } from '../../core/treatment/path.ts';
 import { SETTINGS_NAME } from '../../core/treatment/root.ts';
+import { settingsTemplate } from '../../core/treatment/template.ts';
 import { orRefuse } from '../node/laydown.ts';
 import { nodeDisk, slashed } from '../node/node-disk.ts';
 import { temporaryFor } from '../node/temporary.ts';
@@ -55,25 +56,3 @@ async function addLine(path: string, present: string): Promise<void> {
     await nodeDisk.rename(temporary, path);
   });
 }
-
-/** A settings file to start from: it changes nothing by itself. */
-export const settingsTemplate = `// Settings of Sizeproof. Without a key its default applies; \`sizeproof explain PATH\` lists them all.
-{
-  // Where outputs go, relative to this file.
-  "outDir": "built",
-
-  // Files that are no textures to build.
-  "exclude": [],
-
-  // Settings of every texture.
-  "defaults": {},
-
-  // Settings by glob; later treatments win, key by key. Take the slashes away from what you need.
-  "treatments": [
-    // { "match": "**/*_normal.png", "content": "normal", "wrap": "repeat" },
-    // { "match": "**/*_height.png", "content": "height" },
-    // { "match": "foliage/**", "alpha": { "use": "mask", "cutoff": 0.5 } },
-    // { "match": "sprites/**", "kernel": "nearest", "levels": "none", "targets": ["1x", "2x"] }
-  ]
-}
-`;

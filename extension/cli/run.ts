@@ -1,3 +1,4 @@
+import { problemLine } from '../../core/line.ts';
 import { exitCode } from '../../core/problem.ts';
 import { type Arguments, readArguments } from './arguments.ts';
 import { runBuild, runRebuild } from './build-command.ts';
@@ -6,7 +7,7 @@ import type { CommandName } from './commands.ts';
 import { runExplain } from './explain-command.ts';
 import { helpText } from './help.ts';
 import { runInit } from './init-command.ts';
-import { nameFrom, problemLine } from './print.ts';
+import { nameFrom } from './print.ts';
 import { conclude, onlyProblems, type Result, type Shell, type Voice } from './shell.ts';
 import { buildOnChange } from './watch.ts';
 

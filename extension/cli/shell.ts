@@ -1,5 +1,6 @@
+import { oneLine, problemLine } from '../../core/line.ts';
 import { exitCode, type Problem } from '../../core/problem.ts';
-import { nameFrom, oneLine, problemJson, problemLine } from './print.ts';
+import { nameFrom, problemJson } from './print.ts';
 import type { Terminal } from './progress.ts';
 
 /** What a command runs in. */

@@ -3,6 +3,7 @@ import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import { kernels } from '../../core/kernel/table.ts';
 import { fileKeys, ruleKeys, standard, treatmentKeys, walkKeys } from '../../core/treatment/keys.ts';
+import { openSchema } from '../../core/treatment/open-schema.ts';
 import { resolveTreatment } from '../../core/treatment/resolve.ts';
 import { jsonSchema, schemaText } from '../../core/treatment/schema.ts';
 import { parseSettings } from '../../core/treatment/settings.ts';
@@ -113,5 +114,31 @@ describe('schema and parser', () => {
   ])('both refuse %j', (file) => {
     expect(accepts(jsonSchema(), file)).toBe(false);
     expect(parseSettings(JSON.stringify(file), 's').problems.length).toBeGreaterThan(0);
+  });
+});
+
+describe('the schema for editors', () => {
+  const open = openSchema();
+
+  test('accepts every text, since problems are told by the parser alone', () => {
+    fc.assert(fc.property(fc.jsonValue(), (value) => accepts(open, value)));
+    for (const [key, { good, bad }] of Object.entries(values)) {
+      for (const value of [...good, ...bad]) {
+        expect(accepts(open, { defaults: { [key]: value }, treatments: [{ [key]: value }] })).toBe(true);
+      }
+    }
+  });
+
+  test('offers every key, choice and sentence of the strict one', () => {
+    const offers = (schema: unknown): string[] => {
+      const found: string[] = [];
+      JSON.stringify(schema, (name, value) => {
+        if (name === 'description' || name === 'enum') found.push(JSON.stringify(value));
+        if (name === 'properties') found.push(...Object.keys(value as object));
+        return value;
+      });
+      return found.sort();
+    };
+    expect(offers(open)).toEqual(offers(jsonSchema()));
   });
 });
