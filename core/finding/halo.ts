@@ -16,7 +16,7 @@ import { encodeSrgb } from '../color/transfer.ts';
 import { expandIndexed, type IndexedRaster, maxCode, type StraightRaster } from '../raster/raster.ts';
 import { cutRegion } from '../raster/region.ts';
 import { floatChannels } from '../resample/decode.ts';
-import type { Engine } from '../resample/engine.ts';
+import type { Engine, Step } from '../resample/engine.ts';
 import { plainEngine } from '../resample/plain.ts';
 import type { Treatment } from '../treatment/treatment.ts';
 
@@ -26,7 +26,7 @@ export interface Halo {
   readonly image: number | string;
   /** Largest overshoot of any channel, in 8-bit codes (16-bit codes / 257). */
   readonly worst: number;
-  /** Where it is. */
+  /** Where it is, in the image; of a sheet, in the whole of it. */
   readonly x: number;
   readonly y: number;
   /** Share of visible texels that overshoot by more than half a code. */
@@ -35,23 +35,34 @@ export interface Halo {
   readonly clipped: number;
 }
 
+/** Told of every visible texel that overshoots by more than half an 8-bit code, or of which clamping changes a channel:
+ *  codes above and below the range (0 where within), and whether it is clipped. Images come as `Halo` names them. */
+export type HaloWatch = (
+  image: number | string,
+  x: number,
+  y: number,
+  found: { readonly above: number; readonly below: number; readonly clips: boolean },
+) => void;
+
 /** Measures every image of the chain that is made from weights; others do not overshoot. The local range is that of the
- *  visible source texels that the target's area touches, and one more on each side. Texels whose alpha rounds to 0 are not
- *  seen and do not count; normals are made unit and do not either. */
+ *  visible source texels that the target's area touches, and one more on each side. Weights that are nowhere negative only
+ *  average: what they bring from beyond that range is blur, and counts 0. Texels whose alpha rounds to 0 are not
+ *  seen and do not count; normals are made unit and do not either. `watch` is not told of a sheet's texels. */
 export function measureHalo(
   source: StraightRaster | IndexedRaster,
   treatment: Treatment,
   engine: Engine = plainEngine,
+  watch?: HaloWatch,
 ): readonly Halo[] {
   const raster = source.kind === 'indexed' ? expandIndexed(source) : source;
-  if (treatment.grid === null) return measureChain(raster, treatment, engine);
+  if (treatment.grid === null) return measureChain(raster, treatment, { left: 0, top: 0 }, engine, watch);
   const sheet = planSheet(raster.extent, treatment.grid);
   const alone = cellTreatment(treatment, sheet);
   const pitch = { width: sheet.cell.width + 2 * sheet.gutter, height: sheet.cell.height + 2 * sheet.gutter };
   const cells: Halo[][] = [];
   for (let top = sheet.gutter; top < raster.extent.height; top += pitch.height) {
     for (let left = sheet.gutter; left < raster.extent.width; left += pitch.width) {
-      cells.push([...measureChain(cutRegion(raster, left, top, sheet.cell), alone, engine)]);
+      cells.push([...measureChain(cutRegion(raster, left, top, sheet.cell), alone, { left, top }, engine)]);
     }
   }
   return cells[0].map((_, index) => worstOf(cells.map((cell) => cell[index])));
@@ -64,18 +75,47 @@ function worstOf(cells: readonly Halo[]): Halo {
   return { ...worst, share: mean((halo) => halo.share), clipped: mean((halo) => halo.clipped) };
 }
 
-function measureChain(raster: StraightRaster, treatment: Treatment, engine: Engine): readonly Halo[] {
+/** `place` is where the raster stands in the whole source; halos are placed in the whole of their image. */
+function measureChain(
+  raster: StraightRaster,
+  treatment: Treatment,
+  place: { readonly left: number; readonly top: number },
+  engine: Engine,
+  watch?: HaloWatch,
+): readonly Halo[] {
   const plan = planChain(headOf(raster), treatment);
   const { pass, nodes } = passOf(plan);
   const ranges = rangesOf(plan, raster);
-  const probes = nodes.map((image) => new Probe(plan.layout, floatChannels(pass.decoding), image, ranges.get(image)!));
+  const stride = floatChannels(pass.decoding);
+  const probes = nodes.map((image, index) => {
+    const watched = hasLobes(pass.steps[index]) ? watch : undefined;
+    return new Probe(plan.layout, stride, image, ranges.get(image)!, watched);
+  });
   const run = engine.open(pass, (node, y, floats) => {
     if (node > 0) probes[node - 1].take(y, floats);
   });
   const length = raster.extent.width * raster.channels;
   for (let y = 0; y < raster.extent.height; y++) run.push(raster.codes.subarray(y * length, (y + 1) * length));
   const shipped = (image: PlannedLevel | PlannedTarget): boolean => !('level' in image) || image.shipped;
-  return probes.filter((probe) => shipped(probe.image)).map((probe) => probe.halo());
+  return probes.flatMap((probe, index) => {
+    const { image } = probe;
+    if (!shipped(image)) return [];
+    if (!hasLobes(pass.steps[index])) return [{ image: nameOf(image), worst: 0, x: 0, y: 0, share: 0, clipped: 0 }];
+    const halo = probe.halo();
+    const { width, height } = pictureExtent(image);
+    const x = halo.x + (place.left * width) / raster.extent.width;
+    const y = halo.y + (place.top * height) / raster.extent.height;
+    return [{ ...halo, x, y }];
+  });
+}
+
+/** Whether the step has negative weights. */
+function hasLobes({ x, y }: Step): boolean {
+  return [x, y].some(({ weights }) => weights.some((weight) => weight < 0));
+}
+
+function nameOf(image: PlannedLevel | PlannedTarget): number | string {
+  return 'level' in image ? image.level : image.target.name;
 }
 
 interface Range {
@@ -122,6 +162,7 @@ class Probe {
   readonly #layout: Layout;
   readonly #stride: number;
   readonly #range: Range;
+  readonly #watch: HaloWatch | undefined;
   #worst = 0;
   #x = 0;
   #y = 0;
@@ -129,11 +170,18 @@ class Probe {
   #over = 0;
   #clipped = 0;
 
-  constructor(layout: Layout, stride: number, image: PlannedLevel | PlannedTarget, range: Range) {
+  constructor(
+    layout: Layout,
+    stride: number,
+    image: PlannedLevel | PlannedTarget,
+    range: Range,
+    watch: HaloWatch | undefined,
+  ) {
     this.image = image;
     this.#layout = layout;
     this.#stride = stride;
     this.#range = range;
+    this.#watch = watch;
   }
 
   take(y: number, floats: Float32Array): void {
@@ -143,7 +191,7 @@ class Probe {
       if (alpha !== null && floats[at + alpha] * unit < 0.5) continue;
       this.#visible++;
       const texel = (y * pictureExtent(this.image).width + x) * channels;
-      let most = 0;
+      let [over, under] = [0, 0];
       let clips = false;
       for (let channel = 0; channel < channels; channel++) {
         const role = roles[channel];
@@ -152,11 +200,14 @@ class Probe {
         const code = codeOf(value, role, unit);
         const above = code - this.#range.max.codes[texel + channel] * unit;
         const below = this.#range.min.codes[texel + channel] * unit - code;
-        most = Math.max(most, above, below);
+        over = Math.max(over, above);
+        under = Math.max(under, below);
         if (code < -255 * CLIP_SLACK || code > 255 * (1 + CLIP_SLACK)) clips = true;
       }
+      const most = Math.max(over, under);
       if (most > 0.5) this.#over++;
       if (clips) this.#clipped++;
+      if (most > 0.5 || clips) this.#watch?.(nameOf(this.image), x, y, { above: over, below: under, clips });
       if (most > this.#worst) {
         this.#worst = most;
         this.#x = x;
@@ -169,7 +220,7 @@ class Probe {
     const { image } = this;
     const share = (count: number): number => (this.#visible === 0 ? 0 : count / this.#visible);
     return {
-      image: 'level' in image ? image.level : image.target.name,
+      image: nameOf(image),
       worst: this.#worst,
       x: this.#x,
       y: this.#y,
