@@ -1,0 +1,225 @@
+import { buildChain, type Chain, ChainRun, headOf } from '../chain/chain.ts';
+import type { ChainImage } from '../chain/image.ts';
+import { decodeImage } from '../codec/decode.ts';
+import { openImage } from '../codec/open.ts';
+import { hashPixels } from '../codec/pixels.ts';
+import type { SourceHeader } from '../codec/source.ts';
+import { obeyedGamma } from '../codec/tag.ts';
+import { type Halo, measureHalo } from '../finding/halo.ts';
+import { type Cancel, Cancelled, type Ports } from '../port.ts';
+import type { IndexedRaster, StraightRaster } from '../raster/raster.ts';
+import type { Treatment } from '../treatment/treatment.ts';
+import { footprintOf } from './footprint.ts';
+import { copyPicture, cutMiddle, pictureOf } from './picture.ts';
+import { seenPicture } from './sample.ts';
+import { sectionOf } from './section.ts';
+import { Shelf } from './shelf.ts';
+import { treatmentFor } from './variant.ts';
+import {
+  type Answer,
+  CUT_SIDE,
+  HALO_ABOVE,
+  HALO_BELOW,
+  HALO_CLIPPED,
+  type HaloAnswer,
+  type LevelsAnswer,
+  type Picture,
+  type Print,
+  type PrintImage,
+  type PrintStats,
+  type Want,
+} from './want.ts';
+
+/** What a bench needs beside the build's ports. */
+export interface BenchPorts extends Pick<Ports, 'inflate' | 'newHash'> {
+  /** Lets others work; asked for every few million operations. */
+  readonly pause: () => Promise<void>;
+}
+
+/** One source file, opened, and the chains that treatments make of it. Its prints are what a build stores, code for code: both
+ *  come from the same chain. */
+export class ProofBench {
+  readonly header: SourceHeader;
+  readonly #source: StraightRaster | IndexedRaster;
+  readonly #ports: BenchPorts;
+  readonly #chains = new Shelf<Chain>(CHAIN_BYTES, chainSize);
+  readonly #halos = new Shelf<HaloMaps>(CHAIN_BYTES, (maps) => maps.bytes);
+
+  private constructor(header: SourceHeader, source: StraightRaster | IndexedRaster, ports: BenchPorts) {
+    this.header = header;
+    this.#source = source;
+    this.#ports = ports;
+  }
+
+  /** Reads an image file; `name` tells its extension. Throws Refusal. */
+  static async open(bytes: Uint8Array, name: string, ports: BenchPorts): Promise<ProofBench> {
+    const image = openImage(bytes, name, ports.inflate);
+    return new ProofBench(image.header, await decodeImage(image), ports);
+  }
+
+  /** Throws Refusal where the treatment does not fit, Cancelled when asked to stop. */
+  async answer(want: Want, cancel: Cancel): Promise<Answer> {
+    switch (want.kind) {
+      case 'print':
+        return this.#print(want.treatment, want.image, cancel);
+      case 'levels':
+        return this.#levels(want.treatment, cancel);
+      case 'halo':
+        return this.#halo(want.treatment, want.image);
+      case 'footprint': {
+        const treatment = treatmentFor(want.treatment, want.image);
+        return footprintOf(headOf(this.#source), treatment, want.image, want.x, want.y);
+      }
+      case 'section':
+        return sectionOf(this.#source, want.from, want.to);
+    }
+  }
+
+  async #print(treatment: Treatment, image: PrintImage, cancel: Cancel): Promise<Print> {
+    const chain = await this.#chain(treatmentFor(treatment, image), cancel);
+    if ('lod' in image) {
+      const picture = this.#seen(chain, treatment, image.lod, image.extent);
+      const stats = statsOf(imageOf(chain, { level: Math.min(Math.round(image.lod), lastLevel(chain)) }));
+      return { kind: 'print', picture, pixels: '', stats };
+    }
+    const found = imageOf(chain, image);
+    const picture = copyPicture(pictureOf(chain.plan, found.raster));
+    return { kind: 'print', picture, pixels: hashPixels(found.raster, this.#ports.newHash), stats: statsOf(found) };
+  }
+
+  #seen(chain: Chain, treatment: Treatment, lod: number, extent: Picture['extent']): Picture {
+    const last = lastLevel(chain);
+    const finer = Math.min(Math.floor(Math.max(0, lod)), last);
+    const coarser = Math.min(finer + 1, last);
+    const pictures = [finer, coarser].map((level) => pictureOf(chain.plan, imageOf(chain, { level }).raster));
+    return seenPicture(pictures[0], pictures[1], Math.max(0, Math.min(lod, last) - finer), extent, treatment.wrap);
+  }
+
+  async #levels(treatment: Treatment, cancel: Cancel): Promise<LevelsAnswer> {
+    const whole = treatmentFor(treatment, { level: 0 });
+    const chain = await this.#chain(whole, cancel);
+    await this.#ports.pause();
+    if (cancel.cancelled) throw new Cancelled();
+    const { halos } = this.#measure(whole);
+    return {
+      kind: 'levels',
+      levels: chain.images
+        .filter((image) => image.use === 'image' && image.level !== undefined)
+        .map((image) => ({
+          level: image.level!,
+          extent: image.extent,
+          stats: statsOf(image),
+          cut: cutMiddle(pictureOf(chain.plan, image.raster), CUT_SIDE),
+        })),
+      halo: halos.map(({ image, worst, x, y }) => ({ level: image as number, worst, x, y })),
+    };
+  }
+
+  #halo(treatment: Treatment, image: PrintImage): HaloAnswer {
+    if ('lod' in image) return { kind: 'halo', halo: null, marks: null };
+    const maps = this.#measure(treatmentFor(treatment, image));
+    const name = 'level' in image ? image.level : image.target.name;
+    const halo = maps.halos.find((each) => each.image === name) ?? null;
+    return { kind: 'halo', halo, marks: maps.marks.get(name)?.slice() ?? null };
+  }
+
+  #measure(treatment: Treatment): HaloMaps {
+    const key = JSON.stringify(treatment);
+    const known = this.#halos.get(key);
+    if (known !== undefined) return known;
+    const maps = measureMaps(this.#source, treatment);
+    this.#halos.put(key, maps);
+    return maps;
+  }
+
+  async #chain(treatment: Treatment, cancel: Cancel): Promise<Chain> {
+    const key = JSON.stringify(treatment);
+    const known = this.#chains.get(key);
+    if (known !== undefined) return known;
+    const gamma = treatment.colorChunks === 'obey' ? obeyedGamma(this.header.colorChunks) : null;
+    const chain = await this.#build(treatment, gamma === null ? {} : { gamma }, cancel);
+    this.#chains.put(key, chain);
+    return chain;
+  }
+
+  async #build(treatment: Treatment, tag: { readonly gamma?: number }, cancel: Cancel): Promise<Chain> {
+    const source = this.#source;
+    if (treatment.grid !== null) return buildChain(source, treatment, tag);
+    const run = new ChainRun(headOf(source, tag.gamma), treatment, tag);
+    if (source.kind === 'indexed') run.setPalette(source);
+    const { width, height } = source.extent;
+    const samples = source.kind === 'indexed' ? source.indices : source.codes;
+    const row = source.kind === 'indexed' ? width : width * source.channels;
+    const rowsAtOnce = Math.max(1, Math.floor(TEXELS_AT_ONCE / width));
+    for (let y = 0; y < height; y++) {
+      run.push(samples.subarray(y * row, (y + 1) * row));
+      if (y % rowsAtOnce !== rowsAtOnce - 1) continue;
+      await this.#ports.pause();
+      if (cancel.cancelled) throw new Cancelled();
+    }
+    return run.finish();
+  }
+}
+
+/** Bytes of chains that are kept for when they are asked for again: three of a 4096x4096 RGBA chain. */
+const CHAIN_BYTES = 256 * 1024 * 1024;
+
+/** Source texels between two pauses, some 20 ms of filtering. */
+const TEXELS_AT_ONCE = 1 << 17;
+
+interface HaloMaps {
+  readonly halos: readonly Halo[];
+  readonly marks: ReadonlyMap<number | string, Uint8Array>;
+  readonly bytes: number;
+}
+
+function measureMaps(source: StraightRaster | IndexedRaster, treatment: Treatment): HaloMaps {
+  const marks = new Map<number | string, Uint8Array>();
+  const { plan } = new ChainRun(headOf(source), { ...treatment, grid: null });
+  const extents = new Map<number | string, Picture['extent']>();
+  for (const level of plan.levels) extents.set(level.level, level.extent);
+  for (const target of plan.targets) extents.set(target.target.name, target.place.picture);
+  const halos = measureHalo(source, treatment, undefined, (image, x, y, { above, below, clips }) => {
+    const { width, height } = extents.get(image)!;
+    let map = marks.get(image);
+    if (map === undefined) {
+      map = new Uint8Array(width * height);
+      marks.set(image, map);
+    }
+    map[y * width + x] = (above > 0.5 ? HALO_ABOVE : 0) | (below > 0.5 ? HALO_BELOW : 0) | (clips ? HALO_CLIPPED : 0);
+  });
+  const bytes = [...marks.values()].reduce((sum, map) => sum + map.length, 0);
+  return { halos, marks, bytes };
+}
+
+function imageOf(chain: Chain, image: PrintImage): ChainImage {
+  const found = chain.images.find(
+    (each) =>
+      each.use === 'image' &&
+      ('level' in image ? each.level === image.level : 'target' in image && each.target === image.target.name),
+  );
+  if (found === undefined) throw new RangeError(`Expected an image of the chain but received ${JSON.stringify(image)}`);
+  return found;
+}
+
+function lastLevel(chain: Chain): number {
+  return chain.images.reduce((last, image) => Math.max(last, image.level ?? 0), 0);
+}
+
+function statsOf(image: ChainImage): PrintStats {
+  const { coverage, coverageScale, light, normalLength, clipped } = image;
+  const all = [...clipped.below, ...clipped.above];
+  return {
+    coverage: coverage ?? null,
+    coverageScale: coverageScale?.scale ?? null,
+    luminance: light === undefined ? null : light.weight > 0 ? light.light / light.weight : 0,
+    normalLength: normalLength ?? null,
+    clipped: all.reduce((sum, count) => sum + count, 0),
+  };
+}
+
+function chainSize(chain: Chain): number {
+  return chain.images.reduce((sum, { raster }) => {
+    return sum + (raster.kind === 'indexed' ? raster.indices.byteLength : raster.codes.byteLength);
+  }, 0);
+}
