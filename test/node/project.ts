@@ -28,6 +28,8 @@ export interface Setting {
   /** Counts what is inflated. */
   readonly inflate?: Inflate;
   readonly isCancelled?: () => boolean;
+  /** In place of running jobs here. */
+  readonly run?: RunJobs;
 }
 
 const silent: Reporter = { begin: () => undefined, done: () => undefined };
@@ -73,7 +75,7 @@ export function rebuild(
 
 function toolsOf(setting: Setting) {
   const { disk = nodeDisk, isCancelled = () => false } = setting;
-  return { disk, run: runHere(disk, setting), isCancelled };
+  return { disk, run: setting.run ?? runHere(disk, setting), isCancelled };
 }
 
 function runHere(disk: Disk, { inflate = nodePorts.inflate, isCancelled = () => false }: Setting): RunJobs {
