@@ -143,6 +143,15 @@ describe('an obeyed chunk', () => {
     expect(texelAt(judged(files.get('art/moss.1.png')), 0, 0)).toEqual([128, fifty, 255]);
   });
 
+  it('is light to detail, too', async () => {
+    // With lambda 0 detail is the plain area average.
+    const row = painted({ width: 2, height: 1 }, 3, 8, (x) => (x === 0 ? [0, 50, 255] : [255, 50, 255]));
+    const kernel = { minify: both('detail', { lambda: 0 }).minify, magnify: both('box').magnify };
+    const { files } = await build(pngOf(row, [gama(100000)]), { ...obey, kernel, derive: 'base' });
+    const codes = [0.5, 50 / 255, 1].map((share) => Math.round(encodeSrgb(share) * 255));
+    expect(texelAt(judged(files.get('art/moss.1.png')), 0, 0)).toEqual(codes);
+  });
+
   it('makes colours of indices', async () => {
     const palette = Uint8Array.of(50, 100, 0, 255, 255, 0, 128, 255);
     const extent = { width: 2, height: 2 };

@@ -116,6 +116,19 @@ describe('what is not seen', () => {
     expect(found[0][0].share).toBeGreaterThan(0);
   });
 
+  it('does not count beside what is seen', () => {
+    // Texels 3 and 10 are clear and lie in the ranges of the two texels that overshoot. Alpha is low, so that its own step
+    // is less than that of colour.
+    const make = (hidden: number): StraightRaster =>
+      painted({ width: 16, height: 1 }, 4, 8, (x) =>
+        x === 3 || x === 10 ? [hidden, 0, 0, 0] : [x < 7 ? 50 : 200, 0, 0, 20],
+      );
+    const one = treatment({ transfer: 'linear', kernel: both('catmull-rom'), levels: { first: 1, last: 1 } });
+    const [black, white] = [0, 255].map((hidden) => measureHalo(make(hidden), one)[0]);
+    expect(white).toEqual(black);
+    expect(black.worst).toBeGreaterThan(3);
+  });
+
   it('widens the range where it is weighed in', () => {
     const art = painted({ width: 16, height: 1 }, 4, 8, (x) => (x < 8 ? [50, 50, 50, 255] : [200, 200, 200, 0]));
     const one = treatment({
