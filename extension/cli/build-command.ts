@@ -1,7 +1,5 @@
-import { type Action, type BuildReport, type BuildTools, buildProject, type TextureReport } from '../node/build.ts';
+import { type Action, type BuildReport, buildProject, type TextureReport } from '../node/build.ts';
 import { defaultMemoryBytes } from '../node/memory.ts';
-import { nodeDisk } from '../node/node-disk.ts';
-import { defaultWorkers, runInWorkers } from '../node/pool.ts';
 import { rebuildProject } from '../node/rebuild.ts';
 import { cacheFolder } from '../node/stat-index.ts';
 import type { Arguments } from './arguments.ts';
@@ -9,6 +7,7 @@ import { nameFrom } from './print.ts';
 import { openProgress } from './progress.ts';
 import { queryOf } from './query.ts';
 import type { Result, Shell, Summary } from './shell.ts';
+import { toolsOf } from './tools.ts';
 
 /** `build`, once. Answers the roots that decide what is built, to watch them. */
 export async function runBuild(args: Arguments, shell: Shell): Promise<Result & { readonly roots: readonly string[] }> {
@@ -59,16 +58,6 @@ async function withProgress<T>(
   } finally {
     progress.clear();
   }
-}
-
-function toolsOf(args: Arguments, shell: Shell, memoryBytes: number): BuildTools {
-  const workerUrl = new URL('./pool.worker.js', import.meta.url);
-  const workers = args.jobs ?? defaultWorkers();
-  return {
-    disk: nodeDisk,
-    run: runInWorkers({ workerUrl, workers, memoryBytes, cancel: shell.cancel }),
-    isCancelled: shell.isCancelled,
-  };
 }
 
 function resultOf(report: BuildReport, shell: Shell, mood: 'would be ' | ''): Result {

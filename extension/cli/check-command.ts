@@ -1,25 +1,26 @@
 import { type CheckedTexture, checkProject } from '../node/check.ts';
 import { defaultMemoryBytes } from '../node/memory.ts';
-import { nodeDisk } from '../node/node-disk.ts';
 import { nodePorts } from '../node/ports.ts';
 import { cacheFolder } from '../node/stat-index.ts';
 import type { Arguments } from './arguments.ts';
 import { nameFrom } from './print.ts';
 import { queryOf } from './query.ts';
 import type { Result, Shell } from './shell.ts';
+import { toolsOf } from './tools.ts';
 
 /** `check`. */
 export async function runCheck(args: Arguments, shell: Shell): Promise<Result> {
   const nameOf = nameFrom(shell.folder);
+  const memoryBytes = args.memoryBytes ?? defaultMemoryBytes();
   const report = await checkProject(
     {
       query: queryOf(args, shell),
       look: args.flags.has('without-outputs') ? 'without outputs' : 'with outputs',
       cacheFolder: cacheFolder(shell.env, process.platform),
-      memoryBytes: args.memoryBytes ?? defaultMemoryBytes(),
+      memoryBytes,
       nameOf,
     },
-    { disk: nodeDisk, ports: nodePorts, isCancelled: shell.isCancelled },
+    { ...toolsOf(args, shell, memoryBytes), ports: nodePorts },
   );
   const bad = new Set(report.problems.filter((each) => each.severity === 'error').map((each) => each.path));
   const isBad = (texture: CheckedTexture) =>

@@ -215,6 +215,9 @@ function take(work: Work, outcome: Outcome): void {
       return;
     case 'cancelled':
       work.action = 'cancelled';
+      return;
+    case 'measured':
+      throw new TypeError('Expected a build but received a measurement');
   }
 }
 

@@ -1,5 +1,6 @@
 import { encoderFingerprint } from '../../core/codec/encoder.ts';
 import { readPointer } from '../../core/codec/pointer.ts';
+import { overHalo } from '../../core/finding/halo-limit.ts';
 import { notDownloaded, POINTER_BYTES } from '../../core/finding/not-downloaded.ts';
 import { stale } from '../../core/finding/stale.ts';
 import { judgeManifest } from '../../core/finding/table.ts';
@@ -11,7 +12,8 @@ import { unusedTreatments } from '../../core/treatment/resolve.ts';
 import type { Query } from '../../core/treatment/select.ts';
 import type { Disk } from './disk.ts';
 import { type FoundOrphan, findOrphans, orphanProblem, orphansCanBeTold, withoutAnswered } from './orphans.ts';
-import { jobFor, openEmptyRoots, openProject, type ProjectRoot, type ProjectTexture } from './project.ts';
+import type { RunJobs } from './pool.ts';
+import { absolute, jobFor, openEmptyRoots, openProject, type ProjectRoot, type ProjectTexture } from './project.ts';
 import { reencodedOutputs } from './reencoded.ts';
 import { openStatIndex } from './stat-index.ts';
 import { type PresentSource, readState, type TextureState } from './state.ts';
@@ -28,6 +30,8 @@ export interface CheckOptions {
 
 export interface CheckTools {
   readonly disk: Disk;
+  /** Measures chains, where a limit asks for it. */
+  readonly run: RunJobs;
   readonly ports: Ports;
   readonly isCancelled: () => boolean;
 }
@@ -80,6 +84,10 @@ export async function checkProject(options: CheckOptions, tools: CheckTools): Pr
     }
     problems.push(...unused(root));
     await index.save();
+  }
+  for (const problem of await measureHalos(project.roots, options, tools)) {
+    // What cannot be read has been said already.
+    if (!problems.some(({ code, path }) => code === problem.code && path === problem.path)) problems.push(problem);
   }
   problems = await withoutAnswered(disk, options.query, problems, orphans);
   return { textures, orphans, problems, cancelled: isCancelled() };
@@ -189,6 +197,32 @@ async function judgeOutputs(
     if (now === null) return { path, state: 'missing' };
     return { path, state: reencoded.has(path) ? 're-encoded' : 'changed' };
   });
+}
+
+/** Halos over their limits. A chain has to be run for them, so only where a limit is set; the treatment is the present one. */
+async function measureHalos(
+  roots: readonly ProjectRoot[],
+  options: CheckOptions,
+  tools: CheckTools,
+): Promise<readonly Problem[]> {
+  const limited = roots.flatMap((root) =>
+    root.textures.flatMap((texture) => {
+      const limit = texture.selected.treatment.limits.halo;
+      return limit === null ? [] : { limit, root, texture };
+    }),
+  );
+  const jobs = limited.map(({ texture, root }) => ({
+    ...jobFor(texture, root, options.memoryBytes),
+    task: 'measure' as const,
+  }));
+  const found: (Problem | null)[] = limited.map(() => null);
+  await tools.run(jobs, (index, outcome) => {
+    const { limit, texture, root } = limited[index];
+    if (outcome.kind === 'measured') found[index] = overHalo(outcome.halos, limit);
+    if (outcome.kind === 'failed') found[index] = absolute(outcome.problem, root.selection.folder);
+    found[index] = found[index] && placed(found[index], texture.selected.file);
+  });
+  return found.flatMap((each) => each ?? []);
 }
 
 function unused(root: ProjectRoot): readonly Problem[] {

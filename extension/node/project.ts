@@ -67,6 +67,7 @@ export function jobFor(texture: ProjectTexture, root: ProjectRoot, memoryBytes: 
   const [image, roughness] = ['image', 'roughness'].map((use) => texture.sources.find((each) => each.use === use));
   if (image === undefined) throw new TypeError('Expected an image among the sources of a texture');
   return {
+    task: 'build',
     texture: texture.selected.path,
     image: { path: image.path, reference: image.reference, sha256: null },
     roughness: roughness === undefined ? null : { path: roughness.path, reference: roughness.reference, sha256: null },

@@ -102,6 +102,7 @@ async function planRebuild(path: string, options: RebuildOptions, disk: Disk): P
   if (image === null) return refuse('manifest-damaged', { where: 'sources', expected: 'an image' });
   const { texture, outFolder } = placeOf(manifest, path, image);
   return {
+    task: 'build',
     texture,
     image,
     roughness,

@@ -1,10 +1,11 @@
 import type { MessagePort } from 'node:worker_threads';
 import { buildTexture } from '../../core/build/texture.ts';
+import { runJob } from './measure-job.ts';
 import { nodeDisk } from './node-disk.ts';
 import { planJob } from './plan-job.ts';
 import type { FromWorker, ToWorker } from './pool.ts';
 import { nodePorts } from './ports.ts';
-import { type Outcome, runTextureJob, type TextureJob } from './texture-job.ts';
+import type { Outcome, TextureJob } from './texture-job.ts';
 
 /** Answers a pool's messages: builds one texture after another. */
 export function serve(port: MessagePort, isCancelled: () => boolean): void {
@@ -21,7 +22,7 @@ export function serve(port: MessagePort, isCancelled: () => boolean): void {
 
   async function run(job: TextureJob): Promise<Outcome> {
     try {
-      return await runTextureJob(job, { disk: nodeDisk, ports: nodePorts, cancel, buildTexture, planJob, admit });
+      return await runJob(job, { disk: nodeDisk, ports: nodePorts, cancel, buildTexture, planJob, admit });
     } catch (error) {
       const reason = error instanceof Error ? (error.stack ?? error.message).replaceAll(/\s+/g, ' ') : String(error);
       return {

@@ -1,3 +1,4 @@
+import type { Halo } from '../../core/finding/halo.ts';
 import type { BuildPlan, BuildTexture } from '../../core/job.ts';
 import type { Manifest } from '../../core/manifest/manifest.ts';
 import type { Cancel, Ports } from '../../core/port.ts';
@@ -9,6 +10,8 @@ import { openLaydown, type Pause } from './laydown.ts';
 
 /** One texture to build, as it is posted to a worker. Paths are absolute unless they say otherwise. */
 export interface TextureJob {
+  /** `measure` runs the chain for its findings and writes nothing. */
+  readonly task: 'build' | 'measure';
   /** Root-relative; what the manifest and the problems know it by. */
   readonly texture: string;
   readonly image: JobFile;
@@ -34,6 +37,7 @@ export interface JobFile {
 /** What became of a job. Warnings name files that were kept. */
 export type Outcome =
   | { readonly kind: 'built'; readonly manifest: Manifest; readonly warnings: readonly Problem[] }
+  | { readonly kind: 'measured'; readonly halos: readonly Halo[] }
   | { readonly kind: 'failed'; readonly problem: Problem }
   | { readonly kind: 'cancelled' };
 
@@ -92,7 +96,8 @@ export async function runTextureJob(job: TextureJob, bench: Bench): Promise<Outc
   }
 }
 
-async function readSource({ disk, ports }: Bench, file: JobFile, job: TextureJob): Promise<Uint8Array> {
+/** Reads a job's file, if it is there, small enough and the one that is expected. Throws Refusal. */
+export async function readSource({ disk, ports }: Bench, file: JobFile, job: TextureJob): Promise<Uint8Array> {
   const stat = await disk.stat(file.path);
   if (stat === null) return refuse('source-missing', {}, { path: file.path });
   if (stat.size > job.memoryBytes) {

@@ -10,6 +10,7 @@ import { filesBelow, newFolder } from './folder.ts';
 import { build, smallPng, told } from './project.ts';
 
 const job = (texture: string, memoryBytes = 100): TextureJob => ({
+  task: 'build',
   texture,
   image: { path: `/in/${texture}`, reference: texture, sha256: null },
   roughness: null,

@@ -9,7 +9,7 @@ import { planJob } from '../../extension/node/plan-job.ts';
 import type { RunJobs } from '../../extension/node/pool.ts';
 import { nodePorts } from '../../extension/node/ports.ts';
 import { type RebuildOptions, rebuildProject } from '../../extension/node/rebuild.ts';
-import { runTextureJob } from '../../extension/node/texture-job.ts';
+import { runJob } from '../../extension/node/measure-job.ts';
 import { writePng } from '../fixtures/rawpng.ts';
 
 /** A small RGBA picture whose colours follow from `seed`. */
@@ -54,7 +54,7 @@ export function check(
   const { disk = nodeDisk, isCancelled = () => false, look = 'with outputs' } = setting;
   const query = { folder, paths: ['.'], ...setting.query };
   const options = { query, look, cacheFolder: null, memoryBytes: 2 ** 30, nameOf: (path: string) => path };
-  return checkProject(options, { disk, ports: nodePorts, isCancelled });
+  return checkProject(options, { ...toolsOf(setting), disk, ports: nodePorts, isCancelled });
 }
 
 export function rebuild(
@@ -95,7 +95,7 @@ function runHere(disk: Disk, { inflate = nodePorts.inflate, isCancelled = () => 
     wait: async () => undefined,
   };
   return async (jobs, done) => {
-    for (const [index, job] of jobs.entries()) done(index, await runTextureJob(job, bench));
+    for (const [index, job] of jobs.entries()) done(index, await runJob(job, bench));
   };
 }
 
