@@ -1,10 +1,8 @@
 import type { BuildPlan } from '../../core/job.ts';
 import { type Problem, placed, Refusal } from '../../core/problem.ts';
-import { findCollisions, findOverwrites, foldCase, type TextureOutputs } from '../../core/treatment/collisions.ts';
-import { manifestPath } from '../../core/treatment/names.ts';
-import { pathBelow, resolvePath } from '../../core/treatment/path.ts';
+import { resolvePath } from '../../core/treatment/path.ts';
 import type { Query } from '../../core/treatment/select.ts';
-import { walkSources } from '../../core/treatment/walk.ts';
+import { collisionsOf } from './collisions.ts';
 import type { Disk } from './disk.ts';
 import { filesOf } from './laydown.ts';
 import { type FoundOrphan, findOrphans, orphansCanBeTold, prune, withoutAnswered } from './orphans.ts';
@@ -233,45 +231,6 @@ function reportOf(work: Work): TextureReport {
 
 function foldersOf(works: readonly Work[]): Set<string> {
   return new Set(works.flatMap((work) => [work.texture.manifestPath, ...work.outputs]).map(parentOf));
-}
-
-/** Outputs that two textures would write, or that would replace a source. */
-async function collisionsOf(disk: Disk, root: ProjectRoot, works: readonly Work[]): Promise<Problem[]> {
-  const lists: TextureOutputs[] = works.map((work) => ({
-    texture: work.texture.selected.path,
-    outputs: [work.texture.manifestPath, ...work.outputs].map((path) => pathBelow(root.outFolder, path) ?? path),
-  }));
-  lists.push(...(await siblingsOf(disk, root)));
-  const outDir = pathBelow(root.selection.folder, root.outFolder);
-  const overwrites = outDir === null ? [] : findOverwrites(lists, outDir);
-  return [...findCollisions(lists), ...overwrites].map((each) => absolute(each, root.selection.folder));
-}
-
-/** Textures beside the selected ones that would have the same manifest: `leaf.tga` where `leaf.png` alone was asked for. */
-async function siblingsOf(disk: Disk, root: ProjectRoot): Promise<TextureOutputs[]> {
-  if (root.selection.extent === 'whole') return [];
-  const selected = new Set(root.textures.map((texture) => texture.selected.file));
-  const manifests = new Set(root.textures.map((texture) => foldCase(texture.manifestPath)));
-  const siblings: TextureOutputs[] = [];
-  const loaded = { ...root.selection, problems: [] };
-  for (const folder of new Set([...selected].map(parentOf))) {
-    await walkSources(
-      {
-        tree: disk,
-        out: root.outFolder,
-        rootOf: async () => loaded,
-        found: (_, { path, file }) => {
-          const manifest = manifestPath(path);
-          if (selected.has(file) || !manifests.has(foldCase(resolvePath(root.outFolder, manifest)))) return;
-          siblings.push({ texture: path, outputs: [manifest] });
-        },
-        broken: () => undefined,
-        report: () => undefined,
-      },
-      { folder, kind: 'folder', reach: 'folder', accepts: () => true },
-    );
-  }
-  return siblings;
 }
 
 async function pruneRoot(

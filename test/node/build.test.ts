@@ -199,9 +199,11 @@ test('an output that would replace a source is refused', async () => {
     'leaf.2x.png': smallPng(2),
   });
   const before = filesBelow(folder);
-  const report = await build(folder);
-  expect(told(report, folder)).toEqual(['output-is-source leaf.png']);
-  expect(filesBelow(folder)).toEqual(before);
+  for (const paths of [['.'], ['leaf.png']]) {
+    const report = await build(folder, { query: { paths } });
+    expect(told(report, folder)).toEqual(['output-is-source leaf.png']);
+    expect(filesBelow(folder)).toEqual(before);
+  }
 });
 
 test('outputs beside their sources are no sources, and the second run finds them unchanged', async () => {
