@@ -8,6 +8,7 @@ import type { IndexedRaster, StraightRaster } from '../../core/raster/raster.ts'
 import { inflate } from '../../extension/node/inflate.ts';
 import { readTree, top } from '../house/tree.ts';
 import { gallery } from './paint/gallery.ts';
+import { paintIcon } from './paint/icon.ts';
 
 /** What all sources of the demo may take of everybody's clone. */
 const MOST_BYTES = 1_200_000;
@@ -32,9 +33,18 @@ test.each(gallery)('$path is what its painter paints', async ({ path, paint }) =
   expect(Buffer.compare(bytesOf(ours), bytesOf(theirs))).toBe(0);
 });
 
+test('the icon is what its painter paints', async () => {
+  const icon = await decodeImage(openImage(readFileSync(join(top, 'icon.png')), 'icon.png', inflate));
+  const painted = paintIcon();
+  expect(icon.extent).toEqual({ width: 256, height: 256 });
+  expect(Buffer.compare(bytesOf(flat(icon).codes), bytesOf(painted.codes))).toBe(0);
+});
+
 test('every image of the demo has a painter', () => {
   const images = readTree('test/demo', /\.(png|tga)$/).map((each) => each.path.replace('test/demo/', ''));
-  expect(images.sort()).toEqual(gallery.map((each) => each.path).sort());
+  // README's picture is painted from one of them.
+  const painted = [...gallery.map((each) => each.path), 'picture/leaf-levels.png'];
+  expect(images.sort()).toEqual(painted.sort());
 });
 
 test('the demo is small', () => {
