@@ -124,6 +124,16 @@ test.each<[string, (folder: string) => void, string[], string[]]>([
   expect(again).toEqual(filesBelow(`${folder}/built`));
 });
 
+test('findings are held against the limits of now', async () => {
+  const folder = threeTextures();
+  await build(folder);
+  putFiles(folder, { 'sizeproof.json': settingsText({ defaults: { limits: { 'over-budget': 100 } } }) });
+  const expected = ['a/leaf.png', 'a/moss.png'].map((name) => `over-budget ${name}`);
+  expect(told(await check(folder), folder).filter((each) => each.startsWith('over'))).toEqual(expected);
+  await build(folder);
+  expect(told(await check(folder), folder)).toEqual(expected);
+});
+
 test('outputs that are not kept in version control can be left out of a check', async () => {
   const folder = threeTextures();
   await build(folder);

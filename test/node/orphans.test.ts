@@ -117,3 +117,26 @@ test.each([
   expect(Object.keys(filesBelow(`${folder}/built`))).toEqual(Object.keys(before));
   expect((await check(folder)).orphans).toEqual([]);
 });
+
+test('a file that a moved source writes again is not removed with the orphan', async () => {
+  const folder = await builtFolder({ defaults: { name: '{name}.{level}' } });
+  fs.renameSync(`${folder}/a/leaf.png`, `${folder}/leaf.png`);
+  const report = await build(folder, prune);
+  expect(report.pruned).toEqual([`${folder}/built/a/leaf.mips.json`]);
+  expect(told(await check(folder), folder)).toEqual([]);
+});
+
+test('a manifest of a folder that had no settings belongs to no root beside it', async () => {
+  const folder = newFolder({ 'a/sizeproof.json': '{}', 'a/x.png': smallPng(1), 'b/y.png': smallPng(2) });
+  for (const path of ['a', 'b']) await build(folder, { query: { paths: [path], out: 'out' } });
+  fs.rmSync(`${folder}/b/y.png`);
+  expect((await check(folder, { query: { out: 'out' } })).orphans).toEqual([]);
+});
+
+test('nothing is pruned once work is called off', async () => {
+  const folder = await builtFolder();
+  fs.rmSync(`${folder}/b.png`);
+  const report = await build(folder, { ...prune, isCancelled: () => true });
+  expect(report).toMatchObject({ cancelled: true, pruned: [] });
+  expect(fs.existsSync(`${folder}/built/b.mips.json`)).toBe(true);
+});

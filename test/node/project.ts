@@ -4,12 +4,12 @@ import type { Query } from '../../core/treatment/select.ts';
 import { type BuildOptions, type BuildReport, buildProject, type Reporter } from '../../extension/node/build.ts';
 import { type CheckReport, checkProject } from '../../extension/node/check.ts';
 import type { Disk } from '../../extension/node/disk.ts';
+import { runJob } from '../../extension/node/measure-job.ts';
 import { nodeDisk } from '../../extension/node/node-disk.ts';
 import { planJob } from '../../extension/node/plan-job.ts';
 import type { RunJobs } from '../../extension/node/pool.ts';
 import { nodePorts } from '../../extension/node/ports.ts';
 import { type RebuildOptions, rebuildProject } from '../../extension/node/rebuild.ts';
-import { runJob } from '../../extension/node/measure-job.ts';
 import { writePng } from '../fixtures/rawpng.ts';
 
 /** A small RGBA picture whose colours follow from `seed`. */

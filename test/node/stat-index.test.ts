@@ -115,6 +115,17 @@ test.each([
   expect(fs.readFileSync(`${cache}/${file}`, 'utf8')).toBe(whole);
 });
 
+test('an index of another form is not believed', async () => {
+  const { path, open, cache } = setUp();
+  const first = await open();
+  await first.hash(path);
+  await first.save();
+  const [file] = fs.readdirSync(cache);
+  const text = fs.readFileSync(`${cache}/${file}`, 'utf8');
+  fs.writeFileSync(`${cache}/${file}`, text.replace('index 1', 'index 2').replace(sha256('leaf'), sha256('other')));
+  expect(await (await open()).hash(path)).toBe(sha256('leaf'));
+});
+
 test('a cache that cannot be written is done without', async () => {
   const { path } = setUp();
   const disk = faultyDisk((name) => (name === 'write' ? 'full' : null));
