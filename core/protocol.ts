@@ -57,7 +57,12 @@ export type HostEvent =
   /** The file's bytes changed on disk, or it is gone (`present` is false). */
   | { readonly protocol: number; readonly kind: 'source'; readonly revision: number; readonly present: boolean }
   /** The settings that apply changed, as typed in an editor or on disk. */
-  | { readonly protocol: number; readonly kind: 'settings'; readonly revision: number; readonly settings: SettingsReply }
+  | {
+      readonly protocol: number;
+      readonly kind: 'settings';
+      readonly revision: number;
+      readonly settings: SettingsReply;
+    }
   /** The outputs or the manifest changed. */
   | { readonly protocol: number; readonly kind: 'built'; readonly revision: number; readonly state: BuiltState };
 
