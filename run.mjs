@@ -7,12 +7,14 @@ const OLDEST_NODE_MAJOR = 20;
 const BUNDLES = [
   { entry: 'extension/cli/main.ts', file: 'dist/cli.js', head: '#!/usr/bin/env node\n' },
   { entry: 'extension/node/pool.worker.ts', file: 'dist/pool.worker.js', head: '' },
+  // CommonJS, which every host loads; the package is of ES modules, hence the ending.
+  { entry: 'extension/main.ts', file: 'dist/extension.cjs', head: '' },
 ];
 
 /** Rooms with a tsconfig of their own. */
-const ROOMS = ['core', 'extension/node', 'extension/cli', 'test'];
+const ROOMS = ['core', 'extension/node', 'extension/cli', 'extension/app', 'extension', 'test'];
 
-const COMMANDS = { start, test, build, types, lint, mutate, paint, schema };
+const COMMANDS = { start, test, build, types, lint, mutate, paint, schema, pack };
 
 const nodeVersion = process.versions.node;
 if (Number(nodeVersion.split('.')[0]) < OLDEST_NODE_MAJOR) {
@@ -64,16 +66,27 @@ async function test(rest) {
   await types();
   await lint();
   await bundle();
+  const reports = [await runTests('test/vitest.config.ts', rest)];
+  // In a real VS Code, with what was packed. A filter is meant for the others.
+  if (rest.length === 0) reports.push(await runTests('test/host/vitest.config.ts', []));
+  const count = (name) => reports.reduce((sum, each) => sum + each[name], 0);
+  if (count('skipped') > 0) console.log(`${count('skipped')} skipped`);
+  console.log(`${count('passed')} passed, ${count('failed')} failed`);
+  return count('failed') > 0 ? 1 : Math.max(...reports.map((each) => each.code));
+}
+
+/** Runs the tests of one configuration and answers how many passed, failed and were skipped, and vitest's exit code. */
+async function runTests(config, rest) {
   const { existsSync, readFileSync, rmSync } = await import('node:fs');
   const { resolve } = await import('node:path');
-  // Absolute, since vitest's own root is the test room.
+  // Absolute, since vitest's own root is the room of the configuration.
   const results = resolve('dist/test-results.json');
   rmSync(results, { force: true });
   const code = await run([
     'node_modules/vitest/vitest.mjs',
     'run',
     '--config',
-    'test/vitest.config.ts',
+    config,
     '--reporter=default',
     '--reporter=json',
     `--outputFile.json=${results}`,
@@ -84,9 +97,7 @@ async function test(rest) {
   // A file that could not even be loaded has no tests to count, and is a failure all the same.
   const unloaded = report.testResults.filter((each) => each.status === 'failed' && each.assertionResults.length === 0);
   const failed = report.numFailedTests + unloaded.length;
-  if (report.numPendingTests > 0) console.log(`${report.numPendingTests} skipped`);
-  console.log(`${report.numPassedTests} passed, ${failed} failed`);
-  return failed > 0 && code === 0 ? 1 : code;
+  return { passed: report.numPassedTests, failed, skipped: report.numPendingTests, code };
 }
 
 async function build() {
@@ -124,6 +135,14 @@ function schema(rest) {
   return runSource('test/house/schema.ts', rest);
 }
 
+/** Packs the extension, for `Install from VSIX` of an editor. */
+async function pack() {
+  await install('test');
+  await build();
+  const options = ['--no-dependencies', '--allow-missing-repository', '--no-rewrite-relative-links'];
+  return run(['test/node_modules/@vscode/vsce/vsce', 'package', ...options, '--out', 'dist/sizeproof.vsix']);
+}
+
 /** Bundles one TypeScript program of the test room into dist/ and runs it from the top of the tree. */
 async function runSource(entry, rest) {
   await install('.');
@@ -139,9 +158,12 @@ async function bundle() {
     await bundleOne(each);
     if (each.head !== '') chmodSync(each.file, 0o755);
   }
+  const code = await runSource('test/house/contributions.ts', []);
+  if (code !== 0) throw new Stop(`What package.json refers to could not be written: exit code ${code}.`);
 }
 
 async function bundleOne({ entry, file, head }) {
+  const isModule = file.endsWith('.js');
   const esbuild = await import('esbuild');
   try {
     await esbuild.build({
@@ -150,14 +172,18 @@ async function bundleOne({ entry, file, head }) {
       bundle: true,
       platform: 'node',
       target: 'node20',
-      format: 'esm',
+      format: isModule ? 'esm' : 'cjs',
+      external: isModule ? [] : ['vscode'],
+      minify: !isModule,
       legalComments: 'eof',
       // jsonc-parser's `main` hides its parts from a bundler; its `module` does not.
       mainFields: ['module', 'main'],
       // Dependencies in CommonJS call `require` for Node's own modules, which an ES module does not have.
-      banner: {
-        js: `${head}import { createRequire as createRequireHere } from 'node:module';\nconst require = createRequireHere(import.meta.url);`,
-      },
+      banner: isModule
+        ? {
+            js: `${head}import { createRequire as createRequireHere } from 'node:module';\nconst require = createRequireHere(import.meta.url);`,
+          }
+        : {},
     });
   } catch (error) {
     if (!Array.isArray(error.errors)) throw error;

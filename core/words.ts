@@ -116,6 +116,16 @@ const usage = {
     'An output would be called "{name}", which no system may carry: {reason}. Rename the source, or use `name`.',
   'same-output': '{first} and {second} would both write {output}. Settle it in the settings, such as with {line}.',
   'output-twice': 'Two results would both be {output}. Give the target another `name`.',
+  untrusted:
+    'This workspace is not trusted, so nothing is built, run or written in it. Trust it (Workspaces: Manage Workspace Trust) and try again.',
+  'no-disk':
+    'This folder is on no disk that builds can reach; it can only be looked at. Open it from a disk to build it.',
+  'read-only': 'This folder cannot be written to. Open it from a place that can.',
+  'no-treatment': 'No treatment matches {path}. Adopt for this file only.',
+  'bad-message':
+    'The page sent what was not understood: expected {expected} for {where}. Close the proof and open it again.',
+  'page-outdated':
+    'This page speaks version {page} of the protocol and the extension version {host}. Close the proof and open it again.',
 } as const;
 
 /** Exit 3: a source that could not be read. */
@@ -168,6 +178,9 @@ const sources = {
     'The extension area says that colors are multiplied by alpha (attributes type 4). Export the image with straight alpha.',
   'tga-palette-index':
     'The texel at {x}, {y} uses color map entry {found}; the map holds {first}..{last}. Export the image again.',
+  'file-gone': 'The file is no longer there. Bring it back, or close the proof.',
+  'file-too-large':
+    'The file has {bytes} bytes; a proof takes up to {limit}. Build it from the command line, or make it smaller.',
   'source-missing': 'The source is not there. Bring it back, or name its folder with `--source-root`.',
   'source-moved':
     'The source has SHA-256 {now}; the manifest was built from {recorded}. Bring that version back, or build again.',

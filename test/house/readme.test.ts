@@ -22,6 +22,15 @@ describe('README', () => {
     expect(names.filter((name) => !readme.includes(name))).toEqual([]);
   });
 
+  test('names every command and setting of the editor', () => {
+    const { contributes } = JSON.parse(readFileSync(join(top, 'package.json'), 'utf8'));
+    const texts = JSON.parse(readFileSync(join(top, 'package.nls.json'), 'utf8'));
+    const titles = contributes.commands.map((each: { title: string }) => texts[each.title.replaceAll('%', '')]);
+    const names = [...titles, ...Object.keys(contributes.configuration.properties).map((name) => `\`${name}\``)];
+    expect(names.length).toBeGreaterThan(10);
+    expect(names.filter((name) => !readme.includes(name))).toEqual([]);
+  });
+
   test('shows pictures that are there', () => {
     const pictures = [...readme.matchAll(/!\[[^\]]*\]\(([^)]+)\)/g)].map(([, path]) => path);
     expect(pictures.length).toBeGreaterThan(0);

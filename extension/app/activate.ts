@@ -1,0 +1,25 @@
+import * as vscode from 'vscode';
+import { BuildDesk } from './build/desk.ts';
+import { buildOnSave } from './build/on-save.ts';
+import { registerCommands } from './commands.ts';
+import type { Platform } from './platform.ts';
+import { registerProofEditor } from './proof/editor.ts';
+import { watchSettings } from './settings/diagnostics.ts';
+import { serveExplanations } from './settings/explain.ts';
+import { provideTasks } from './tasks/provider.ts';
+
+/** Everything the extension does in an editor, on the ports of whichever host runs it. */
+export function activateApp(context: vscode.ExtensionContext, platform: Platform): void {
+  const log = vscode.window.createOutputChannel('Sizeproof', { log: true });
+  const desk = new BuildDesk(platform, log);
+  context.subscriptions.push(
+    log,
+    desk,
+    watchSettings(),
+    serveExplanations(platform),
+    registerProofEditor(context.extensionUri, platform, desk, log),
+    registerCommands(platform, desk, log),
+    provideTasks(desk),
+    buildOnSave(desk, platform),
+  );
+}

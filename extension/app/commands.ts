@@ -1,0 +1,89 @@
+import * as vscode from 'vscode';
+import { Refusal } from '../../core/problem.ts';
+import type { BuildDesk, BuildKind } from './build/desk.ts';
+import type { Platform } from './platform.ts';
+import { looseDocument, VIEW_TYPE } from './proof/editor.ts';
+import { reportOf, revealOutputs } from './proof/outputs.ts';
+import { selectedResources, selectedTexture } from './selected.ts';
+import { createSettings, isThere } from './settings/create.ts';
+import { explain } from './settings/explain.ts';
+import { openSettings } from './settings/open.ts';
+import { sayProblem } from './words.ts';
+
+/** Registers every command of the extension. The explorer hands over the item that was clicked and all that are selected. */
+export function registerCommands(platform: Platform, desk: BuildDesk, log: vscode.LogOutputChannel): vscode.Disposable {
+  const aboutTexture = (act: (texture: vscode.Uri) => Promise<void>) => async (first: unknown, all: unknown) => {
+    const texture = await selectedTexture(first, all);
+    if (texture !== null) await act(texture);
+  };
+  const building = (kind: BuildKind) => async (first: unknown, all: unknown) => {
+    const resources = await resourcesOrWorkspace(first, all);
+    return resources.length === 0 ? null : desk.build(kind, resources, 'shown');
+  };
+  const commands: Readonly<Record<string, (first: unknown, all: unknown) => unknown>> = {
+    openProof: async (first, all) => {
+      const texture = await selectedTexture(first, all);
+      const textures = first === undefined ? [] : selectedResources(first, all);
+      for (const each of textures.length > 1 ? textures : texture === null ? [] : [texture]) {
+        await vscode.commands.executeCommand('vscode.openWith', each, VIEW_TYPE);
+      }
+    },
+    build: building('build'),
+    buildAndPrune: building('prune'),
+    rebuild: building('rebuild'),
+    check: async (first, all) => {
+      const resources = await resourcesOrWorkspace(first, all);
+      return resources.length === 0 ? null : desk.check(resources);
+    },
+    explain: aboutTexture((texture) => explain(texture)),
+    createSettings: async (first, all) => {
+      const [resource] = await resourcesOrWorkspace(first, all);
+      if (resource !== undefined) await createSettings(await folderOf(resource), platform);
+    },
+    openSettings: aboutTexture((texture) => openSettings(texture, null, platform)),
+    revealOutputs: aboutTexture((texture) => revealOutputs(looseDocument(texture, platform))),
+    copyReport: aboutTexture(async (texture) => {
+      await vscode.env.clipboard.writeText(await reportOf(looseDocument(texture, platform)));
+      vscode.window.setStatusBarMessage(vscode.l10n.t('The report is on the clipboard.'), SHOWN_MS);
+    }),
+    showLog: () => log.show(),
+  };
+  const registered = Object.entries(commands).map(([name, act]) =>
+    vscode.commands.registerCommand(`sizeproof.${name}`, (first: unknown, all: unknown) => saying(act, first, all)),
+  );
+  return vscode.Disposable.from(...registered);
+}
+
+/** How long a message stays in the status bar. */
+const SHOWN_MS = 4000;
+
+/** What is refused is said; anything else goes on to the host, which says that the command failed. */
+async function saying(act: (first: unknown, all: unknown) => unknown, first: unknown, all: unknown): Promise<unknown> {
+  try {
+    return await act(first, all);
+  } catch (error) {
+    if (!(error instanceof Refusal)) throw error;
+    void vscode.window.showErrorMessage(sayProblem(error.problem));
+    return null;
+  }
+}
+
+/** What was handed over, else the workspace's folder; asks which where it has several. */
+async function resourcesOrWorkspace(first: unknown, all: unknown): Promise<vscode.Uri[]> {
+  const given = first === undefined ? [] : selectedResources(first, all);
+  if (given.length > 0) return given;
+  const folders = vscode.workspace.workspaceFolders ?? [];
+  if (folders.length === 1) return [folders[0].uri];
+  if (folders.length > 1) {
+    const chosen = await vscode.window.showWorkspaceFolderPick();
+    return chosen === undefined ? [] : [chosen.uri];
+  }
+  void vscode.window.showInformationMessage(vscode.l10n.t('Open a folder that holds textures first.'));
+  return [];
+}
+
+async function folderOf(resource: vscode.Uri): Promise<vscode.Uri> {
+  if (!(await isThere(resource))) return resource;
+  const { type } = await vscode.workspace.fs.stat(resource);
+  return type & vscode.FileType.Directory ? resource : vscode.Uri.joinPath(resource, '..');
+}

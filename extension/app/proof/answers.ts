@@ -1,0 +1,85 @@
+import * as vscode from 'vscode';
+import { Refusal } from '../../../core/problem.ts';
+import type { Abilities } from '../../../core/protocol.ts';
+import type { BuildDesk } from '../build/desk.ts';
+import { doorFor } from '../build/hindrance.ts';
+import { countBuild } from '../build/report.ts';
+import type { Platform } from '../platform.ts';
+import { readConfiguration } from '../settings/configuration.ts';
+import { hindranceToWriting } from '../settings/create.ts';
+import { openSettings } from '../settings/open.ts';
+import { sayProblem } from '../words.ts';
+import { adopt } from './adopt.ts';
+import type { Answers } from './channel.ts';
+import type { ProofDocument } from './document.ts';
+import { revealOutputs } from './outputs.ts';
+
+/** What the host answers to a proof's page. */
+export function answersFor(
+  document: ProofDocument,
+  { platform, desk }: { readonly platform: Platform; readonly desk: BuildDesk },
+): Answers {
+  const { uri } = document;
+  return {
+    async open() {
+      const { path } = await document.settings();
+      return {
+        name: document.name,
+        path,
+        byteCount: await document.byteCount(),
+        settings: await document.settingsReply(),
+        state: await document.builtState(),
+        abilities: abilitiesFor(uri, platform),
+        preferences: readConfiguration(uri).preferences,
+        words: translations(),
+      };
+    },
+    async bytes() {
+      return { image: await document.bytes(), roughness: await document.roughness() };
+    },
+    async build() {
+      const opened = doorFor('writes', uri, platform);
+      if ('problem' in opened) throw new Refusal(opened.problem);
+      const report = await desk.build('build', [uri], 'shown');
+      return report === null ? { built: 0, unchanged: 0, failed: 0 } : countBuild(report);
+    },
+    adopt: (change) => adopt(uri, change, platform),
+    async showSettings({ key }) {
+      await openSettings(uri, key, platform, vscode.ViewColumn.Beside);
+      return {};
+    },
+    async copy({ text }) {
+      await vscode.env.clipboard.writeText(text);
+      return {};
+    },
+    async save({ name, bytes }) {
+      const defaultUri = vscode.Uri.joinPath(uri, '..', name);
+      const target = await vscode.window.showSaveDialog({ defaultUri });
+      if (target === undefined) return { path: null };
+      await vscode.workspace.fs.writeFile(target, new Uint8Array(bytes));
+      return { path: target.path };
+    },
+    async reveal() {
+      await revealOutputs(document);
+      return {};
+    },
+  };
+}
+
+/** What can be done with a texture here, or in words why not. */
+function abilitiesFor(uri: vscode.Uri, platform: Platform): Abilities {
+  const building = doorFor('writes', uri, platform);
+  const reading = doorFor('reads', uri, platform);
+  const writing = hindranceToWriting(uri);
+  return {
+    build: 'problem' in building ? sayProblem(building.problem) : true,
+    adopt: writing === null ? true : sayProblem(writing),
+    reveal: 'problem' in reading ? sayProblem(reading.problem) : true,
+  };
+}
+
+/** Translations by English text, as the host loaded them. */
+function translations(): Record<string, string> {
+  const entries = Object.entries(vscode.l10n.bundle ?? {}).filter(([, text]) => typeof text === 'string');
+  return Object.fromEntries(entries);
+}

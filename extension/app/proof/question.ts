@@ -1,0 +1,91 @@
+import { choice, either, integer, Misfit, nothing, object, type Shape, text } from '../../../core/manifest/shape.ts';
+import { refuse } from '../../../core/problem.ts';
+import { type AdoptChange, type HostCall, PROTOCOL, type Question, type Request } from '../../../core/protocol.ts';
+
+/** Reads a message of a page, and trusts nothing in it. Throws Refusal: `bad-message`, or `page-outdated` for another version of
+ *  the protocol. */
+export function readRequest(message: unknown): Request {
+  const given = message as Readonly<Record<string, unknown>> | null;
+  if (typeof given === 'object' && typeof given?.protocol === 'number' && given.protocol !== PROTOCOL) {
+    refuse('page-outdated', { page: given.protocol, host: PROTOCOL });
+  }
+  try {
+    const { call, ...rest } = envelope(message, '');
+    const question = (questions[call] as Shape<Question<HostCall>>)(rest.question, 'question');
+    return { ...rest, call, question } as Request;
+  } catch (error) {
+    if (!(error instanceof Misfit)) throw error;
+    return refuse('bad-message', { where: error.at || 'it', expected: error.expected });
+  }
+}
+
+/** The id to answer under, where a message has one; null where nobody waits for an answer. */
+export function requestId(message: unknown): number | null {
+  const id = (message as { readonly id?: unknown } | null)?.id;
+  return typeof id === 'number' && Number.isSafeInteger(id) ? id : null;
+}
+
+const anything: Shape<unknown> = (value) => value;
+
+const envelope = object<Omit<Request, 'question'> & { readonly question: unknown }>({
+  protocol: integer(PROTOCOL, PROTOCOL),
+  kind: choice('ask'),
+  id: integer(0, Number.MAX_SAFE_INTEGER),
+  call: choice('open', 'bytes', 'build', 'adopt', 'showSettings', 'copy', 'save', 'reveal'),
+  // An `optional` of anything would let the key be left out.
+  question: anything as never,
+});
+
+/** Characters of a dotted key; the longest has fewer than 40. */
+const key = text(/^[A-Za-z0-9.-]{1,200}$/, 'a dotted key');
+
+/** What a page may put on the clipboard: 16 Mi characters. */
+const COPY_LIMIT = 2 ** 24;
+
+/** Bytes of a file that a page may write. */
+const SAVE_LIMIT = 2 ** 29;
+
+/** Characters of the settings to adopt, as JSON. */
+const ADOPT_LIMIT = 2 ** 16;
+
+const questions: { readonly [K in HostCall]: Shape<Question<K>> } = {
+  open: nothing,
+  bytes: nothing,
+  build: nothing,
+  adopt: object<AdoptChange>({ scope: choice('file', 'matching'), settings: plainSettings }),
+  showSettings: object<{ key: string | null }>({ key: either<string | null>(nothing, key) }),
+  copy: object<{ text: string }>({ text: shortText }),
+  save: object<{ name: string; bytes: ArrayBuffer }>({
+    name: text(/^(?!\.)[^\p{Cc}/\\:*?"<>|]{1,200}$/u, 'a file name'),
+    bytes: fileBytes,
+  }),
+  reveal: nothing,
+};
+
+function shortText(value: unknown, at: string): string {
+  if (typeof value !== 'string' || value.length > COPY_LIMIT) throw new Misfit(at, `up to ${COPY_LIMIT} characters`);
+  return value;
+}
+
+function fileBytes(value: unknown, at: string): ArrayBuffer {
+  if (value instanceof ArrayBuffer && value.byteLength <= SAVE_LIMIT) return value;
+  throw new Misfit(at, `up to ${SAVE_LIMIT} bytes`);
+}
+
+/** An object of JSON values; what it may hold, reading the settings file that it makes will tell. */
+function plainSettings(value: unknown, at: string): Readonly<Record<string, unknown>> {
+  const isObject = typeof value === 'object' && value !== null && !Array.isArray(value);
+  const json = isObject ? jsonOf(value) : undefined;
+  if (json === undefined || json.length > ADOPT_LIMIT) throw new Misfit(at, 'an object of settings');
+  return JSON.parse(json);
+}
+
+/** Undefined for a ring, which messages may hold and JSON may not. */
+function jsonOf(value: object): string | undefined {
+  try {
+    return JSON.stringify(value);
+  } catch (error) {
+    if (error instanceof TypeError) return undefined;
+    throw error;
+  }
+}

@@ -1,0 +1,13 @@
+import { defineConfig } from 'vitest/config';
+
+// Tests in a real host: one at a time, since each has a browser and a server to itself.
+export default defineConfig({
+  test: {
+    root: import.meta.dirname,
+    include: ['**/*.host.ts'],
+    pool: 'forks',
+    fileParallelism: false,
+    testTimeout: 240_000,
+    hookTimeout: 240_000,
+  },
+});

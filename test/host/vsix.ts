@@ -1,0 +1,27 @@
+import { mkdirSync } from 'node:fs';
+import { join } from 'node:path';
+import { top } from '../house/tree.ts';
+import { run } from './process.ts';
+
+/** Packs the extension as it is shipped, from what was built, and answers the file. */
+export async function packVsix(folder: string): Promise<string> {
+  mkdirSync(folder, { recursive: true });
+  const file = join(folder, 'sizeproof.vsix');
+  const vsce = join(top, 'test', 'node_modules', '@vscode', 'vsce', 'vsce');
+  const options = [
+    'package',
+    '--no-dependencies',
+    '--allow-missing-repository',
+    '--no-rewrite-relative-links',
+    '--out',
+    file,
+  ];
+  await run(process.execPath, [vsce, ...options], top);
+  return file;
+}
+
+/** Paths of the files in a VSIX, which is a zip archive. */
+export async function filesInVsix(file: string): Promise<string[]> {
+  const listed = await run('unzip', ['-Z1', file], top);
+  return listed.trim().split('\n').sort();
+}

@@ -1,0 +1,13 @@
+import { mkdirSync, readdirSync, readFileSync, writeFileSync } from 'node:fs';
+import { openSchema } from '../../core/treatment/open-schema.ts';
+import { textBundle, textsIn } from './texts.ts';
+
+// Writes what package.json refers to and code makes: the schema that editors complete the settings file by, and the texts that
+// translators start from. The build runs this from the top.
+const sources = readdirSync('extension/app', { recursive: true, encoding: 'utf8' })
+  .filter((name) => name.endsWith('.ts'))
+  .map((name) => readFileSync(`extension/app/${name}`, 'utf8'));
+
+mkdirSync('dist/l10n', { recursive: true });
+writeFileSync('dist/sizeproof.schema.json', `${JSON.stringify(openSchema())}\n`);
+writeFileSync('dist/l10n/bundle.l10n.json', `${JSON.stringify(textBundle(sources.flatMap(textsIn)), null, 2)}\n`);

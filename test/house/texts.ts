@@ -1,0 +1,13 @@
+import { words } from '../../core/words.ts';
+
+/** English texts that a source gives to `l10n.t`. They are literals, or the host could not know them. */
+export function textsIn(source: string): string[] {
+  const calls = source.matchAll(/l10n\.t\(\s*('(?:[^'\\]|\\.)*'|"(?:[^"\\]|\\.)*")/g);
+  return [...calls].map(([, literal]) => literal.slice(1, -1).replace(/\\(.)/g, '$1'));
+}
+
+/** The bundle that translators start from: problems' templates and the texts of sources, each its own translation. */
+export function textBundle(texts: readonly string[]): Readonly<Record<string, string>> {
+  const all = [...new Set([...texts, ...Object.values(words)])].sort();
+  return Object.fromEntries(all.map((text) => [text, text]));
+}
