@@ -69,6 +69,6 @@ export function sampleManifest(files: Readonly<Record<string, Uint8Array | strin
     })),
     targets: [],
     containers: [],
-    notes: ['Level 0 is not written: its codes are the source’s.'],
+    notes: ['Level 0 is not written: it holds the codes of the source.'],
   };
 }
