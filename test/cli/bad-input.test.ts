@@ -82,7 +82,7 @@ const table: readonly BadInput[] = [
     'a kernel that cannot do what is asked',
     '{ "defaults": { "kernel": "epx" } }',
     'kernel-direction',
-    '1:27',
+    '1:17',
     /box/,
   ),
   {
