@@ -3,7 +3,7 @@
 
 const OLDEST_NODE_MAJOR = 20;
 
-/** What esbuild makes, each one file. */
+/** What esbuild makes for Node, each one file. */
 const BUNDLES = [
   { entry: 'extension/cli/main.ts', file: 'dist/cli.js', head: '#!/usr/bin/env node\n' },
   { entry: 'extension/node/pool.worker.ts', file: 'dist/pool.worker.js', head: '' },
@@ -11,8 +11,24 @@ const BUNDLES = [
   { entry: 'extension/main.ts', file: 'dist/extension.cjs', head: '' },
 ];
 
+/** What esbuild makes for the page; a stylesheet comes out beside the script that imports it. */
+const PAGE_BUNDLES = [
+  { entry: 'webview/page/page.ts', file: 'dist/page/page.js' },
+  { entry: 'webview/worker/worker.ts', file: 'dist/page/worker.js' },
+];
+
 /** Rooms with a tsconfig of their own. */
-const ROOMS = ['core', 'extension/node', 'extension/cli', 'extension/app', 'extension', 'test'];
+const ROOMS = [
+  'core',
+  'extension/node',
+  'extension/cli',
+  'extension/app',
+  'extension',
+  'webview/worker',
+  'webview/link',
+  'webview/page',
+  'test',
+];
 
 const COMMANDS = { start, test, build, types, lint, mutate, paint, schema, pack };
 
@@ -160,31 +176,38 @@ async function bundle() {
   }
   const code = await runSource('test/house/contributions.ts', []);
   if (code !== 0) throw new Stop(`What package.json refers to could not be written: exit code ${code}.`);
+  for (const each of PAGE_BUNDLES) await bundleForPage(each);
 }
 
-async function bundleOne({ entry, file, head }) {
+function bundleOne({ entry, file, head }) {
   const isModule = file.endsWith('.js');
+  return runEsbuild(entry, {
+    outfile: file,
+    platform: 'node',
+    target: 'node20',
+    format: isModule ? 'esm' : 'cjs',
+    external: isModule ? [] : ['vscode'],
+    minify: !isModule,
+    // jsonc-parser's `main` hides its parts from a bundler; its `module` does not.
+    mainFields: ['module', 'main'],
+    // Dependencies in CommonJS call `require` for Node's own modules, which an ES module does not have.
+    banner: isModule
+      ? {
+          js: `${head}import { createRequire as createRequireHere } from 'node:module';\nconst require = createRequireHere(import.meta.url);`,
+        }
+      : {},
+  });
+}
+
+/** VS Code 1.100, the oldest that the extension supports, is built on Chromium 132. */
+function bundleForPage({ entry, file }) {
+  return runEsbuild(entry, { outfile: file, platform: 'browser', target: 'chrome132', format: 'iife', minify: true });
+}
+
+async function runEsbuild(entry, options) {
   const esbuild = await import('esbuild');
   try {
-    await esbuild.build({
-      entryPoints: [entry],
-      outfile: file,
-      bundle: true,
-      platform: 'node',
-      target: 'node20',
-      format: isModule ? 'esm' : 'cjs',
-      external: isModule ? [] : ['vscode'],
-      minify: !isModule,
-      legalComments: 'eof',
-      // jsonc-parser's `main` hides its parts from a bundler; its `module` does not.
-      mainFields: ['module', 'main'],
-      // Dependencies in CommonJS call `require` for Node's own modules, which an ES module does not have.
-      banner: isModule
-        ? {
-            js: `${head}import { createRequire as createRequireHere } from 'node:module';\nconst require = createRequireHere(import.meta.url);`,
-          }
-        : {},
-    });
+    await esbuild.build({ entryPoints: [entry], bundle: true, legalComments: 'eof', ...options });
   } catch (error) {
     if (!Array.isArray(error.errors)) throw error;
     // esbuild has printed what is wrong and where.

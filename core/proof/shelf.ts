@@ -29,6 +29,11 @@ export class Shelf<T> {
     }
   }
 
+  clear(): void {
+    this.#items.clear();
+    this.#bytes = 0;
+  }
+
   #drop(key: string): void {
     const item = this.#items.get(key);
     if (item === undefined) return;

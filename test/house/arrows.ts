@@ -19,8 +19,8 @@ const ROOMS: readonly Room[] = [
   { at: 'extension/app/', files: ['core/', 'extension/app/'], packages: ['vscode'] },
   { at: 'extension/main.ts', files: ['core/', 'extension/app/', 'extension/node/'], packages: ['vscode', 'node:*'] },
   { at: 'extension/main.web.ts', files: ['core/', 'extension/app/', 'extension/web/'], packages: ['vscode'] },
-  { at: 'webview/page/', files: ['core/', 'webview/page/', 'webview/link/'], packages: [] },
-  { at: 'webview/worker/', files: ['core/', 'webview/worker/'], packages: [] },
+  { at: 'webview/page/', files: ['core/', 'webview/page/', 'webview/link/'], packages: ['lit'] },
+  { at: 'webview/worker/', files: ['core/', 'webview/worker/'], packages: ['@noble/hashes'] },
   { at: 'webview/link/', files: ['core/', 'webview/link/'], packages: [] },
 ];
 

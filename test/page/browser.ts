@@ -1,0 +1,72 @@
+import { existsSync, readFileSync } from 'node:fs';
+import { join } from 'node:path';
+import type { Browser, BrowserContext, Page } from 'playwright-core';
+import { top } from '../house/tree.ts';
+import { playData, playRecording, type Recording } from './recorded.ts';
+import { type ThemeName, themes } from './themes.ts';
+
+const ORIGIN = 'http://page.localhost';
+
+/** The policy that the host's page has; the page's own origin stands for `webview.cspSource`. */
+const POLICY = [
+  "default-src 'none'",
+  `img-src ${ORIGIN} blob: data:`,
+  "script-src 'nonce-recorded'",
+  `style-src ${ORIGIN}`,
+  `font-src ${ORIGIN}`,
+  'worker-src blob:',
+  `connect-src ${ORIGIN}`,
+].join('; ');
+
+export interface Showing {
+  readonly ratio?: number;
+  readonly width?: number;
+  readonly height?: number;
+  readonly theme?: ThemeName;
+  readonly reducedMotion?: 'reduce' | 'no-preference';
+  readonly forcedColors?: 'active' | 'none';
+}
+
+/** Opens the built page with a recording and waits for nothing. Close the context when done. */
+export async function showPage(
+  browser: Browser,
+  recording: Recording,
+  showing: Showing = {},
+): Promise<{ readonly page: Page; readonly context: BrowserContext }> {
+  const { ratio = 1, width = 1280, height = 900, theme = 'dark' } = showing;
+  const context = await browser.newContext({
+    deviceScaleFactor: ratio,
+    viewport: { width, height },
+    reducedMotion: showing.reducedMotion ?? 'no-preference',
+    forcedColors: showing.forcedColors ?? 'none',
+  });
+  const page = await context.newPage();
+  await page.route(`${ORIGIN}/**`, async (route) => {
+    const path = new URL(route.request().url()).pathname;
+    if (path === '/') {
+      const body = `<!doctype html><html lang="en"><head><meta charset="utf-8"><title>Proof</title>
+<meta http-equiv="Content-Security-Policy" content="${POLICY}">
+<link rel="stylesheet" href="/theme.css"><link rel="stylesheet" href="/page.css"></head>
+<body class="${themes[theme].bodyClass}" data-worker="${ORIGIN}/worker.js"><script nonce="recorded" src="/page.js"></script></body></html>`;
+      return route.fulfill({ contentType: 'text/html', body });
+    }
+    if (path === '/theme.css') return route.fulfill({ contentType: 'text/css', body: themes[theme].css });
+    const file = join(top, 'dist/page', path.slice(1));
+    if (!existsSync(file)) return route.fulfill({ status: 404, body: '' });
+    const contentType = path.endsWith('.css') ? 'text/css' : 'text/javascript';
+    return route.fulfill({ contentType, body: readFileSync(file) });
+  });
+  await page.addInitScript(playRecording, playData(recording));
+  await page.goto(`${ORIGIN}/`);
+  return { page, context };
+}
+
+/** Waits until every print on the page is painted, whole and as asked for. */
+export async function waitForPrints(page: Page, count = 1): Promise<void> {
+  await page.waitForFunction((wanted) => {
+    const row = document.querySelector('proof-page')?.shadowRoot?.querySelector('print-row')?.shadowRoot;
+    const cards = Array.from(row?.querySelectorAll('print-card') ?? []);
+    const stages = cards.map((card) => card.shadowRoot?.querySelector('print-stage'));
+    return stages.length >= wanted && stages.every((stage) => stage?.hasAttribute('data-painted'));
+  }, count);
+}

@@ -1,0 +1,246 @@
+import { css, html, LitElement, nothing } from 'lit';
+import { passingCode } from '../../../core/chain/coverage.ts';
+import { defaultParams, findKernel, kernels } from '../../../core/kernel/table.ts';
+import { say } from '../../../core/problem.ts';
+import type { Picture, Print } from '../../../core/proof/want.ts';
+import type { Treatment } from '../../../core/treatment/treatment.ts';
+import { controls } from '../form/controls.ts';
+import { isProblem } from '../proof/bench-link.ts';
+import { kernelFits, type Model } from '../proof/model.ts';
+import type { Slot, State } from '../proof/state.ts';
+import { cursorTexel, lineOf } from '../readings/line.ts';
+import { changeWords } from '../treatment/change-words.ts';
+import { light, percent } from '../words/figures.ts';
+import { t } from '../words/t.ts';
+import './print-card.ts';
+import type { CardAction, CardFacts, CardFigure } from './print-card.ts';
+import type { Scene, StageGesture } from './print-stage.ts';
+
+/** The row of prints: the settings' own first, then what is tried beside it, all at one place and one zoom. */
+export class PrintRow extends LitElement {
+  static override properties = {
+    model: { attribute: false },
+    tick: { type: Number },
+    swapped: { type: Boolean },
+    pointing: { state: true },
+  };
+  declare model: Model | null;
+  declare tick: number;
+  /** Whether partners are shown in place of the prints, while a key is held. */
+  declare swapped: boolean;
+  /** Whether the hand is on a print: only then is the cursor drawn, and the art is left alone otherwise. */
+  declare pointing: boolean;
+  /** What each print last showed: it stands in, stretched, until the next is made. */
+  readonly #shown = new Map<number, Picture>();
+
+  static override styles = [
+    controls,
+    css`
+      :host {
+        display: grid;
+        min-height: 0;
+        min-width: 0;
+      }
+      .row {
+        display: grid;
+        grid-template-rows: auto minmax(220px, 1fr) auto;
+        grid-auto-flow: column;
+        grid-auto-columns: minmax(min(260px, 100%), 1fr);
+        overflow-x: auto;
+      }
+      @media (max-width: 560px) {
+        .row {
+          grid-template-rows: none;
+          grid-auto-flow: row;
+          grid-auto-columns: auto;
+          grid-auto-rows: auto;
+        }
+      }
+    `,
+  ];
+
+  constructor() {
+    super();
+    this.model = null;
+    this.tick = 0;
+    this.swapped = false;
+    this.pointing = false;
+  }
+
+  override render() {
+    const { model } = this;
+    if (model === null || model.seen === null || model.treatment === null) return nothing;
+    return html`<div
+      class="row"
+      role="list"
+      aria-label=${t('Prints')}
+      @pointerenter=${() => this.#point('on')}
+      @pointerleave=${() => this.#point('off')}
+      @focusin=${() => this.#point('on')}
+      @focusout=${() => this.#point('off')}
+    >
+      ${model.state.slots.map((slot) => {
+        const facts = this.#facts(model, slot);
+        return html`<print-card
+          role="listitem"
+          aria-label=${facts.scene.label}
+          ?chosen=${facts.selected && model.state.slots.length > 1}
+          .facts=${facts}
+          @card=${(event: CustomEvent<CardAction>) => this.#act(model, slot, event.detail)}
+          @gesture=${(event: CustomEvent<StageGesture>) => model.set(afterGesture(event.detail))}
+          @focusin=${() => model.state.selected !== slot.id && model.set({ selected: slot.id })}
+          @pointerdown=${() => model.state.selected !== slot.id && model.set({ selected: slot.id })}
+        ></print-card>`;
+      })}
+    </div>`;
+  }
+
+  #facts(model: Model, slot: Slot): CardFacts {
+    const seen = model.seen!;
+    const treatment = model.treatmentOf(slot)!;
+    const told = model.print(treatment, seen.image);
+    const print = told === undefined || isProblem(told) ? null : told;
+    if (print !== null) this.#shown.set(slot.id, print.picture);
+    const shrinks = seen.lod > 0 || (seen.lod === 0 && 'level' in seen.image);
+    const kernel = shrinks ? treatment.kernel.minify : treatment.kernel.magnify;
+    const unfit = slot.kernel === null ? null : kernelFits(slot.kernel, seen.stop, model.base!);
+    const problem = isProblem(told) ? say(told.problem) : unfit === null ? null : unfitWords(slot.kernel!.name, unfit);
+    return {
+      slot,
+      kernel: slot.kernel ?? kernel,
+      selected: slot.id === model.state.selected,
+      scene: this.#scene(model, slot, treatment, unfit === null ? print : null, problem !== null),
+      figures: print === null ? [] : figuresOf(model, treatment, print),
+      status: problem ?? (print === null ? t('Computing …') : null),
+      failed: problem !== null,
+      changes: changeWords(slot.change),
+      built: slot.id === 0 && print !== null ? builtWords(model, print) : null,
+      pixels: print?.pixels ?? '',
+    };
+  }
+
+  #scene(model: Model, slot: Slot, treatment: Treatment, print: Print | null, failed: boolean): Scene {
+    const { state } = model;
+    const seen = model.seen!;
+    const picture = failed ? null : (print?.picture ?? this.#shown.get(slot.id) ?? null);
+    const own = model.print(model.treatmentOf(state.slots[0])!, seen.image);
+    const settings = own === undefined || isProblem(own) ? null : own.picture;
+    const source = model.sourcePrint(seen.image)?.print?.picture ?? null;
+    const depth = picture?.depth ?? 8;
+    return {
+      extent: seen.extent,
+      picture,
+      reference: state.against === 'source' ? source : settings,
+      partner: state.partner === 'source' ? source : settings,
+      compare: state.compare === 'divider' ? 'divider' : this.swapped ? 'partner' : 'beside',
+      divider: state.divider,
+      view: {
+        show: state.show,
+        metric: state.metric,
+        blend: treatment.view.blend,
+        passing: passingCode(treatment.alpha, depth),
+        normalY: treatment.normal.y,
+        lamp: state.lamp,
+      },
+      backdrop: state.backdrop,
+      magnify: state.magnify,
+      wrap: treatment.wrap,
+      tiles: state.tiles,
+      zoom: state.zoom,
+      pan: state.pan,
+      marks: state.show === 'overshoot' && print !== null ? (model.halo(treatment, seen.image)?.marks ?? null) : null,
+      cursor: picture === null || !this.pointing ? null : cursorTexel(state.cursor, seen.extent),
+      line: state.line === 'drawn' ? lineOf(state, seen.extent) : null,
+      draws: state.line === 'drawn',
+      label: t('Print by {kernel}, {width} by {height} texels. Arrow keys move the cursor.', {
+        kernel: slot.kernel?.name ?? treatment.kernel.minify.name,
+        ...seen.extent,
+      }),
+    };
+  }
+
+  #point(which: 'on' | 'off'): void {
+    this.pointing = which === 'on';
+  }
+
+  #act(model: Model, slot: Slot, action: CardAction): void {
+    if (action.kind === 'remove') this.#shown.delete(slot.id);
+    model.set(afterAction(model.state, slot, action));
+  }
+}
+
+customElements.define('print-row', PrintRow);
+
+/** Adds a print by a kernel, and selects it. */
+export function addPrint(model: Model, name: string): void {
+  const kernel = findKernel(name) ?? kernels[0];
+  const id = Math.max(...model.state.slots.map((slot) => slot.id)) + 1;
+  const slot: Slot = { id, kernel: { name: kernel.name, params: defaultParams(kernel) }, change: {} };
+  model.set({ slots: [...model.state.slots, slot], selected: id });
+}
+
+function afterAction({ slots }: State, slot: Slot, action: CardAction): Partial<State> {
+  switch (action.kind) {
+    case 'select':
+      return { selected: slot.id };
+    case 'remove':
+      return { slots: slots.filter(({ id }) => id !== slot.id), selected: 0 };
+    case 'kernel': {
+      const changed = { ...slot, kernel: action.kernel };
+      return { slots: slots.map((each) => (each.id === slot.id ? changed : each)), selected: slot.id };
+    }
+  }
+}
+
+function afterGesture(gesture: StageGesture): Partial<State> {
+  switch (gesture.kind) {
+    case 'point':
+      return { cursor: { u: gesture.u, v: gesture.v } };
+    case 'pan':
+      return { pan: { x: gesture.x, y: gesture.y } };
+    case 'zoom':
+      return { zoom: gesture.zoom };
+    case 'divide':
+      return { divider: gesture.share };
+    case 'draw':
+      return { drawn: gesture.line };
+  }
+}
+
+function figuresOf(model: Model, treatment: Treatment, print: Print): readonly CardFigure[] {
+  const { coverage, luminance, normalLength, coverageScale } = print.stats;
+  const base = model.levels()?.levels[0]?.stats;
+  const { image } = model.seen!;
+  const halo = model.halo(treatment, image)?.halo;
+  const limits = treatment.limits;
+  const figures: CardFigure[] = [];
+  const add = (name: string, text: string, over = false): void => void figures.push({ name, text, over });
+  if (halo) {
+    add(t('halo'), halo.worst.toFixed(1), limits.halo !== null && halo.worst > limits.halo);
+    if (halo.clipped > 0) add(t('clipped'), percent(halo.clipped));
+  }
+  if (coverage !== null) {
+    const loss = base?.coverage ? 1 - coverage / base.coverage : 0;
+    add(t('coverage'), percent(coverage), limits.thinning !== null && loss > limits.thinning);
+    if (coverageScale !== null && coverageScale !== 1) add(t('alpha scaled by'), coverageScale.toFixed(2));
+  }
+  if (luminance !== null) {
+    const change = base?.luminance ? luminance / base.luminance - 1 : 0;
+    const signed = Math.abs(change) < 0.0005 ? '' : ` ${change > 0 ? '+' : '−'}${percent(Math.abs(change))}`;
+    add(t('luminance'), light(luminance) + signed);
+  }
+  if (normalLength !== null) add(t('normal length'), light(normalLength));
+  return figures;
+}
+
+function builtWords(model: Model, print: Print): string | null {
+  const pixels = model.builtPixels(model.seen!.image);
+  if (pixels === null || print.pixels === '') return null;
+  return pixels === print.pixels ? t('equals the build') : t('differs from the build');
+}
+
+function unfitWords(kernel: string, action: 'minify' | 'magnify'): string {
+  return action === 'minify'
+    ? t('{kernel} only magnifies. Choose a target larger than the source.', { kernel })
+    : t('{kernel} only minifies. Choose a level or a smaller target.', { kernel });
+}

@@ -1,0 +1,283 @@
+import { planSheet } from '../../../core/chain/grid.ts';
+import { levelCount } from '../../../core/chain/levels.ts';
+import { findKernel } from '../../../core/kernel/table.ts';
+import type { Problem } from '../../../core/problem.ts';
+import type { HaloAnswer, LevelsAnswer, Print, PrintImage, Want } from '../../../core/proof/want.ts';
+import type { BuiltState, HostEvent, OpenReply, SettingsReply } from '../../../core/protocol.ts';
+import type { Extent } from '../../../core/raster/raster.ts';
+import type { KernelChoice, Target, Treatment } from '../../../core/treatment/treatment.ts';
+import type { Link } from '../../link/link.ts';
+import type { Outlook } from '../axis/lod.ts';
+import { extentAt, type Stop, stopsOf } from '../axis/scale.ts';
+import { treatmentOf } from '../treatment/change.ts';
+import { setWords } from '../words/t.ts';
+import { type BenchLink, isProblem, type Told } from './bench-link.ts';
+import { readState, type Slot, type State, writeState } from './state.ts';
+
+/** All that the page knows, and the one way in which it changes. Fires `change` when something did. */
+export class Model extends EventTarget {
+  readonly link: Link;
+  readonly #makeBench: (changed: () => void) => Promise<BenchLink>;
+  #bench: BenchLink | null = null;
+  #state: State;
+  #treatments = new WeakMap<Slot, { readonly settings: Treatment; readonly treatment: Treatment }>();
+  open: OpenReply | null = null;
+  settings: SettingsReply | null = null;
+  built: BuiltState = { kind: 'unknown' };
+  /** Whether the file is there; it may go away while it is looked at. */
+  present = true;
+  /** Why the page cannot show anything. */
+  problem: Problem | null = null;
+  /** What the last action said, in words, and whether it went wrong. */
+  note: { readonly text: string; readonly kind: 'said' | 'failed' } | null = null;
+  #keeping: ReturnType<typeof setTimeout> | undefined;
+
+  constructor(link: Link, makeBench: (changed: () => void) => Promise<BenchLink>) {
+    super();
+    this.link = link;
+    this.#makeBench = makeBench;
+    this.#state = readState(link.kept());
+    link.listen((event) => this.#take(event));
+  }
+
+  get state(): State {
+    return this.#state;
+  }
+
+  /** Changes what is kept; the rest of the page follows. */
+  set(patch: Partial<State>): void {
+    this.#state = { ...this.#state, ...patch };
+    clearTimeout(this.#keeping);
+    this.#keeping = setTimeout(() => this.link.keep(writeState(this.#state)), 150);
+    this.#changed();
+  }
+
+  say(note: Model['note']): void {
+    this.note = note;
+    this.#changed();
+  }
+
+  /** Handshake, then the file's bytes. Also what trying again does. */
+  async start(): Promise<void> {
+    this.problem = null;
+    this.#changed();
+    const { reply } = await this.link.ask('open', null);
+    if ('problem' in reply) return this.#fail(reply.problem);
+    this.open = reply.ok;
+    setWords(reply.ok.words);
+    this.settings = reply.ok.settings;
+    this.built = reply.ok.state;
+    if (this.#state.backdrop === 'checker') this.#state = { ...this.#state, backdrop: reply.ok.preferences.backdrop };
+    this.#changed();
+    await this.#load();
+  }
+
+  close(): void {
+    clearTimeout(this.#keeping);
+    this.#bench?.close();
+    this.link.close();
+  }
+
+  get header() {
+    return this.#bench?.header ?? null;
+  }
+
+  get treatment(): Treatment | null {
+    return this.settings?.treatment ?? null;
+  }
+
+  get base(): Extent | null {
+    return this.header?.extent ?? null;
+  }
+
+  /** Stops of the axis, from large to small. */
+  get stops(): readonly Stop[] {
+    const { base, treatment } = this;
+    if (base === null || treatment === null) return [];
+    return stopsOf(base, treatment.targets, this.#state.typed, lastLevelOf(base, treatment));
+  }
+
+  /** The image under the sight, where it stands on the axis, and its extent. */
+  get seen(): {
+    readonly image: PrintImage;
+    readonly lod: number;
+    readonly extent: Extent;
+    readonly stop: Stop | null;
+  } | null {
+    const { base, stops } = this;
+    const sight = this.#state.sight;
+    if (base === null || stops.length === 0) return null;
+    if (sight?.kind === 'lod') {
+      const last = stops.filter((stop) => stop.kind === 'level').length - 1;
+      const lod = Math.min(last, Math.max(0, sight.lod));
+      const extent = extentAt(base, lod);
+      return { image: { lod, extent }, lod, extent, stop: null };
+    }
+    const stop =
+      stops.find((each) =>
+        sight?.kind === 'target'
+          ? each.label === sight.name && each.kind !== 'level'
+          : 'level' in each.image && each.image.level === (sight?.level ?? firstLevel(stops)),
+      ) ?? stops[0];
+    return { image: stop.image, lod: stop.lod, extent: stop.extent, stop };
+  }
+
+  /** The treatment of a print; the same object while nothing that it hangs on changes. */
+  treatmentOf(slot: Slot): Treatment | null {
+    const { settings } = this;
+    if (settings?.treatment == null) return null;
+    const known = this.#treatments.get(slot);
+    if (known?.settings === settings.treatment) return known.treatment;
+    const treatment = treatmentOf(slot, settings.treatment, settings.origins);
+    this.#treatments.set(slot, { settings: settings.treatment, treatment });
+    return treatment;
+  }
+
+  get slot(): Slot {
+    return this.#state.slots.find(({ id }) => id === this.#state.selected) ?? this.#state.slots[0];
+  }
+
+  /** Distances, where somebody said how dense the texels lie. */
+  get outlook(): Outlook | null {
+    const { open, treatment } = this;
+    if (open === null || treatment === null) return null;
+    const texelsPerMeter = this.#state.texelsPerMeter ?? treatment.view.texelsPerMeter;
+    if (texelsPerMeter === null) return null;
+    return { texelsPerMeter, ...this.lens };
+  }
+
+  /** Field of view and screen: as typed here, as the settings say, else as the editor prefers. */
+  get lens(): { readonly fovY: number; readonly screenHeight: number } {
+    const said = (key: string): boolean =>
+      this.settings?.origins.some((each) => each.key === key && each.rule !== 'built-in') ?? false;
+    const { fovY = 60, screenHeight = 1080 } = this.open?.preferences ?? {};
+    const view = this.treatment?.view;
+    return {
+      fovY: this.#state.fovY ?? (said('view.fovY') ? view!.fovY : fovY),
+      screenHeight: this.#state.screenHeight ?? (said('view.screenHeight') ? view!.screenHeight : screenHeight),
+    };
+  }
+
+  print(treatment: Treatment, image: PrintImage): Told<'print'> {
+    return this.#bench?.told({ kind: 'print', treatment, image });
+  }
+
+  levels(): LevelsAnswer | null {
+    const { treatment } = this;
+    const told = treatment === null ? undefined : this.#bench?.told({ kind: 'levels', treatment });
+    return told === undefined || isProblem(told) ? null : told;
+  }
+
+  halo(treatment: Treatment, image: PrintImage): HaloAnswer | null {
+    const told = this.#bench?.told({ kind: 'halo', treatment, image });
+    return told === undefined || isProblem(told) ? null : told;
+  }
+
+  /** An answer to any other want, null until there is one. */
+  told<K extends 'footprint' | 'section'>(want: Want & { readonly kind: K }) {
+    const told = this.#bench?.told<K>(want);
+    return told === undefined || isProblem(told) ? null : told;
+  }
+
+  want(wants: readonly Want[]): void {
+    this.#bench?.want(wants);
+  }
+
+  /** What differences and comparisons take for the source at an image: the area mean, in the settings' own light. */
+  sourcePrint(image: PrintImage): { readonly treatment: Treatment; readonly print: Print | null } | null {
+    const { treatment } = this;
+    if (treatment === null) return null;
+    const mean = this.treatmentOf(SOURCE_MEAN)!;
+    const told = this.print(mean, image);
+    return { treatment: mean, print: told === undefined || isProblem(told) ? null : told };
+  }
+
+  /** What the manifest says of an image's pixels; null where it says nothing. */
+  builtPixels(image: PrintImage): string | null {
+    const { built } = this;
+    if (built.kind !== 'built' && built.kind !== 'stale') return null;
+    const found = built.images.find((each) =>
+      'level' in image ? each.level === image.level : 'target' in image && each.target === image.target.name,
+    );
+    return found?.pixels ?? null;
+  }
+
+  async #load(): Promise<void> {
+    const { open } = this;
+    if (open === null) return;
+    const { reply } = await this.link.ask('bytes', null);
+    if ('problem' in reply) return this.#fail(reply.problem);
+    this.present = true;
+    try {
+      this.#bench ??= await this.#makeBench(() => this.#benchChanged());
+    } catch (error) {
+      const reason = error instanceof Error ? error.message : String(error);
+      return this.#fail({ code: 'unexpected', severity: 'error', values: { reason } });
+    }
+    this.#bench.open(open.name, reply.ok.image);
+    this.#changed();
+  }
+
+  #benchChanged(): void {
+    if (this.#bench?.problem != null) this.problem = this.#bench.problem;
+    this.#changed();
+  }
+
+  #fail(problem: Problem): void {
+    this.problem = problem;
+    this.#changed();
+  }
+
+  #take(event: HostEvent): void {
+    switch (event.kind) {
+      case 'source':
+        this.present = event.present;
+        if (event.present) {
+          this.problem = null;
+          void this.#load();
+        }
+        break;
+      case 'settings':
+        this.settings = event.settings;
+        break;
+      case 'built':
+        this.built = event.state;
+        break;
+    }
+    this.#changed();
+  }
+
+  #changed(): void {
+    this.dispatchEvent(new Event('change'));
+  }
+}
+
+const SOURCE_MEAN: Slot = { id: -1, kernel: { name: 'even', params: {} }, change: {} };
+
+/** A kernel that can make this image from the source, or why not. */
+export function kernelFits(choice: KernelChoice, stop: Stop | null, base: Extent): 'minify' | 'magnify' | null {
+  const kernel = findKernel(choice.name);
+  if (kernel === undefined || stop === null || 'level' in stop.image)
+    return kernel?.minifies === false ? 'minify' : null;
+  const shrinks = stop.lod > 0 || (stop.lod === 0 && stop.extent.width < base.width);
+  if (stop.lod < 0 && !kernel.magnifies) return 'magnify';
+  return shrinks && !kernel.minifies ? 'minify' : null;
+}
+
+export function lastLevelOf(base: Extent, treatment: Treatment): number {
+  if (treatment.grid === null) return levelCount(base) - 1;
+  try {
+    return planSheet(base, treatment.grid).levels - 1;
+  } catch {
+    // A grid that does not fit is a problem of its own, which every print says.
+    return levelCount(base) - 1;
+  }
+}
+
+/** The first level that fits a usual frame, so that the page opens on something that can be judged. */
+function firstLevel(stops: readonly Stop[]): number {
+  const fit = stops.find((stop) => stop.kind === 'level' && Math.max(stop.extent.width, stop.extent.height) <= 128);
+  return fit !== undefined && 'level' in fit.image ? Math.max(0, fit.image.level) : 0;
+}
+
+export type { Target };

@@ -1,0 +1,229 @@
+import { css, html, LitElement, nothing } from 'lit';
+import '../axis/sight-fields.ts';
+import '../axis/size-axis.ts';
+import { controls } from '../form/controls.ts';
+import type { PrintCard } from '../prints/print-card.ts';
+import '../prints/print-row.ts';
+import type { PrintRow } from '../prints/print-row.ts';
+import type { PrintStage } from '../prints/print-stage.ts';
+import '../readings/readings-strip.ts';
+import '../treatment/treatment-switches.ts';
+import '../view/view-bar.ts';
+import { t } from '../words/t.ts';
+import type { Model } from './model.ts';
+import { goneNote, loadingNote, type Note, noteOf, settingsNote } from './note.ts';
+import { SwapHold } from './swap-hold.ts';
+import './top-bar.ts';
+import { wantsOf } from './wants.ts';
+
+/** The whole page: one axis, one row of prints, one strip of readings. */
+export class ProofPage extends LitElement {
+  static override properties = {
+    model: { attribute: false },
+    tick: { state: true },
+    zoom: { state: true },
+    swapped: { state: true },
+  };
+  declare model: Model | null;
+  declare tick: number;
+  declare zoom: number;
+  declare swapped: boolean;
+  #hold: SwapHold | null = null;
+  readonly #changed = (): void => {
+    this.tick++;
+  };
+
+  static override styles = [
+    controls,
+    css`
+      :host {
+        display: grid;
+        grid-template-rows: auto auto auto auto auto minmax(340px, 1fr) auto auto;
+        min-height: 100vh;
+      }
+      .axis {
+        border-bottom: 1px solid var(--proof-line);
+        padding-top: 4px;
+      }
+      .note {
+        grid-row: 2 / -1;
+        display: grid;
+        place-content: center;
+        justify-items: start;
+        gap: 12px;
+        padding: 24px;
+        max-width: 64ch;
+        margin: 0 auto;
+      }
+      .note p {
+        margin: 0;
+        font-size: 1.05em;
+        line-height: 1.5;
+      }
+      .banner {
+        display: flex;
+        align-items: center;
+        gap: 12px;
+        padding: 5px 10px;
+        border-bottom: 1px solid var(--proof-line);
+        color: var(--proof-warning);
+      }
+      .foot {
+        padding: 3px 10px 5px;
+        border-top: 1px solid var(--proof-line);
+        color: var(--proof-quiet);
+        font-size: 0.92em;
+        display: flex;
+        flex-wrap: wrap;
+        gap: 0 18px;
+      }
+      main {
+        display: grid;
+        min-height: 0;
+        min-width: 0;
+      }
+      main.note {
+        min-height: 50vh;
+      }
+    `,
+  ];
+
+  constructor() {
+    super();
+    this.model = null;
+    this.tick = 0;
+    this.zoom = 1;
+    this.swapped = false;
+  }
+
+  override connectedCallback(): void {
+    super.connectedCallback();
+    this.model?.addEventListener('change', this.#changed);
+    window.addEventListener('keydown', this.#keys);
+    window.addEventListener('keyup', this.#keys);
+    window.addEventListener('blur', this.#letGo);
+  }
+
+  override disconnectedCallback(): void {
+    super.disconnectedCallback();
+    this.model?.removeEventListener('change', this.#changed);
+    window.removeEventListener('keydown', this.#keys);
+    window.removeEventListener('keyup', this.#keys);
+    window.removeEventListener('blur', this.#letGo);
+    this.#hold?.stop();
+  }
+
+  override render() {
+    const { model, tick } = this;
+    if (model === null) return nothing;
+    const note = this.#wholeNote(model);
+    return html`
+      <top-bar .model=${model} .tick=${tick} role="banner"></top-bar>
+      ${note === null ? this.#proof(model) : this.#note(model, note)}
+    `;
+  }
+
+  #wholeNote(model: Model): Note | null {
+    const { problem, settings } = model;
+    if (problem !== null) return noteOf(problem);
+    if (settings !== null && settings.treatment === null) return settingsNote(settings.problems[0]);
+    return model.seen === null ? loadingNote() : null;
+  }
+
+  #note(model: Model, note: Note) {
+    return html`<main class="note" data-state=${note.state}>
+      <p role=${note.state === 'loading' ? 'status' : 'alert'}>${note.text}</p>
+      ${this.#action(model, note)}
+    </main>`;
+  }
+
+  #action(model: Model, { action }: Note) {
+    switch (action) {
+      case 'again':
+        return html`<button class="main" @click=${() => model.start()}>${t('Read the file again')}</button>`;
+      case 'settings':
+        return html`<button class="main" @click=${() => model.link.ask('showSettings', { key: null })}>
+          ${t('Show the settings')}
+        </button>`;
+      case null:
+        return nothing;
+    }
+  }
+
+  #proof(model: Model) {
+    const { tick } = this;
+    const gone = model.present ? null : goneNote(model.open!.name);
+    return html`
+      <div>
+        ${
+          gone === null
+            ? nothing
+            : html`<div class="banner" role="alert" data-state="gone">${gone.text} ${this.#action(model, gone)}</div>`
+        }
+      </div>
+      <section class="axis" aria-label=${t('Size axis')}>
+        <size-axis .model=${model} .tick=${tick}></size-axis>
+        <sight-fields .model=${model} .tick=${tick}></sight-fields>
+      </section>
+      <treatment-switches .model=${model} .tick=${tick} role="group" aria-label=${t('What if')}></treatment-switches>
+      <view-bar
+        .model=${model}
+        .tick=${tick}
+        .zoom=${this.zoom}
+        role="group"
+        aria-label=${t('View')}
+        @swap-hold=${(event: CustomEvent<'down' | 'up'>) => this.#swap(event.detail)}
+      ></view-bar>
+      <main aria-label=${t('Prints')}>
+        <print-row .model=${model} .tick=${tick} .swapped=${this.swapped}></print-row>
+      </main>
+      <readings-strip .model=${model} .tick=${tick} role="region" aria-label=${t('Readings')}></readings-strip>
+      <footer class="foot">${this.#footWords(model).map((each) => html`<span>${each}</span>`)}</footer>
+    `;
+  }
+
+  #footWords(model: Model): readonly string[] {
+    const ratio = window.devicePixelRatio;
+    const { treatment, header } = model;
+    const words = [t('Codes are shown as sRGB; what they look like depends on the screen.')];
+    if (ratio !== 1) words.push(t('One CSS pixel is {ratio} device pixels.', { ratio: Number(ratio.toFixed(3)) }));
+    if ((header?.channels ?? 3) % 2 === 0) {
+      words.push(
+        treatment?.view.blend === 'code' ? t('Backdrops blend in code space.') : t('Backdrops blend in linear light.'),
+      );
+    }
+    return words;
+  }
+
+  override updated(): void {
+    const { model } = this;
+    if (model === null) return;
+    model.want(wantsOf(model));
+    // Stages know their own size only after they are laid out.
+    requestAnimationFrame(() => {
+      const row = this.renderRoot.querySelector<PrintRow>('print-row');
+      const stage = row?.renderRoot
+        .querySelector<PrintCard>('print-card')
+        ?.renderRoot.querySelector<PrintStage>('print-stage');
+      if (stage != null) this.zoom = stage.zoom;
+    });
+  }
+
+  readonly #keys = (event: KeyboardEvent): void => {
+    if (event.key.toLowerCase() !== 'x' || event.repeat || event.ctrlKey || event.metaKey || event.altKey) return;
+    const [target] = event.composedPath();
+    if (target instanceof HTMLInputElement || target instanceof HTMLSelectElement) return;
+    if (this.model?.state.compare === 'swap') this.#swap(event.type === 'keydown' ? 'down' : 'up');
+  };
+
+  readonly #letGo = (): void => this.#swap('up');
+
+  #swap(which: 'down' | 'up'): void {
+    this.#hold ??= new SwapHold((swapped) => {
+      this.swapped = swapped;
+    });
+    this.#hold.press(which, this.model?.open?.preferences.swapDwell ?? 0);
+  }
+}
+
+customElements.define('proof-page', ProofPage);

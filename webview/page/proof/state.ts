@@ -1,0 +1,107 @@
+import type { Preferences } from '../../../core/protocol.ts';
+import type { KernelChoice, Target, Wrap } from '../../../core/treatment/treatment.ts';
+
+/** Where the sight stands: at a level, at a target, or between levels. */
+export type Sight =
+  | { readonly kind: 'level'; readonly level: number }
+  | { readonly kind: 'target'; readonly name: string }
+  | { readonly kind: 'lod'; readonly lod: number };
+
+/** What a print tries against the settings; a key that is left out is as they say. */
+export interface Change {
+  readonly light?: 'linear' | 'code';
+  readonly weight?: boolean;
+  readonly wrap?: Wrap;
+  readonly keepCoverage?: boolean;
+  readonly fill?: 'none' | 'hidden' | 'all';
+  readonly renormalise?: boolean;
+}
+
+/** One print of the row. The first is the settings' own: no kernel, no change. */
+export interface Slot {
+  readonly id: number;
+  readonly kernel: KernelChoice | null;
+  readonly change: Change;
+}
+
+export type Show = 'color' | 'r' | 'g' | 'b' | 'a' | 'bare' | 'mask' | 'lit' | 'difference' | 'overshoot';
+
+/** What differences are taken from: the area mean of the source, or the first print. */
+export type Against = 'source' | 'settings';
+
+export type Backdrop = Preferences['backdrop'];
+
+/** What is kept across hiding and reloading. */
+export interface State {
+  readonly sight: Sight | null;
+  readonly typed: readonly Target[];
+  readonly slots: readonly Slot[];
+  readonly selected: number;
+  readonly show: Show;
+  readonly metric: 'oklab' | 'r' | 'g' | 'b' | 'a';
+  readonly against: Against;
+  readonly backdrop: Backdrop;
+  readonly magnify: 'nearest' | 'bilinear';
+  readonly tiles: boolean;
+  readonly compare: 'beside' | 'divider' | 'swap';
+  /** What the divider and the swap show: the source, or the first print. */
+  readonly partner: Against;
+  /** Share of a print's width, 0..1. */
+  readonly divider: number;
+  /** Device pixels a texel; null fits the print into its frame. */
+  readonly zoom: number | null;
+  /** The texel in the middle of the frame, in shares of width and height. */
+  readonly pan: { readonly x: number; readonly y: number };
+  /** Light on normals: toward the viewer from -1..1 across and up. */
+  readonly lamp: { readonly x: number; readonly y: number };
+  /** The point that is read, in shares of width and height. */
+  readonly cursor: { readonly u: number; readonly v: number };
+  readonly line: 'row' | 'column' | 'drawn';
+  /** Ends of a drawn line, in shares. */
+  readonly drawn: { readonly from: readonly [number, number]; readonly to: readonly [number, number] };
+  /** Typed outlook; null is what settings and preferences say. */
+  readonly texelsPerMeter: number | null;
+  readonly fovY: number | null;
+  readonly screenHeight: number | null;
+}
+
+export const startState: State = {
+  sight: null,
+  typed: [],
+  slots: [{ id: 0, kernel: null, change: {} }],
+  selected: 0,
+  show: 'color',
+  metric: 'oklab',
+  against: 'source',
+  backdrop: 'checker',
+  magnify: 'nearest',
+  tiles: false,
+  compare: 'beside',
+  partner: 'source',
+  divider: 0.5,
+  zoom: null,
+  pan: { x: 0.5, y: 0.5 },
+  lamp: { x: -0.5, y: 0.6 },
+  cursor: { u: 0.5, v: 0.5 },
+  line: 'row',
+  drawn: { from: [0.25, 0.25], to: [0.75, 0.75] },
+  texelsPerMeter: null,
+  fovY: null,
+  screenHeight: null,
+};
+
+/** What was kept, as far as this page understands it; the rest is as at the start. */
+export function readState(kept: unknown): State {
+  if (typeof kept !== 'object' || kept === null || (kept as { version?: unknown }).version !== VERSION)
+    return startState;
+  const { version: _, ...state } = kept as { version: number } & State;
+  const slots = Array.isArray(state.slots) && state.slots[0]?.kernel === null ? state.slots : startState.slots;
+  return { ...startState, ...state, slots };
+}
+
+export function writeState(state: State): unknown {
+  return { version: VERSION, ...state };
+}
+
+/** Raised when a kept state changes its shape. */
+const VERSION = 1;

@@ -1,0 +1,187 @@
+import { css, html, LitElement, nothing } from 'lit';
+import { say } from '../../../core/problem.ts';
+import type { AdoptChange, HostCall, Question } from '../../../core/protocol.ts';
+import { controls } from '../form/controls.ts';
+import { adoptable } from '../treatment/change.ts';
+import { t } from '../words/t.ts';
+import type { Model } from './model.ts';
+
+/** What the file is, what the settings make of it, whether that is built, and the page's three actions. */
+export class TopBar extends LitElement {
+  static override properties = { model: { attribute: false }, tick: { type: Number }, busy: { state: true } };
+  declare model: Model | null;
+  declare tick: number;
+  /** The call that is being answered. */
+  declare busy: HostCall | null;
+
+  static override styles = [
+    controls,
+    css`
+      :host {
+        display: flex;
+        flex-wrap: wrap;
+        align-items: center;
+        gap: 4px 14px;
+        padding: 6px 10px;
+        border-bottom: 1px solid var(--proof-line);
+      }
+      h1 {
+        margin: 0;
+        font-size: 1.1em;
+        font-weight: 600;
+      }
+      .gap {
+        flex: 1;
+      }
+      .stale {
+        color: var(--proof-warning);
+      }
+      .failed {
+        color: var(--proof-error);
+      }
+      button.link {
+        padding: 0;
+        height: auto;
+        border: 0;
+        background: none;
+        color: var(--proof-link);
+      }
+      button.link:hover:not(:disabled) {
+        background: none;
+        text-decoration: underline;
+      }
+      .group {
+        display: inline-flex;
+        gap: 4px;
+        flex-wrap: wrap;
+      }
+    `,
+  ];
+
+  constructor() {
+    super();
+    this.model = null;
+    this.tick = 0;
+    this.busy = null;
+  }
+
+  override render() {
+    const { model } = this;
+    if (model?.open == null) return html`<h1>${t('Proof')}</h1>`;
+    const { open, header, note } = model;
+    return html`
+      <h1>${open.name}</h1>
+      ${header === null ? nothing : html`<span class="number">${header.extent.width}×${header.extent.height}</span>`}
+      ${header === null ? nothing : html`<span class="quiet">${this.#facts(model)}</span>`}
+      ${this.#treatment(model)}
+      <span class=${model.built.kind === 'stale' ? 'stale' : 'quiet'} data-built=${model.built.kind}>${builtWords(model)}</span>
+      <span class="gap"></span>
+      <span class=${note?.kind === 'failed' ? 'failed' : 'quiet'} role="status">${note?.text ?? ''}</span>
+      <span class="group">
+        ${this.#adopt(model)}
+        <button
+          class="main"
+          ?disabled=${open.abilities.build !== true || this.busy !== null}
+          title=${open.abilities.build === true ? t('Writes every level and target of this texture') : open.abilities.build}
+          @click=${() => this.#do(model, 'build', null)}
+        >
+          ${this.busy === 'build' ? t('Building …') : t('Build')}
+        </button>
+      </span>
+      ${typeof open.abilities.build === 'string' ? html`<span class="quiet why">${open.abilities.build}</span>` : nothing}
+    `;
+  }
+
+  #facts(model: Model): string {
+    const { header, treatment } = model;
+    const words = [t('{depth} bits', { depth: header!.depth }), CHANNELS[header!.channels]()];
+    if (header!.indexed !== null) words.push(t('palette of {count}', { count: header!.indexed.palette.length / 4 }));
+    if (treatment === null) return words.join(', ');
+    words.push(treatment.content);
+    if (header!.channels % 2 === 0 && treatment.alpha.use === 'mask') {
+      words.push(t('mask at {cutoff}', { cutoff: treatment.alpha.cutoff }));
+    }
+    return words.join(', ');
+  }
+
+  #treatment(model: Model) {
+    const { settings } = model;
+    if (settings === null) return nothing;
+    const globs = settings.matching?.globs.join(', ');
+    const text =
+      settings.file === null ? t('no settings file') : (globs ?? t('defaults of {file}', { file: settings.file }));
+    return html`<span><span class="quiet">${t('treatment')}</span> <button
+      class="link"
+      title=${t('Show the settings that apply')}
+      @click=${() => this.#do(model, 'showSettings', { key: null })}
+    >
+      ${text}
+    </button></span>`;
+  }
+
+  #adopt(model: Model) {
+    const settings = adoptable(model.slot);
+    const able = model.open!.abilities.adopt;
+    if (model.slot.id === 0 || Object.keys(settings).length === 0) return nothing;
+    const why = able === true ? '' : able;
+    const { matching } = model.settings!;
+    const change = (scope: AdoptChange['scope']) => this.#do(model, 'adopt', { scope, settings });
+    return html`
+      <button ?disabled=${able !== true || this.busy !== null} title=${why} @click=${() => change('file')}>
+        ${t('Adopt for this file only')}
+      </button>
+      ${
+        matching === null
+          ? nothing
+          : html`<button ?disabled=${able !== true || this.busy !== null} title=${why} @click=${() => change('matching')}>
+              ${
+                matching.textures === 1
+                  ? t('Adopt for {globs}, 1 file', { globs: matching.globs.join(', ') })
+                  : t('Adopt for {globs}, {count} files', {
+                      globs: matching.globs.join(', '),
+                      count: matching.textures,
+                    })
+              }
+            </button>`
+      }
+    `;
+  }
+
+  async #do<K extends 'build' | 'adopt' | 'showSettings'>(model: Model, call: K, question: Question<K>): Promise<void> {
+    this.busy = call;
+    const { reply } = await model.link.ask(call, question);
+    this.busy = null;
+    if ('problem' in reply) model.say({ text: say(reply.problem), kind: 'failed' });
+    else model.say(call === 'showSettings' ? null : { text: doneWords(reply.ok), kind: 'said' });
+  }
+}
+
+customElements.define('top-bar', TopBar);
+
+const CHANNELS = {
+  1: () => t('grey'),
+  2: () => t('grey and alpha'),
+  3: () => 'RGB',
+  4: () => 'RGBA',
+} as const;
+
+function builtWords({ built }: Model): string {
+  switch (built.kind) {
+    case 'not-built':
+      return t('not built yet');
+    case 'built':
+      return t('built, up to date');
+    case 'stale':
+      return t('stale: {moved} changed since the build', { moved: built.moved.join(', ') });
+    case 'unknown':
+      return '';
+  }
+}
+
+function doneWords(done: object): string {
+  if ('path' in done) return t('Put into {path}, not saved yet.', { path: String(done.path) });
+  if (!('failed' in done)) return '';
+  const { built, unchanged, failed } = done as { built: number; unchanged: number; failed: number };
+  if (failed > 0) return t('The build failed.');
+  return built > 0 ? t('Built.') : unchanged > 0 ? t('Nothing had changed.') : t('Nothing to build.');
+}
