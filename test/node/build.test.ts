@@ -267,6 +267,22 @@ test('a disk that fills up stops one texture after the other, and keeps what was
     if (name.startsWith('built')) expect(text).toBe(before[name]);
 });
 
+test('a disk that fills up amid the files of a texture has none of them left', async () => {
+  const folder = threeTextures();
+  let writes = 0;
+  const disk = faultyDisk((name) => (name === 'write' && writes++ % 3 === 2 ? 'full' : null));
+  const report = await build(folder, { disk });
+  expect(new Set(report.problems.map((each) => each.code))).toEqual(new Set(['disk-full']));
+  for (const name of Object.keys(filesBelow(folder))) expect(name).not.toMatch(/\.(tmp|next)$/);
+});
+
+test('what is too large is refused before it waits for memory', async () => {
+  const folder = threeTextures();
+  let asked = 0;
+  const report = await build(folder, { options: { memoryBytes: 300 }, admitting: () => asked++ });
+  expect([report.problems.length, asked]).toEqual([3, 0]);
+});
+
 test('a pointer where an image should be is said to be one', async () => {
   const folder = threeTextures();
   const { sha256 } = await import('../manifest/sample.ts');

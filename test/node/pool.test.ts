@@ -34,6 +34,7 @@ parentPort.on('message', async (message) => {
   if (texture.startsWith('throw')) setTimeout(() => { throw new Error('as told'); });
   if (texture.startsWith('throw')) return;
   parentPort.postMessage({ kind: 'admit', peakBytes: memoryBytes });
+  if (texture.startsWith('impatient')) setTimeout(() => process.exit(5), 5);
   await new Promise((enter) => { admitted = enter; });
   if (texture.startsWith('late')) process.exit(4);
   appendFileSync(new URL('./log', import.meta.url), '+' + memoryBytes + '\\n');
@@ -95,6 +96,11 @@ test.each(['exit', 'throw', 'late'])('a worker that ends (%s) takes its own job 
   });
   expect(said.map((each) => each?.split(' ')[0])).toEqual(['stale', 'worker-ended', 'stale', 'worker-ended', 'stale']);
   expect(said[1]).toMatch(/exit code|as told/);
+});
+
+test('a worker that ends while it waits for memory leaves none of it taken', async () => {
+  const { said } = await run([job('a', 900), job('impatient', 900), job('b', 900), job('c', 900)], { workers: 2 });
+  expect(said.map((each) => each?.split(' ')[0])).toEqual(['stale', 'worker-ended', 'stale', 'stale']);
 });
 
 test('jobs that have not begun when work is called off are not begun', async () => {

@@ -28,6 +28,8 @@ export interface Setting {
   /** Counts what is inflated. */
   readonly inflate?: Inflate;
   readonly isCancelled?: () => boolean;
+  /** Told when a job asks for memory. */
+  readonly admitting?: () => void;
   /** In place of running jobs here. */
   readonly run?: RunJobs;
 }
@@ -78,7 +80,8 @@ function toolsOf(setting: Setting) {
   return { disk, run: setting.run ?? runHere(disk, setting), isCancelled };
 }
 
-function runHere(disk: Disk, { inflate = nodePorts.inflate, isCancelled = () => false }: Setting): RunJobs {
+function runHere(disk: Disk, setting: Setting): RunJobs {
+  const { inflate = nodePorts.inflate, isCancelled = () => false, admitting = () => undefined } = setting;
   const cancel = {
     get cancelled() {
       return isCancelled();
@@ -91,7 +94,7 @@ function runHere(disk: Disk, { inflate = nodePorts.inflate, isCancelled = () => 
     cancel,
     buildTexture,
     planJob,
-    admit: async () => undefined,
+    admit: async () => admitting(),
     wait: async () => undefined,
   };
   return async (jobs, done) => {
