@@ -33,12 +33,13 @@ parentPort.on('message', async (message) => {
   if (texture.startsWith('exit')) process.exit(3);
   if (texture.startsWith('throw')) setTimeout(() => { throw new Error('as told'); });
   if (texture.startsWith('throw')) return;
+  if (texture.startsWith('impatient')) await new Promise((done) => setTimeout(done, 300));
   parentPort.postMessage({ kind: 'admit', peakBytes: memoryBytes });
-  if (texture.startsWith('impatient')) setTimeout(() => process.exit(5), 5);
+  if (texture.startsWith('impatient')) setTimeout(() => process.exit(5), 20);
   await new Promise((enter) => { admitted = enter; });
   if (texture.startsWith('late')) process.exit(4);
   appendFileSync(new URL('./log', import.meta.url), '+' + memoryBytes + '\\n');
-  await new Promise((done) => setTimeout(done, 20));
+  await new Promise((done) => setTimeout(done, texture.startsWith('long') ? 1000 : 20));
   appendFileSync(new URL('./log', import.meta.url), '-' + memoryBytes + '\\n');
   parentPort.postMessage({ kind: 'done', outcome: { kind: 'failed', problem: { code: 'stale', severity: 'error', values: { what: texture } } } });
 });
@@ -99,7 +100,7 @@ test.each(['exit', 'throw', 'late'])('a worker that ends (%s) takes its own job 
 });
 
 test('a worker that ends while it waits for memory leaves none of it taken', async () => {
-  const { said } = await run([job('a', 900), job('impatient', 900), job('b', 900), job('c', 900)], { workers: 2 });
+  const { said } = await run([job('long', 900), job('impatient', 900), job('b', 900), job('c', 900)], { workers: 2 });
   expect(said.map((each) => each?.split(' ')[0])).toEqual(['stale', 'worker-ended', 'stale', 'stale']);
 });
 
