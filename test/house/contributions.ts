@@ -4,9 +4,11 @@ import { textBundle, textsIn } from './texts.ts';
 
 // Writes what package.json refers to and code makes: the schema that editors complete the settings file by, and the texts that
 // translators start from. The build runs this from the top.
-const sources = readdirSync('extension/app', { recursive: true, encoding: 'utf8' })
-  .filter((name) => name.endsWith('.ts'))
-  .map((name) => readFileSync(`extension/app/${name}`, 'utf8'));
+const sources = ['extension/app', 'webview/page'].flatMap((room) =>
+  readdirSync(room, { recursive: true, encoding: 'utf8' })
+    .filter((name) => name.endsWith('.ts'))
+    .map((name) => readFileSync(`${room}/${name}`, 'utf8')),
+);
 
 mkdirSync('dist/l10n', { recursive: true });
 writeFileSync('dist/sizeproof.schema.json', `${JSON.stringify(openSchema())}\n`);

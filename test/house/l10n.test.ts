@@ -5,13 +5,13 @@ import { describe, expect, test } from 'vitest';
 import { textBundle, textsIn } from './texts.ts';
 import { placeOf, readSources, type Source, top, walkSyntax } from './tree.ts';
 
-const app = readSources('extension/app');
+const sources = readSources('extension/app', 'webview/page');
 
-test('every text that the app says is found for translators', () => {
-  const said = app.flatMap(sayings);
+test('every text that the app and the page say is found for translators', () => {
+  const said = sources.flatMap(sayings);
   expect(said.length).toBeGreaterThan(20);
   expect(said.filter((each) => each.text === null).map((each) => each.place)).toEqual([]);
-  const found = new Set(app.flatMap((each) => textsIn(each.text)));
+  const found = new Set(sources.flatMap((each) => textsIn(each.text)));
   expect(said.filter((each) => !found.has(each.text as string))).toEqual([]);
 });
 
@@ -32,11 +32,11 @@ describe('package.nls.json', () => {
   });
 });
 
-/** The first argument of each call of `l10n.t`; null where it is neither a literal nor a template of words.ts. */
+/** The first argument of each call of `l10n.t` or `t`; null where it is neither a literal nor a template of words.ts. */
 function sayings(source: Source): { readonly place: string; readonly text: string | null }[] {
   const found: { place: string; text: string | null }[] = [];
   walkSyntax(source, (node) => {
-    if (!ts.isCallExpression(node) || !node.expression.getText().endsWith('l10n.t')) return;
+    if (!ts.isCallExpression(node) || !/^(vscode\.l10n\.)?t$/.test(node.expression.getText())) return;
     const [first] = node.arguments;
     if (first.getText() === 'words[code]') return;
     found.push({ place: placeOf(source, node), text: ts.isStringLiteralLike(first) ? first.text : null });

@@ -1,8 +1,8 @@
 import { words } from '../../core/words.ts';
 
-/** English texts that a source gives to `l10n.t`. They are literals, or the host could not know them. */
+/** English texts that a source gives to `l10n.t`, or a page to its own `t`. They are literals, or the host could not know them. */
 export function textsIn(source: string): string[] {
-  const calls = source.matchAll(/l10n\.t\(\s*('(?:[^'\\]|\\.)*'|"(?:[^"\\]|\\.)*")/g);
+  const calls = source.matchAll(/(?<![\w.])(?:vscode\.l10n\.)?t\(\s*('(?:[^'\\]|\\.)*'|"(?:[^"\\]|\\.)*")/g);
   return [...calls].map(([, literal]) => literal.slice(1, -1).replace(/\\(.)/g, '$1'));
 }
 

@@ -30,14 +30,15 @@ export async function adopt(resource: vscode.Uri, change: AdoptChange, platform:
   const edit = new vscode.WorkspaceEdit();
   edit.replace(uri, range, found.text);
   await vscode.workspace.applyEdit(edit);
-  const end = document.positionAt(found.offset + found.text.length);
+  const lead = found.text.length - found.text.trimStart().length;
+  const [start, end] = [lead, found.text.trimEnd().length].map((at) => document.positionAt(found.offset + at));
   await vscode.window.showTextDocument(document, {
     viewColumn: vscode.ViewColumn.Beside,
     preserveFocus: true,
     preview: false,
-    selection: new vscode.Range(range.start, end),
+    selection: new vscode.Range(start, end),
   });
-  return { path: pathOf(uri) };
+  return { path: vscode.workspace.asRelativePath(uri) };
 }
 
 /** A settings file that says nothing yet: what is adopted is not saved for the user, but it needs a file to be typed into. */

@@ -79,10 +79,10 @@ export class ViewBar extends LitElement {
       ${state.show === 'overshoot' ? html`<span class="quiet">${t('/ above, \\ below, × clipped')}</span>` : nothing}
       ${
         showsBackdropChoice(model)
-          ? this.#choice(t('Backdrop'), state.backdrop, BACKDROP_NAMES, (backdrop) => model.set({ backdrop }))
+          ? this.#choice(t('Backdrop'), state.backdrop, backdropNames(), (backdrop) => model.set({ backdrop }))
           : nothing
       }
-      ${this.#choice(t('Texels'), state.magnify, MAGNIFY_NAMES, (magnify) => model.set({ magnify }))}
+      ${this.#choice(t('Texels'), state.magnify, magnifyNames(), (magnify) => model.set({ magnify }))}
       <button
         aria-pressed=${state.tiles}
         title=${t('Nine copies, as a repeating surface shows them')}
@@ -90,11 +90,11 @@ export class ViewBar extends LitElement {
       >
         3×3
       </button>
-      ${this.#choice(t('Compare'), state.compare, COMPARE_NAMES, (compare) => model.set({ compare }))}
+      ${this.#choice(t('Compare'), state.compare, compareNames(), (compare) => model.set({ compare }))}
       ${
         state.compare === 'beside'
           ? nothing
-          : this.#choice(t('with'), state.partner, AGAINST_NAMES, (partner) => model.set({ partner }))
+          : this.#choice(t('with'), state.partner, againstNames(), (partner) => model.set({ partner }))
       }
       ${
         state.compare === 'swap'
@@ -133,7 +133,7 @@ export class ViewBar extends LitElement {
     const metrics = [['oklab', t('OKLab distance')], ...channels.map((each) => [each, each.toUpperCase()])];
     const most = metric === 'oklab' ? OKLAB_SCALE.toFixed(2) : `+${CODE_SCALE}`;
     return html`
-      ${this.#choice(t('from'), against, AGAINST_NAMES, (next) => model.set({ against: next }))}
+      ${this.#choice(t('from'), against, againstNames(), (next) => model.set({ against: next }))}
       ${this.#choice(t('in'), metric, metrics as [State['metric'], string][], (next) => model.set({ metric: next }))}
       <span class="group number quiet">
         ${metric === 'oklab' ? '0' : `−${CODE_SCALE}`}
@@ -184,7 +184,7 @@ export class ViewBar extends LitElement {
     return html`<label>
       <span class="quiet">${name}</span>
       <select .value=${value} @change=${(event: Event) => choose((event.target as HTMLSelectElement).value as T)}>
-        ${choices.map(([each, text]) => html`<option value=${each} ?selected=${each === value}>${t(text)}</option>`)}
+        ${choices.map(([each, text]) => html`<option value=${each} ?selected=${each === value}>${text}</option>`)}
       </select>
     </label>`;
   }
@@ -202,28 +202,32 @@ export class ViewBar extends LitElement {
 
 customElements.define('view-bar', ViewBar);
 
-const BACKDROP_NAMES = [
-  ['checker', 'checker'],
-  ['black', 'black'],
-  ['gray', 'gray'],
-  ['white', 'white'],
-] as const;
+const backdropNames = () =>
+  [
+    ['checker', t('checker')],
+    ['black', t('black')],
+    ['gray', t('gray')],
+    ['white', t('white')],
+  ] as const;
 
-const MAGNIFY_NAMES = [
-  ['nearest', 'crisp'],
-  ['bilinear', 'bilinear'],
-] as const;
+const magnifyNames = () =>
+  [
+    ['nearest', t('crisp')],
+    ['bilinear', t('bilinear')],
+  ] as const;
 
-const COMPARE_NAMES = [
-  ['beside', 'side by side'],
-  ['divider', 'divider'],
-  ['swap', 'swap'],
-] as const;
+const compareNames = () =>
+  [
+    ['beside', t('side by side')],
+    ['divider', t('divider')],
+    ['swap', t('swap')],
+  ] as const;
 
-const AGAINST_NAMES = [
-  ['source', 'source, area mean'],
-  ['settings', 'settings’ print'],
-] as const;
+const againstNames = () =>
+  [
+    ['source', t('source, area mean')],
+    ['settings', t('settings’ print')],
+  ] as const;
 
 function viewsOf(model: Model): readonly (readonly [Show, string])[] {
   const { header, treatment } = model;
@@ -232,18 +236,18 @@ function viewsOf(model: Model): readonly (readonly [Show, string])[] {
   const letters: readonly Show[] = channels >= 3 ? ['r', 'g', 'b'] : [];
   const normal = treatment?.content === 'normal' || Object.values(treatment?.channels ?? {}).includes('normal');
   return [
-    ['color', treatment?.content === 'color' ? 'color' : 'codes'],
-    ...(normal ? ([['lit', 'lit by a lamp']] as const) : []),
-    ...(treatment?.alpha.use === 'mask' && hasAlpha ? ([['mask', 'mask at cutoff']] as const) : []),
+    ['color', treatment?.content === 'color' ? t('color') : t('codes')],
+    ...(normal ? ([['lit', t('lit by a lamp')]] as const) : []),
+    ...(treatment?.alpha.use === 'mask' && hasAlpha ? ([['mask', t('mask at cutoff')]] as const) : []),
     ...(hasAlpha
       ? ([
-          ['a', 'alpha'],
-          ['bare', 'color without alpha'],
+          ['a', t('alpha')],
+          ['bare', t('color without alpha')],
         ] as const)
       : []),
-    ...letters.map((each) => [each, `channel ${each}`] as const),
-    ['overshoot', 'overshoot'],
-    ['difference', 'difference'],
+    ...letters.map((each) => [each, t('channel {letter}', { letter: each })] as const),
+    ['overshoot', t('overshoot')],
+    ['difference', t('difference')],
   ];
 }
 
