@@ -15,8 +15,8 @@ const CHROMIUM: Pinned = {
 };
 
 /** Starts a browser: the one that the variable CHROMIUM names, else one that is installed, else the package's. It reaches this
- *  machine alone. */
-export async function launchBrowser(): Promise<Browser> {
+ *  machine alone. `more` are arguments for Chromium. */
+export async function launchBrowser(more: readonly string[] = []): Promise<Browser> {
   const { executablePath, env } = await findBrowser();
   return chromium.launch({
     executablePath,
@@ -33,6 +33,7 @@ export async function launchBrowser(): Promise<Browser> {
       '--disable-component-update',
       '--disable-sync',
       '--host-resolver-rules=MAP * ~NOTFOUND, EXCLUDE 127.0.0.1, EXCLUDE *.localhost',
+      ...more,
     ],
   });
 }

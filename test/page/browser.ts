@@ -19,7 +19,8 @@ const POLICY = [
 ].join('; ');
 
 export interface Showing {
-  readonly ratio?: number;
+  /** `own` takes the browser's window as it is. */
+  readonly window?: 'own';
   readonly width?: number;
   readonly height?: number;
   readonly theme?: ThemeName;
@@ -33,10 +34,10 @@ export async function showPage(
   recording: Recording,
   showing: Showing = {},
 ): Promise<{ readonly page: Page; readonly context: BrowserContext }> {
-  const { ratio = 1, width = 1280, height = 900, theme = 'dark' } = showing;
+  const { width = 1280, height = 900, theme = 'dark' } = showing;
   const context = await browser.newContext({
-    deviceScaleFactor: ratio,
-    viewport: { width, height },
+    // A browser of another device scale has a window of its own; emulating the scale would not snap boxes as it does.
+    viewport: showing.window === 'own' ? null : { width, height },
     reducedMotion: showing.reducedMotion ?? 'no-preference',
     forcedColors: showing.forcedColors ?? 'none',
   });

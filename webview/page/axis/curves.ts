@@ -1,69 +1,75 @@
+import { findKernel } from '../../../core/kernel/table.ts';
 import type { PrintStats } from '../../../core/proof/want.ts';
 import type { Model } from '../proof/model.ts';
 import { light, percent } from '../words/figures.ts';
 import { t } from '../words/t.ts';
 import type { Curve } from './curve.ts';
 
-/** The curves that the texture has: what should not move from level to level, and what should stay under a limit. */
+/** The curves that a texture has by its treatment: what should not move from level to level, and what should stay under a limit.
+ *  Their rows stand before there is anything to draw in them, so that nothing moves when there is. */
 export function curvesOf(model: Model): readonly Curve[] {
-  const answer = model.levels();
-  const { treatment } = model;
-  if (answer === null || treatment === null) return [];
-  const { levels } = answer;
-  const points = (of: (stats: PrintStats) => number | null) =>
-    levels.flatMap(({ level, stats }) => {
-      const value = of(stats);
-      return value === null ? [] : [{ lod: level, value }];
-    });
+  const { treatment, header } = model;
+  if (treatment === null || header === null) return [];
+  const normal = treatment.content === 'normal' || Object.values(treatment.channels ?? {}).includes('normal');
   const curves: Curve[] = [];
-  const coverage = points((stats) => stats.coverage);
-  if (coverage.length > 0) {
-    const { thinning } = treatment.limits;
-    curves.push({
-      name: t('coverage'),
-      points: coverage,
-      low: Math.max(0, coverage[0].value - 0.1),
-      high: Math.min(1, coverage[0].value + 0.1),
-      floor: thinning === null ? null : coverage[0].value * (1 - thinning),
-      ceiling: null,
-      format: percent,
-    });
-  }
-  const luminance = points((stats) => stats.luminance);
-  if (luminance.length > 0) {
-    const [{ value: base }] = luminance;
-    curves.push({
-      name: t('luminance'),
-      points: luminance,
-      low: base * 0.9,
-      high: base * 1.1 || 0.1,
-      floor: null,
-      ceiling: null,
-      format: light,
-    });
-  }
-  const lengths = points((stats) => stats.normalLength);
-  if (lengths.length > 0) {
-    curves.push({
-      name: t('normal length'),
-      points: lengths,
-      low: 0.8,
-      high: 1,
-      floor: null,
-      ceiling: null,
-      format: light,
-    });
-  }
-  if (answer.halo.some(({ worst }) => worst > 0)) {
-    curves.push({
-      name: t('halo'),
-      points: [{ lod: 0, value: 0 }, ...answer.halo.map(({ level, worst }) => ({ lod: level, value: worst }))],
-      low: 0,
-      high: 16,
-      floor: null,
-      ceiling: treatment.limits.halo,
-      format: (value) => value.toFixed(1),
-    });
-  }
+  if (treatment.alpha.use === 'mask' && header.channels % 2 === 0) curves.push(coverageCurve(model));
+  if (treatment.content === 'color' && !normal) curves.push(luminanceCurve(model));
+  if (normal) curves.push(lengthCurve(model));
+  else if (findKernel(treatment.kernel.minify.name)?.kind === 'weights') curves.push(haloCurve(model));
   return curves;
+}
+
+function coverageCurve(model: Model): Curve {
+  const points = pointsOf(model, (stats) => stats.coverage);
+  const base = points[0]?.value ?? 0;
+  const { thinning } = model.treatment!.limits;
+  return {
+    name: t('coverage'),
+    points,
+    low: Math.max(0, base - 0.1),
+    high: Math.min(1, base + 0.1),
+    floor: thinning === null || points.length === 0 ? null : base * (1 - thinning),
+    ceiling: null,
+    format: percent,
+  };
+}
+
+function luminanceCurve(model: Model): Curve {
+  const points = pointsOf(model, (stats) => stats.luminance);
+  const base = points[0]?.value ?? 0;
+  return {
+    name: t('luminance'),
+    points,
+    low: base * 0.9,
+    high: base * 1.1 || 0.1,
+    floor: null,
+    ceiling: null,
+    format: light,
+  };
+}
+
+function lengthCurve(model: Model): Curve {
+  const points = pointsOf(model, (stats) => stats.normalLength);
+  return { name: t('normal length'), points, low: 0.8, high: 1, floor: null, ceiling: null, format: light };
+}
+
+function haloCurve(model: Model): Curve {
+  const halo = model.levels()?.halo ?? null;
+  const points = halo?.map(({ level, worst }) => ({ lod: level, value: worst })) ?? [];
+  return {
+    name: t('halo'),
+    points: halo === null ? [] : [{ lod: 0, value: 0 }, ...points],
+    low: 0,
+    high: 16,
+    floor: null,
+    ceiling: model.treatment!.limits.halo,
+    format: (value) => value.toFixed(1),
+  };
+}
+
+function pointsOf(model: Model, of: (stats: PrintStats) => number | null): Curve['points'] {
+  return (model.levels()?.levels ?? []).flatMap(({ level, stats }) => {
+    const value = of(stats);
+    return value === null ? [] : [{ lod: level, value }];
+  });
 }

@@ -85,6 +85,9 @@ export const cardStyles = css`
     min-height: 27px;
     align-content: start;
   }
+  footer.tall {
+    min-height: 42px;
+  }
   .figure b {
     font-weight: 400;
   }

@@ -31,6 +31,8 @@ export interface CardFacts {
   /** How its pixels compare with what was built; null where that is not known. */
   readonly built: string | null;
   readonly pixels: string;
+  /** Whether there will be two lines of figures. */
+  readonly tall: boolean;
 }
 
 /** What was done to a print's own controls. */
@@ -76,7 +78,7 @@ export class PrintCard extends LitElement {
         }
       </header>
       <print-stage .scene=${scene} data-pixels=${facts.pixels}></print-stage>
-      <footer>
+      <footer class=${facts.tall ? 'tall' : ''}>
         ${
           status !== null
             ? html`<span class=${failed ? 'failed' : 'quiet'} role=${failed ? 'alert' : nothing}>${status}</span>`

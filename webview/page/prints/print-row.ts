@@ -116,6 +116,7 @@ export class PrintRow extends LitElement {
       changes: changeWords(slot.change),
       built: slot.id === 0 && print !== null ? builtWords(model, print) : null,
       pixels: print?.pixels ?? '',
+      tall: treatment.alpha.use === 'mask' && model.header!.channels % 2 === 0,
     };
   }
 
