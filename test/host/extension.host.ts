@@ -4,7 +4,6 @@ import { build } from 'esbuild';
 import { describe, expect, test } from 'vitest';
 import { top } from '../house/tree.ts';
 import { launchBrowser } from './browser.ts';
-import { run } from './process.ts';
 import { type Host, startHost } from './server.ts';
 import { isLeftOut, namesOfTests } from './skip.ts';
 import type { Outcome } from './suite/runner.ts';
@@ -35,18 +34,15 @@ async function runSuite(): Promise<readonly Outcome[]> {
   const vsix = await packVsix(folder);
   const file = join(folder, 'outcomes.json');
   rmSync(file, { force: true });
-  const host = await startHost({ trust: 'everything', env: { SIZEPROOF_OUTCOMES: file } });
+  const host = await startHost({ vsix, trust: 'everything', env: { SIZEPROOF_OUTCOMES: file } });
   try {
-    return await runIn(host, vsix, file);
+    return await runIn(host, file);
   } finally {
     await host.stop();
   }
 }
 
-async function runIn(host: Host, vsix: string, file: string): Promise<readonly Outcome[]> {
-  // What is packed is what is tested.
-  const extension = join(host.folder, 'unpacked');
-  await run('unzip', ['-q', vsix, '-d', extension], host.folder);
+async function runIn(host: Host, file: string): Promise<readonly Outcome[]> {
   const suite = join(host.folder, 'suite.cjs');
   await build({
     entryPoints: [join(top, 'test', 'host', 'suite', 'main.ts')],
@@ -66,7 +62,8 @@ async function runIn(host: Host, vsix: string, file: string): Promise<readonly O
     });
     await page.goto(
       host.url(makeWorkspace(join(host.folder, 'ws')), [
-        ['extensionDevelopmentPath', host.remote(join(extension, 'extension'))],
+        // What is packed is what is tested.
+        ['extensionDevelopmentPath', host.remote(host.extension())],
         ['extensionTestsPath', host.remote(suite)],
       ]),
     );

@@ -1,5 +1,5 @@
 import { type ChildProcess, spawn } from 'node:child_process';
-import { mkdirSync, mkdtempSync, rmSync, writeFileSync } from 'node:fs';
+import { mkdirSync, mkdtempSync, readdirSync, rmSync, writeFileSync } from 'node:fs';
 import { createServer } from 'node:net';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
@@ -13,6 +13,8 @@ export interface Host {
   readonly folder: string;
   /** The workbench's address with a folder opened. */
   url(folder: string, payload?: readonly (readonly [string, string])[]): string;
+  /** Where the VSIX was installed. */
+  extension(): string;
   /** A file as the workbench calls it. */
   remote(file: string): string;
   stop(): Promise<void>;
@@ -42,6 +44,7 @@ const QUIET_SETTINGS = {
   'extensions.ignoreRecommendations': true,
   'telemetry.telemetryLevel': 'off',
   'git.autofetch': false,
+  'files.autoSave': 'off',
 };
 
 export async function startHost({ vsix, settings = {}, env: more = {}, trust }: HostOptions): Promise<Host> {
@@ -82,6 +85,11 @@ export async function startHost({ vsix, settings = {}, env: more = {}, trust }: 
   return {
     port,
     folder,
+    extension() {
+      const name = readdirSync(extensions).find((each) => each.startsWith('sizeproof.'));
+      if (name === undefined) throw new Error('Expected the extension among those installed');
+      return join(extensions, name);
+    },
     remote: (file) => `vscode-remote://${authority}${file}`,
     url: (opened, payload = []) => {
       const all = JSON.stringify([['skipWelcome', 'true'], ['skipReleaseNotes', 'true'], ...payload]);

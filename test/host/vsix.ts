@@ -19,9 +19,3 @@ export async function packVsix(folder: string): Promise<string> {
   await run(process.execPath, [vsce, ...options], top);
   return file;
 }
-
-/** Paths of the files in a VSIX, which is a zip archive. */
-export async function filesInVsix(file: string): Promise<string[]> {
-  const listed = await run('unzip', ['-Z1', file], top);
-  return listed.trim().split('\n').sort();
-}

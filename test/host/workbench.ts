@@ -52,6 +52,11 @@ export function choice(page: Page, text: string): Locator {
   return page.locator('.quick-input-list .monaco-list-row').filter({ hasText: text }).first();
 }
 
+/** A notification that holds a text. */
+export function toast(page: Page, text: string): Locator {
+  return page.locator('.notifications-toasts .notification-list-item-message').filter({ hasText: text }).first();
+}
+
 /** A row of the explorer. */
 export function explorerRow(page: Page, name: string): Locator {
   return page.locator(`.explorer-folders-view .monaco-list-row[aria-label^="${name}"]`);
@@ -60,4 +65,20 @@ export function explorerRow(page: Page, name: string): Locator {
 /** The document of the extension's own page, inside the host's two frames. */
 export function webviewOf(page: Page): FrameLocator {
   return page.frameLocator('iframe.webview.ready:visible').last().frameLocator('iframe#active-frame');
+}
+
+/** Picks from the extension's part of the explorer's menu. A menu that has only just opened takes no click, hence several tries. */
+export async function pickFromExplorer(page: Page, row: string, label: string): Promise<void> {
+  await explorerRow(page, row).click({ button: 'right' });
+  const menu = page.locator('.monaco-menu-container');
+  for (let tries = 1; ; tries++) {
+    try {
+      await page.getByRole('menuitem', { name: 'Sizeproof', exact: true }).hover({ timeout: STEP_MS });
+      await page.getByRole('menuitem', { name: label, exact: true }).click({ timeout: STEP_MS });
+      await menu.waitFor({ state: 'hidden', timeout: STEP_MS });
+      return;
+    } catch (error) {
+      if (tries >= TRIES) throw error;
+    }
+  }
 }

@@ -10,8 +10,9 @@ import { settleUnsavedSettings } from './unsaved.ts';
 
 export type BuildKind = 'build' | 'prune' | 'rebuild';
 
-/** `shown` has progress and a message at its end; `quiet` speaks of errors alone. */
-export type Manner = 'shown' | 'quiet';
+/** `shown` has progress and a message at its end. `asked` comes from a page that shows both itself; `quiet` from nobody. These two
+ *  speak of errors alone. */
+export type Manner = 'shown' | 'asked' | 'quiet';
 
 /** Where builds and checks are ordered, one after another: two builds at once would race for the same outputs. */
 export class BuildDesk {
@@ -32,7 +33,7 @@ export class BuildDesk {
   /** Builds files or folders. Null where nothing could begin. */
   async build(kind: BuildKind, resources: readonly vscode.Uri[], manner: Manner): Promise<BuildReport | null> {
     const opened = this.#open('writes', resources);
-    if (opened === null || (manner === 'shown' && !(await settleUnsavedSettings()))) return null;
+    if (opened === null || (manner !== 'quiet' && !(await settleUnsavedSettings()))) return null;
     const { door, order } = opened;
     const title = vscode.l10n.t('Building textures');
     const report = await this.#queue(() =>
@@ -96,7 +97,7 @@ export class BuildDesk {
       else this.#log.info(text);
     }
     this.#log.info(summary);
-    if (manner === 'quiet' && worst !== 'error') return;
+    if (manner !== 'shown' && worst !== 'error') return;
     const showLog = vscode.l10n.t('Show Log');
     const say = worst === 'error' ? vscode.window.showWarningMessage : vscode.window.showInformationMessage;
     void say(summary, showLog).then((chosen) => {

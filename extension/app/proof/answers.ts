@@ -40,7 +40,7 @@ export function answersFor(
     async build() {
       const opened = doorFor('writes', uri, platform);
       if ('problem' in opened) throw new Refusal(opened.problem);
-      const report = await desk.build('build', [uri], 'shown');
+      const report = await desk.build('build', [uri], 'asked');
       return report === null ? { built: 0, unchanged: 0, failed: 0 } : countBuild(report);
     },
     adopt: (change) => adopt(uri, change, platform),

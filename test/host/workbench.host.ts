@@ -1,0 +1,123 @@
+import { readdirSync, readFileSync, statSync } from 'node:fs';
+import { join } from 'node:path';
+import type { Browser, Page } from 'playwright-core';
+import { afterAll, afterEach, beforeAll, describe, expect, test } from 'vitest';
+import { top } from '../house/tree.ts';
+import { launchBrowser } from './browser.ts';
+import { type Host, startHost } from './server.ts';
+import { isLeftOut } from './skip.ts';
+import { packVsix } from './vsix.ts';
+import { explorerRow, newPage, openWorkbench, pickFromExplorer, runCommand, toast, webviewOf } from './workbench.ts';
+import { makeWorkspace } from './workspace.ts';
+
+/** Pictures of the last run, to be looked at. */
+const SHOTS = join(top, 'dist', 'test', 'host');
+
+/** What a user downloads, in bytes. */
+const MOST_BYTES = 2_000_000;
+
+describe.skipIf(isLeftOut)('the packed extension in a workbench', () => {
+  let host: Host;
+  let browser: Browser;
+  let page: Page;
+  let folder: string;
+  let vsix: string;
+
+  beforeAll(async () => {
+    vsix = await packVsix(SHOTS);
+    host = await startHost({
+      vsix,
+      trust: 'asked',
+      settings: { 'security.workspace.trust.startupPrompt': 'never', 'security.workspace.trust.banner': 'never' },
+    });
+    browser = await launchBrowser();
+    folder = makeWorkspace(join(host.folder, 'ws'));
+    page = await newPage(browser, host);
+    await openWorkbench(page, host.url(folder));
+  });
+
+  afterEach(async ({ task }) => {
+    await page?.screenshot({ path: join(SHOTS, `${task.name.replaceAll(/\W+/g, '-')}.png`) });
+  });
+
+  afterAll(async () => {
+    await browser?.close();
+    await host?.stop();
+  });
+
+  test('holds what it needs and no more', () => {
+    const files = readdirSync(host.extension(), { recursive: true, encoding: 'utf8' })
+      .filter((name) => statSync(join(host.extension(), name)).isFile())
+      .sort();
+    expect(files).toEqual([
+      '.vsixmanifest',
+      'LICENSE.txt',
+      'changelog.md',
+      'dist/cli.js',
+      'dist/extension.cjs',
+      'dist/l10n/bundle.l10n.json',
+      'dist/page/page.css',
+      'dist/page/page.js',
+      'dist/page/worker.js',
+      'dist/pool.worker.js',
+      'dist/sizeproof.schema.json',
+      'icon.png',
+      'package.json',
+      'package.nls.json',
+      'readme.md',
+    ]);
+    expect(statSync(vsix).size).toBeLessThan(MOST_BYTES);
+  });
+
+  test('an untrusted folder can be checked and not built, and it says why', async () => {
+    await runCommand(page, 'Sizeproof: Build Textures');
+    await toast(page, 'This workspace is not trusted').waitFor();
+    await runCommand(page, 'Notifications: Clear All Notifications');
+    await runCommand(page, 'Sizeproof: Check Textures');
+    await toast(page, '0 as built, 2 not').waitFor();
+    expect(readdirSync(folder).sort()).toEqual(['icon.png', 'leaf.png']);
+  });
+
+  test('once it is trusted, the explorer builds one texture', async () => {
+    await runCommand(page, 'Workspaces: Manage Workspace Trust');
+    await page
+      .locator('.workspace-trust-editor .monaco-button', { hasText: /^Trust/ })
+      .first()
+      .click();
+    await page.getByText('You trust this folder').waitFor();
+    await runCommand(page, 'Notifications: Clear All Notifications');
+    await pickFromExplorer(page, 'icon.png', 'Build Textures');
+    await toast(page, '1 built, 0 unchanged, 0 failed').waitFor();
+    expect(readdirSync(join(folder, 'built'))).toContain('icon.mips.json');
+  });
+
+  test('the palette opens a proof of the active image, which is painted', async () => {
+    await explorerRow(page, 'icon.png').dblclick();
+    await page.locator('.tab[data-resource-name="icon.png"]').waitFor();
+    await runCommand(page, 'Sizeproof: Open Proof');
+    const proof = webviewOf(page);
+    await proof.locator('print-card canvas').first().waitFor();
+    // It was built before.
+    await proof.locator('top-bar [data-built="built"]').waitFor();
+  });
+
+  test('a kernel is adopted beside the proof, built from it, and print and manifest agree by hash', async () => {
+    const proof = webviewOf(page);
+    await proof.getByLabel('Add a print by a kernel').selectOption('mitchell');
+    await proof.getByRole('button', { name: 'Adopt for this file only' }).click();
+    const settings = page.locator('.tab.dirty[data-resource-name="sizeproof.json"]');
+    await settings.waitFor();
+    await proof.locator('top-bar [data-built="stale"]').waitFor();
+    await proof.getByRole('button', { name: 'Build', exact: true }).click();
+    await proof.locator('top-bar [data-built="built"]').waitFor();
+    // A build saves what was typed, where nothing else is unsaved.
+    await settings.waitFor({ state: 'detached' });
+    const manifest = JSON.parse(readFileSync(join(folder, 'built', 'icon.mips.json'), 'utf8'));
+    expect(manifest.settings.kernel.minify.name).toBe('mitchell');
+    const field = proof.getByLabel('Level', { exact: true });
+    await field.fill('1');
+    await field.press('Enter');
+    const built = manifest.levels.find((each: { level: number }) => each.level === 1);
+    await proof.locator(`print-card print-stage[data-pixels="${built.pixels}"]`).first().waitFor();
+  });
+});
