@@ -17,9 +17,19 @@ const PAGE_BUNDLES = [
   { entry: 'webview/worker/worker.ts', file: 'dist/page/worker.js' },
 ];
 
+/** The SIMD engine's kernels, compiled; the bundles read it where it lies beside them. */
+const KERNELS = 'dist/engine.wasm';
+
+/** Memory is the host's, nothing is allocated by the kernels, and no check is left in them. */
+const KERNEL_FLAGS = [
+  ...['-O3', '--noAssert', '--uncheckedBehavior', 'always', '--runtime', 'stub', '--importMemory'],
+  ...['--enable', 'simd', '--enable', 'bulk-memory'],
+];
+
 /** Rooms with a tsconfig of their own. */
 const ROOMS = [
   'core',
+  'core/simd/kernels',
   'extension/node',
   'extension/cli',
   'extension/app',
@@ -30,7 +40,7 @@ const ROOMS = [
   'test',
 ];
 
-const COMMANDS = { start, test, build, types, lint, mutate, paint, schema, pack };
+const COMMANDS = { start, test, build, types, lint, mutate, paint, schema, kernels, pack };
 
 const nodeVersion = process.versions.node;
 if (Number(nodeVersion.split('.')[0]) < OLDEST_NODE_MAJOR) {
@@ -168,7 +178,32 @@ async function runSource(entry, rest) {
   return run([file, ...rest]);
 }
 
+/** Compiles core/simd/kernels, AssemblyScript, to one WebAssembly module, unless it came from these very sources. */
+async function kernels() {
+  await install('.');
+  const { createHash } = await import('node:crypto');
+  const { existsSync, mkdirSync, readdirSync, readFileSync, renameSync, writeFileSync } = await import('node:fs');
+  const folder = 'core/simd/kernels';
+  const sources = readdirSync(folder)
+    .filter((name) => name.endsWith('.ts'))
+    .map((name) => `${folder}/${name}`);
+  const hash = createHash('sha256').update(readFileSync('package-lock.json')).update(KERNEL_FLAGS.join(' '));
+  for (const source of sources) hash.update(readFileSync(source));
+  const stamp = `${hash.digest('hex')}\n`;
+  const stampFile = 'dist/house/engine.compiled-from';
+  if (existsSync(KERNELS) && existsSync(stampFile) && readFileSync(stampFile, 'utf8') === stamp) return 0;
+  mkdirSync('dist/house', { recursive: true });
+  // Others may be reading the former one.
+  const made = `${KERNELS}.${process.pid}`;
+  const code = await run(['node_modules/assemblyscript/bin/asc.js', ...sources, '-o', made, ...KERNEL_FLAGS]);
+  if (code !== 0) throw new Stop(`${folder} could not be compiled.`);
+  renameSync(made, KERNELS);
+  writeFileSync(stampFile, stamp);
+  return 0;
+}
+
 async function bundle() {
+  await kernels();
   const { chmodSync } = await import('node:fs');
   for (const each of BUNDLES) {
     await bundleOne(each);

@@ -38,7 +38,7 @@ export interface ChainOptions {
   readonly lengthsOf?: (image: PlannedLevel | PlannedTarget) => Float32Array | null;
 }
 
-/** Builds every level and target of an image in memory. Throws Refusal where the treatment does not fit the image. */
+/** Builds every level and target of an image in memory. Level 0 may share its codes with the source. Throws Refusal where the treatment does not fit the image. */
 export function buildChain(
   source: StraightRaster | IndexedRaster,
   treatment: Treatment,
@@ -47,6 +47,7 @@ export function buildChain(
   if (treatment.grid !== null) return buildSheet(source, treatment, options);
   const run = new ChainRun(headOf(source, options.gamma), treatment, options);
   if (source.kind === 'indexed') run.setPalette(source);
+  run.hold(source);
   const { width, height } = source.extent;
   const samples = source.kind === 'indexed' ? source.indices : source.codes;
   const row = source.kind === 'indexed' ? width : width * source.channels;
@@ -85,6 +86,11 @@ export class ChainRun {
     this.#palette = source;
   }
 
+  /** For a source that is in memory: rows are pushed as well, and not copied. */
+  hold(source: StraightRaster | IndexedRaster): void {
+    this.#base.hold(source);
+  }
+
   /** Rows of the source from the top, each once. */
   push(codes: Codes): void {
     if (this.#palette === null) {
@@ -100,10 +106,10 @@ export class ChainRun {
   }
 
   finish(): Chain {
-    if (this.#run === null) this.#replay();
+    const run = this.#run ?? this.#replay();
     const { plan } = this;
     const source = plan.keepsBase ? this.#base.raster(this.#palette) : null;
-    const images = finishImages(plan, draftImages(plan, source, this.#works), this.#base);
+    const images = finishImages(plan, draftImages(plan, source, this.#works), run);
     const lengths = new Map<PlannedLevel | PlannedTarget, Float32Array>();
     for (const [image, work] of this.#works) if (work.lengths !== null) lengths.set(image, work.lengths);
     return { images, notes: plan.notes, lengths, plan };
@@ -115,34 +121,40 @@ export class ChainRun {
     const encoding = encodingOf(plan);
     const outer = this.#options.lengthsOf;
     const alpha = plan.keepsCoverage ? 'kept' : 'dropped';
-    for (const image of nodes) this.#works.set(image, new ImageInWork(pictureExtent(image), encoding, { alpha }));
     const engine = this.#options.engine ?? plainEngine;
-    return engine.open(pass, (node, y, floats) => {
-      if (node === 0) return this.#base.sum(floats);
+    const run = engine.open(pass, (node, y, floats) => {
+      if (node === 0) return;
       const image = nodes[node - 1];
       const work = this.#works.get(image)!;
       const given = outer?.(image);
       const { width } = work.extent;
       work.take(y, floats, given?.subarray(y * width, (y + 1) * width) ?? lengthsOf(image, y));
     });
+    for (const image of nodes) {
+      this.#works.set(image, new ImageInWork(pictureExtent(image), encoding, { alpha }, run.coder));
+    }
+    return run;
   }
 
   /** Measures lengths from the kept base, then runs the chain over it. */
-  #replay(): void {
+  #replay(): RowsRun {
     const { plan } = this;
     const { nodes } = passOf(plan);
     const encoding = encodingOf(plan);
     const planes = new Map<PlannedLevel | PlannedTarget, ImageInWork>();
-    for (const image of nodes) planes.set(image, new ImageInWork(pictureExtent(image), encoding, { alpha: 'dropped' }));
     const engine = this.#options.engine ?? plainEngine;
     const measuring = engine.open(lengthPassOf(plan), (node, y, floats) => {
       if (node > 0) planes.get(nodes[node - 1])!.take(y, floats, null);
     });
+    for (const image of nodes) {
+      planes.set(image, new ImageInWork(pictureExtent(image), encoding, { alpha: 'dropped' }, measuring.coder));
+    }
     for (const row of this.#base.rows(this.#palette)) measuring.push(row);
     const run = this.#openPass((image, y) => {
       const plane = planes.get(image)!;
       return plane.lengths!.subarray(y * plane.extent.width, (y + 1) * plane.extent.width);
     });
     for (const row of this.#base.rows(this.#palette)) run.push(row);
+    return run;
   }
 }

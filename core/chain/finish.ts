@@ -1,31 +1,33 @@
 import { expandIndexed, maxCode, type Raster, type StraightRaster } from '../raster/raster.ts';
-import type { BaseImage } from './base.ts';
+import type { RowsRun } from '../resample/engine.ts';
 import { boundCodes } from './bounds.ts';
 import { placeInCell } from './cell.ts';
 import { type Clipped, newClipped } from './clip.ts';
+import { sumLight } from './coder.ts';
 import type { CoverageScale } from './coverage.ts';
 import type { Draft } from './draft.ts';
 import { fillFrom, fillWith } from './fill.ts';
-import { type ChainImage, ImageInWork, type LightSum, sumLight } from './image.ts';
+import { type ChainImage, ImageInWork, type LightSum } from './image.ts';
 import { holdsColor } from './layout.ts';
 import { coverageOf, keepCoverage } from './mask.ts';
 import { type ChainPlan, pictureExtent } from './plan.ts';
 import { encodingOf } from './store.ts';
 
-/** The level phase: coverage, then fill from the last level upward, then targets into their cells, then bounds. */
+/** The level phase: coverage, then fill from the last level upward, then targets into their cells, then bounds. `run` made
+ *  the rows. */
 export function finishImages(
   plan: ChainPlan,
   drafts: { readonly levels: readonly (Draft | null)[]; readonly targets: readonly Draft[] },
-  base: BaseImage,
+  run: Pick<RowsRun, 'sums' | 'sourceLight'>,
 ): readonly ChainImage[] {
   const scales = plan.keepsCoverage ? keepAll(plan, drafts) : new Map<Draft, CoverageScale>();
-  if (plan.fill !== 'none') fillAll(plan, drafts, base);
+  if (plan.fill !== 'none') fillAll(plan, drafts, run.sums());
   const images: ChainImage[] = [];
   for (const draft of drafts.levels) {
     if (draft !== null && 'shipped' in draft.planned && draft.planned.shipped)
-      images.push(imageOf(plan, draft, scales));
+      images.push(imageOf(plan, draft, scales, run));
   }
-  for (const draft of drafts.targets) images.push(imageOf(plan, draft, scales));
+  for (const draft of drafts.targets) images.push(imageOf(plan, draft, scales, run));
   return plan.treatment.height.minmax ? [...images, ...boundsOf(plan, drafts.levels)] : images;
 }
 
@@ -44,11 +46,11 @@ function keepAll(
 function fillAll(
   plan: ChainPlan,
   { levels, targets }: { readonly levels: readonly (Draft | null)[]; readonly targets: readonly Draft[] },
-  base: BaseImage,
+  sums: Float64Array,
 ): void {
   const alpha = plan.layout.alpha!;
   const wants = (draft: Draft): boolean => plan.fill === 'all' || !draft.moved;
-  const mean = meanTexel(plan, base);
+  const mean = meanTexel(plan, sums);
   for (let level = levels.length - 1; level >= 0; level--) {
     const draft = levels[level];
     if (draft === null || !wants(draft) || draft.raster.kind !== 'straight') continue;
@@ -72,22 +74,28 @@ function fillAll(
 }
 
 /** The mean colour of level 0, weighed by alpha; black where the whole image is transparent. */
-function meanTexel(plan: ChainPlan, base: BaseImage): StraightRaster {
+function meanTexel(plan: ChainPlan, sums: Float64Array): StraightRaster {
   const texels = plan.head.extent.width * plan.head.extent.height;
   const work = new ImageInWork({ width: 1, height: 1 }, encodingOf(plan), { alpha: 'dropped' });
   work.take(
     0,
-    Float32Array.from(base.sums, (sum) => sum / texels),
+    Float32Array.from(sums, (sum) => sum / texels),
     null,
   );
   return work.straight();
 }
 
-function imageOf(plan: ChainPlan, draft: Draft, scales: ReadonlyMap<Draft, CoverageScale>): ChainImage {
+function imageOf(
+  plan: ChainPlan,
+  draft: Draft,
+  scales: ReadonlyMap<Draft, CoverageScale>,
+  run: Pick<RowsRun, 'sourceLight'>,
+): ChainImage {
   const { planned, work, raster } = draft;
   const { layout, treatment } = plan;
   const scale = scales.get(draft);
-  const light = work === null ? codesLight(plan, raster) : work.light();
+  const measured = 'level' in planned && planned.level === 0 ? run.sourceLight() : null;
+  const light = work?.light() ?? measured ?? codesLight(plan, raster);
   const placed = 'place' in planned ? placeInCell(raster, planned.place, layout.alpha) : raster;
   const normalLength = layout.normals.length === 0 ? undefined : (work?.normalLength() ?? 1);
   return {

@@ -7,6 +7,7 @@ import { decodingOf } from './decoding.ts';
 import { type ChainHead, type Layout, planLayout } from './layout.ts';
 import { levelCount, levelExtent, type TargetPlace, targetPlace } from './levels.ts';
 import { type Method, methodOf, movesCodes } from './method.ts';
+import { encodingOf } from './store.ts';
 
 /** How codes are stored beyond what the treatment says: a KTX2 of 16-bit colour holds linear light. */
 export type Light = 'coded' | 'linear';
@@ -133,7 +134,8 @@ export function passOf(plan: ChainPlan): {
     nodes.push(target);
   }
   const { head, treatment, layout } = plan;
-  return { pass: { extent: head.extent, wrap: treatment.wrap, decoding: decodingOf(layout), steps }, nodes };
+  const [decoding, encoding] = [decodingOf(layout), encodingOf(plan)];
+  return { pass: { extent: head.extent, wrap: treatment.wrap, decoding, encoding, steps }, nodes };
 }
 
 /** The same steps with box weights, from level 0 each: what mean lengths of normals are measured with. */

@@ -1,3 +1,6 @@
+import type { Clipped } from '../chain/clip.ts';
+import type { Encoding } from '../chain/encode.ts';
+import type { LightSum } from '../chain/image.ts';
 import type { Taps } from '../kernel/taps.ts';
 import type { Codes, Depth, Extent } from '../raster/raster.ts';
 import type { Wrap } from '../treatment/treatment.ts';
@@ -9,7 +12,7 @@ import type { Wrap } from '../treatment/treatment.ts';
 export interface Decoding {
   readonly depth: Depth;
   readonly channels: number;
-  /** One value per code and channel; channels may share a table. */
+  /** One value per code and channel; channels may share a table. They are read when a pass is opened. */
   readonly tables: readonly Float32Array[];
   /** Channels multiplied by `alpha` after the table; none where `alpha` is null. */
   readonly weighted: readonly number[];
@@ -40,6 +43,8 @@ export interface Pass {
   readonly extent: Extent;
   readonly wrap: { readonly x: Wrap; readonly y: Wrap };
   readonly decoding: Decoding;
+  /** How rows will be stored, where they are: an engine may have a coder of its own for it. */
+  readonly encoding?: Encoding;
   readonly steps: readonly Step[];
 }
 
@@ -47,9 +52,32 @@ export interface Pass {
  *  order, starting anywhere. */
 export type RowSink = (node: number, y: number, floats: Float32Array) => void;
 
+/** What is done with finished rows. `floats` is always a row of the run that the coder belongs to, as its sink has it. */
+export interface RowCoder {
+  /** Stores the row in `codes` from sample `offset` on and counts what clamping changed. `lengths` are the mean lengths of the
+   *  normals over each texel, where there are any. */
+  encode(floats: Float32Array, codes: Codes, offset: number, clipped: Clipped, lengths: Float32Array | null): void;
+  /** Luminance of the row that `encode` has just stored there, weighed by the alpha it was stored from. */
+  light(floats: Float32Array, codes: Codes, offset: number): LightSum;
+  /** Alpha clamped to 0..1, 65535 is 1. */
+  keepAlpha(floats: Float32Array, values: Uint16Array): void;
+  /** Mean length of the normals over each texel, alpha taken out where it weighs them. */
+  measureLengths(floats: Float32Array, lengths: Float32Array): void;
+}
+
 export interface RowsRun {
+  /** The engine's own coder for the pass's encoding; null where the plain one is to be used. */
+  readonly coder: RowCoder | null;
   /** Rows of the source from the top, each once. */
   push(codes: Codes): void;
+  /** The same of a source that is floats already: `floatChannels` a texel. */
+  pushFloats(floats: Float32Array): void;
+  /** Sums of each float channel of the source over the rows so far, in double precision: each row by itself, rows from the
+   *  top. */
+  sums(): Float64Array;
+  /** Luminance of the source's own codes, weighed by their own alpha, summed over the rows so far texel by texel; null where the
+   *  engine does not measure it, or its rows are not those of level 0 as it is stored. */
+  sourceLight(): LightSum | null;
 }
 
 export interface Engine {

@@ -19,12 +19,16 @@ export const plainEngine: Engine = {
 };
 
 class PlainRun implements RowsRun {
+  /** The plain coder belongs to the chain. */
+  readonly coder = null;
   readonly #pass: Pass;
   readonly #source: NodeRow;
+  readonly #sums: Float64Array;
 
   constructor(pass: Pass, sink: RowSink) {
     this.#pass = pass;
     const channels = floatChannels(pass.decoding);
+    this.#sums = new Float64Array(channels);
     const nodes: NodeRow[] = [new NodeRow(0, pass.extent, channels, pass.wrap.x, 0, sink)];
     pass.steps.forEach((step, index) => {
       const from = nodes[step.from];
@@ -39,6 +43,30 @@ class PlainRun implements RowsRun {
 
   push(codes: Codes): void {
     decodeRow(this.#pass.decoding, codes, this.#source.floats);
+    this.#publish();
+  }
+
+  pushFloats(floats: Float32Array): void {
+    this.#source.floats.set(floats);
+    this.#publish();
+  }
+
+  sums(): Float64Array {
+    return this.#sums.slice();
+  }
+
+  sourceLight(): null {
+    return null;
+  }
+
+  #publish(): void {
+    const { floats } = this.#source;
+    const channels = this.#sums.length;
+    for (let channel = 0; channel < channels; channel++) {
+      let row = 0;
+      for (let at = channel; at < floats.length; at += channels) row += floats[at];
+      this.#sums[channel] += row;
+    }
     this.#source.publish();
   }
 }

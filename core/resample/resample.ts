@@ -16,21 +16,14 @@ export function resampleFloats(
 ): Float32Array {
   const result = new Float32Array(taps.x.to * taps.y.to * channels);
   const target: Extent = { width: taps.x.to, height: taps.y.to };
-  // Floats go in through tables of one entry each: row y is read from its own table.
-  const indices = Uint16Array.from({ length: extent.width * channels }, (_, i) => Math.floor(i / channels));
-  const tables = Array.from({ length: channels }, () => new Float32Array(extent.width));
-  const decoding = { depth: 16, channels, tables, alpha: null, weighted: [], normals: [] } as const;
+  // Nothing is decoded: floats go in as they are.
+  const tables = Array.from({ length: channels }, () => new Float32Array(1));
+  const decoding = { depth: 8, channels, tables, alpha: null, weighted: [], normals: [] } as const;
   const steps = [{ from: 0, extent: target, ...taps }];
   const run = engine.open({ extent, wrap, decoding, steps }, (node, y, floats) => {
     if (node === 1) result.set(floats, y * target.width * channels);
   });
-  for (let y = 0; y < extent.height; y++) {
-    for (let x = 0; x < extent.width; x++) {
-      for (let channel = 0; channel < channels; channel++) {
-        tables[channel][x] = source[(y * extent.width + x) * channels + channel];
-      }
-    }
-    run.push(indices);
-  }
+  const length = extent.width * channels;
+  for (let y = 0; y < extent.height; y++) run.pushFloats(source.subarray(y * length, (y + 1) * length));
   return result;
 }

@@ -1,0 +1,116 @@
+import { maxTaps } from '../kernel/taps.ts';
+import type { Step } from '../resample/engine.ts';
+import { type Filter, makeFilter } from '../resample/filter.ts';
+import { planRows, type RowOrder } from '../resample/order.ts';
+import type { Wrap } from '../treatment/treatment.ts';
+import { aligned, type Machine } from './machine.ts';
+
+/** The rows, filtered along x, that rows of a result are made from; the same as the plain engine's. */
+export class Window {
+  readonly order: RowOrder;
+  readonly #machine: Machine;
+  readonly #step: Step;
+  readonly #across: Filter;
+  readonly #stride: number;
+  readonly #phases: number;
+  readonly #halves: boolean;
+  readonly #rows: number;
+  readonly #rowBytes: number;
+  readonly #border: number;
+  readonly #picked: number;
+  readonly #weights: number;
+  #received = 0;
+  #emitted = 0;
+
+  constructor(machine: Machine, step: Step, stride: number, wrap: Wrap, start: number) {
+    const along = makeFilter(step.x);
+    this.order = planRows(step.y, wrap, start);
+    this.#machine = machine;
+    this.#step = step;
+    this.#across = makeFilter(step.y);
+    this.#stride = stride;
+    this.#rowBytes = windowRowBytes(step, stride);
+    this.#rows = machine.take(this.order.slots * this.#rowBytes);
+    this.#border = wrap === 'clamp-to-border' ? machine.take(this.#rowBytes) : 0;
+    if (this.#border !== 0) machine.views.bytes.fill(0, this.#border, this.#border + this.#rowBytes);
+    this.#picked = machine.take(maxTaps(step.y) * 4);
+    this.#weights = machine.keep(step.y.weights);
+    this.#phases = writePhases(machine, along, stride);
+    this.#halves = stride === 16 && isHalves(along);
+  }
+
+  /** Takes the row whose texel 0 is at address `row`, and says how many result rows can be made now. */
+  push(row: number): number {
+    const { kernels } = this.#machine;
+    const { width, height } = this.#step.extent;
+    const out = this.#rows + this.order.slotOf(this.#received) * this.#rowBytes;
+    // A fifth channel goes first: the vectors that hold it reach over the four of the next texel.
+    if (this.#stride > 16) kernels.along(row + 16, this.#phases, out + 16, width, this.#stride);
+    if (this.#halves) kernels.alongHalves(row, this.#phases, out, width);
+    else kernels.along(row, this.#phases, out, width, this.#stride);
+    this.#received++;
+    let ready = this.#emitted;
+    while (ready < height && this.order.readyAfter(ready) <= this.#received) ready++;
+    return ready - this.#emitted;
+  }
+
+  /** Writes the next result row to address `out`. */
+  emit(out: number): void {
+    const { kernels, views } = this.#machine;
+    const { order } = this;
+    const { y: taps, extent } = this.#step;
+    const y = order.outRow(this.#emitted++);
+    const count = taps.count[y];
+    for (let k = 0; k < count; k++) {
+      const slot = order.slotFor(y, taps.first[y] + k);
+      views.addresses[(this.#picked >> 2) + k] = slot < 0 ? this.#border : this.#rows + slot * this.#rowBytes;
+    }
+    const across = this.#across.symmetric[y] === 1 ? kernels.acrossEqual : kernels.acrossPairs;
+    across(this.#picked, this.#weights + taps.start[y] * 4, count, out, extent.width * (this.#stride / 4));
+  }
+}
+
+/** Bytes that a window takes. */
+export function windowBytes(step: Step, stride: number, wrap: Wrap, slots: number): number {
+  const rows = slots * windowRowBytes(step, stride) + (wrap === 'clamp-to-border' ? windowRowBytes(step, stride) : 0);
+  const { x, y } = step;
+  return (
+    rows +
+    aligned(maxTaps(y) * 4) +
+    aligned(y.weights.byteLength) +
+    aligned(x.weights.byteLength) +
+    aligned(x.to * PHASE_BYTES)
+  );
+}
+
+/** Whole vectors are read and written behind a row; an odd number of lines keeps rows out of each other's way in a cache. */
+function windowRowBytes({ extent }: Step, stride: number): number {
+  const lines = Math.ceil((extent.width * stride) / 64) + 1;
+  return (lines | 1) * 64;
+}
+
+/** Drawn in kernels/along.ts. */
+const PHASE_BYTES = 16;
+
+function writePhases(machine: Machine, { taps, symmetric }: Filter, stride: number): number {
+  const weights = machine.keep(taps.weights);
+  const phases = machine.take(taps.to * PHASE_BYTES);
+  const { integers } = machine.views;
+  for (let phase = 0, at = phases >> 2; phase < taps.to; phase++) {
+    integers[at++] = taps.first[phase] * stride;
+    integers[at++] = weights + taps.start[phase] * 4;
+    integers[at++] = taps.count[phase];
+    integers[at++] = symmetric[phase];
+  }
+  return phases;
+}
+
+/** Whether every phase is the first, two texels on, symmetric and of an even count. */
+function isHalves({ taps, symmetric }: Filter): boolean {
+  if (symmetric[0] !== 1 || taps.count[0] % 2 === 1) return false;
+  for (let phase = 1; phase < taps.to; phase++) {
+    const same = taps.start[phase] === taps.start[0] && taps.count[phase] === taps.count[0];
+    if (!same || taps.first[phase] !== taps.first[0] + 2 * phase) return false;
+  }
+  return true;
+}

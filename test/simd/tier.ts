@@ -1,0 +1,37 @@
+import { createHash } from 'node:crypto';
+import { readFileSync } from 'node:fs';
+import fc from 'fast-check';
+import { buildChain } from '../../core/chain/chain.ts';
+import type { Engine } from '../../core/resample/engine.ts';
+import { plainEngine } from '../../core/resample/plain.ts';
+import { createEngine } from '../../core/simd/engine.ts';
+import { noiseRaster, withAlpha } from '../fixtures/noise.ts';
+import { treatment } from '../fixtures/treatment.ts';
+import { passes, traceOf } from './passes.ts';
+
+// Run by itself, with flags for V8: prints a hash of what an engine makes. Arguments: `plain`, or the file of the kernels.
+
+const [file] = process.argv.slice(2);
+const engine = file === 'plain' ? plainEngine : createEngine(new WebAssembly.Module(readFileSync(file)));
+console.log(hashOf(engine));
+
+function hashOf(of: Engine): string {
+  const hash = createHash('sha256');
+  for (const one of fc.sample(passes, { numRuns: 40, seed: 1 })) hash.update(traceOf(of, one));
+  for (const channels of [1, 2, 3, 4] as const) {
+    for (const depth of [8, 16] as const) {
+      for (const content of ['color', 'data'] as const) {
+        const raster = withAlpha(noiseRaster(5, { width: 45, height: 30 }, channels, depth, 'noise'), 6, 3, 3);
+        const { images } = buildChain(channels % 2 === 0 ? raster : { ...raster }, treatment({ content }), {
+          engine: of,
+        });
+        for (const { raster: made, clipped, light } of images) {
+          if (made.kind !== 'indexed')
+            hash.update(new Uint8Array(made.codes.buffer, made.codes.byteOffset, made.codes.byteLength));
+          hash.update(JSON.stringify({ clipped, light }));
+        }
+      }
+    }
+  }
+  return hash.digest('hex');
+}
