@@ -2,7 +2,9 @@ import * as vscode from 'vscode';
 import { Refusal } from '../../core/problem.ts';
 import type { BuildDesk, BuildKind } from './build/desk.ts';
 import type { Platform } from './platform.ts';
-import { looseDocument, VIEW_TYPE } from './proof/editor.ts';
+import { TextureCounts } from './proof/counts.ts';
+import { VIEW_TYPE } from './proof/editor.ts';
+import { TextureFacts } from './proof/facts.ts';
 import { reportOf, revealOutputs } from './proof/outputs.ts';
 import { selectedResources, selectedTexture } from './selected.ts';
 import { createSettings, isThere } from './settings/create.ts';
@@ -16,6 +18,7 @@ export function registerCommands(platform: Platform, desk: BuildDesk, log: vscod
     const texture = await selectedTexture(first, all);
     if (texture !== null) await act(texture);
   };
+  const factsOf = (texture: vscode.Uri) => new TextureFacts(texture, platform, new TextureCounts());
   const building = (kind: BuildKind) => async (first: unknown, all: unknown) => {
     const resources = await resourcesOrWorkspace(first, all);
     return resources.length === 0 ? null : desk.build(kind, resources, 'shown');
@@ -41,9 +44,9 @@ export function registerCommands(platform: Platform, desk: BuildDesk, log: vscod
       if (resource !== undefined) await createSettings(await folderOf(resource), platform);
     },
     openSettings: aboutTexture((texture) => openSettings(texture, null, platform)),
-    revealOutputs: aboutTexture((texture) => revealOutputs(looseDocument(texture, platform))),
+    revealOutputs: aboutTexture((texture) => revealOutputs(factsOf(texture))),
     copyReport: aboutTexture(async (texture) => {
-      await vscode.env.clipboard.writeText(await reportOf(looseDocument(texture, platform)));
+      await vscode.env.clipboard.writeText(await reportOf(factsOf(texture)));
       vscode.window.setStatusBarMessage(vscode.l10n.t('The report is on the clipboard.'), SHOWN_MS);
     }),
     showLog: () => log.show(),

@@ -43,7 +43,7 @@ export async function adopt(resource: vscode.Uri, change: AdoptChange, platform:
 
 /** A settings file that says nothing yet: what is adopted is not saved for the user, but it needs a file to be typed into. */
 async function beginFile(resource: vscode.Uri, platform: Platform): Promise<vscode.Uri> {
-  const uri = vscode.Uri.joinPath(folderForSettings(resource), SETTINGS_NAME);
+  const uri = vscode.Uri.joinPath(await folderForSettings(resource), SETTINGS_NAME);
   await vscode.workspace.fs.writeFile(uri, platform.encodeUtf8('{\n  "treatments": [\n  ]\n}\n'));
   return uri;
 }

@@ -11,31 +11,31 @@ import { openSettings } from '../settings/open.ts';
 import { sayProblem } from '../words.ts';
 import { adopt } from './adopt.ts';
 import type { Answers } from './channel.ts';
-import type { ProofDocument } from './document.ts';
+import type { TextureFacts } from './facts.ts';
 import { revealOutputs } from './outputs.ts';
 
 /** What the host answers to a proof's page. */
 export function answersFor(
-  document: ProofDocument,
+  texture: TextureFacts,
   { platform, desk }: { readonly platform: Platform; readonly desk: BuildDesk },
 ): Answers {
-  const { uri } = document;
+  const { uri } = texture;
   return {
     async open() {
-      const { path } = await document.settings();
+      const { path } = await texture.settings();
       return {
-        name: document.name,
+        name: texture.name,
         path,
-        byteCount: await document.byteCount(),
-        settings: await document.settingsReply(),
-        state: await document.builtState(),
+        byteCount: await texture.byteCount(),
+        settings: await texture.settingsReply(),
+        state: await texture.builtState(),
         abilities: abilitiesFor(uri, platform),
         preferences: readConfiguration(uri).preferences,
         words: translations(),
       };
     },
     async bytes() {
-      return { image: await document.bytes(), roughness: await document.roughness() };
+      return { image: await texture.bytes(), roughness: await texture.roughness() };
     },
     async build() {
       const opened = doorFor('writes', uri, platform);
@@ -60,7 +60,7 @@ export function answersFor(
       return { path: target.path };
     },
     async reveal() {
-      await revealOutputs(document);
+      await revealOutputs(texture);
       return {};
     },
   };

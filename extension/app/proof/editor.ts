@@ -5,8 +5,8 @@ import { answersFor } from './answers.ts';
 import { Channel } from './channel.ts';
 import { TextureCounts } from './counts.ts';
 import { ProofDocument } from './document.ts';
+import { TextureFacts } from './facts.ts';
 import { pageHtml } from './html.ts';
-import { watchTexture } from './watch.ts';
 
 export const VIEW_TYPE = 'sizeproof.proof';
 
@@ -19,30 +19,22 @@ export function registerProofEditor(
 ): vscode.Disposable {
   const counts = new TextureCounts();
   const pages = vscode.Uri.joinPath(extensionUri, 'dist', 'page');
+  const report = (error: unknown) => log.error(error instanceof Error ? error : String(error));
   const provider: vscode.CustomReadonlyEditorProvider<ProofDocument> = {
-    openCustomDocument: (uri) => new ProofDocument(uri, platform, counts),
+    openCustomDocument(uri) {
+      return new ProofDocument(new TextureFacts(uri, platform, counts), { platform, desk, counts, report });
+    },
     resolveCustomEditor(document, panel) {
       const { webview } = panel;
       webview.options = { enableScripts: true, localResourceRoots: [pages] };
-      const channel = new Channel(webview, {
-        answers: answersFor(document, { platform, desk }),
-        revision: () => document.revision,
-        report: (error) => log.error(error instanceof Error ? error : String(error)),
-      });
-      const watching = watchTexture(document, { platform, desk, counts }, (event) => channel.tell(event));
-      panel.onDidDispose(() => {
-        watching.dispose();
-        channel.dispose();
-      });
+      const answers = answersFor(document.facts, { platform, desk });
+      const channel = new Channel(webview, { answers, revision: () => document.revision, report });
+      const added = document.addPage(channel);
+      panel.onDidDispose(() => added.dispose());
       webview.html = pageHtml(webview, pages, platform.newNonce());
     },
   };
   return vscode.window.registerCustomEditorProvider(VIEW_TYPE, provider, {
     supportsMultipleEditorsPerDocument: true,
   });
-}
-
-/** A texture outside any editor, for commands. */
-export function looseDocument(uri: vscode.Uri, platform: Platform): ProofDocument {
-  return new ProofDocument(uri, platform, new TextureCounts());
 }

@@ -1,24 +1,24 @@
 import * as vscode from 'vscode';
 import { Refusal, refuse } from '../../../core/problem.ts';
 import { explanationLines } from '../settings/explain.ts';
-import type { ProofDocument } from './document.ts';
+import type { TextureFacts } from './facts.ts';
 
 /** Shows a texture's manifest, which names all its outputs, in the explorer. Throws Refusal where there is none. */
-export async function revealOutputs(document: ProofDocument): Promise<void> {
-  const found = await document.inspect();
+export async function revealOutputs(texture: TextureFacts): Promise<void> {
+  const found = await texture.inspect();
   if (found === null) {
-    const [problem] = (await document.settings()).problems;
+    const [problem] = (await texture.settings()).problems;
     if (problem !== undefined) throw new Refusal(problem);
-    return refuse('no-disk', {}, { path: document.uri.path });
+    return refuse('no-disk', {}, { path: texture.uri.path });
   }
-  if (found.manifest === null) refuse('not-built', {}, { path: document.uri.path });
+  if (found.manifest === null) refuse('not-built', {}, { path: texture.uri.path });
   await vscode.commands.executeCommand('revealInExplorer', vscode.Uri.file(found.manifestPath));
 }
 
 /** All that is known of a texture, as text: its treatment, and what its manifest measured. */
-export async function reportOf(document: ProofDocument): Promise<string> {
-  const lines = explanationLines(await document.settings());
-  const found = await document.inspect();
+export async function reportOf(texture: TextureFacts): Promise<string> {
+  const lines = explanationLines(await texture.settings());
+  const found = await texture.inspect();
   const { manifest, reasons } = found ?? { manifest: null, reasons: [] };
   const state =
     manifest === null

@@ -3,41 +3,53 @@ import { type HostEvent, PROTOCOL } from '../../../core/protocol.ts';
 import type { BuildDesk } from '../build/desk.ts';
 import { isSettings } from '../files/place.ts';
 import type { Platform } from '../platform.ts';
+import { isThere } from '../settings/create.ts';
 import type { TextureCounts } from './counts.ts';
-import type { ProofDocument } from './document.ts';
+import type { TextureFacts } from './facts.ts';
 
 /** Events come in heaps: a file that is written, a build that lays down many. They are waited out for this long. */
 const QUIET_MS = 120;
 
 type Change = HostEvent['kind'];
 
-/** Tells a proof what changed around its texture: its file, the settings as they are typed and as they are saved, its outputs. */
+/** Tells what changes around a texture: its file, the settings as they are typed and as they are saved, its outputs. */
 export function watchTexture(
-  document: ProofDocument,
-  { platform, desk, counts }: { readonly platform: Platform; readonly desk: BuildDesk; readonly counts: TextureCounts },
-  tell: (event: HostEvent) => void,
+  texture: TextureFacts,
+  { platform, desk, counts, report }: WatchTools,
+  listener: {
+    nextRevision(): number;
+    tell(event: HostEvent): void;
+  },
 ): vscode.Disposable {
   const changes = new Set<Change>();
   let timer: { dispose(): void } | null = null;
+  let last: Promise<void> = Promise.resolve();
   let isOver = false;
-  const folder = vscode.Uri.joinPath(document.uri, '..');
-  const source = watcherOf(new vscode.RelativePattern(folder, escapeGlob(document.name)), () => note('source'));
-  const stem = escapeGlob(document.name.replace(/\.[^.]*$/, ''));
-  const outputs = watcherOf(manifestsOf(document, stem), () => note('built'));
+  const folder = vscode.Uri.joinPath(texture.uri, '..');
+  const source = watcherOf(new vscode.RelativePattern(folder, escapeGlob(texture.name)), () => note('source'));
+  const stem = escapeGlob(texture.name.replace(/\.[^.]*$/, ''));
+  const outputs = watcherOf(manifestsOf(texture, stem), () => note('built'));
   const settings = watcherOf('**/sizeproof.json', () => note('settings'));
   const typed = vscode.workspace.onDidChangeTextDocument((event) => {
     if (isSettings(event.document.uri) && event.contentChanges.length > 0) note('settings');
   });
-  const files = vscode.workspace.createFileSystemWatcher('**/*.{png,tga,PNG,TGA}', false, true, false);
-  const forget = () => counts.forget();
+  const images = vscode.workspace.createFileSystemWatcher('**/*.{png,tga,PNG,TGA}');
+  const imageChanged = (uri: vscode.Uri) => {
+    if (texture.isRoughness(uri)) note('source');
+  };
+  const imagesMoved = (uri: vscode.Uri) => {
+    counts.forget();
+    imageChanged(uri);
+  };
   return vscode.Disposable.from(
     source,
     outputs,
     settings,
     typed,
-    files,
-    files.onDidCreate(forget),
-    files.onDidDelete(forget),
+    images,
+    images.onDidChange(imageChanged),
+    images.onDidCreate(imagesMoved),
+    images.onDidDelete(imagesMoved),
     desk.onDidBuild(() => note('built')),
     new vscode.Disposable(() => {
       isOver = true;
@@ -48,31 +60,42 @@ export function watchTexture(
   function note(change: Change): void {
     changes.add(change);
     timer?.dispose();
-    timer = platform.after(QUIET_MS, () => void send());
+    timer = platform.after(QUIET_MS, () => {
+      // One after another, so that what is told last is what was found last.
+      last = last.then(send).catch(report);
+    });
   }
 
   async function send(): Promise<void> {
-    const kinds = [...changes];
-    changes.clear();
-    const revision = ++document.revision;
     // Whatever moves may make the outputs stale.
-    for (const kind of new Set<Change>([...kinds, 'built'])) {
+    const kinds = new Set<Change>([...changes, 'built']);
+    changes.clear();
+    const revision = listener.nextRevision();
+    for (const kind of kinds) {
       const event = await eventOf(kind, revision);
-      if (isOver || revision !== document.revision) return;
-      tell(event);
+      if (isOver) return;
+      listener.tell(event);
     }
   }
 
   async function eventOf(kind: Change, revision: number): Promise<HostEvent> {
     switch (kind) {
       case 'source':
-        return { protocol: PROTOCOL, kind, revision, present: await isPresent(document.uri) };
+        return { protocol: PROTOCOL, kind, revision, present: await isThere(texture.uri) };
       case 'settings':
-        return { protocol: PROTOCOL, kind, revision, settings: await document.settingsReply() };
+        return { protocol: PROTOCOL, kind, revision, settings: await texture.settingsReply() };
       case 'built':
-        return { protocol: PROTOCOL, kind, revision, state: await document.builtState() };
+        return { protocol: PROTOCOL, kind, revision, state: await texture.builtState() };
     }
   }
+}
+
+export interface WatchTools {
+  readonly platform: Platform;
+  readonly desk: BuildDesk;
+  readonly counts: TextureCounts;
+  /** Hears of what should not happen. */
+  readonly report: (error: unknown) => void;
 }
 
 function watcherOf(pattern: vscode.GlobPattern, act: () => void): vscode.Disposable {
@@ -81,23 +104,13 @@ function watcherOf(pattern: vscode.GlobPattern, act: () => void): vscode.Disposa
 }
 
 /** The texture's manifest, wherever its settings put it. */
-function manifestsOf(document: ProofDocument, stem: string): vscode.GlobPattern {
-  const folder = vscode.workspace.getWorkspaceFolder(document.uri);
+function manifestsOf(texture: TextureFacts, stem: string): vscode.GlobPattern {
+  const folder = vscode.workspace.getWorkspaceFolder(texture.uri);
   const pattern = `**/${stem}.mips.json`;
-  return folder === undefined ? new vscode.RelativePattern(vscode.Uri.joinPath(document.uri, '..'), pattern) : pattern;
+  return folder === undefined ? new vscode.RelativePattern(vscode.Uri.joinPath(texture.uri, '..'), pattern) : pattern;
 }
 
 /** A name as the host's globs have it. */
 function escapeGlob(name: string): string {
   return name.replace(/[*?[\]{}]/g, (character) => `[${character}]`);
-}
-
-async function isPresent(uri: vscode.Uri): Promise<boolean> {
-  try {
-    await vscode.workspace.fs.stat(uri);
-    return true;
-  } catch (error) {
-    if (error instanceof vscode.FileSystemError) return false;
-    throw error;
-  }
 }

@@ -1,7 +1,7 @@
 import * as vscode from 'vscode';
 import type { Spot } from '../../../core/treatment/place.ts';
 import type { Platform } from '../platform.ts';
-import { createSettings } from './create.ts';
+import { createSettings, isThere } from './create.ts';
 import { settingsOf, type TextureSettings } from './texture.ts';
 
 /** Shows the settings file of a texture at what set a key of its treatment, or at the treatment that applies. Without a file,
@@ -45,10 +45,16 @@ async function offerToCreate(resource: vscode.Uri, platform: Platform): Promise<
     vscode.l10n.t('No settings file applies to this texture; the built-in defaults do.'),
     create,
   );
-  if (chosen === create) await createSettings(folderForSettings(resource), platform);
+  if (chosen === create) await createSettings(await folderForSettings(resource), platform);
 }
 
-/** Where a texture's first settings file belongs: its workspace folder, else its own folder. */
-export function folderForSettings(resource: vscode.Uri): vscode.Uri {
-  return vscode.workspace.getWorkspaceFolder(resource)?.uri ?? vscode.Uri.joinPath(resource, '..');
+/** Where a texture's first settings file belongs: its workspace folder, or a repository's top on the way there, beyond which no
+ *  settings are looked for. Outside any workspace its own folder. */
+export async function folderForSettings(resource: vscode.Uri): Promise<vscode.Uri> {
+  const own = vscode.Uri.joinPath(resource, '..');
+  const top = vscode.workspace.getWorkspaceFolder(resource)?.uri ?? own;
+  for (let folder = own; folder.path !== top.path; folder = vscode.Uri.joinPath(folder, '..')) {
+    if (folder.path === '/' || (await isThere(vscode.Uri.joinPath(folder, '.git')))) return folder;
+  }
+  return top;
 }
