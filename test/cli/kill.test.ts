@@ -1,6 +1,7 @@
 import { spawn } from 'node:child_process';
 import { build as bundle } from 'esbuild';
 import { expect, test } from 'vitest';
+import { folderOfTests } from '../node/bundle.ts';
 import { filesBelow, newFolder } from '../node/folder.ts';
 import { build, check, settingsText, smallPng } from '../node/project.ts';
 
@@ -44,7 +45,7 @@ test(`killed at ${KILLS} random moments, every file is of one build or the other
 
 async function bundleEndless(): Promise<string> {
   const top = new URL('../../', import.meta.url).pathname;
-  const outfile = `${top}dist/test/${process.pid}/endless.mjs`;
+  const outfile = `${folderOfTests()}/endless.mjs`;
   await bundle({
     entryPoints: [`${top}test/cli/endless.ts`],
     outfile,

@@ -1,4 +1,4 @@
-import { existsSync } from 'node:fs';
+import { existsSync, rmSync } from 'node:fs';
 import { build } from 'esbuild';
 
 const top = new URL('../../', import.meta.url).pathname;
@@ -11,10 +11,17 @@ export async function bundleOnce(): Promise<string> {
   return bundled;
 }
 
+/** A folder for what the tests of this process bundle, inside the tree so that it is taken for ES modules; gone at the end. */
+export function folderOfTests(): string {
+  const folder = `${top}dist/test/${process.pid}`;
+  process.once('exit', () => rmSync(folder, { recursive: true, force: true }));
+  return folder;
+}
+
 let bundled: Promise<string> | null = null;
 
 async function bundle(): Promise<string> {
-  const outdir = `${top}dist/test/${process.pid}`;
+  const outdir = folderOfTests();
   await build({
     entryPoints: Object.fromEntries(Object.entries(entries).map(([name, path]) => [name, `${top}${path}`])),
     outdir,
