@@ -46,8 +46,8 @@ export type HaloWatch = (
 
 /** Measures every image of the chain that is made from weights; others do not overshoot. The local range is that of the
  *  visible source texels that the target's area touches, and one more on each side. Weights that are nowhere negative only
- *  average: what they bring from beyond that range is blur, and counts 0. Texels whose alpha rounds to 0 are not
- *  seen and do not count; normals are made unit and do not either. `watch` is not told of a sheet's texels. */
+ *  average: what they bring from beyond that range is blur, and counts 0. Color that alpha weighs counts as far as it
+ *  shows, times alpha: dividing by a small alpha makes any color large. Texels whose alpha rounds to 0 are not seen and do not count; normals are made unit and do not either. `watch` is not told of a sheet's texels. */
 export function measureHalo(
   source: StraightRaster | IndexedRaster,
   treatment: Treatment,
@@ -196,10 +196,11 @@ class Probe {
       for (let channel = 0; channel < channels; channel++) {
         const role = roles[channel];
         if (role.kind === 'normal' || role.kind === 'unused' || role.kind === 'roughness') continue;
+        const shown = weighted.includes(channel) ? Math.min(1, (floats[at + alpha!] * unit) / 255) : 1;
         const value = weighted.includes(channel) ? floats[at + channel] / floats[at + alpha!] : floats[at + channel];
         const code = codeOf(value, role, unit);
-        const above = code - this.#range.max.codes[texel + channel] * unit;
-        const below = this.#range.min.codes[texel + channel] * unit - code;
+        const above = (code - this.#range.max.codes[texel + channel] * unit) * shown;
+        const below = (this.#range.min.codes[texel + channel] * unit - code) * shown;
         over = Math.max(over, above);
         under = Math.max(under, below);
         if (code < -255 * CLIP_SLACK || code > 255 * (1 + CLIP_SLACK)) clips = true;

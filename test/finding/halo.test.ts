@@ -126,7 +126,17 @@ describe('what is not seen', () => {
     const one = treatment({ transfer: 'linear', kernel: both('catmull-rom'), levels: { first: 1, last: 1 } });
     const [black, white] = [0, 255].map((hidden) => measureHalo(make(hidden), one)[0]);
     expect(white).toEqual(black);
-    expect(black.worst).toBeGreaterThan(3);
+    expect(black.worst).toBeGreaterThan(0.5);
+  });
+
+  it('counts color as far as it shows: the thinner the alpha, the less', () => {
+    const step = (alpha: number): StraightRaster =>
+      painted({ width: 16, height: 1 }, 4, 8, (x) => [x < 7 ? 50 : 200, 0, 0, alpha]);
+    const one = treatment({ transfer: 'linear', kernel: both('catmull-rom'), levels: { first: 1, last: 1 } });
+    const [opaque, thin] = [255, 51].map((alpha) => measureHalo(step(alpha), one)[0].worst);
+    // 12/256 of a step of 150 codes; 51 is a fifth of 255. Float32 carries 24 bits.
+    expect(opaque).toBeCloseTo((150 * 12) / 256, 4);
+    expect(thin).toBeCloseTo(opaque / 5, 4);
   });
 
   it('widens the range where it is weighed in', () => {
