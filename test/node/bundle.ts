@@ -1,5 +1,6 @@
 import { existsSync, rmSync } from 'node:fs';
 import { build } from 'esbuild';
+import { afterAll } from 'vitest';
 
 const top = new URL('../../', import.meta.url).pathname;
 
@@ -13,10 +14,10 @@ export async function bundleOnce(): Promise<string> {
 
 /** A folder for what the tests of this process bundle, inside the tree so that it is taken for ES modules; gone at the end. */
 export function folderOfTests(): string {
-  const folder = `${top}dist/test/${process.pid}`;
-  process.once('exit', () => rmSync(folder, { recursive: true, force: true }));
-  return folder;
+  return `${top}dist/test/${process.pid}`;
 }
+
+afterAll(() => rmSync(folderOfTests(), { recursive: true, force: true }));
 
 let bundled: Promise<string> | null = null;
 
