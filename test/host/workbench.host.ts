@@ -54,6 +54,7 @@ describe.skipIf(isLeftOut)('the packed extension in a workbench', () => {
       'LICENSE.txt',
       'changelog.md',
       'dist/cli.js',
+      'dist/engine.wasm',
       'dist/extension.cjs',
       'dist/l10n/bundle.l10n.json',
       'dist/page/page.css',

@@ -69,12 +69,15 @@ export function webviewOf(page: Page): FrameLocator {
 
 /** Picks from the extension's part of the explorer's menu. A menu that has only just opened takes no click, hence several tries. */
 export async function pickFromExplorer(page: Page, row: string, label: string): Promise<void> {
-  await explorerRow(page, row).click({ button: 'right' });
   const menu = page.locator('.monaco-menu-container');
-  for (let tries = 1; ; tries++) {
+  for (let tries = 1, isPicked = false; ; tries++) {
     try {
+      // A slow menu may have gone after its time.
+      if (isPicked && !(await menu.isVisible())) return;
+      if (!(await menu.isVisible())) await explorerRow(page, row).click({ button: 'right', timeout: STEP_MS });
       await page.getByRole('menuitem', { name: 'Sizeproof', exact: true }).hover({ timeout: STEP_MS });
       await page.getByRole('menuitem', { name: label, exact: true }).click({ timeout: STEP_MS });
+      isPicked = true;
       await menu.waitFor({ state: 'hidden', timeout: STEP_MS });
       return;
     } catch (error) {
