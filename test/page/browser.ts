@@ -47,11 +47,12 @@ export async function showPage(
     if (path === '/') {
       const body = `<!doctype html><html lang="en"><head><meta charset="utf-8"><title>Proof</title>
 <meta http-equiv="Content-Security-Policy" content="${POLICY}">
-<link rel="stylesheet" href="/theme.css"><link rel="stylesheet" href="/page.css"></head>
+<link id="theme" rel="stylesheet" href="/${theme}.css"><link rel="stylesheet" href="/page.css"></head>
 <body class="${themes[theme].bodyClass}" data-worker="${ORIGIN}/worker.js"><script nonce="recorded" src="/page.js"></script></body></html>`;
       return route.fulfill({ contentType: 'text/html', body });
     }
-    if (path === '/theme.css') return route.fulfill({ contentType: 'text/css', body: themes[theme].css });
+    const asked = themes[path.slice(1, -'.css'.length) as ThemeName];
+    if (asked !== undefined) return route.fulfill({ contentType: 'text/css', body: asked.css });
     const file = join(top, 'dist/page', path.slice(1));
     if (!existsSync(file)) return route.fulfill({ status: 404, body: '' });
     const contentType = path.endsWith('.css') ? 'text/css' : 'text/javascript';
@@ -60,6 +61,22 @@ export async function showPage(
   await page.addInitScript(playRecording, playData(recording));
   await page.goto(`${ORIGIN}/`);
   return { page, context };
+}
+
+/** Changes the theme of a page as the editor does, under the page's eyes. */
+export async function changeTheme(page: Page, theme: ThemeName): Promise<void> {
+  await page.evaluate(
+    ({ name, bodyClass }) =>
+      new Promise((resolve) => {
+        const link = document.querySelector<HTMLLinkElement>('#theme')!;
+        document.body.className = bodyClass;
+        // A sheet that is there already is not loaded again.
+        if (link.href.endsWith(`/${name}.css`)) return resolve(null);
+        link.onload = resolve;
+        link.href = `/${name}.css`;
+      }),
+    { name: theme, bodyClass: themes[theme].bodyClass },
+  );
 }
 
 /** Waits until every print on the page is painted, whole and as asked for. */

@@ -89,9 +89,11 @@ export class SightFields extends LitElement {
       )}
       ${this.#number(t('Field of view'), lens.fovY, 1, 179, (value) => model.set({ fovY: value }), '°')}
       ${this.#number(t('Screen'), lens.screenHeight, 1, 65536, (value) => model.set({ screenHeight: value }), 'px')}
-      <span class="quiet number" title=${t('Codes of this image, without a file around them')}
-        >${bytes(memoryOf(model))}</span
-      >
+      ${
+        seen.stop === null
+          ? nothing
+          : html`<span class="quiet number" title=${t('Codes of this image, without a file around them')}>${bytes(memoryOf(model))}</span>`
+      }
     `;
   }
 

@@ -126,7 +126,7 @@ export class SizeAxis extends LitElement {
         }
         const crowded = spacing < 34 && stop.lod % 2 === 1;
         return svg`<line class="tick" x1=${x} x2=${x} y1=${rail - 4} y2=${rail + 4}></line>
-          <text class="${here} ${shipped}" x=${x} y=${rows.level + 13}>${stop.label}</text>
+          <text class="${here} ${shipped}" x=${x} y=${rows.level + 13}>${shipped === '' ? stop.label : `(${stop.label})`}</text>
           ${crowded ? nothing : svg`<text class="${here} ${shipped}" x=${x} y="12">${sizeText(stop, spacing)}</text>`}
           ${
             outlook === null || crowded

@@ -216,7 +216,8 @@ function figuresOf(model: Model, treatment: Treatment, print: Print): readonly C
   const limits = treatment.limits;
   const figures: CardFigure[] = [];
   const add = (name: string, text: string, over = false): void => void figures.push({ name, text, over });
-  if (halo) {
+  // Normals are made unit whatever their kernel did.
+  if (halo && normalLength === null) {
     add(t('halo'), halo.worst.toFixed(1), limits.halo !== null && halo.worst > limits.halo);
     if (halo.clipped > 0) add(t('clipped'), percent(halo.clipped));
   }

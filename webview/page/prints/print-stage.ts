@@ -52,6 +52,7 @@ export class PrintStage extends LitElement {
   #painter: Painter | null = null;
   #frame: Extent = { width: 0, height: 0 };
   #painted: readonly unknown[] = [];
+  #overlaid: readonly unknown[] = [];
   #observer: ResizeObserver | null = null;
   #drag: {
     readonly x: number;
@@ -129,7 +130,9 @@ export class PrintStage extends LitElement {
 
   #resize(entry: ResizeObserverEntry): void {
     const [box] = entry.devicePixelContentBoxSize;
-    this.#frame = { width: box.inlineSize, height: box.blockSize };
+    const frame = { width: box.inlineSize, height: box.blockSize };
+    if (frame.width === this.#frame.width && frame.height === this.#frame.height) return;
+    this.#frame = frame;
     for (const which of ['.print', '.over']) {
       const canvas = this.#canvas(which);
       canvas.width = this.#frame.width;
@@ -164,7 +167,11 @@ export class PrintStage extends LitElement {
       this.#paintPrint(scene, placement, ratio);
     }
     const { extent, marks, cursor, line } = scene;
-    drawOverlay(this.#canvas('.over'), { extent, placement, ratio, marks, cursor, line });
+    const over = [...inputs.slice(4), marks, cursor?.x, cursor?.y, line];
+    if (over.some((each, i) => each !== this.#overlaid[i])) {
+      this.#overlaid = over;
+      drawOverlay(this.#canvas('.over'), { extent, placement, ratio, marks, cursor, line });
+    }
     this.dataset.zoom = String(placement.zoom);
     this.dataset.left = String(placement.left);
     this.dataset.top = String(placement.top);

@@ -20,7 +20,13 @@ export class Model extends EventTarget {
   readonly #makeBench: (changed: () => void) => Promise<BenchLink>;
   #bench: BenchLink | null = null;
   #state: State;
-  #treatments = new WeakMap<Slot, { readonly settings: Treatment; readonly treatment: Treatment }>();
+  #stops: {
+    readonly base: Extent;
+    readonly treatment: Treatment;
+    readonly typed: readonly Target[];
+    readonly stops: readonly Stop[];
+  } | null = null;
+  readonly #treatments = new WeakMap<Slot, { readonly settings: Treatment; readonly treatment: Treatment }>();
   open: OpenReply | null = null;
   settings: SettingsReply | null = null;
   built: BuiltState = { kind: 'unknown' };
@@ -90,11 +96,16 @@ export class Model extends EventTarget {
     return this.header?.extent ?? null;
   }
 
-  /** Stops of the axis, from large to small. */
+  /** Stops of the axis, from large to small; the same list while nothing that it hangs on changes. */
   get stops(): readonly Stop[] {
     const { base, treatment } = this;
+    const { typed } = this.#state;
     if (base === null || treatment === null) return [];
-    return stopsOf(base, treatment.targets, this.#state.typed, lastLevelOf(base, treatment));
+    const known = this.#stops;
+    if (known?.base === base && known.treatment === treatment && known.typed === typed) return known.stops;
+    const stops = stopsOf(base, treatment.targets, typed, lastLevelOf(base, treatment));
+    this.#stops = { base, treatment, typed, stops };
+    return stops;
   }
 
   /** The image under the sight, where it stands on the axis, and its extent. */
@@ -279,5 +290,3 @@ function firstLevel(stops: readonly Stop[]): number {
   const fit = stops.find((stop) => stop.kind === 'level' && Math.max(stop.extent.width, stop.extent.height) <= 128);
   return fit !== undefined && 'level' in fit.image ? Math.max(0, fit.image.level) : 0;
 }
-
-export type { Target };

@@ -165,12 +165,12 @@ export class ProofPage extends LitElement {
         <size-axis .model=${model} .tick=${tick}></size-axis>
         <sight-fields .model=${model} .tick=${tick}></sight-fields>
       </section>
-      <treatment-switches .model=${model} .tick=${tick} role="group" aria-label=${t('What if')}></treatment-switches>
+      <treatment-switches .model=${model} .tick=${tick} role="region" aria-label=${t('What if')}></treatment-switches>
       <view-bar
         .model=${model}
         .tick=${tick}
         .zoom=${this.zoom}
-        role="group"
+        role="region"
         aria-label=${t('View')}
         @swap-hold=${(event: CustomEvent<'down' | 'up'>) => this.#swap(event.detail)}
       ></view-bar>

@@ -9,8 +9,10 @@ const SIDE = 96;
 
 /** The source texels that make the texel under the cursor, each as strong as its weight; those of negative weight are hatched. */
 export class FootprintPlot extends LitElement {
-  static override properties = { footprint: { attribute: false } };
+  static override properties = { footprint: { attribute: false }, why: { type: String } };
   declare footprint: FootprintAnswer | null;
+  /** Why there are no weights, where there are none. */
+  declare why: string;
 
   static override styles = [
     controls,
@@ -49,15 +51,14 @@ export class FootprintPlot extends LitElement {
   constructor() {
     super();
     this.footprint = null;
+    this.why = '';
   }
 
   override render() {
     const axes = this.footprint?.axes ?? null;
     if (axes === null) {
-      const text =
-        this.footprint === null ? '' : t('This print has no fixed weights: its texels are chosen by their codes.');
       return html`<canvas width=${SIDE} height=${SIDE} aria-hidden="true"></canvas>
-        <p class="quiet">${text}</p>`;
+        <p class="quiet">${this.footprint === null ? '' : this.why}</p>`;
     }
     const { x, y } = axes;
     const negative = negativeShare(x, y);

@@ -64,7 +64,7 @@ export class ReadingsStrip extends LitElement {
       }
       tbody th {
         white-space: normal;
-        min-width: 84px;
+        min-width: 120px;
       }
       tr.chosen th {
         font-weight: 600;
@@ -143,8 +143,8 @@ export class ReadingsStrip extends LitElement {
         <p class="unseen" aria-live="polite">${place}: ${readings[0]?.codes.join(' ') ?? ''}</p>
       </section>
       <section aria-label=${t('Footprint')}>
-        <header><span class="heading">${t('Footprint')}</span><span class="quiet">${nameOf(model.slot, model)}</span></header>
-        <footprint-plot .footprint=${footprint}></footprint-plot>
+        <header><span class="heading">${t('Footprint')}</span><span class="quiet">${kernelName(model.slot, model)}</span></header>
+        <footprint-plot .footprint=${footprint} .why=${whyNoWeights(model)}></footprint-plot>
       </section>
       <section aria-label=${t('Cross-section')}>
         <header>
@@ -228,12 +228,21 @@ function pictureOf(model: Model, slot: Slot): Picture | null {
   return told === undefined || isProblem(told) ? null : told.picture;
 }
 
+function whyNoWeights(model: Model): string {
+  if (model.seen!.stop === null)
+    return t('Between levels a sampler blends two of them. Each level has weights of its own.');
+  if (model.treatment!.grid !== null) return t('Cells of a sheet are made one by one; weights are not shown for them.');
+  return t('This print has no fixed weights: its texels are chosen by their codes.');
+}
+
 /** A print's name in a table: its kernel, and what it changes. */
 export function nameOf(slot: Slot, model: Model): string {
-  const treatment = model.treatmentOf(slot)!;
-  const kernel = slot.kernel ?? (model.seen!.lod < 0 ? treatment.kernel.magnify : treatment.kernel.minify);
-  const changes = changeWords(slot.change);
-  return changes.length === 0 ? kernel.name : `${kernel.name}, ${changes.join(', ')}`;
+  return [kernelName(slot, model), ...changeWords(slot.change)].join(', ');
+}
+
+function kernelName(slot: Slot, model: Model): string {
+  const { kernel } = model.treatmentOf(slot)!;
+  return (slot.kernel ?? (model.seen!.lod < 0 ? kernel.magnify : kernel.minify)).name;
 }
 
 function cursorShare({ line, cursor }: State): number {

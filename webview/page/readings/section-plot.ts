@@ -149,7 +149,7 @@ export class SectionPlot extends LitElement {
             </svg>${track.name}
           </span>`,
         )}
-        <span class="quiet">${t('▲▼ beyond the source around it')}</span>
+        <span class="quiet">${t('▲▼ overshoot')}</span>
       </div>
       <details>
         <summary>${t('Table')}</summary>
