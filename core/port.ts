@@ -1,3 +1,5 @@
+import type { Engine } from './resample/engine.ts';
+
 // What the platform must give. core calls nothing else of the outside world.
 
 /** Why a zlib stream could not be read to its end. */
@@ -49,6 +51,8 @@ export class Cancelled extends Error {
 }
 
 export interface Ports {
+  /** Makes the rows of chains; the plain engine where it is left out. The pixels are the same. */
+  readonly engine?: Engine;
   readonly inflate: Inflate;
   readonly deflate: Deflate;
   readonly newHash: () => Hash;

@@ -22,6 +22,8 @@ const findings = {
   halo: 'At {image}, texel {x}, {y}, a color overshoots its surroundings by {worst} codes ({share} of the texels overshoot, {clipped} are clipped); the limit is {limit}. Choose a softer kernel, or raise the limit.',
   'over-budget':
     'The chain takes {bytes} bytes as {format}; the budget is {budget}. Drop levels, choose a smaller format or raise the budget.',
+  'engine-plain':
+    'The SIMD engine cannot run here: {reason}. The plain engine makes the same files in several times the time. Allow WebAssembly with SIMD to have the fast one.',
   'match-unused': 'The glob {glob} of {rule} matches no texture. Correct or remove it.',
 } as const;
 

@@ -3,6 +3,7 @@ import type { Light } from '../chain/plan.ts';
 import { buildSheet } from '../chain/sheet.ts';
 import type { ManifestSource } from '../manifest/manifest.ts';
 import { type Codes, type IndexedRaster, newCodes, type StraightRaster } from '../raster/raster.ts';
+import type { Engine } from '../resample/engine.ts';
 import { wantsLinear } from './outputs.ts';
 import type { TexturePlan } from './plan.ts';
 import type { OpenedSource } from './source.ts';
@@ -19,6 +20,7 @@ export interface BuiltChains {
 export async function buildChains(
   source: OpenedSource,
   plan: TexturePlan,
+  engine: Engine,
   read: (take: (codes: Codes) => void) => Promise<ManifestSource>,
 ): Promise<BuiltChains> {
   const lights: Light[] = wantsLinear(plan.chain, plan.outputs) ? ['coded', 'linear'] : ['coded'];
@@ -32,11 +34,11 @@ export async function buildChains(
       filled += codes.length;
     });
     const gamma = plan.head.gamma === undefined ? {} : { gamma: plan.head.gamma };
-    const [coded, linear = null] = lights.map((light) => buildSheet(sheet, treatment, { light, ...gamma }));
+    const [coded, linear = null] = lights.map((light) => buildSheet(sheet, treatment, { engine, light, ...gamma }));
     return { source: described, coded, linear };
   }
   const runs = lights.map((light) => {
-    const run = new ChainRun(plan.head, treatment, { light });
+    const run = new ChainRun(plan.head, treatment, { engine, light });
     if (source.palette !== null) run.setPalette(source.palette);
     return run;
   });

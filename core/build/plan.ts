@@ -9,6 +9,8 @@ import { obeyedGamma } from '../codec/tag.ts';
 import type { BuildPlan } from '../job.ts';
 import { refuse } from '../problem.ts';
 import type { ChannelCount, Depth, Extent } from '../raster/raster.ts';
+import type { Engine } from '../resample/engine.ts';
+import { plainEngine } from '../resample/plain.ts';
 import type { Treatment } from '../treatment/treatment.ts';
 import {
   containerLayout,
@@ -33,8 +35,13 @@ export interface SourceFacts {
 }
 
 /** What a treatment makes of an image, known before a row is decoded. Throws Refusal where they do not fit. */
-export function planTexture(texture: string, facts: SourceFacts, treatment: Treatment): BuildPlan {
-  const plan = planBuild(texture, facts, treatment);
+export function planTexture(
+  texture: string,
+  facts: SourceFacts,
+  treatment: Treatment,
+  engine: Engine = plainEngine,
+): BuildPlan {
+  const plan = planBuild(texture, facts, treatment, engine);
   return {
     files: plannedFiles(plan.outputs),
     phases: phasesOf(plan.chain),
@@ -52,13 +59,13 @@ export interface TexturePlan {
   readonly notes: readonly string[];
 }
 
-export function planBuild(texture: string, facts: SourceFacts, treatment: Treatment): TexturePlan {
+export function planBuild(texture: string, facts: SourceFacts, treatment: Treatment, engine: Engine): TexturePlan {
   const head = headOf(facts, treatment);
   if (treatment.grid === null) {
     const chain = planChain(head, treatment);
     const levels = chain.levels.filter((level) => level.shipped);
     const outputs = planOutputs(texture, chain, levels);
-    return { head, chain, outputs, chainBytes: chainBytes(chain), notes: chain.notes };
+    return { head, chain, outputs, chainBytes: chainBytes(chain, engine), notes: chain.notes };
   }
   if (treatment.normal.roughness !== null) refuse('roughness-grid', {});
   const sheet = planSheet(facts.extent, treatment.grid);
@@ -77,7 +84,7 @@ export function planBuild(texture: string, facts: SourceFacts, treatment: Treatm
     head,
     chain,
     outputs: planOutputs(texture, chain, levels),
-    chainBytes: sheetBytes(whole, cell, sheet.columns * sheet.rows),
+    chainBytes: sheetBytes(whole, cell, sheet.columns * sheet.rows, engine),
     notes: [...cell.notes, ...sheetNotes(sheet, treatment)],
   };
 }

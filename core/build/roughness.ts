@@ -30,19 +30,20 @@ export async function buildRoughness(
   if ('constant' in roughness) {
     const codes = new Uint8Array(extent.width * extent.height).fill(Math.floor(roughness.constant * 255 + 0.5));
     const raster: StraightRaster = { kind: 'straight', extent, channels: 1, depth: 8, codes };
-    return { chain: compensate(raster, job.treatment, normals), source: null };
+    return { chain: compensate(raster, job.treatment, normals, ports), source: null };
   }
   const path = sourcePath(roughness.path, job.texture);
   const { raster, source } = await readChannel(job, path, roughness.channel, plan, ports, cancel).catch((error) => {
     throw error instanceof Refusal ? new Refusal(placed(error.problem, path)) : error;
   });
-  return { chain: compensate(raster, job.treatment, normals), source };
+  return { chain: compensate(raster, job.treatment, normals, ports), source };
 }
 
-function compensate(raster: StraightRaster, treatment: Treatment, normals: Chain): Chain {
+function compensate(raster: StraightRaster, treatment: Treatment, normals: Chain, ports: Ports): Chain {
   const lengths = new Map<string | number, Float32Array>();
   for (const [image, plane] of normals.lengths) lengths.set('level' in image ? image.level : image.target.name, plane);
   return buildChain(raster, roughnessTreatment(treatment), {
+    ...(ports.engine && { engine: ports.engine }),
     lengthsOf: (image) => lengths.get('level' in image ? image.level : image.target.name) ?? null,
   });
 }

@@ -14,6 +14,7 @@ import {
 import { type Cancel, Cancelled, type Ports } from '../port.ts';
 import { refuse } from '../problem.ts';
 import { expandIndexed, type Raster } from '../raster/raster.ts';
+import { plainEngine } from '../resample/plain.ts';
 import { manifestPath } from '../treatment/names.ts';
 import { type BuiltChains, buildChains } from './chains.ts';
 import { describeImage } from './describe.ts';
@@ -25,11 +26,12 @@ import { openSource, readSource } from './source.ts';
 /** Builds one texture: decode, chain, encode. What every door calls. */
 export const buildTexture: BuildTexture = async (job, ports, cancel, write) => {
   const source = openSource(job.texture, job.image, ports);
-  const plan = planBuild(job.texture, source.facts, job.treatment);
+  const { engine = plainEngine } = ports;
+  const plan = planBuild(job.texture, source.facts, job.treatment, engine);
   const bytes = peakOf(source.facts, plan) + (job.roughness?.bytes.length ?? 0);
   if (bytes > job.memoryBytes) refuse('too-much-memory', { bytes, limit: job.memoryBytes });
 
-  const chains = await buildChains(source, plan, (take) => readSource(source, 'image', ports, cancel, take));
+  const chains = await buildChains(source, plan, engine, (take) => readSource(source, 'image', ports, cancel, take));
   const roughness = await buildRoughness(job, plan, chains.coded, ports, cancel);
   const sources = roughness?.source ? [chains.source, roughness.source] : [chains.source];
 

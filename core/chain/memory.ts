@@ -16,14 +16,14 @@ export function chainBytes(plan: ChainPlan, engine: Engine = plainEngine): numbe
 
 /** The same for a sheet of `count` cells that are filtered alone: every cell's images are kept until all are put together,
  *  and the sheet itself is held all the while. */
-export function sheetBytes(whole: ChainPlan, cell: ChainPlan, count: number): number {
+export function sheetBytes(whole: ChainPlan, cell: ChainPlan, count: number, engine: Engine = plainEngine): number {
   const { extent } = whole.head;
   const source = areaOf(extent) * sourceTexel(whole);
   // Level 0 is kept, recoded and copied before cells are put into it.
   const kept = areaOf(cell.head.extent) * storedTexel(cell) + sum(imagesOf(cell), (image) => imageBytes(cell, image));
   const shares = Math.ceil(areaOf(extent) / areaOf(cell.head.extent));
   const assembled = shares * sum(imagesOf(cell), (image) => imageBytes(cell, image));
-  return source + count * kept + chainBytes(cell) + assembled + 3 * areaOf(extent) * storedTexel(whole);
+  return source + count * kept + chainBytes(cell, engine) + assembled + 3 * areaOf(extent) * storedTexel(whole);
 }
 
 type Planned = PlannedLevel | PlannedTarget;

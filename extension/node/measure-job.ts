@@ -30,7 +30,7 @@ async function measure(job: TextureJob, bench: Bench): Promise<Outcome> {
     if (bench.cancel.cancelled) return { kind: 'cancelled' };
     const image = await decodeImage(source);
     const raster = image.kind === 'indexed' ? expandIndexed(image) : image;
-    return { kind: 'measured', halos: measureHalo(raster, job.treatment) };
+    return { kind: 'measured', halos: measureHalo(raster, job.treatment, bench.ports.engine) };
   } catch (error) {
     if (error instanceof Refusal) return { kind: 'failed', problem: placed(error.problem, job.image.path) };
     throw error;

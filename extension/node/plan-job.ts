@@ -4,16 +4,17 @@ import { openImage } from '../../core/codec/open.ts';
 import { PEEK_BYTES, peekImage } from '../../core/codec/peek.ts';
 import type { BuildPlan } from '../../core/job.ts';
 import { placed, Refusal, refuse } from '../../core/problem.ts';
+import type { Engine } from '../../core/resample/engine.ts';
 import type { Treatment } from '../../core/treatment/treatment.ts';
 import type { Disk } from './disk.ts';
 import { inflate } from './inflate.ts';
 import type { TextureJob } from './texture-job.ts';
 
 /** Plans a job from its files, which are checked and not decoded. Throws Refusal. */
-export function planJob(job: TextureJob, image: Uint8Array, roughness: Uint8Array | null): BuildPlan {
+export function planJob(job: TextureJob, image: Uint8Array, roughness: Uint8Array | null, engine?: Engine): BuildPlan {
   const opened = openImage(image, job.image.path, inflate);
   if (job.roughness !== null && roughness !== null) checkImage(roughness, job.roughness.path);
-  return planTexture(job.texture, factsOf(opened, image.length + (roughness?.length ?? 0)), job.treatment);
+  return planTexture(job.texture, factsOf(opened, image.length + (roughness?.length ?? 0)), job.treatment, engine);
 }
 
 /** Plans a texture from the head of its file, as far as that tells: enough for the names of its outputs. Throws Refusal. */

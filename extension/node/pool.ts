@@ -1,6 +1,7 @@
 import { availableParallelism } from 'node:os';
 import { Worker } from 'node:worker_threads';
 import type { Problem } from '../../core/problem.ts';
+import { compileKernels } from './kernels.ts';
 import { type MemoryGate, openMemoryGate } from './memory.ts';
 import type { Outcome, TextureJob } from './texture-job.ts';
 
@@ -8,7 +9,7 @@ import type { Outcome, TextureJob } from './texture-job.ts';
 export type RunJobs = (jobs: readonly TextureJob[], done: (index: number, outcome: Outcome) => void) => Promise<void>;
 
 export interface PoolOptions {
-  /** The bundled pool.worker.ts. */
+  /** The bundled pool.worker.ts, with the compiled kernels beside it. */
   readonly workerUrl: URL;
   readonly workers: number;
   /** Bytes that all running jobs may hold together. */
@@ -27,11 +28,14 @@ export type FromWorker =
  *  next job holds. Starting a worker takes a tenth of the time of such a job. */
 const RECYCLE_BYTES = 2 ** 26;
 
-/** Runs jobs in worker threads, one at a time in each. A worker that ends takes its job with it, in words, and no other. */
+/** Runs jobs in worker threads, one at a time in each. A worker that ends takes its job with it, in words, and no other. Where
+ *  the machine cannot run the kernels, the first texture that is built says so. */
 export function runInWorkers({ workerUrl, workers, memoryBytes, cancel }: PoolOptions): RunJobs {
   const flag = new Int32Array(cancel);
   return async (jobs, done) => {
     const gate = openMemoryGate(memoryBytes);
+    const { kernels, missing } = compileKernels(new URL('./engine.wasm', workerUrl));
+    let unsaid = missing;
     let next = 0;
     const lane = async () => {
       let thread: Thread | null = null;
@@ -41,9 +45,10 @@ export function runInWorkers({ workerUrl, workers, memoryBytes, cancel }: PoolOp
           done(index, { kind: 'cancelled' });
           continue;
         }
-        thread ??= startThread(workerUrl, cancel);
+        thread ??= startThread(workerUrl, { cancel, kernels });
         const { outcome, heldBytes } = await thread.run(jobs[index], gate);
-        done(index, outcome);
+        done(index, unsaid === null ? outcome : warned(outcome, unsaid));
+        if (outcome.kind === 'built') unsaid = null;
         if (heldBytes >= RECYCLE_BYTES) await thread.stop();
         gate.leave(heldBytes);
         if (thread.ended()) thread = null;
@@ -54,9 +59,19 @@ export function runInWorkers({ workerUrl, workers, memoryBytes, cancel }: PoolOp
   };
 }
 
+function warned(outcome: Outcome, problem: Problem): Outcome {
+  return outcome.kind === 'built' ? { ...outcome, warnings: [...outcome.warnings, problem] } : outcome;
+}
+
 /** One worker for each processor that this process may use. */
 export function defaultWorkers(): number {
   return Math.min(256, availableParallelism());
+}
+
+/** What a worker is given when it starts. */
+export interface WorkerData {
+  readonly cancel: SharedArrayBuffer;
+  readonly kernels: WebAssembly.Module | null;
 }
 
 interface Thread {
@@ -66,8 +81,8 @@ interface Thread {
   stop(): Promise<unknown>;
 }
 
-function startThread(url: URL, cancel: SharedArrayBuffer): Thread {
-  const worker = new Worker(url, { workerData: { cancel } });
+function startThread(url: URL, workerData: WorkerData): Thread {
+  const worker = new Worker(url, { workerData });
   let ended = false;
   worker.once('exit', () => {
     ended = true;

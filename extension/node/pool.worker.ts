@@ -1,6 +1,8 @@
 import { parentPort, workerData } from 'node:worker_threads';
+import type { WorkerData } from './pool.ts';
 import { serve } from './serve.ts';
 
-const cancel = new Int32Array(workerData.cancel);
+const given = workerData as WorkerData;
+const cancel = new Int32Array(given.cancel);
 
-if (parentPort !== null) serve(parentPort, () => Atomics.load(cancel, 0) === 1);
+if (parentPort !== null) serve(parentPort, given.kernels, () => Atomics.load(cancel, 0) === 1);

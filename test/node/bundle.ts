@@ -1,6 +1,7 @@
-import { existsSync, rmSync } from 'node:fs';
+import { copyFileSync, existsSync, rmSync } from 'node:fs';
 import { build } from 'esbuild';
 import { afterAll } from 'vitest';
+import { kernelBytes } from '../fixtures/simd.ts';
 
 const top = new URL('../../', import.meta.url).pathname;
 
@@ -36,6 +37,8 @@ async function bundle(): Promise<string> {
       js: "import { createRequire as createRequireHere } from 'node:module';\nconst require = createRequireHere(import.meta.url);",
     },
   });
+  kernelBytes();
+  copyFileSync(`${top}dist/engine.wasm`, `${outdir}/engine.wasm`);
   if (!existsSync(`${outdir}/cli.js`)) throw new Error('The command line was not bundled.');
   return outdir;
 }
