@@ -40,7 +40,7 @@ const ROOMS = [
   'test',
 ];
 
-const COMMANDS = { start, test, build, types, lint, mutate, paint, schema, kernels, pack };
+const COMMANDS = { start, test, build, types, lint, mutate, paint, schema, kernels, pack, page };
 
 const nodeVersion = process.versions.node;
 if (Number(nodeVersion.split('.')[0]) < OLDEST_NODE_MAJOR) {
@@ -151,6 +151,16 @@ async function mutate(rest) {
   await install('.');
   await install('test');
   return run(['test/mutate/mutate.mjs', ...rest]);
+}
+
+/** The tests of the page alone, which need a browser and minutes. */
+async function page(rest) {
+  await install('.');
+  await install('test');
+  await bundle();
+  const { failed, passed, code } = await runTests('test/page/vitest.config.ts', rest);
+  console.log(`${passed} passed, ${failed} failed`);
+  return failed > 0 ? 1 : code;
 }
 
 function paint(rest) {

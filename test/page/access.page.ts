@@ -2,6 +2,7 @@ import { readFileSync } from 'node:fs';
 import { createRequire } from 'node:module';
 import type { Browser, Page } from 'playwright-core';
 import { afterAll, beforeAll, expect, test } from 'vitest';
+import { crc32 } from '../../core/codec/crc.ts';
 import { encodePng } from '../../core/codec/png/encode.ts';
 import { deflate } from '../../extension/node/deflate.ts';
 import { noiseRaster } from '../fixtures/noise.ts';
@@ -104,10 +105,10 @@ const states: readonly State[] = [
     recording: async () => {
       const file = Buffer.from(await encodePng(noiseRaster(1, { width: 1, height: 1 }, 3, 8, 'noise'), deflate));
       file.writeUInt32BE(70000, 16);
-      file.writeUInt32BE((await import('node:zlib')).crc32?.(file.subarray(12, 29)) ?? 0, 29);
+      file.writeUInt32BE(crc32(file.subarray(12, 29)), 29);
       return record(file, 'a.png');
     },
-    marker: /each axis must be|damaged/,
+    marker: /each axis must be/,
     prints: 0,
   },
   {

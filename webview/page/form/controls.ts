@@ -82,6 +82,7 @@ export const controls = css`
     background: var(--proof-on);
     color: var(--proof-on-text);
     border-color: var(--proof-on-line);
+    box-shadow: inset 0 -2px 0 var(--proof-on-line);
   }
   button:disabled {
     opacity: 0.55;

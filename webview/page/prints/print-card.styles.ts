@@ -42,6 +42,7 @@ export const cardStyles = css`
     background: none;
     color: inherit;
     border: 0;
+    box-shadow: none;
   }
   .name:hover:not(:disabled) {
     text-decoration: underline;

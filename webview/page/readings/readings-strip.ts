@@ -64,7 +64,7 @@ export class ReadingsStrip extends LitElement {
       }
       tbody th {
         white-space: normal;
-        min-width: 120px;
+        min-width: 88px;
       }
       tr.chosen th {
         font-weight: 600;
@@ -118,7 +118,7 @@ export class ReadingsStrip extends LitElement {
           <span class="gap"></span>
           <button class="plain" @click=${() => copy(model, texelText(place, readings))}>${t('Copy')}</button>
         </header>
-        <div class="wide">
+        <div class="wide" tabindex="0" role="region" aria-label=${t('Codes of the texel by print')}>
           <table>
             <thead>
               <tr>
