@@ -196,7 +196,7 @@ export const faults = [
   },
   {
     law: 'luminance is weighed by alpha',
-    file: 'core/chain/image.ts',
+    file: 'core/chain/coder.ts',
     find: 'light += premultiplied ? y : y * share;',
     replace: 'light += y;',
     tests: 'test/laws/light.test.ts',
