@@ -69,7 +69,7 @@ export function webviewOf(page: Page): FrameLocator {
 
 /** Picks from the extension's part of the explorer's menu. A menu that has only just opened takes no click, hence several tries. */
 export async function pickFromExplorer(page: Page, row: string, label: string): Promise<void> {
-  const menu = page.locator('.monaco-menu-container');
+  const menu = page.locator('.monaco-menu-container').first();
   for (let tries = 1, isPicked = false; ; tries++) {
     try {
       // A slow menu may have gone after its time.
