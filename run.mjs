@@ -40,7 +40,7 @@ const ROOMS = [
   'test',
 ];
 
-const COMMANDS = { start, test, build, types, lint, mutate, paint, schema, kernels, pack, page };
+const COMMANDS = { start, test, build, types, lint, mutate, paint, schema, kernels, pack, page, host };
 
 const nodeVersion = process.versions.node;
 if (Number(nodeVersion.split('.')[0]) < OLDEST_NODE_MAJOR) {
@@ -92,13 +92,7 @@ async function test(rest) {
   await types();
   await lint();
   await bundle();
-  const reports = [await runTests('test/vitest.config.ts', rest)];
-  // In a real VS Code, with what was packed. A filter is meant for the others.
-  if (rest.length === 0) reports.push(await runTests('test/host/vitest.config.ts', []));
-  const count = (name) => reports.reduce((sum, each) => sum + each[name], 0);
-  if (count('skipped') > 0) console.log(`${count('skipped')} skipped`);
-  console.log(`${count('passed')} passed, ${count('failed')} failed`);
-  return count('failed') > 0 ? 1 : Math.max(...reports.map((each) => each.code));
+  return countTests('test/vitest.config.ts', rest);
 }
 
 /** Runs the tests of one configuration and answers how many passed, failed and were skipped, and vitest's exit code. */
@@ -158,7 +152,21 @@ async function page(rest) {
   await install('.');
   await install('test');
   await bundle();
-  const { failed, passed, code } = await runTests('test/page/vitest.config.ts', rest);
+  return countTests('test/page/vitest.config.ts', rest);
+}
+
+/** In a real VS Code, with what was packed. */
+async function host(rest) {
+  await install('.');
+  await install('test');
+  await bundle();
+  return countTests('test/host/vitest.config.ts', rest);
+}
+
+/** Runs a set of tests; the last line counts them. */
+async function countTests(config, rest) {
+  const { failed, passed, skipped, code } = await runTests(config, rest);
+  if (skipped > 0) console.log(`${skipped} skipped`);
   console.log(`${passed} passed, ${failed} failed`);
   return failed > 0 ? 1 : code;
 }
