@@ -118,7 +118,9 @@ test('a rising row rises still', () => {
 test('mirrored rows give mirrored rows, a constant stays, both exactly', () => {
   fc.assert(
     fc.property(rows, sizes, float, (row, to, value) => {
-      expect(resample(row.slice().reverse(), to)).toEqual(resample(row, to).reverse());
+      // Both zeros are one number: which of them a clamped value is hangs on the side it comes from.
+      const unsigned = (values: readonly number[]): number[] => values.map((each) => each + 0);
+      expect(unsigned(resample(row.slice().reverse(), to))).toEqual(unsigned(resample(row, to).reverse()));
       expect(
         resample(
           row.map(() => value),
