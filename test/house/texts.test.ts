@@ -31,7 +31,7 @@ test('a registry and a machine’s path are noticed', () => {
   for (const folder of [...folders, ['C:', 'Users', 'someone'].join('\\')]) {
     expect(machinePaths(`see ${folder}/notes`)).toHaveLength(1);
   }
-  expect(machinePaths('core/work/a.ts and textures/home/b.png')).toEqual([]);
+  expect(machinePaths('core/home/a.ts and textures/root/b.png')).toEqual([]);
 });
 
 /** Hosts of package registries; the one that keeps the graphics standards is none. */
