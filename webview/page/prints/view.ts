@@ -1,3 +1,4 @@
+import { luminance } from '../../../core/color/luminance.ts';
 import { oklabDistance, oklabOfLight } from '../../../core/color/oklab.ts';
 import type { Picture } from '../../../core/proof/want.ts';
 import { maxCode } from '../../../core/raster/raster.ts';
@@ -88,7 +89,7 @@ function channel(picture: Picture, letter: 'r' | 'g' | 'b' | 'a'): Shader {
   };
 }
 
-/** Index of a letter's channel; null for an alpha that is not there. Grey answers to r, g and b. */
+/** Index of a letter's channel; null for an alpha that is not there. Gray answers to r, g and b. */
 export function channelAt(channels: number, letter: 'r' | 'g' | 'b' | 'a'): number | null {
   if (letter === 'a') return channels % 2 === 0 ? channels - 1 : null;
   return channels >= 3 ? 'rgb'.indexOf(letter) : 0;
@@ -140,7 +141,7 @@ function difference(view: View, picture: Picture, reference: Picture): Shader {
   return (texel, _, out) => put(out, rampAt(DIFFERENCE_RAMP, measure(texel) / OKLAB_SCALE));
 }
 
-/** OKLab distance of two pictures of one extent, texel by texel. Colors are compared over mid grey by their alpha, so that what
+/** OKLab distance of two pictures of one extent, texel by texel. Colors are compared over mid gray by their alpha, so that what
  *  nobody sees does not count. */
 export function colorDistance(picture: Picture, reference: Picture): (texel: number) => number {
   const [one, other] = [picture, reference].map((each) => seenLight(each));
@@ -176,14 +177,15 @@ function signed(picture: Picture, reference: Picture, letter: 'r' | 'g' | 'b' | 
   };
 }
 
-/** Grey and held back, so that marks stand out. */
+/** Gray and held back, so that marks stand out. */
 function dimmed(picture: Picture): Shader {
   const { color, alpha } = texelReader(picture);
   const codes = [0, 0, 0];
   return (texel, _, out) => {
     color(texel, codes);
-    const grey = 0.3 * codes[0] + 0.59 * codes[1] + 0.11 * codes[2];
-    out[0] = out[1] = out[2] = 64 + (grey * alpha(texel) + 128 * (1 - alpha(texel))) * 0.45;
+    // Of codes, not of light: it is only ground for the marks.
+    const gray = luminance(codes[0], codes[1], codes[2]);
+    out[0] = out[1] = out[2] = 64 + (gray * alpha(texel) + 128 * (1 - alpha(texel))) * 0.45;
   };
 }
 
