@@ -116,7 +116,7 @@ export function wantsLinear(plan: ChainPlan, outputs: OutputPlan): boolean {
   );
 }
 
-/** A packed file is colour where its front channels are, else data. */
+/** A packed file is color where its front channels are, else data. */
 function texelContent(plan: ChainPlan): Content {
   if (plan.treatment.channels === null) return plan.treatment.content;
   return holdsColor(plan.layout) ? 'color' : 'data';

@@ -9,8 +9,8 @@ import {
 import { blankLike, pasteRegion } from '../raster/region.ts';
 import type { TargetPlace } from './levels.ts';
 
-/** The picture in its cell, the rest transparent. What stands round it takes the colour of the picture's nearest texel, so
- *  that a sampler at the picture's edge does not pull black in. `alpha` is the channel that becomes 0 there; a grey or RGB
+/** The picture in its cell, the rest transparent. What stands round it takes the color of the picture's nearest texel, so
+ *  that a sampler at the picture's edge does not pull black in. `alpha` is the channel that becomes 0 there; a gray or RGB
  *  picture is given one, and where all channels have another use the rest is 0 in each. An indexed picture stays indexed
  *  where its palette has a clear entry. */
 export function placeInCell(raster: Raster, place: TargetPlace, alpha: number | null): Raster {

@@ -49,14 +49,14 @@ function countTexels(plane: AlphaPlane, passing: number): number {
   return count;
 }
 
-/** Samples at (i + 1/2) / 4 of each texel, so -3/8, -1/8, 1/8, 3/8 from its centre: weights are eighths, sums integers over
+/** Samples at (i + 1/2) / 4 of each texel, so -3/8, -1/8, 1/8, 3/8 from its center: weights are eighths, sums integers over
  *  64, and a sample passes from passing - 1/2 on. */
 function countSamples(plane: AlphaPlane, passing: number, wrap: WrapPair): number {
   const { width, height } = plane.extent;
   const threshold = 64 * passing - 32;
   let count = 0;
-  const columns = neighbours(width, wrap.x);
-  const rows = neighbours(height, wrap.y);
+  const columns = neighbors(width, wrap.x);
+  const rows = neighbors(height, wrap.y);
   for (let y = 0; y < height; y++) {
     for (let x = 0; x < width; x++) {
       const at = (dx: number, dy: number): number => {
@@ -73,7 +73,7 @@ function countSamples(plane: AlphaPlane, passing: number, wrap: WrapPair): numbe
   return count;
 }
 
-/** The four samples of a texel that lie toward one diagonal neighbour: 1/8 or 3/8 of the way on each axis. */
+/** The four samples of a texel that lie toward one diagonal neighbor: 1/8 or 3/8 of the way on each axis. */
 function passingQuarter(own: number, aside: number, above: number, corner: number, threshold: number): number {
   let count = 0;
   for (let v = 1; v <= 3; v += 2) {
@@ -87,7 +87,7 @@ function passingQuarter(own: number, aside: number, above: number, corner: numbe
 }
 
 /** Wrapped indices of -1..count. */
-function neighbours(count: number, wrap: Wrap): Int32Array {
+function neighbors(count: number, wrap: Wrap): Int32Array {
   return Int32Array.from({ length: count + 2 }, (_, i) => wrapIndex(i - 1, count, wrap));
 }
 

@@ -18,7 +18,7 @@ export interface Draft {
   readonly raster: Raster;
   /** Where it was made from float rows. */
   readonly work: ImageInWork | null;
-  /** Whether its colours under alpha 0 are the source's own. */
+  /** Whether its colors under alpha 0 are the source's own. */
   readonly moved: boolean;
 }
 

@@ -12,7 +12,7 @@ export interface Encoding {
   readonly floatChannels: number;
   readonly depth: Depth;
   readonly store: 'straight' | 'premultiplied';
-  /** How colour is stored: transfer-coded, or as linear light in code units. */
+  /** How color is stored: transfer-coded, or as linear light in code units. */
   readonly light: 'coded' | 'linear';
 }
 
@@ -117,7 +117,7 @@ function encodeScaled(column: Column, divider: number | null, scale: number): vo
   clipped.above[channel] += above;
 }
 
-/** Colour times alpha in linear light, then encoded: colour may not exceed what alpha lets through. */
+/** Color times alpha in linear light, then encoded: color may not exceed what alpha lets through. */
 function encodePremultiplied(column: Column, divider: number | null): void {
   const { floats, codes, offset, channel, clipped, encoding } = column;
   const { layout, floatChannels: stride } = encoding;
@@ -170,7 +170,7 @@ function clamped(share: number): number {
   return Math.min(1, Math.max(0, share));
 }
 
-/** Straight colour from weighted colour; black where nothing is there (fill decides later what stands under alpha 0). */
+/** Straight color from weighted color; black where nothing is there (fill decides later what stands under alpha 0). */
 function ratio(weighted: number, alpha: number): number {
   return alpha > 0 ? round(weighted / alpha) : 0;
 }

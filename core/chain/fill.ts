@@ -1,6 +1,6 @@
 import type { Extent, StraightRaster } from '../raster/raster.ts';
 
-// Colour for texels whose alpha code is 0, so that a sampler that interpolates does not pull black into edges: the colour of
+// Color for texels whose alpha code is 0, so that a sampler that interpolates does not pull black into edges: the color of
 // the texel over it in the next coarser level, from the last level upward.  [Gortler96, the pull of pull-push]
 
 /** Fills `raster` in place from a coarser raster of the same channels. `alpha` is the channel that must be 0. */
@@ -19,7 +19,7 @@ export function fillFrom(raster: StraightRaster, coarser: StraightRaster, alpha:
   }
 }
 
-/** Fills with one texel: the mean colour of the whole image, which stands for a level coarser than 1x1. */
+/** Fills with one texel: the mean color of the whole image, which stands for a level coarser than 1x1. */
 export function fillWith(raster: StraightRaster, texel: StraightRaster, alpha: number): void {
   const { channels, codes } = raster;
   for (let at = 0; at < codes.length; at += channels) {
@@ -38,7 +38,7 @@ function copyColor(
   for (let channel = 0; channel < channels; channel++) if (channel !== alpha) to[at + channel] = from[source + channel];
 }
 
-/** For each texel of an axis the coarser texel that holds its centre. */
+/** For each texel of an axis the coarser texel that holds its center. */
 function texelsOver(fine: Extent, coarse: Extent, axis: 'width' | 'height'): Int32Array {
   const count = fine[axis];
   return Int32Array.from({ length: count }, (_, i) => Math.floor(((2 * i + 1) * coarse[axis]) / (2 * count)));

@@ -73,7 +73,7 @@ function fillAll(
   }
 }
 
-/** The mean colour of level 0, weighed by alpha; black where the whole image is transparent. */
+/** The mean color of level 0, weighed by alpha; black where the whole image is transparent. */
 function meanTexel(plan: ChainPlan, sums: Float64Array): StraightRaster {
   const texels = plan.head.extent.width * plan.head.extent.height;
   const work = new ImageInWork({ width: 1, height: 1 }, encodingOf(plan), { alpha: 'dropped' });

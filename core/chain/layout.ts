@@ -9,8 +9,8 @@ export interface ChainHead {
   readonly channels: ChannelCount;
   readonly depth: Depth;
   readonly indexed: boolean;
-  /** Exponent that the file's own tag says its colours were encoded with, where it is obeyed: light = code^(1/gamma). Left
-   *  out where colours are sRGB. */
+  /** Exponent that the file's own tag says its colors were encoded with, where it is obeyed: light = code^(1/gamma). Left
+   *  out where colors are sRGB. */
   readonly gamma?: number;
 }
 
@@ -38,7 +38,7 @@ export interface Layout {
   /** Channels multiplied by alpha while filtering. */
   readonly weighted: readonly number[];
   readonly normals: readonly NormalGroup[];
-  /** As in the head; null where colours are what their roles say. */
+  /** As in the head; null where colors are what their roles say. */
   readonly gamma: number | null;
   /** Index of the roughness channel that takes up the spread of this file's normals. */
   readonly roughness: number | null;
@@ -72,7 +72,7 @@ export function planLayout(head: ChainHead, treatment: Treatment): Layout {
   };
 }
 
-/** How many channels come before alpha's place: 1 of a grey file, 3 of any other. */
+/** How many channels come before alpha's place: 1 of a gray file, 3 of any other. */
 export function frontChannels(channels: ChannelCount): 1 | 3 {
   return channels >= 3 ? 3 : 1;
 }
@@ -86,7 +86,7 @@ export function holdsColor(layout: Layout): boolean {
 type ChannelMeaning = ChannelContent | 'alpha';
 
 function contentsOf(channels: ChannelCount, treatment: Treatment): ChannelMeaning[] {
-  // A grey-and-alpha file is the one two-channel raster there is: as a normal map its alpha is y.
+  // A gray-and-alpha file is the one two-channel raster there is: as a normal map its alpha is y.
   if (channels === 2 && treatment.content === 'normal' && treatment.channels === null) return ['normal', 'normal'];
   const letters = lettersOf(channels);
   const meanings = letters.map((letter): ChannelMeaning => (letter === 'a' ? 'alpha' : treatment.content));

@@ -9,7 +9,7 @@ import { levelCount, levelExtent, type TargetPlace, targetPlace } from './levels
 import { type Method, methodOf, movesCodes } from './method.ts';
 import { encodingOf } from './store.ts';
 
-/** How codes are stored beyond what the treatment says: a KTX2 of 16-bit colour holds linear light. */
+/** How codes are stored beyond what the treatment says: a KTX2 of 16-bit color holds linear light. */
 export type Light = 'coded' | 'linear';
 
 /** Everything about a chain that its head and treatment decide. */

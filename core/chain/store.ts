@@ -55,7 +55,7 @@ export function changeDepth(raster: StraightRaster, depth: Depth): StraightRaste
   return { ...raster, depth, codes };
 }
 
-/** Through floats and back, unweighted: colour under alpha 0 survives. */
+/** Through floats and back, unweighted: color under alpha 0 survives. */
 function recoded(plan: ChainPlan, raster: StraightRaster): StraightRaster {
   const layout: Layout = { ...plan.layout, weighted: [] };
   const decoding = decodingOf(layout);

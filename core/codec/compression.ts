@@ -3,7 +3,7 @@ import type { IndexedRaster, StraightRaster } from '../raster/raster.ts';
 
 /** Every way in which files are deflated here; the encoder fingerprint tries each of them. */
 export const compressions = {
-  /** Codes that name colours rather than measure them: palettes and art of few colours. Long matches pay
+  /** Codes that name colors rather than measure them: palettes and art of few colors. Long matches pay
    *  (measured on 16-texel tiles: level 8 is 40 % smaller than level 6; level 9 gains nothing more). */
   labels: { level: 8, strategy: 'default' },
   /** Tiles and patterns, and unfiltered texels. */
@@ -25,7 +25,7 @@ export function chooseCompression(raster: StraightRaster | IndexedRaster): Compr
  *  6 % of each other), tiles and sprite sheets 0.35-1 (runs alone are up to 7 times larger). So err to the low side. */
 const REPEATING_SHARE = 1 / 8;
 
-/** A palette could hold them all. Grey is left out: it measures even where it has few codes. */
+/** A palette could hold them all. Gray is left out: it measures even where it has few codes. */
 const FEW_COLORS = 256;
 
 function hasFewColors({ channels, depth, codes }: StraightRaster): boolean {

@@ -2,7 +2,7 @@ import type { Hash } from '../port.ts';
 import { type Codes, type Extent, expandIndexed, type Raster } from '../raster/raster.ts';
 
 /** SHA-256 of width, height, channels and depth (u32, little-endian), then the codes row by row, 16-bit codes with the low
- *  byte first whatever the host's order. Lower-case hexadecimal. An indexed raster is hashed as the colours it stands for
+ *  byte first whatever the host's order. Lower-case hexadecimal. An indexed raster is hashed as the colors it stands for
  *  (RGBA where it carries alpha, else RGB), so an indexed file and its expanded twin agree, and a palette may be reordered. */
 export function hashPixels(raster: Raster, newHash: () => Hash): string {
   const { width, height } = raster.extent;

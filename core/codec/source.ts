@@ -1,6 +1,6 @@
 import type { ChannelCount, Codes, Depth, Extent, Palette } from '../raster/raster.ts';
 
-/** A colour chunk of a PNG, as found; whether it is obeyed is the treatment's choice. */
+/** A color chunk of a PNG, as found; whether it is obeyed is the treatment's choice. */
 export interface ColorChunk {
   readonly name: 'cICP' | 'iCCP' | 'sRGB' | 'gAMA' | 'cHRM';
   /** Numbers in decimal with a space between. gAMA: value * 100000; cHRM: white, red, green and blue x and y * 100000;
@@ -12,7 +12,7 @@ export interface ColorChunk {
 export interface SourceHeader {
   readonly format: 'png' | 'tga';
   readonly extent: Extent;
-  /** Channels and depth of the rows that come out: grey below 8 bits is scaled to 8, a single transparent colour becomes
+  /** Channels and depth of the rows that come out: gray below 8 bits is scaled to 8, a single transparent color becomes
    *  an alpha channel, an indexed file gives indices (then `channels` and `depth` are those of the expanded raster). */
   readonly channels: ChannelCount;
   readonly depth: Depth;

@@ -1,7 +1,7 @@
 import { refuse } from '../problem.ts';
 import type { ColorChunk } from './source.ts';
 
-/** What a file's colour chunks say about its colours, for treatments that obey them: the exponent they were encoded with,
+/** What a file's color chunks say about its colors, for treatments that obey them: the exponent they were encoded with,
  *  or null where they are sRGB. Of several chunks the first of cICP, iCCP, sRGB, gAMA with cHRM rules. Throws Refusal for
  *  what this version cannot obey: other primaries than sRGB's, profiles, other transfer functions.
  *  [PNG3, 4.3 Color spaces; H273 for the numbers of cICP] */

@@ -144,7 +144,7 @@ function rangesOf(plan: ChainPlan, raster: StraightRaster): Map<PlannedLevel | P
   return ranges;
 }
 
-/** Colour under alpha 0 takes no part in the range: it is set to the code that never decides it. */
+/** Color under alpha 0 takes no part in the range: it is set to the code that never decides it. */
 function hiddenAs(raster: StraightRaster, layout: Layout, code: number): StraightRaster {
   const { alpha } = layout;
   if (alpha === null || layout.weighted.length === 0) return raster;

@@ -10,7 +10,7 @@ export interface KernelEntry {
   readonly params: readonly KernelParam[];
   /** Keys into core/REFERENCES.md, separated by ", ". */
   readonly source: string;
-  /** Whether a target texel that lies centred on a source texel, when magnifying, equals it (for the default parameters). */
+  /** Whether a target texel that lies centered on a source texel, when magnifying, equals it (for the default parameters). */
   readonly interpolates: boolean;
   readonly minifies: boolean;
   readonly magnifies: boolean;
@@ -52,7 +52,7 @@ export type KernelRule =
 
 const everyScale = { minifies: true, magnifies: true } as const;
 
-/** The source texel that holds the target's centre: floor(u).  [Vulkan, (u,v,w,a) to (i,j,k,l,n) Transformation] */
+/** The source texel that holds the target's center: floor(u).  [Vulkan, (u,v,w,a) to (i,j,k,l,n) Transformation] */
 const nearest: Kernel = {
   name: 'nearest',
   params: [],
@@ -110,7 +110,7 @@ const detail: Kernel = {
   kind: 'footprint',
 };
 
-/** The colour that covers most of the target texel: adds none to a palette. Our own rule, a plain area-weighted mode. */
+/** The color that covers most of the target texel: adds none to a palette. Our own rule, a plain area-weighted mode. */
 const majority: Kernel = {
   name: 'majority',
   params: [],

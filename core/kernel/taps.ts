@@ -206,9 +206,9 @@ function stretched(
     const distance = (i: number) => ((2 * i + 1) * to - (2 * j + 1) * from) / unit;
     // Starts one texel outside on either side of the real bounds, then walks in: the division above decides alone.
     const reach = (support * unit) / (2 * to);
-    const centre = ((2 * j + 1) * from) / (2 * to) - 0.5;
-    let first = Math.floor(centre - reach) - 1;
-    let end = Math.ceil(centre + reach) + 2;
+    const center = ((2 * j + 1) * from) / (2 * to) - 0.5;
+    let first = Math.floor(center - reach) - 1;
+    let end = Math.ceil(center + reach) + 2;
     while (Math.abs(distance(first)) >= support) first++;
     while (Math.abs(distance(end - 1)) >= support) end--;
     return { first, weights: Float64Array.from({ length: end - first }, (_, k) => weight(distance(first + k))) };

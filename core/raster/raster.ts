@@ -13,19 +13,19 @@ export type Codes = Uint8Array | Uint16Array;
 
 interface Samples {
   readonly extent: Extent;
-  /** 1 grey, 2 grey and alpha, 3 RGB, 4 RGBA; the last of an even count is alpha, or whatever the treatment says. */
+  /** 1 gray, 2 gray and alpha, 3 RGB, 4 RGBA; the last of an even count is alpha, or whatever the treatment says. */
   readonly channels: ChannelCount;
   readonly depth: Depth;
   /** Row by row from the top, channels interleaved, no padding: length width * height * channels. */
   readonly codes: Codes;
 }
 
-/** Colour is not multiplied by alpha: what PNG and TGA hold. */
+/** Color is not multiplied by alpha: what PNG and TGA hold. */
 export interface StraightRaster extends Samples {
   readonly kind: 'straight';
 }
 
-/** Colour is multiplied by alpha in linear light and then encoded: what a premultiplied KTX2 holds. */
+/** Color is multiplied by alpha in linear light and then encoded: what a premultiplied KTX2 holds. */
 export interface PremultipliedRaster extends Samples {
   readonly kind: 'premultiplied';
 }

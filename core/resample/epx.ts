@@ -128,9 +128,9 @@ class Colors {
       const at = texel * channels;
       const alpha = hasAlpha ? codes[at + channels - 1] : 1;
       if (alpha === 0) continue;
-      const isGrey = channels < 3;
-      this.#high[texel + 1] = isGrey ? codes[at] : codes[at] * 65536 + codes[at + 1];
-      this.#low[texel + 1] = isGrey ? alpha : codes[at + 2] * 65536 + alpha;
+      const isGray = channels < 3;
+      this.#high[texel + 1] = isGray ? codes[at] : codes[at] * 65536 + codes[at + 1];
+      this.#low[texel + 1] = isGray ? alpha : codes[at + 2] * 65536 + alpha;
     }
   }
 

@@ -3,8 +3,8 @@ import { buildFootprints, checkSmaller } from './footprint.ts';
 import { pickTexels } from './pick.ts';
 
 /** Each target texel takes the color that covers most of it. Votes are exact overlaps of areas. All texels of alpha 0 (the
- *  last channel of two or four) vote as one color, whose hidden codes come from the one nearest the target's centre. A tie goes
- *  to the color with a texel nearest the centre, then to the lowest RGBA as an integer. Palette entries of equal color vote
+ *  last channel of two or four) vote as one color, whose hidden codes come from the one nearest the target's center. A tie goes
+ *  to the color with a texel nearest the center, then to the lowest RGBA as an integer. Palette entries of equal color vote
  *  together; an index is kept. Throws RangeError where the target is larger than the source. */
 export function majority<R extends StraightRaster | IndexedRaster>(raster: R, extent: Extent): R {
   checkSmaller(raster.extent, extent);
@@ -30,7 +30,7 @@ function winners(source: StraightRaster, extent: Extent): Int32Array {
       ballot.clear();
       for (let ky = 0; ky < down.count[jy]; ky++) {
         const y = down.first[jy] + ky;
-        // Distances from the centre in source texels, times 2 width height: integers, so mirrored texels tie exactly.
+        // Distances from the center in source texels, times 2 width height: integers, so mirrored texels tie exactly.
         const dy = ((2 * y + 1) * down.to - (2 * jy + 1) * down.from) * across.to;
         const rowOverlap = down.overlap[down.start[jy] + ky];
         for (let kx = 0; kx < across.count[jx]; kx++) {
@@ -60,7 +60,7 @@ class Ballot {
   readonly #hasAlpha: boolean;
   /** 1 + the class in a slot, 0 where it is free; a power of two of them, at most half full. */
   #slots = new Int32Array(16);
-  /** Per class: the texel nearest the centre, its distance, and the votes. */
+  /** Per class: the texel nearest the center, its distance, and the votes. */
   #texel = new Int32Array(8);
   #distance = new Float64Array(8);
   #votes = new Float64Array(8);
@@ -109,7 +109,7 @@ class Ballot {
     return this.#compare(texel, this.#texel[index]) < 0;
   }
 
-  /** Order of two texels by RGBA as an integer; grey compares as its red, green and blue would. */
+  /** Order of two texels by RGBA as an integer; gray compares as its red, green and blue would. */
   #compare(one: number, other: number): number {
     for (let channel = 0; channel < this.#channels; channel++) {
       const difference = this.#codes[one * this.#channels + channel] - this.#codes[other * this.#channels + channel];

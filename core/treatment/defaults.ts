@@ -45,7 +45,7 @@ export function defaultNormalCount(channels: Treatment['channels']): 2 | 3 {
   return group?.length === 2 ? 2 : 3;
 }
 
-/** Letters of the file: of grey and alpha where no other is named. */
+/** Letters of the file: of gray and alpha where no other is named. */
 export function channelLetters(channels: NonNullable<Treatment['channels']>): readonly string[] {
   const named = Object.keys(channels).join('');
   if (/[gb]/.test(named)) return ['r', 'g', 'b', 'a'];

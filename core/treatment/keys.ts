@@ -42,7 +42,7 @@ const target = either(
   record(key('scale', number('factor', 1 / 1024, 64), required(), 'Factor per axis.'), targetName),
   record(key('extent', pair, required(), 'Width and height.'), targetName),
   record(
-    key('cell', pair, required(), 'Width and height that the image is fitted into, centred, the rest transparent.'),
+    key('cell', pair, required(), 'Width and height that the image is fitted into, centered, the rest transparent.'),
     targetName,
   ),
 );
@@ -192,7 +192,7 @@ export const treatmentKeys: readonly Key[] = [
         'format',
         choice('same', 'wide'),
         value('wide'),
-        'Whether 8-bit grey and RGB color keep their channels or are widened to RGBA.',
+        'Whether 8-bit gray and RGB color keep their channels or are widened to RGBA.',
       ),
     ),
     inner(),

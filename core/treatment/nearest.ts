@@ -9,7 +9,7 @@ export function nearest(word: string, choices: readonly string[]): string {
   return best;
 }
 
-/** Insertions, removals, replacements and swaps of neighbours that turn `a` into `b`; no part is edited twice.
+/** Insertions, removals, replacements and swaps of neighbors that turn `a` into `b`; no part is edited twice.
  *  [Damerau64] */
 export function editDistance(a: string, b: string): number {
   // A pasted text needs no exact answer, and rows of it would cost its square.

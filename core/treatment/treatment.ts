@@ -27,7 +27,7 @@ export interface AlphaTreatment {
   readonly test: '>=' | '>';
   readonly keepCoverage: boolean;
   readonly store: 'straight' | 'premultiplied';
-  /** Whether colour is weighted by alpha while filtering (only asked where `use` is opacity or mask). */
+  /** Whether color is weighted by alpha while filtering (only asked where `use` is opacity or mask). */
   readonly weight: boolean;
 }
 
@@ -43,7 +43,7 @@ export type Target =
   /** Scale factor per axis: extent = max(1, floor(s n + 1/2)). */
   | { readonly name: string; readonly scale: number }
   | { readonly name: string; readonly extent: readonly [width: number, height: number] }
-  /** Scaled to fit, centred, the rest transparent. */
+  /** Scaled to fit, centered, the rest transparent. */
   | { readonly name: string; readonly cell: readonly [width: number, height: number] };
 
 export interface Treatment {
@@ -78,7 +78,7 @@ export interface Treatment {
   readonly png: { readonly base: boolean };
   readonly colorChunks: 'ignore' | 'obey';
   readonly view: {
-    /** Texels of level 0 per metre of surface; null where nobody said. */
+    /** Texels of level 0 per meter of surface; null where nobody said. */
     readonly texelsPerMeter: number | null;
     /** Vertical field of view in degrees. */
     readonly fovY: number;

@@ -124,7 +124,7 @@ export function openLaydown(disk: Disk, place: Place, wait: Pause = pause): Layd
         await makeFolder(parentOf(path));
         return await disk.write(path, bytes);
       } catch (error) {
-        // A neighbour that failed may take away the empty folder that it made and we were about to use.
+        // A neighbor that failed may take away the empty folder that it made and we were about to use.
         if (!(error instanceof DiskError && error.fault === 'missing') || tries === 3) throw error;
       }
     }

@@ -15,7 +15,7 @@ const RGBA16_UNORM = 91;
 const deep = withAlpha(noiseRaster(7, { width: 6, height: 4 }, 4, 16, 'noise'), 7, 2, 4);
 const shallow = withAlpha(noiseRaster(8, { width: 6, height: 4 }, 4, 8, 'noise'), 8, 2, 4);
 
-describe('16-bit sRGB colour', () => {
+describe('16-bit sRGB color', () => {
   it('is sRGB in PNG and linear light in KTX2, each within a code of doubles', async () => {
     const one = treatment({ kernel: both('box'), png: { base: true }, fill: 'none' });
     const { files } = await build(pngOf(deep), one);
@@ -29,7 +29,7 @@ describe('16-bit sRGB colour', () => {
         const { color, alpha } = boxed(deep, level, x, y);
         const stored = texelOf(codes, extent.width, x, y);
         for (let channel = 0; channel < 3; channel++) {
-          // Hidden colour keeps its codes at level 0; below it is black.
+          // Hidden color keeps its codes at level 0; below it is black.
           const hidden = alpha === 0 && level > 0;
           const light = hidden ? 0 : color[channel];
           expect(Math.abs(stored[channel] - light * 65535)).toBeLessThanOrEqual(1);
@@ -120,8 +120,8 @@ describe('a premultiplied container', () => {
     });
   });
 
-  it('never lets colour above alpha where a kernel overshoots', async () => {
-    // Alpha is even, so that colour overshoots and alpha does not.
+  it('never lets color above alpha where a kernel overshoots', async () => {
+    // Alpha is even, so that color overshoots and alpha does not.
     const edge = painted({ width: 16, height: 16 }, 4, 8, (x, y) =>
       x + y < 14 ? [255, 255, 255, 100] : [0, 0, 0, 100],
     );
@@ -155,14 +155,14 @@ describe('a premultiplied container', () => {
 
 describe('the luminance of a manifest', () => {
   it('is light, whatever kernels weigh and whatever is stored', async () => {
-    const grey = painted({ width: 2, height: 2 }, 4, 8, () => [188, 188, 188, 128]);
+    const gray = painted({ width: 2, height: 2 }, 4, 8, () => [188, 188, 188, 128]);
     const light = decodeSrgb(188 / 255);
     for (const keys of [{}, { light: 'code' }, { kernel: both('nearest') }] as const) {
-      const { manifest } = await build(pngOf(grey), treatment(keys));
+      const { manifest } = await build(pngOf(gray), treatment(keys));
       for (const { luminance } of manifest.levels) expect(luminance).toBeCloseTo(light, 5);
     }
     const alpha = { store: 'premultiplied' } as const;
-    const { manifest } = await build(pngOf(grey), treatment({ outputs: ['ktx2'], alpha }));
+    const { manifest } = await build(pngOf(gray), treatment({ outputs: ['ktx2'], alpha }));
     // Codes of light times alpha are coarser: half a code of 8 bits at 0.25 is 0.002, twice that over alpha.
     for (const { luminance } of manifest.levels) expect(Math.abs(luminance! - light)).toBeLessThan(0.005);
   });

@@ -7,7 +7,7 @@ import { build, container, judged, pngOf } from '../fixtures/built.ts';
 import { texelAt } from '../fixtures/picture.ts';
 import { both, treatment } from '../fixtures/treatment.ts';
 
-// Indexed art: two entries are alike in colour, the order is nobody's, one entry is clear.
+// Indexed art: two entries are alike in color, the order is nobody's, one entry is clear.
 const palette = Uint8Array.of(9, 9, 9, 0, 200, 0, 0, 255, 0, 0, 200, 128, 200, 0, 0, 255);
 const art: IndexedRaster = {
   kind: 'indexed',
@@ -28,7 +28,7 @@ describe('kernels that move codes', () => {
   it.each([
     // floor((x + 1/2) 2): texels 1 and 3 of rows 1 and 3.
     ['nearest', [0, 2, 1, 1]],
-    // The most area: red of both entries beside each other, a tie of clear, ... by the centre.
+    // The most area: red of both entries beside each other, a tie of clear, ... by the center.
     ['majority', [3, 2, 0, 1]],
   ])('%s keeps palette, order and indices at each level', async (name, level1) => {
     const one = treatment({ kernel: { minify: both(name).minify, magnify: both('nearest').magnify }, derive: 'base' });
@@ -36,7 +36,7 @@ describe('kernels that move codes', () => {
     expect(manifest.sources[0]).toMatchObject({ channels: 4, depth: 8 });
     const level = await indexedPng(files.get('art/moss.1.png'));
     expect(level).toEqual({ ...art, extent: { width: 2, height: 2 }, indices: Uint8Array.from(level1) });
-    // Colours of the container are the palette's.
+    // Colors of the container are the palette's.
     const { levels } = container(files.get('art/moss.ktx2'), 8);
     expect(levels[0].codes).toEqual(expandIndexed(art).codes);
     expect(levels[1].codes).toEqual(expandIndexed(level).codes);
@@ -86,7 +86,7 @@ describe('kernels that weigh', () => {
   it.each([
     [3, 4],
     [0, 3],
-  ])('make colours of a palette with %i alphas: %i channels', async (alphaCount, channels) => {
+  ])('make colors of a palette with %i alphas: %i channels', async (alphaCount, channels) => {
     const { files } = await build(pngOf({ ...art, alphaCount }), treatment({ kernel: both('box') }));
     expect(files.has('art/moss.0.png')).toBe(false);
     expect(judged(files.get('art/moss.1.png'))).toMatchObject({ channels, depth: 8 });
@@ -106,7 +106,7 @@ describe('kernels that weigh', () => {
   });
 });
 
-describe('what changes codes makes colours of indices', () => {
+describe('what changes codes makes colors of indices', () => {
   it.each([
     ['depth', { depth: 16 }],
     ['fill', { fill: 'all' }],

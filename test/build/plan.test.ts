@@ -12,8 +12,8 @@ import { noiseRaster, withAlpha } from '../fixtures/noise.ts';
 import { both, treatment } from '../fixtures/treatment.ts';
 
 const extent = { width: 256, height: 256 };
-const grey = noiseRaster(1, extent, 1, 8, 'noise');
-const deepGrey = noiseRaster(1, extent, 1, 16, 'noise');
+const gray = noiseRaster(1, extent, 1, 8, 'noise');
+const deepGray = noiseRaster(1, extent, 1, 16, 'noise');
 const color = noiseRaster(2, extent, 3, 8, 'noise');
 const clear = withAlpha(noiseRaster(3, extent, 4, 8, 'noise'), 3, 3, 4);
 const deep = withAlpha(noiseRaster(4, extent, 4, 16, 'noise'), 4, 3, 4);
@@ -30,7 +30,7 @@ const mask = { use: 'mask', keepCoverage: true } as const;
 const data = { use: 'data' } as const;
 
 const cases: [string, Uint8Array, Treatment][] = [
-  ['grey', pngOf(grey), treatment({ content: 'data' })],
+  ['gray', pngOf(gray), treatment({ content: 'data' })],
   ['RGBA', pngOf(clear), treatment()],
   ['RGBA, deflated', pngOf(clear), treatment({ ktx2: { supercompress: 'zlib' } })],
   ['RGBA at 16 bits', pngOf(clear), treatment({ depth: 16 })],
@@ -65,7 +65,7 @@ const cases: [string, Uint8Array, Treatment][] = [
     pngOf(color),
     treatment({ content: 'normal', kernel: both('kaiser'), normal: { roughness: { constant: 0.5 } }, targets: twice }),
   ],
-  ['16-bit bounds', pngOf(deepGrey), treatment({ content: 'height', height: { minmax: true } })],
+  ['16-bit bounds', pngOf(deepGray), treatment({ content: 'height', height: { minmax: true } })],
   ['a sheet with gutters', pngOf(clear), treatment({ grid: { cell: [60, 124], gutter: 2 }, targets: twice })],
   ['an indexed sheet', pngOf(indexed), treatment({ grid: { cell: [64, 64], gutter: 0 }, kernel: both('nearest') })],
   ['a 16-bit sheet', pngOf(deep), treatment({ grid: { cell: [64, 64], gutter: 0 } })],

@@ -64,9 +64,9 @@ describe('a map', () => {
     const bump = painted({ width: 8, height: 1 }, 3, 16, (x) =>
       x === 2 ? [code(Math.sqrt(3) / 2), code(0), code(0.5)] : [code(0), code(0), 65535],
     );
-    const grey = flat({ width: 8, height: 1 }, 16, [20000]);
+    const gray = flat({ width: 8, height: 1 }, 16, [20000]);
     const one = { ...byMap, kernel: both('b-spline') };
-    const { files } = await build(pngOf(bump), one, { roughness: pngOf(grey) });
+    const { files } = await build(pngOf(bump), one, { roughness: pngOf(gray) });
     const level = judged(files.get('art/moss.roughness.1.png'));
     const length = Math.hypot(Math.sqrt(3) / 4, 0.75);
     const rough = ((20000 / 65535) ** 4 + (2 * (1 - length)) / length) ** 0.25 * 65535;

@@ -97,7 +97,7 @@ describe('an obeyed chunk', () => {
     });
   });
 
-  it('is obeyed once where colour is premultiplied', async () => {
+  it('is obeyed once where color is premultiplied', async () => {
     const one = treatment({
       colorChunks: 'obey',
       outputs: ['ktx2'],
@@ -152,7 +152,7 @@ describe('an obeyed chunk', () => {
     expect(texelAt(judged(files.get('art/moss.1.png')), 0, 0)).toEqual(codes);
   });
 
-  it('makes colours of indices', async () => {
+  it('makes colors of indices', async () => {
     const palette = Uint8Array.of(50, 100, 0, 255, 255, 0, 128, 255);
     const extent = { width: 2, height: 2 };
     const art: IndexedRaster = {
@@ -185,7 +185,7 @@ describe('an obeyed chunk', () => {
     expect(tagged.manifest.notes).toEqual([]);
   });
 
-  it('is not asked of what is no colour', async () => {
+  it('is not asked of what is no color', async () => {
     const one = treatment({ content: 'data', alpha: { use: 'data' }, colorChunks: 'obey' });
     const tagged = await build(pngOf(raster, [iccp]), one);
     expect(tagged.files).toEqual((await build(pngOf(raster), one)).files);

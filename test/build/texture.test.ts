@@ -65,8 +65,8 @@ describe('the files', () => {
     ['normal', { normal: { roughness: { constant: 0.5 } } }, ['roughness']],
   ] as const)('of a %s map have those of its companions behind them', async (content, keys, uses) => {
     const one = treatment({ content, ...keys, levels: { first: 1, last: null }, alpha: { use: 'data' } });
-    const grey = content === 'height' ? noiseRaster(1, { width: 4, height: 4 }, 1, 8, 'noise') : plain;
-    const { files } = await build(pngOf(grey), one);
+    const gray = content === 'height' ? noiseRaster(1, { width: 4, height: 4 }, 1, 8, 'noise') : plain;
+    const { files } = await build(pngOf(gray), one);
     const stems = ['moss', ...uses.map((use) => `moss.${use}`)];
     expect([...files.keys()]).toEqual([
       ...stems.flatMap((stem) => [`art/${stem}.1.png`, `art/${stem}.2.png`]),
@@ -199,7 +199,7 @@ describe('the container', () => {
     read.levels.forEach(({ codes, extent }, level) => {
       const png = judged(files.get(`art/moss.${level}.png`));
       expect(extent).toEqual(png.extent);
-      // Grey and alpha are spread over four channels.
+      // Gray and alpha are spread over four channels.
       const spread = channels === 2 ? [0, 0, 0, 1] : Array.from({ length: channels }, (_, channel) => channel);
       const expected = painted(extent, spread.length as 1 | 3 | 4, depth, (x, y) =>
         spread.map((channel) => texelAt(png, x, y)[channel]),
@@ -227,7 +227,7 @@ describe('the container', () => {
     }
   });
 
-  it('says sRGB of grey and alpha whose transfer is given for each channel', async () => {
+  it('says sRGB of gray and alpha whose transfer is given for each channel', async () => {
     const raster = noiseRaster(2, { width: 2, height: 2 }, 2, 8, 'noise');
     const one = treatment({ outputs: ['ktx2'], transfer: ['srgb', 'linear'] });
     expect(container((await build(pngOf(raster), one)).files.get('art/moss.ktx2'), 8).vkFormat).toBe(43);
@@ -247,7 +247,7 @@ describe('a target', () => {
     expect(manifest.levels[0].file).toBeUndefined();
   });
 
-  it('in a cell is centred on what is transparent, in the colour of its edge', async () => {
+  it('in a cell is centered on what is transparent, in the color of its edge', async () => {
     const art = painted({ width: 2, height: 1 }, 4, 8, (x) => (x === 0 ? [200, 0, 0, 255] : [0, 0, 100, 128]));
     const one = treatment({
       levels: 'none',

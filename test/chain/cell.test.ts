@@ -7,7 +7,7 @@ import { picture, texelAt } from '../fixtures/picture.ts';
 const place = { whole: { width: 3, height: 3 }, picture: { width: 2, height: 1 }, left: 0, top: 1 };
 
 it.each([
-  // Fitted by the tighter axis, rounded, centred with the odd texel to the right and below.
+  // Fitted by the tighter axis, rounded, centered with the odd texel to the right and below.
   [[10, 10], [48, 48], [48, 48], 0, 0],
   [[16, 32], [48, 48], [24, 48], 12, 0],
   [[3, 2], [8, 8], [8, 5], 0, 1],
@@ -32,7 +32,7 @@ it.each([
   [4, 8, [1, 2, 3, 200, 4, 5, 6, 100], [1, 2, 3, 0], [4, 5, 6, 0]],
   [2, 16, [1000, 60000, 2000, 5], [1000, 0], [2000, 0]],
 ] as const)(
-  'takes the margin’s colour from the nearest texel: %i channels at %i bits',
+  'takes the margin’s color from the nearest texel: %i channels at %i bits',
   (channels, depth, codes, left, right) => {
     const art = picture({ width: 2, height: 1 }, channels, depth, codes);
     const cell = placeInCell(art, place, channels - 1) as StraightRaster;

@@ -182,7 +182,7 @@ describe('indexed sheets', () => {
     expect(target.indices[0]).toBe(sheet.indices[12 + 1]);
   });
 
-  it('become colours where cells are weighed', () => {
+  it('become colors where cells are weighed', () => {
     const [base, level] = buildChain(sheet, { ...box, grid: { cell: [6, 6], gutter: 0 } }).images;
     expect([base.raster.kind, level.raster.kind]).toEqual(['straight', 'straight']);
   });

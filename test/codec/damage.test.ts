@@ -10,20 +10,20 @@ import { chunk, concat, filteredBytes, ihdr, joinPng, writePng } from '../fixtur
 import { problemOf } from '../fixtures/refusal.ts';
 import { writeTga } from '../fixtures/tga.ts';
 
-const GREY = { width: 4, height: 3, bitDepth: 8, colorType: 0, sample: (x: number, y: number) => 10 * x + y };
-const COLOR = { ...GREY, colorType: 2 };
-const INDEXED = { ...GREY, bitDepth: 2, colorType: 3, sample: (x: number) => x };
+const GRAY = { width: 4, height: 3, bitDepth: 8, colorType: 0, sample: (x: number, y: number) => 10 * x + y };
+const COLOR = { ...GRAY, colorType: 2 };
+const INDEXED = { ...GRAY, bitDepth: 2, colorType: 3, sample: (x: number) => x };
 /** 3 rows of a filter byte and 4 texels. */
-const GREY_BYTES = 15;
+const GRAY_BYTES = 15;
 const PLTE = chunk('PLTE', [1, 2, 3, 4, 5, 6, 7, 8, 9, 10, 11, 12]);
 
 function withData(data: Uint8Array): Uint8Array {
-  return joinPng([ihdr(GREY), chunk('IDAT', data)]);
+  return joinPng([ihdr(GRAY), chunk('IDAT', data)]);
 }
 
 /** Offset, value: a byte changed and the CRC of IHDR put right. */
 function headerWith(offset: number, value: number): Uint8Array {
-  const file = writePng(GREY);
+  const file = writePng(GRAY);
   file[offset] = value;
   new DataView(file.buffer).setUint32(29, crc32(file.subarray(12, 29)));
   return file;
@@ -33,7 +33,7 @@ async function problemIn(file: Uint8Array) {
   return problemOf(async () => decodeImage(openPng(file, inflate)));
 }
 
-const whole = filteredBytes(GREY);
+const whole = filteredBytes(GRAY);
 const deflated = deflateSync(whole);
 const firstOfIdat = 33;
 
@@ -41,14 +41,14 @@ type Case = readonly [name: string, file: Uint8Array, code: string, values: Reco
 
 const STRUCTURE: readonly Case[] = [
   ['an empty file', new Uint8Array(0), 'file-empty', {}],
-  ['part of a signature', writePng(GREY).subarray(0, 5), 'png-signature', { found: '89 50 4e 47 0d' }],
-  ['a signature alone', writePng(GREY).subarray(0, 8), 'png-file-truncated', { chunk: 'IEND', found: 8, expected: 20 }],
-  ['half of IHDR', writePng(GREY).subarray(0, 20), 'png-file-truncated', { chunk: 'IHDR', found: 20, expected: 33 }],
-  ['no IEND', writePng(GREY).subarray(0, -12), 'png-file-truncated', { chunk: 'IEND' }],
-  ['half of IEND', writePng(GREY).subarray(0, -3), 'png-file-truncated', { chunk: 'IEND' }],
+  ['part of a signature', writePng(GRAY).subarray(0, 5), 'png-signature', { found: '89 50 4e 47 0d' }],
+  ['a signature alone', writePng(GRAY).subarray(0, 8), 'png-file-truncated', { chunk: 'IEND', found: 8, expected: 20 }],
+  ['half of IHDR', writePng(GRAY).subarray(0, 20), 'png-file-truncated', { chunk: 'IHDR', found: 20, expected: 33 }],
+  ['no IEND', writePng(GRAY).subarray(0, -12), 'png-file-truncated', { chunk: 'IEND' }],
+  ['half of IEND', writePng(GRAY).subarray(0, -3), 'png-file-truncated', { chunk: 'IEND' }],
   ['no IHDR', joinPng([PLTE]), 'png-missing-chunk', { chunk: 'IHDR', offset: 8, found: 'PLTE' }],
   ['a short IHDR', joinPng([chunk('IHDR', [1, 2])]), 'png-chunk-length', { chunk: 'IHDR', found: 2, expected: 13 }],
-  ['two IHDR', writePng({ ...GREY, ahead: [ihdr(GREY)] }), 'png-chunk-order', { chunk: 'IHDR', after: 'IHDR' }],
+  ['two IHDR', writePng({ ...GRAY, ahead: [ihdr(GRAY)] }), 'png-chunk-order', { chunk: 'IHDR', after: 'IHDR' }],
   ['compression 1', headerWith(26, 1), 'png-header', { field: 'compression method', found: 1 }],
   ['filter method 64', headerWith(27, 64), 'png-header', { field: 'filter method', found: 64 }],
   ['interlace 2', headerWith(28, 2), 'png-header', { field: 'interlace method', found: 2 }],
@@ -69,7 +69,7 @@ const STRUCTURE: readonly Case[] = [
   ],
   ['two PLTE', writePng({ ...INDEXED, ahead: [PLTE, PLTE] }), 'png-chunk-order', { chunk: 'PLTE', after: 'PLTE' }],
   ['PLTE after IDAT', writePng({ ...COLOR, behind: [PLTE] }), 'png-chunk-order', { chunk: 'PLTE', after: 'IDAT' }],
-  ['PLTE with grey', writePng({ ...GREY, ahead: [PLTE] }), 'png-forbidden-chunk', { chunk: 'PLTE', colorType: 0 }],
+  ['PLTE with gray', writePng({ ...GRAY, ahead: [PLTE] }), 'png-forbidden-chunk', { chunk: 'PLTE', colorType: 0 }],
   [
     'PLTE of 4 bytes',
     writePng({ ...INDEXED, ahead: [chunk('PLTE', [1, 2, 3, 4])] }),
@@ -96,19 +96,19 @@ const STRUCTURE: readonly Case[] = [
   ],
   [
     'two tRNS',
-    writePng({ ...GREY, ahead: [chunk('tRNS', [0, 1]), chunk('tRNS', [0, 1])] }),
+    writePng({ ...GRAY, ahead: [chunk('tRNS', [0, 1]), chunk('tRNS', [0, 1])] }),
     'png-chunk-order',
     { chunk: 'tRNS', after: 'tRNS' },
   ],
   [
     'tRNS after IDAT',
-    writePng({ ...GREY, behind: [chunk('tRNS', [0, 1])] }),
+    writePng({ ...GRAY, behind: [chunk('tRNS', [0, 1])] }),
     'png-chunk-order',
     { chunk: 'tRNS', after: 'IDAT' },
   ],
   [
     'tRNS of 1 byte',
-    writePng({ ...GREY, ahead: [chunk('tRNS', [0])] }),
+    writePng({ ...GRAY, ahead: [chunk('tRNS', [0])] }),
     'png-chunk-length',
     { chunk: 'tRNS', found: 1, expected: 2 },
   ],
@@ -119,39 +119,39 @@ const STRUCTURE: readonly Case[] = [
     { found: 2, expected: 6 },
   ],
   [
-    'tRNS with grey and alpha',
-    writePng({ ...GREY, colorType: 4, ahead: [chunk('tRNS', [0, 1])] }),
+    'tRNS with gray and alpha',
+    writePng({ ...GRAY, colorType: 4, ahead: [chunk('tRNS', [0, 1])] }),
     'png-forbidden-chunk',
     { chunk: 'tRNS', colorType: 4 },
   ],
   [
     'tRNS with RGBA',
-    writePng({ ...GREY, colorType: 6, ahead: [chunk('tRNS', [0, 1])] }),
+    writePng({ ...GRAY, colorType: 6, ahead: [chunk('tRNS', [0, 1])] }),
     'png-forbidden-chunk',
     { chunk: 'tRNS', colorType: 6 },
   ],
-  ['no IDAT', joinPng([ihdr(GREY)]), 'png-missing-chunk', { chunk: 'IDAT', found: 'IEND' }],
+  ['no IDAT', joinPng([ihdr(GRAY)]), 'png-missing-chunk', { chunk: 'IDAT', found: 'IEND' }],
   [
     'a chunk between IDATs',
-    joinPng([ihdr(GREY), chunk('IDAT', deflated), chunk('tEXt', []), chunk('IDAT', [])]),
+    joinPng([ihdr(GRAY), chunk('IDAT', deflated), chunk('tEXt', []), chunk('IDAT', [])]),
     'png-chunk-order',
     { chunk: 'IDAT', after: 'tEXt' },
   ],
   [
     'an unknown critical chunk',
-    writePng({ ...GREY, ahead: [chunk('HiDe', [])] }),
+    writePng({ ...GRAY, ahead: [chunk('HiDe', [])] }),
     'png-unknown-chunk',
     { chunk: 'HiDe', offset: 33 },
   ],
   [
     'a name of no letters',
-    writePng({ ...GREY, ahead: [chunk('t\u0000\u0001t', [])] }),
+    writePng({ ...GRAY, ahead: [chunk('t\u0000\u0001t', [])] }),
     'png-chunk-name',
     { offset: 33, found: '74 00 01 74' },
   ],
   [
     'an IEND with a body',
-    concat([writePng(GREY).subarray(0, -12), chunk('IEND', [1])]),
+    concat([writePng(GRAY).subarray(0, -12), chunk('IEND', [1])]),
     'png-chunk-length',
     { chunk: 'IEND', found: 1, expected: 0 },
   ],
@@ -177,7 +177,7 @@ const STRUCTURE: readonly Case[] = [
 ];
 
 const DATA: readonly Case[] = [
-  ['no data', withData(new Uint8Array(0)), 'png-promise', { expected: GREY_BYTES, found: 0 }],
+  ['no data', withData(new Uint8Array(0)), 'png-promise', { expected: GRAY_BYTES, found: 0 }],
   ['one byte too few', withData(deflateSync(whole.subarray(1))), 'png-truncated', { found: 14, expected: 15 }],
   ['one byte too many', withData(deflateSync(concat([whole, Uint8Array.of(0)]))), 'png-surplus', { expected: 15 }],
   ['a second stream behind', withData(concat([deflated, deflated])), 'png-surplus', { expected: 15 }],
@@ -245,7 +245,7 @@ test('a megabyte behind a promise of 15 bytes is not inflated', async () => {
   const file = withData(deflateSync(concat([whole, new Uint8Array(1 << 20)])));
   const problem = await problemOf(async () => decodeImage(openPng(file, counting)));
   expect(problem).toMatchObject({ code: 'png-surplus' });
-  expect(inflated).toBe(GREY_BYTES + 1);
+  expect(inflated).toBe(GRAY_BYTES + 1);
 });
 
 describe('Mutations', () => {
@@ -254,7 +254,7 @@ describe('Mutations', () => {
     ['a.png', writePng({ width: 5, height: 4, bitDepth: 8, colorType: 6, sample, filter: (row) => row % 5 })],
     ['b.png', writePng({ width: 9, height: 9, bitDepth: 16, colorType: 2, sample, interlaced: 1, filter: () => 4 })],
     ['c.png', writePng({ ...INDEXED, ahead: [PLTE, chunk('tRNS', [7])], interlaced: 1 })],
-    ['d.png', writePng({ ...GREY, bitDepth: 1, sample, ahead: [chunk('tRNS', [0, 1]), chunk('gAMA', [0, 0, 1, 2])] })],
+    ['d.png', writePng({ ...GRAY, bitDepth: 1, sample, ahead: [chunk('tRNS', [0, 1]), chunk('gAMA', [0, 0, 1, 2])] })],
     ['e.tga', writeTga({ width: 5, height: 4, type: 10, texelBits: 24, texel: (x) => x })],
     [
       'f.tga',

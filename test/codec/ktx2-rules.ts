@@ -174,7 +174,7 @@ const rules = [
       file.u16(file.dfd.offset + 10) === file.dfd.length - 4 &&
       file.samples.length === file.format.channels,
   },
-  // Colour model RGBSDA, primaries BT709.
+  // Color model RGBSDA, primaries BT709.
   {
     name: 'dfd color',
     check: (file) => file.bytes[file.dfd.offset + 12] === 1 && file.bytes[file.dfd.offset + 13] === 1,

@@ -23,25 +23,25 @@ const usual: TexelMeaning = {
 
 /** What is written for what: the format's name and the stored channels, `1` for the largest code. */
 const table: readonly [string, Partial<TexelMeaning>, string, string][] = [
-  ['grey color', { channels: 1 }, 'RGBA8_SRGB', 'rrr1'],
-  ['grey and alpha', { channels: 2 }, 'RGBA8_SRGB', 'rrrg'],
+  ['gray color', { channels: 1 }, 'RGBA8_SRGB', 'rrr1'],
+  ['gray and alpha', { channels: 2 }, 'RGBA8_SRGB', 'rrrg'],
   ['RGB', { channels: 3 }, 'RGBA8_SRGB', 'rgb1'],
   ['RGBA', {}, 'RGBA8_SRGB', 'rgba'],
   ['RGBA whose alpha has no use', { alpha: 'none' }, 'RGBA8_SRGB', 'rgb1'],
-  ['grey whose alpha has no use', { channels: 2, alpha: 'none' }, 'RGBA8_SRGB', 'rrr1'],
+  ['gray whose alpha has no use', { channels: 2, alpha: 'none' }, 'RGBA8_SRGB', 'rrr1'],
   ['RGBA as a mask', { alpha: 'mask' }, 'RGBA8_SRGB', 'rgba'],
   ['RGBA with data in alpha', { alpha: 'data' }, 'RGBA8_SRGB', 'rgba'],
-  ['grey color as it is', { channels: 1, format: 'same' }, 'R8_SRGB', 'r'],
-  ['grey and alpha, asked for as it is', { channels: 2, format: 'same' }, 'RGBA8_SRGB', 'rrrg'],
+  ['gray color as it is', { channels: 1, format: 'same' }, 'R8_SRGB', 'r'],
+  ['gray and alpha, asked for as it is', { channels: 2, format: 'same' }, 'RGBA8_SRGB', 'rrrg'],
   ['RGB as it is', { channels: 3, format: 'same' }, 'RGB8_SRGB', 'rgb'],
   ['RGBA as it is', { format: 'same' }, 'RGBA8_SRGB', 'rgba'],
-  ['linear grey', { channels: 1, transfer: 'linear' }, 'RGBA8_UNORM', 'rrr1'],
-  ['linear grey as it is', { channels: 1, transfer: 'linear', format: 'same' }, 'R8_UNORM', 'r'],
+  ['linear gray', { channels: 1, transfer: 'linear' }, 'RGBA8_UNORM', 'rrr1'],
+  ['linear gray as it is', { channels: 1, transfer: 'linear', format: 'same' }, 'R8_UNORM', 'r'],
   ['linear RGB', { channels: 3, transfer: 'linear' }, 'RGBA8_UNORM', 'rgb1'],
   ['linear RGB as it is', { channels: 3, transfer: 'linear', format: 'same' }, 'RGB8_UNORM', 'rgb'],
   ['linear RGBA', { transfer: 'linear' }, 'RGBA8_UNORM', 'rgba'],
-  ['16-bit grey color', { channels: 1, depth: 16 }, 'RGBA16_UNORM', 'rrr1'],
-  ['16-bit grey and alpha', { channels: 2, depth: 16 }, 'RGBA16_UNORM', 'rrrg'],
+  ['16-bit gray color', { channels: 1, depth: 16 }, 'RGBA16_UNORM', 'rrr1'],
+  ['16-bit gray and alpha', { channels: 2, depth: 16 }, 'RGBA16_UNORM', 'rrrg'],
   ['16-bit RGB, asked for as it is', { channels: 3, depth: 16, format: 'same' }, 'RGBA16_UNORM', 'rgb1'],
   ['16-bit RGBA', { depth: 16 }, 'RGBA16_UNORM', 'rgba'],
   ['16-bit RGBA whose alpha has no use', { depth: 16, alpha: 'none' }, 'RGBA16_UNORM', 'rgb1'],
@@ -219,7 +219,7 @@ describe('the descriptor of RGBA8_SRGB', () => {
   });
 });
 
-test('only 16-bit colour under a transfer must hold linear light', () => {
+test('only 16-bit color under a transfer must hold linear light', () => {
   const linear = rows.filter(({ meaning }) => layoutKtx2(meaning).holds === 'linear-light');
   expect(linear.map((row) => row.meaning)).toEqual(
     rows
@@ -228,7 +228,7 @@ test('only 16-bit colour under a transfer must hold linear light', () => {
   );
 });
 
-test('one red channel that is a grey colour says so', async () => {
+test('one red channel that is a gray color says so', async () => {
   const meaning: TexelMeaning = { ...usual, channels: 1, format: 'same' };
   const levels = levelsOf({ width: 4, height: 4 }, meaning);
   const keys = read(await encodeKtx2(levels, layoutKtx2(meaning), { supercompress: 'none' }, deflate)).keyValue;
@@ -408,7 +408,7 @@ describe('a caller who is mistaken is told', () => {
     ['another depth than the format', levelsOf({ width: 4, height: 4 }, { ...usual, depth: 16 }), layout],
     ['fewer channels than the lanes', levelsOf({ width: 4, height: 4 }, { ...usual, channels: 3 }), layout],
     ['levels of two kinds', [chain[0], premultiplied[1]], layout],
-    ['premultiplied colour without its alpha', premultiplied, layoutKtx2({ ...usual, alpha: 'none' })],
+    ['premultiplied color without its alpha', premultiplied, layoutKtx2({ ...usual, alpha: 'none' })],
   ])('%s', async (_, levels, its) => {
     await expect(encodeKtx2(levels, its, { supercompress: 'none' }, deflate)).rejects.toThrow(RangeError);
   });

@@ -57,7 +57,7 @@ describe('tells apart', () => {
   });
 });
 
-test('an indexed raster agrees with the colours it stands for, in whatever order its palette is', () => {
+test('an indexed raster agrees with the colors it stands for, in whatever order its palette is', () => {
   fc.assert(
     fc.property(
       extents,

@@ -42,7 +42,7 @@ describe('pngjs reads back', () => {
     );
   });
 
-  test('the colours of an indexed raster of every depth', async () => {
+  test('the colors of an indexed raster of every depth', async () => {
     await fc.assert(
       fc.asyncProperty(indexedRasters, async (raster) => {
         expect(judge(await encodePng(raster, deflate))).toEqual(wide(expandIndexed(raster)));
@@ -85,7 +85,7 @@ test('an indexed file keeps palette order, tRNS length and index bits', async ()
   );
 });
 
-test('chunks: no colour chunk, IEND last, image data in chunks of one length', async () => {
+test('chunks: no color chunk, IEND last, image data in chunks of one length', async () => {
   const chunks = readChunks(await encodePng(noiseRaster(1, { width: 700, height: 600 }, 4, 8, 'noise'), deflate));
   expect(chunks.map((chunk) => chunk.name)).toEqual(['IHDR', 'IDAT', 'IDAT', 'IEND']);
   expect(chunks[1].data.length).toBe(2 ** 20);
@@ -109,7 +109,7 @@ test('the same raster twice gives the same bytes', async () => {
 });
 
 describe('rows go through the filter that the specification recommends', () => {
-  // Sums of magnitudes counted by hand; bytes are signed. Grey of 8 bits, so a texel is a byte.
+  // Sums of magnitudes counted by hand; bytes are signed. Gray of 8 bits, so a texel is a byte.
   test.each<[string, number[][], number[]]>([
     [
       'a flat row, then its equal: sub, then up (lower number among equals)',
@@ -190,8 +190,8 @@ describe('compression follows the picture', () => {
     ['a painted tile', paintedTiles, 'repeating'],
     ['a gradient', gradient, 'painted'],
     ['paint between runs', cutOut, 'painted'],
-    ['a checkerboard of few colours', flat, 'labels'],
-    ['one colour', paint(4, () => 17), 'labels'],
+    ['a checkerboard of few colors', flat, 'labels'],
+    ['one color', paint(4, () => 17), 'labels'],
     ['a flat height', paint(1, () => 17), 'repeating'],
     ['a single texel', { ...grain, extent: { width: 1, height: 1 }, codes: Uint8Array.of(1, 2, 3) }, 'labels'],
   ] as const)('%s', (_, raster, expected) => {
@@ -206,7 +206,7 @@ describe('compression follows the picture', () => {
     ['tiles of noise', tiled, 0.03, 1.2],
     ['painted tiles', paintedTiles, 0.124, 0.93],
     ['flat art', flat, 0.0085, 1.2],
-    ['one colour', paint(3, () => 200), 0.0035, 1],
+    ['one color', paint(3, () => 200), 0.0035, 1],
   ] as const)('%s', async (_, raster, ofCodes, ofUnfiltered) => {
     const size = (await encodePng(raster, deflate)).length;
     const unfiltered = bigEndianRows(raster).map((row) => Uint8Array.of(0, ...row));
@@ -257,7 +257,7 @@ function judge(file: Uint8Array): object {
   return { width, height, deep: depth === 16, codes: Array.from(data) };
 }
 
-/** The same for a raster, grey and opacity spelled out. */
+/** The same for a raster, gray and opacity spelled out. */
 function wide({ extent, channels, depth, codes }: StraightRaster): object {
   const max = depth === 8 ? 255 : 65535;
   const lanes = { 1: [0, 0, 0, null], 2: [0, 0, 0, 1], 3: [0, 1, 2, null], 4: [0, 1, 2, 3] }[channels];

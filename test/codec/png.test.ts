@@ -57,32 +57,29 @@ test('every form, filter, interlace and cut of the data reads as it was written 
   );
 });
 
-describe('A single transparent colour', () => {
+describe('A single transparent color', () => {
   const ramp = (x: number, y: number, channel: number) => x + 16 * y + channel;
 
   test.each([
     { colorType: 0, bitDepth: 4, body: [0, 2], size: 4 },
     { colorType: 0, bitDepth: 8, body: [0, 35], size: 4 },
     { colorType: 2, bitDepth: 8, body: [0, 18, 0, 19, 0, 20], size: 4 },
-  ])(
-    'becomes alpha 0 and stays a colour: $colorType at $bitDepth bits',
-    async ({ colorType, bitDepth, body, size }) => {
-      const mask = 2 ** bitDepth - 1;
-      const sample = (x: number, y: number, channel: number) => ramp(x, y, channel) & mask;
-      for (const interlaced of [0, 1] as const) {
-        const ahead = [chunk('tRNS', body)];
-        const file = writePng({ width: size, height: size, bitDepth, colorType, interlaced, sample, ahead });
-        const ours = await decodeRgba(openPng(file, inflate));
-        expect(firstDifference(asJudged(ours, file), judgeRgba(file))).toBeNull();
-        const at = Array.from({ length: size * size }, (_, texel) => texel * 4).filter(
-          (texel) => ours.codes[texel + 3] === 0,
-        );
-        const key = body.filter((_, index) => index % 2 === 1).map((code) => (code * 255) / mask);
-        expect(at.length).toBeGreaterThan(0);
-        for (const texel of at) expect(ours.codes[texel]).toBe(key[0]);
-      }
-    },
-  );
+  ])('becomes alpha 0 and stays a color: $colorType at $bitDepth bits', async ({ colorType, bitDepth, body, size }) => {
+    const mask = 2 ** bitDepth - 1;
+    const sample = (x: number, y: number, channel: number) => ramp(x, y, channel) & mask;
+    for (const interlaced of [0, 1] as const) {
+      const ahead = [chunk('tRNS', body)];
+      const file = writePng({ width: size, height: size, bitDepth, colorType, interlaced, sample, ahead });
+      const ours = await decodeRgba(openPng(file, inflate));
+      expect(firstDifference(asJudged(ours, file), judgeRgba(file))).toBeNull();
+      const at = Array.from({ length: size * size }, (_, texel) => texel * 4).filter(
+        (texel) => ours.codes[texel + 3] === 0,
+      );
+      const key = body.filter((_, index) => index % 2 === 1).map((code) => (code * 255) / mask);
+      expect(at.length).toBeGreaterThan(0);
+      for (const texel of at) expect(ours.codes[texel]).toBe(key[0]);
+    }
+  });
 
   test('is compared on all 16 bits', async () => {
     // 0x1234 and 0x1235 are one code once they are brought to 8 bits.
@@ -117,14 +114,14 @@ describe('A palette', () => {
     });
   });
 
-  test('beside true colour is a suggestion and changes nothing', () => {
+  test('beside true color is a suggestion and changes nothing', () => {
     const ahead = [chunk('PLTE', [1, 2, 3])];
     const file = writePng({ width: 1, height: 1, bitDepth: 8, colorType: 2, sample: () => 9, ahead });
     expect(openPng(file, inflate).header).toMatchObject({ channels: 3, indexed: null });
   });
 });
 
-describe('Colour chunks', () => {
+describe('Color chunks', () => {
   const words = (...values: number[]) =>
     values.flatMap((value) => [24, 16, 8, 0].map((shift) => (value >> shift) & 255));
   const primaries = [31270, 32900, 64000, 33000, 30000, 60000, 15000, 6000];

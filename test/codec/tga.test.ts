@@ -32,8 +32,8 @@ const FORMS: readonly (readonly [
   ['color, 24 bits', 24, 0, 2, bytes],
   ['color, 32 bits, no attribute bits', 32, 0, 2, bytes],
   ['color, 32 bits, alpha', 32, 8, 2, (value) => [...bytes(value), value >>> 24]],
-  ['grey, 8 bits', 8, 0, 3, (value) => [value & 255]],
-  ['grey and alpha, 16 bits', 16, 8, 3, (value) => [value & 255, (value >> 8) & 255]],
+  ['gray, 8 bits', 8, 0, 3, (value) => [value & 255]],
+  ['gray and alpha, 16 bits', 16, 8, 3, (value) => [value & 255, (value >> 8) & 255]],
 ];
 
 const ORIGINS: readonly Origin[] = ['top-left', 'top-right', 'bottom-left', 'bottom-right'];
@@ -169,7 +169,7 @@ describe('What does not fit is refused in numbers', () => {
     ['indices without a map', patched(base, 2, 1), 'tga-header', { field: 'color map type', found: 0, allowed: '1' }],
     ['color of 8 bits', patched(base, 16, 8), 'tga-header', { field: 'bits a texel', found: 8 }],
     ['interleaved rows', patched(base, 17, 0x40), 'tga-header', { field: 'interleave', found: 1 }],
-    ['deep grey', writeTga({ ...base, type: 3, texelBits: 16 }), 'tga-header', { found: 0, allowed: '8' }],
+    ['deep gray', writeTga({ ...base, type: 3, texelBits: 16 }), 'tga-header', { found: 0, allowed: '8' }],
     [
       'a map of 8-bit entries',
       writeTga({ ...base, type: 1, texelBits: 8, map: { first: 0, entryBits: 8, entries: [1] } }),

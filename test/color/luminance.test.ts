@@ -16,7 +16,7 @@ test.each([
   [0x77, 4.478089],
   [0x94, 3.03347],
   [0x95, 2.995346],
-])('contrast of grey %d on white', (code, contrast) => {
-  const grey = decodeSrgb(code / 255);
-  expect(Math.abs(1.05 / (luminance(grey, grey, grey) + 0.05) - contrast)).toBeLessThan(5e-7);
+])('contrast of gray %d on white', (code, contrast) => {
+  const gray = decodeSrgb(code / 255);
+  expect(Math.abs(1.05 / (luminance(gray, gray, gray) + 0.05) - contrast)).toBeLessThan(5e-7);
 });

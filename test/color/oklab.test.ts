@@ -71,11 +71,11 @@ test('colors and their distances agree with culori', () => {
   );
 });
 
-test('greys have no hue, negative light is mirrored', () => {
+test('grays have no hue, negative light is mirrored', () => {
   // The rows of the matrices sum to 1 within 1e-9, and a cube root near 0 makes that 1e-3 of it at most.
-  const grey = oklabOfCodes(128, 128, 128);
-  expect(grey.lightness).toBeCloseTo(0.599871, 6);
-  expect(Math.abs(grey.a) + Math.abs(grey.b)).toBeLessThan(1e-6);
+  const gray = oklabOfCodes(128, 128, 128);
+  expect(gray.lightness).toBeCloseTo(0.599871, 6);
+  expect(Math.abs(gray.a) + Math.abs(gray.b)).toBeLessThan(1e-6);
   const below = oklabOfLight(-0.2, -0.2, -0.2);
   expect(below.lightness).toBe(-oklabOfLight(0.2, 0.2, 0.2).lightness);
 });

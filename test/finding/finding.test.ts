@@ -95,7 +95,7 @@ test.each<[string, number, number, Partial<Treatment>, number]>([
   ['RGB color, widened', 3, 8, {}, 4],
   ['RGB color, kept', 3, 8, { ktx2: { ...ktx2, format: 'same' } }, 3],
   ['16-bit color', 3, 16, {}, 8],
-  ['grey data', 1, 8, { content: 'data' }, 1],
+  ['gray data', 1, 8, { content: 'data' }, 1],
   ['a 16-bit height', 1, 16, { content: 'height' }, 2],
   ['a two-channel normal', 3, 8, { content: 'normal', normal: { ...normal, count: 2 } }, 2],
   ['a packed file', 3, 8, { channels: { r: 'data', gb: 'data' } }, 4],

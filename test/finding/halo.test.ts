@@ -16,7 +16,7 @@ const data = treatment({
   levels: { first: 1, last: 1 },
 });
 
-/** Grey, `low` before texel `at` of each row, `high` from there on. */
+/** Gray, `low` before texel `at` of each row, `high` from there on. */
 function step(at: number, low: number, high: number, width = 16): StraightRaster {
   return painted({ width, height: 1 }, 1, 8, (x) => [x < at ? low : high]);
 }
@@ -105,7 +105,7 @@ it('is none for kernels without negative lobes, at every level and target', () =
 });
 
 describe('what is not seen', () => {
-  it('does not count: colour under alpha 0 neither widens the range nor is measured', () => {
+  it('does not count: color under alpha 0 neither widens the range nor is measured', () => {
     const make = (hidden: number): StraightRaster =>
       painted({ width: 32, height: 1 }, 4, 8, (x) => (x < 16 ? [x < 7 ? 50 : 200, 0, 0, 255] : [hidden, 0, 0, 0]));
     const one = treatment({ transfer: 'linear', kernel: both('catmull-rom'), levels: { first: 1, last: 1 } });
@@ -118,7 +118,7 @@ describe('what is not seen', () => {
 
   it('does not count beside what is seen', () => {
     // Texels 3 and 10 are clear and lie in the ranges of the two texels that overshoot. Alpha is low, so that its own step
-    // is less than that of colour.
+    // is less than that of color.
     const make = (hidden: number): StraightRaster =>
       painted({ width: 16, height: 1 }, 4, 8, (x) =>
         x === 3 || x === 10 ? [hidden, 0, 0, 0] : [x < 7 ? 50 : 200, 0, 0, 20],
@@ -177,7 +177,7 @@ describe('the list', () => {
     expect(measureHalo(raster, { ...one, kernel: both('nearest') })).toEqual([]);
   });
 
-  it('is the same for indexed pictures and their colours', () => {
+  it('is the same for indexed pictures and their colors', () => {
     const art: IndexedRaster = {
       kind: 'indexed',
       extent: { width: 8, height: 8 },

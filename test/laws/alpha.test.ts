@@ -115,7 +115,7 @@ describe.each(builders)('$name', (builder) => {
   });
 });
 
-/** Drawn over an opaque grey backdrop, in linear codes: co = cs as + cb (1 - as) (Porter and Duff 1984). */
+/** Drawn over an opaque gray backdrop, in linear codes: co = cs as + cb (1 - as) (Porter and Duff 1984). */
 function over(image: StraightRaster, backdrop: number): StraightRaster {
   return painted(image.extent, 3, image.depth, (x, y) => {
     const codes = texelAt(image, x, y);

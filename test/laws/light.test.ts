@@ -59,6 +59,6 @@ it('keeps the mean luminance of a checkerboard down the chain', () => {
   const raster = noiseRaster(4, { width: 64, height: 64 }, 3, 16, 'extremes');
   const { images } = buildChain(raster, treatment({ kernel: both('box') }));
   const means = images.map(({ light }) => (light?.light ?? 0) / (light?.weight ?? 1));
-  // Stored in 16 bits: half a code of sRGB at middle grey is 1e-5 of light.
+  // Stored in 16 bits: half a code of sRGB at middle gray is 1e-5 of light.
   for (const mean of means) expect(Math.abs(mean - means[0])).toBeLessThan(2e-5);
 });

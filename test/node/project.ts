@@ -12,7 +12,7 @@ import { nodePorts } from '../../extension/node/ports.ts';
 import { type RebuildOptions, rebuildProject } from '../../extension/node/rebuild.ts';
 import { writePng } from '../fixtures/rawpng.ts';
 
-/** A small RGBA picture whose colours follow from `seed`. */
+/** A small RGBA picture whose colors follow from `seed`. */
 export function smallPng(seed: number, width = 8, height = width): Uint8Array {
   const sample = (x: number, y: number, channel: number) => (seed * 37 + x * (29 + channel) + y * 53) & 255;
   return writePng({ width, height, bitDepth: 8, colorType: 6, sample });

@@ -145,7 +145,7 @@ test('lambda 0 is the area average', () => {
   );
 });
 
-/** All samples of a raster as one row of grey. */
+/** All samples of a raster as one row of gray. */
 function flat(raster: StraightRaster): Extent {
   return { width: raster.codes.length, height: 1 };
 }
@@ -167,9 +167,9 @@ test('a constant stays; equal extents keep it too', () => {
 });
 
 test('color under alpha 0 changes nothing, and opaque alpha is as none', () => {
-  const grey = fc.array(fc.integer({ min: 0, max: 255 }), { minLength: 16, maxLength: 16 });
+  const gray = fc.array(fc.integer({ min: 0, max: 255 }), { minLength: 16, maxLength: 16 });
   fc.assert(
-    fc.property(grey, grey, fc.array(fc.boolean(), { minLength: 16, maxLength: 16 }), (seen, hidden, clear) => {
+    fc.property(gray, gray, fc.array(fc.boolean(), { minLength: 16, maxLength: 16 }), (seen, hidden, clear) => {
       const build = (under: readonly number[]) =>
         straight(
           4,

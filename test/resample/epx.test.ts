@@ -101,7 +101,7 @@ test('wraps are by axis: transposed input with the wraps exchanged gives transpo
 describe('alpha 0', () => {
   test('counts as one color whatever it hides', () => {
     const clear = [9, 0, 8, 0, 7, 0, 6, 0];
-    // Grey and alpha; opaque 5 on the diagonal, clear texels that hide different codes.
+    // Gray and alpha; opaque 5 on the diagonal, clear texels that hide different codes.
     const hiding = straight(3, 2, [5, 255, ...clear, ...clear.slice(0, 6), 5, 255].slice(0, 18));
     const plain = straight(
       3,

@@ -23,7 +23,7 @@ describe('by hand', () => {
     ['the most frequent code wins', 3, [5, 9, 5, 5, 9, 9, 9, 5, 5], one, [5]],
     // 5 to 2: the first target covers texels 0 and 1 whole and half of 2. 8 has 2 + 1 of 5 parts, 9 has 2.
     ['parts of texels count as parts', 5, [8, 9, 8, 9, 9], { width: 2, height: 1 }, [8, 9]],
-    // Centre at 1.5: texels 1 and 2 are nearest, both 4.
+    // Center at 1.5: texels 1 and 2 are nearest, both 4.
     ['a tie goes to the color nearest the center', 4, [9, 4, 4, 9], one, [4]],
     ['then to the lowest', 2, [9, 4], one, [4]],
   ])('%s', (_, width, codes, extent, expected) => {
@@ -31,7 +31,7 @@ describe('by hand', () => {
   });
 
   test('all texels of alpha 0 vote as one, and the one nearest the center gives its hidden codes', () => {
-    // Grey and alpha: opaque 7 twice, clear texels that hide 1, 2, 3.
+    // Gray and alpha: opaque 7 twice, clear texels that hide 1, 2, 3.
     const raster = straight(5, 2, [7, 255, 1, 0, 2, 0, 3, 0, 7, 255]);
     expect(Array.from(majority(raster, one).codes)).toEqual([2, 0]);
   });

@@ -14,7 +14,7 @@ export function straight(width: number, channels: ChannelCount, codes: Codes, de
   };
 }
 
-/** Four palette entries: red, green, clear with hidden blue, clear with hidden grey. */
+/** Four palette entries: red, green, clear with hidden blue, clear with hidden gray. */
 export function indexed(width: number, indices: Codes): IndexedRaster {
   return {
     kind: 'indexed',

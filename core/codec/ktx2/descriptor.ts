@@ -64,7 +64,7 @@ const CHANNEL_ALPHA = 15;
 /** Qualifier of a sample that the transfer function does not touch. */
 const QUALIFIER_LINEAR = 0x10;
 
-/** Alpha says that it is linear where colour is not. */
+/** Alpha says that it is linear where color is not. */
 function channelType(channel: number, transfer: Ktx2Format['transfer']): number {
   if (channel < 3) return channel;
   return transfer === 'srgb' ? CHANNEL_ALPHA | QUALIFIER_LINEAR : CHANNEL_ALPHA;

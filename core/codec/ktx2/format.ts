@@ -8,7 +8,7 @@ export interface Ktx2Format {
   readonly vkFormat: number;
   readonly channels: ChannelCount;
   readonly depth: Depth;
-  /** How the sampler decodes colour: what the file's descriptor says. Alpha is linear always. */
+  /** How the sampler decodes color: what the file's descriptor says. Alpha is linear always. */
   readonly transfer: Transfer;
 }
 
@@ -34,10 +34,10 @@ export interface Ktx2Layout {
   readonly format: Ktx2Format;
   /** One for each channel of the format. */
   readonly lanes: readonly Lane[];
-  /** What the raster must hold. `linear-light`: 16-bit colour whose transfer has been taken off, alpha aside, because no
+  /** What the raster must hold. `linear-light`: 16-bit color whose transfer has been taken off, alpha aside, because no
    *  16-bit format says sRGB. `codes`: the treatment's codes as they are. */
   readonly holds: 'codes' | 'linear-light';
-  /** Component mapping that makes one red channel a grey colour again. [KTX2, "KTXswizzle"] */
+  /** Component mapping that makes one red channel a gray color again. [KTX2, "KTXswizzle"] */
   readonly swizzle: 'rrr1' | null;
 }
 
@@ -46,17 +46,17 @@ export interface TexelMeaning {
   /** Of the raster. */
   readonly channels: ChannelCount;
   readonly depth: Depth;
-  /** Of the colour channels; asked for where content is color. */
+  /** Of the color channels; asked for where content is color. */
   readonly transfer: Transfer;
   /** `none` stores full alpha whatever the raster holds. */
   readonly alpha: AlphaUse;
   /** Channels that a normal is stored in. */
   readonly normalCount: 2 | 3;
-  /** `wide` gives colour four channels; `same` keeps 8-bit grey and RGB as they are. */
+  /** `wide` gives color four channels; `same` keeps 8-bit gray and RGB as they are. */
   readonly format: 'same' | 'wide';
 }
 
-/** The layout for what texels mean. A packed file is `data`, or `color` where its first channels are colour.
+/** The layout for what texels mean. A packed file is `data`, or `color` where its first channels are color.
  *  Throws RangeError for a normal of fewer channels than it is stored in. */
 export function layoutKtx2(meaning: TexelMeaning): Ktx2Layout {
   switch (meaning.content) {
@@ -110,7 +110,7 @@ function plainLayout(format: Ktx2Format, lanes: readonly Lane[]): Ktx2Layout {
   return { format, lanes, holds: 'codes', swizzle: null };
 }
 
-/** Red, green, blue, alpha: grey three times, and full alpha where there is none or it has no use. */
+/** Red, green, blue, alpha: gray three times, and full alpha where there is none or it has no use. */
 function wideLanes({ channels, alpha }: TexelMeaning): readonly Lane[] {
   const opaque = alpha === 'none' || channels === 1 || channels === 3;
   if (channels <= 2) return [0, 0, 0, opaque ? 'max' : 1];

@@ -1,7 +1,7 @@
 import type { ColorChunk } from '../source.ts';
 import { type Chunk, readUint32 } from './chunks.ts';
 
-/** What a colour chunk says, in words of its own; null for other chunks and for a body of the wrong length, which no
+/** What a color chunk says, in words of its own; null for other chunks and for a body of the wrong length, which no
  *  reader obeys. An iCCP profile is named and not decoded.
  *  [PNG3, 11.3.2 "Color space information"] */
 export function readColorChunk(chunk: Chunk): ColorChunk | null {

@@ -4,10 +4,10 @@ import { type Compression, chooseCompression, compressions } from '../compressio
 import { crc32 } from '../crc.ts';
 import { newAdaptiveFilter } from './filter.ts';
 
-/** A PNG file of the raster: grey, grey and alpha, RGB or RGBA of 8 or 16 bits, or indexed with the palette's order, the
+/** A PNG file of the raster: gray, gray and alpha, RGB or RGBA of 8 or 16 bits, or indexed with the palette's order, the
  *  tRNS length and the bits of an index kept. Not interlaced. Equal rasters give equal bytes for an equal deflate.
  *
- *  No colour chunk is written. Engines read the codes as the material says and ignore such chunks (glTF 2.0, "Images"),
+ *  No color chunk is written. Engines read the codes as the material says and ignore such chunks (glTF 2.0, "Images"),
  *  and an untagged PNG is shown as sRGB; a tag on a normal or a roughness map would be false.
  *
  *  Throws RangeError when codes do not fit the extent or an index leaves the palette. [PNG3] */
@@ -19,7 +19,7 @@ export async function encodePng(raster: StraightRaster | IndexedRaster, deflate:
   return layChunks(headChunks(raster), stream);
 }
 
-/** IHDR's colour type. [PNG3, "Image header"] */
+/** IHDR's color type. [PNG3, "Image header"] */
 const COLOR_TYPES: Readonly<Record<ChannelCount, number>> = { 1: 0, 2: 4, 3: 2, 4: 6 };
 
 const INDEXED_TYPE = 3;
@@ -62,7 +62,7 @@ function* adaptiveRows(raster: StraightRaster): Iterable<Uint8Array> {
   }
 }
 
-/** Filter 0: differences of colours that are names would only spoil the matches. [PNG3, "Filter selection"] */
+/** Filter 0: differences of colors that are names would only spoil the matches. [PNG3, "Filter selection"] */
 function* plainRows(raster: StraightRaster): Iterable<Uint8Array> {
   const out = new Uint8Array(1 + raster.extent.width * raster.channels * (raster.depth / 8));
   for (let y = 0; y < raster.extent.height; y++) {

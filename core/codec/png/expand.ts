@@ -63,15 +63,15 @@ function unpackBits(bytes: Uint8Array, bits: number, width: number, out: Codes):
   return out;
 }
 
-/** Grey below 8 bits to 8: 255 divides evenly by 1, 3 and 15, so the scaling is exact. */
+/** Gray below 8 bits to 8: 255 divides evenly by 1, 3 and 15, so the scaling is exact. */
 function scaleUp(codes: Codes, count: number, header: PngHeader, out: Codes): void {
   if (header.bitDepth >= 8) return;
   const factor = 255 / ((1 << header.bitDepth) - 1);
   for (let index = 0; index < count; index++) out[index] = codes[index] * factor;
 }
 
-/** Adds an alpha channel: 0 where every sample equals the transparent colour, compared at the stored depth before anything
- *  is scaled. The colour itself is kept under it. [PNG3, 11.3.1.1 "tRNS Transparency"] */
+/** Adds an alpha channel: 0 where every sample equals the transparent color, compared at the stored depth before anything
+ *  is scaled. The color itself is kept under it. [PNG3, 11.3.1.1 "tRNS Transparency"] */
 function expandTransparentColor(header: PngHeader, unpack: Unpack, color: readonly number[]): Expand {
   const samples = color.length;
   const factor = header.bitDepth < 8 ? 255 / ((1 << header.bitDepth) - 1) : 1;

@@ -15,7 +15,7 @@ export interface PngHeader {
   readonly interlaced: boolean;
 }
 
-/** Samples of one texel as stored: an index, or grey or RGB with or without alpha. */
+/** Samples of one texel as stored: an index, or gray or RGB with or without alpha. */
 export const STORED_SAMPLES: Readonly<Record<ColorType, ChannelCount>> = { 0: 1, 2: 3, 3: 1, 4: 2, 6: 4 };
 
 /** Reads IHDR. Throws Refusal for what PNG does not allow and for an extent outside the limits.

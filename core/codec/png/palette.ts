@@ -39,7 +39,7 @@ export function withAlphas(palette: Palette, chunk: Chunk): Palette {
   return result;
 }
 
-/** The samples of the single transparent colour of a grey or RGB image. Bits above the bit depth are dropped, as the
+/** The samples of the single transparent color of a gray or RGB image. Bits above the bit depth are dropped, as the
  *  standard says. Throws Refusal where the image has an alpha channel already. */
 export function readTransparentColor(chunk: Chunk, header: PngHeader): readonly number[] {
   const { name, offset, body } = chunk;

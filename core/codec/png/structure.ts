@@ -13,7 +13,7 @@ export interface PngStructure {
   readonly palette: Palette | null;
   /** Length of the tRNS chunk of an indexed image, else 0. */
   readonly alphaCount: number;
-  /** The one colour that is transparent in a grey or RGB image, at the stored bit depth. */
+  /** The one color that is transparent in a gray or RGB image, at the stored bit depth. */
   readonly transparentColor: readonly number[] | null;
   /** In the order of the file; only those that stand where a reader heeds them, before PLTE and IDAT. */
   readonly colorChunks: readonly ColorChunk[];

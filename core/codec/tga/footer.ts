@@ -2,7 +2,7 @@ import { refuse } from '../../problem.ts';
 
 /** Checks what follows the image data and gives its length in bytes. A TGA 2.0 footer at the very end accounts for all of
  *  it (developer and extension areas); without one anything there is refused, since it may be image data that the header
- *  does not promise. So is an extension area that says that colours are premultiplied.
+ *  does not promise. So is an extension area that says that colors are premultiplied.
  *  [TGA2, "TGA file footer", "Extension area"] */
 export function checkTrailer(bytes: Uint8Array, dataEnd: number): number {
   const trailing = bytes.length - dataEnd;

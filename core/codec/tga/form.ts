@@ -21,6 +21,6 @@ export function tgaForm(header: TgaHeader): TgaForm {
 }
 
 function channelsOf({ kind, texelBits, alpha, map }: TgaHeader): ChannelCount {
-  if (kind === 'grey') return texelBits === 16 ? 2 : 1;
+  if (kind === 'gray') return texelBits === 16 ? 2 : 1;
   return colorChannels(map === null ? texelBits : map.entryBits, alpha);
 }

@@ -6,11 +6,11 @@ export type TexelBits = 8 | 15 | 16 | 24 | 32;
 
 /** The fixed header of a TGA image, every field checked. */
 export interface TgaHeader {
-  readonly kind: 'mapped' | 'color' | 'grey';
+  readonly kind: 'mapped' | 'color' | 'gray';
   readonly runLength: boolean;
   readonly extent: Extent;
   readonly texelBits: TexelBits;
-  /** Whether the bits that a texel (or a color map entry) has beside its colour are alpha. */
+  /** Whether the bits that a texel (or a color map entry) has beside its color are alpha. */
   readonly alpha: boolean;
   readonly fromRight: boolean;
   readonly fromBottom: boolean;
@@ -48,8 +48,8 @@ export function readTgaHeader(bytes: Uint8Array): TgaHeader {
   checkBits('bits a texel', texelBits, TEXEL_BITS[kind]);
   if (descriptor & 0xc0) refuse('tga-header', { field: 'interleave', found: descriptor >> 6, allowed: '0' });
   const attributeBits = descriptor & 0x0f;
-  if (kind === 'grey' && texelBits === 16 && attributeBits === 0) {
-    refuse('tga-header', { field: 'grey texels of 16 bits with attribute bits', found: 0, allowed: '8' });
+  if (kind === 'gray' && texelBits === 16 && attributeBits === 0) {
+    refuse('tga-header', { field: 'gray texels of 16 bits with attribute bits', found: 0, allowed: '8' });
   }
   const extent = { width: readUint16(bytes, 12), height: readUint16(bytes, 14) };
   checkExtent(extent);
@@ -79,16 +79,16 @@ export function readUint16(bytes: Uint8Array, offset: number): number {
 const KINDS: Readonly<Record<number, TgaHeader['kind'] | undefined>> = {
   1: 'mapped',
   2: 'color',
-  3: 'grey',
+  3: 'gray',
   9: 'mapped',
   10: 'color',
-  11: 'grey',
+  11: 'gray',
 };
 
 const TEXEL_BITS: Readonly<Record<TgaHeader['kind'], readonly number[]>> = {
   mapped: [8, 15, 16],
   color: [15, 16, 24, 32],
-  grey: [8, 16],
+  gray: [8, 16],
 };
 
 function readMap(bytes: Uint8Array, offset: number): ColorMap {

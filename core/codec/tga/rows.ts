@@ -11,7 +11,7 @@ export interface CheckedTga {
   readonly header: TgaHeader;
   readonly palette: Palette | null;
   readonly starts: RowStarts;
-  /** 1 for indices and grey, else what the colours expand to. */
+  /** 1 for indices and gray, else what the colors expand to. */
   readonly rowChannels: ChannelCount;
 }
 
@@ -41,11 +41,11 @@ type ReadRow = (bytes: Uint8Array, offset: number, y: number, out: Uint8Array) =
 function readerOf({ header, palette, rowChannels }: CheckedTga): ReadRow {
   const { width } = header.extent;
   if (palette !== null && header.map !== null) return mappedReader(header, header.map, palette, rowChannels);
-  const read = header.kind === 'grey' ? byteReader(rowChannels) : colorReader(header.texelBits, rowChannels);
+  const read = header.kind === 'gray' ? byteReader(rowChannels) : colorReader(header.texelBits, rowChannels);
   return (bytes, offset, _y, out) => read(bytes, offset, width, out);
 }
 
-/** Indices counted from the map's first entry, or the colours in their place. */
+/** Indices counted from the map's first entry, or the colors in their place. */
 function mappedReader(header: TgaHeader, map: ColorMap, palette: Palette, rowChannels: ChannelCount): ReadRow {
   const indexBytes = byteCount(header.texelBits);
   const { width } = header.extent;

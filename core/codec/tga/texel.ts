@@ -4,12 +4,12 @@ import { byteCount, type ColorMap, readUint16, type TexelBits } from './header.t
 /** Turns `count` stored texels from `bytes[offset]` on into codes of 8 bits, from the start of `out`. */
 export type ReadTexels = (bytes: Uint8Array, offset: number, count: number, out: Uint8Array) => void;
 
-/** Codes a texel of these bits expands to; `alpha` is whether the bits beside the colour are alpha. */
+/** Codes a texel of these bits expands to; `alpha` is whether the bits beside the color are alpha. */
 export function colorChannels(bits: TexelBits, alpha: boolean): ChannelCount {
   return alpha && (bits === 16 || bits === 32) ? 4 : 3;
 }
 
-/** Colours are stored as blue, green, red and then attribute bits, or as 5 bits each in a little-endian word with the
+/** Colors are stored as blue, green, red and then attribute bits, or as 5 bits each in a little-endian word with the
  *  attribute bit on top. [TGA2, "Image data field"] */
 export function colorReader(bits: TexelBits, channels: ChannelCount): ReadTexels {
   if (bits === 15 || bits === 16) return channels === 4 ? readWordsAlpha : readWords;
@@ -24,7 +24,7 @@ export function colorReader(bits: TexelBits, channels: ChannelCount): ReadTexels
   };
 }
 
-/** Bytes as they are: grey, grey and alpha, and indices of 8 bits. */
+/** Bytes as they are: gray, gray and alpha, and indices of 8 bits. */
 export function byteReader(channels: ChannelCount): ReadTexels {
   return (bytes, offset, count, out) => out.set(bytes.subarray(offset, offset + count * channels));
 }

@@ -57,7 +57,7 @@ function drawView(raster: StraightRaster, codes: Uint8Array, width: number, left
   }
 }
 
-/** Bilinear, as a GPU samples: colours decoded first, the four channels interpolated each by itself. */
+/** Bilinear, as a GPU samples: colors decoded first, the four channels interpolated each by itself. */
 function sample({ extent, codes }: StraightRaster, u: number, v: number): readonly number[] {
   const x = u * extent.width - 0.5;
   const y = v * extent.height - 0.5;

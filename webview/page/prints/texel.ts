@@ -2,7 +2,7 @@ import { decodeTable, encodeSrgb } from '../../../core/color/transfer.ts';
 import type { Picture } from '../../../core/proof/want.ts';
 import { maxCode } from '../../../core/raster/raster.ts';
 
-/** Reads texels of a picture as 8-bit codes that a screen shows: grey spread over three channels, 16 bits brought to 8. */
+/** Reads texels of a picture as 8-bit codes that a screen shows: gray spread over three channels, 16 bits brought to 8. */
 export interface TexelReader {
   /** Writes red, green and blue of a texel to `out`. */
   color(texel: number, out: Uint8ClampedArray | Uint8Array | number[]): void;

@@ -159,8 +159,8 @@ export class TopBar extends LitElement {
 customElements.define('top-bar', TopBar);
 
 const CHANNELS = {
-  1: () => t('grey'),
-  2: () => t('grey and alpha'),
+  1: () => t('gray'),
+  2: () => t('gray and alpha'),
   3: () => 'RGB',
   4: () => 'RGBA',
 } as const;

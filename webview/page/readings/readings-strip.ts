@@ -251,7 +251,7 @@ function cursorShare({ line, cursor }: State): number {
 
 function channelName(letter: Letter, channels: number): string {
   if (letter === 'a') return t('alpha');
-  if (channels < 3) return t('grey');
+  if (channels < 3) return t('gray');
   return { r: t('red'), g: t('green'), b: t('blue') }[letter];
 }
 
