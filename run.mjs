@@ -254,7 +254,14 @@ function bundleOne({ entry, file, head }) {
 
 /** VS Code 1.100, the oldest that the extension supports, is built on Chromium 132. */
 function bundleForPage({ entry, file }) {
-  return runEsbuild(entry, { outfile: file, platform: 'browser', target: 'chrome132', format: 'iife', minify: true });
+  return runEsbuild(entry, {
+    outfile: file,
+    platform: 'browser',
+    target: 'chrome132',
+    format: 'iife',
+    minify: true,
+    loader: { '.wasm': 'binary' },
+  });
 }
 
 async function runEsbuild(entry, options) {

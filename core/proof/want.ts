@@ -153,7 +153,13 @@ export type ToBench =
 
 /** From the worker. */
 export type FromBench =
-  | { readonly kind: 'opened'; readonly revision: number; readonly header: SourceHeader }
+  | {
+      readonly kind: 'opened';
+      readonly revision: number;
+      readonly header: SourceHeader;
+      /** Why the plain engine makes the prints; null where the SIMD engine does. */
+      readonly slow: Problem | null;
+    }
   | { readonly kind: 'answer'; readonly revision: number; readonly key: string; readonly answer: Answer }
   /** `key` is null where the file itself cannot be read. */
   | { readonly kind: 'problem'; readonly revision: number; readonly key: string | null; readonly problem: Problem };

@@ -1,7 +1,7 @@
 import { availableParallelism } from 'node:os';
 import { Worker } from 'node:worker_threads';
 import type { Problem } from '../../core/problem.ts';
-import { compileKernels } from './kernels.ts';
+import { readKernels } from './kernels.ts';
 import { type MemoryGate, openMemoryGate } from './memory.ts';
 import type { Outcome, TextureJob } from './texture-job.ts';
 
@@ -34,7 +34,7 @@ export function runInWorkers({ workerUrl, workers, memoryBytes, cancel }: PoolOp
   const flag = new Int32Array(cancel);
   return async (jobs, done) => {
     const gate = openMemoryGate(memoryBytes);
-    const { kernels, missing } = compileKernels(new URL('./engine.wasm', workerUrl));
+    const { kernels, missing } = readKernels(new URL('./engine.wasm', workerUrl));
     let unsaid = missing;
     let next = 0;
     const lane = async () => {

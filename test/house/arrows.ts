@@ -20,7 +20,11 @@ const ROOMS: readonly Room[] = [
   { at: 'extension/main.ts', files: ['core/', 'extension/app/', 'extension/node/'], packages: ['vscode', 'node:*'] },
   { at: 'extension/main.web.ts', files: ['core/', 'extension/app/', 'extension/web/'], packages: ['vscode'] },
   { at: 'webview/page/', files: ['core/', 'webview/page/', 'webview/link/'], packages: ['lit'] },
-  { at: 'webview/worker/', files: ['core/', 'webview/worker/'], packages: ['@noble/hashes'] },
+  {
+    at: 'webview/worker/',
+    files: ['core/', 'webview/worker/', 'dist/engine.wasm'],
+    packages: ['@noble/hashes'],
+  },
   { at: 'webview/link/', files: ['core/', 'webview/link/'], packages: [] },
 ];
 

@@ -1,24 +1,17 @@
 import { existsSync, readFileSync } from 'node:fs';
 import { join } from 'node:path';
 import type { Browser, BrowserContext, Page } from 'playwright-core';
+import { pagePolicy } from '../../extension/app/proof/policy.ts';
 import { top } from '../house/tree.ts';
 import { playData, playRecording, type Recording } from './recorded.ts';
 import { type ThemeName, themes } from './themes.ts';
 
-const ORIGIN = 'http://page.localhost';
-
-/** The policy that the host's page has; the page's own origin stands for `webview.cspSource`. */
-const POLICY = [
-  "default-src 'none'",
-  `img-src ${ORIGIN} blob: data:`,
-  "script-src 'nonce-recorded'",
-  `style-src ${ORIGIN}`,
-  `font-src ${ORIGIN}`,
-  'worker-src blob:',
-  `connect-src ${ORIGIN}`,
-].join('; ');
+/** The page's own, which stands for `webview.cspSource`. */
+export const ORIGIN = 'http://page.localhost';
 
 export interface Showing {
+  /** In place of the policy that the host's page has. */
+  readonly policy?: string;
   /** `own` takes the browser's window as it is. */
   readonly window?: 'own';
   readonly width?: number;
@@ -45,8 +38,9 @@ export async function showPage(
   await page.route(`${ORIGIN}/**`, async (route) => {
     const path = new URL(route.request().url()).pathname;
     if (path === '/') {
+      const policy = showing.policy ?? pagePolicy(ORIGIN, 'recorded');
       const body = `<!doctype html><html lang="en"><head><meta charset="utf-8"><title>Proof</title>
-<meta http-equiv="Content-Security-Policy" content="${POLICY}">
+<meta http-equiv="Content-Security-Policy" content="${policy}">
 <link id="theme" rel="stylesheet" href="/${theme}.css"><link rel="stylesheet" href="/page.css"></head>
 <body class="${themes[theme].bodyClass}" data-worker="${ORIGIN}/worker.js"><script nonce="recorded" src="/page.js"></script></body></html>`;
       return route.fulfill({ contentType: 'text/html', body });

@@ -7,11 +7,12 @@ import { encodePng } from '../../core/codec/png/encode.ts';
 import { measureHalo } from '../../core/finding/halo.ts';
 import type { StraightRaster } from '../../core/raster/raster.ts';
 import { resolveTreatment } from '../../core/treatment/resolve.ts';
+import { pagePolicy } from '../../extension/app/proof/policy.ts';
 import { deflate } from '../../extension/node/deflate.ts';
 import { newHash } from '../../extension/node/hash.ts';
 import { noiseRaster } from '../fixtures/noise.ts';
 import { launchBrowser } from '../host/browser.ts';
-import { showPage, waitForPrints } from './browser.ts';
+import { ORIGIN, showPage, waitForPrints } from './browser.ts';
 import { record } from './recorded.ts';
 import { boxOfPrint, readPrint, troubleOf } from './stage.ts';
 
@@ -80,6 +81,28 @@ describe.each(ratios)('at %d device pixels a CSS pixel', (ratio) => {
     expect(wrong.slice(0, 5)).toEqual([]);
     await context.close();
   });
+});
+
+test('prints are the same where the SIMD engine may not run, and the page says that they take longer', async () => {
+  const file = await encodePng(noise, deflate);
+  const browser = await launchBrowser();
+  const prints: string[] = [];
+  const words: (string | null)[] = [];
+  for (const policy of [
+    pagePolicy(ORIGIN, 'recorded'),
+    pagePolicy(ORIGIN, 'recorded').replace(" 'wasm-unsafe-eval'", ''),
+  ]) {
+    const { page, context } = await showPage(browser, record(file, 'noise.png', {}, state({})), { policy });
+    await waitForPrints(page);
+    const { pixels, rgb } = await readPrint(page);
+    prints.push(`${pixels} ${Buffer.from(rgb).toString('base64')}`);
+    words.push(await page.locator('.foot').textContent());
+    await context.close();
+  }
+  expect(prints[0]).toBe(prints[1]);
+  expect(words[0]).not.toContain('SIMD');
+  expect(words[1]).toContain('The SIMD engine cannot run here');
+  await browser.close();
 });
 
 test('numbers on the page are core’s, and what the main thread did is printed', async () => {

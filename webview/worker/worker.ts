@@ -1,5 +1,9 @@
+import { Desk } from '../../core/proof/desk.ts';
 import type { ToBench } from '../../core/proof/want.ts';
-import { Desk } from './desk.ts';
+import { plainEngine } from '../../core/resample/plain.ts';
+import { compileKernels } from '../../core/simd/compile.ts';
+import { createEngine } from '../../core/simd/engine.ts';
+import kernelBytes from '../../dist/engine.wasm';
 import { newHash } from './hash.ts';
 import { inflate } from './inflate.ts';
 
@@ -18,5 +22,11 @@ const pause = (): Promise<void> =>
     channel.port2.postMessage(null);
   });
 
-const desk = new Desk({ inflate, newHash, pause }, (message, transfer) => self.postMessage(message, transfer));
+// In the bundle, so that it is there wherever the worker is: a webview's worker could not fetch it from its host.
+const { kernels, missing } = compileKernels(() => kernelBytes);
+const engine = kernels === null ? plainEngine : createEngine(kernels);
+const desk = new Desk(
+  { engine, inflate, newHash, pause },
+  { slow: missing, post: (message, transfer) => self.postMessage(message, transfer) },
+);
 self.onmessage = (event: MessageEvent<ToBench>) => desk.take(event.data);

@@ -1,18 +1,10 @@
 import * as vscode from 'vscode';
+import { pagePolicy } from './policy.ts';
 
-/** The page's document. It may run its own script and a worker that it makes from fetched code, load its own style, and nothing
- *  else: pixels come by message. */
+/** The page's document, in the webview's own terms. */
 export function pageHtml(webview: vscode.Webview, folder: vscode.Uri, nonce: string): string {
   const at = (name: string) => webview.asWebviewUri(vscode.Uri.joinPath(folder, name)).toString();
-  const policy = [
-    "default-src 'none'",
-    `img-src ${webview.cspSource} blob: data:`,
-    `style-src ${webview.cspSource}`,
-    `font-src ${webview.cspSource}`,
-    `script-src 'nonce-${nonce}'`,
-    'worker-src blob:',
-    `connect-src ${webview.cspSource}`,
-  ].join('; ');
+  const policy = pagePolicy(webview.cspSource, nonce);
   return `<!doctype html>
 <html lang="${quoted(vscode.env.language)}">
 <head>

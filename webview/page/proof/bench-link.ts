@@ -19,6 +19,8 @@ export class BenchLink {
   #sent = '';
   header: SourceHeader | null = null;
   problem: Problem | null = null;
+  /** Why prints are made slowly; null where they are not. */
+  slow: Problem | null = null;
 
   constructor(worker: Worker, changed: () => void) {
     this.#worker = worker;
@@ -69,6 +71,7 @@ export class BenchLink {
     switch (message.kind) {
       case 'opened':
         this.header = message.header;
+        this.slow = message.slow;
         break;
       case 'answer':
         this.#answers.put(message.key, message.answer);

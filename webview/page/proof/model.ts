@@ -88,6 +88,11 @@ export class Model extends EventTarget {
     return this.#bench?.header ?? null;
   }
 
+  /** Why prints take longer here than they could; null where they do not. */
+  get slow(): Problem | null {
+    return this.#bench?.slow ?? null;
+  }
+
   get treatment(): Treatment | null {
     return this.settings?.treatment ?? null;
   }

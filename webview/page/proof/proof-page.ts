@@ -1,4 +1,5 @@
 import { css, html, LitElement, nothing } from 'lit';
+import { say } from '../../../core/problem.ts';
 import '../axis/sight-fields.ts';
 import '../axis/size-axis.ts';
 import { controls } from '../form/controls.ts';
@@ -192,6 +193,7 @@ export class ProofPage extends LitElement {
         treatment?.view.blend === 'code' ? t('Backdrops blend in code space.') : t('Backdrops blend in linear light.'),
       );
     }
+    if (model.slow !== null) words.push(say(model.slow));
     return words;
   }
 

@@ -1,10 +1,10 @@
 import { expect, test } from 'vitest';
 import { encodePng } from '../../core/codec/png/encode.ts';
+import { Desk } from '../../core/proof/desk.ts';
 import type { FromBench, Want } from '../../core/proof/want.ts';
 import { deflate } from '../../extension/node/deflate.ts';
 import { newHash as nodeHash } from '../../extension/node/hash.ts';
 import { inflate } from '../../extension/node/inflate.ts';
-import { Desk } from '../../webview/worker/desk.ts';
 import { newHash } from '../../webview/worker/hash.ts';
 import { noiseRaster } from '../fixtures/noise.ts';
 import { both, treatment } from '../fixtures/treatment.ts';
@@ -13,10 +13,16 @@ async function opened() {
   const posted: FromBench[] = [];
   const waiting: (() => void)[] = [];
   const pause = () => new Promise<void>((resolve) => setTimeout(resolve, 0));
-  const desk = new Desk({ inflate, newHash, pause }, (message) => {
-    posted.push(message);
-    for (const each of waiting.splice(0)) each();
-  });
+  const desk = new Desk(
+    { inflate, newHash, pause },
+    {
+      slow: null,
+      post: (message) => {
+        posted.push(message);
+        for (const each of waiting.splice(0)) each();
+      },
+    },
+  );
   const told = async (count: number) => {
     while (posted.length < count) await new Promise<void>((resolve) => waiting.push(resolve));
     return posted;

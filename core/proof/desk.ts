@@ -1,21 +1,32 @@
-import { Cancelled } from '../../core/port.ts';
-import { type Problem, Refusal } from '../../core/problem.ts';
-import { type BenchPorts, ProofBench } from '../../core/proof/bench.ts';
-import type { Answer, FromBench, ToBench, Want } from '../../core/proof/want.ts';
+import { Cancelled } from '../port.ts';
+import { type Problem, Refusal } from '../problem.ts';
+import type { Codes } from '../raster/raster.ts';
+import { type BenchPorts, ProofBench } from './bench.ts';
+import type { Answer, FromBench, ToBench, Want } from './want.ts';
 
 /** Works through what the page wants, one want at a time and in its order. A new list replaces the old one, and what is being
  *  worked on goes on only where the new list still wants it. */
 export class Desk {
   readonly #ports: BenchPorts;
-  readonly #post: (message: FromBench, transfer: Transferable[]) => void;
+  readonly #slow: Problem | null;
+  readonly #post: (message: FromBench, transfer: ArrayBuffer[]) => void;
   #bench: Promise<ProofBench> | null = null;
   #revision = 0;
   #waiting: { readonly key: string; readonly want: Want }[] = [];
   #running: { readonly key: string; readonly cancel: { cancelled: boolean } } | null = null;
 
-  constructor(ports: BenchPorts, post: (message: FromBench, transfer: Transferable[]) => void) {
+  constructor(
+    ports: BenchPorts,
+    options: {
+      /** Why the ports have no SIMD engine; null where they have. */
+      readonly slow: Problem | null;
+      /** Takes what is said, and the buffers that go with it. */
+      readonly post: (message: FromBench, transfer: ArrayBuffer[]) => void;
+    },
+  ) {
     this.#ports = ports;
-    this.#post = post;
+    this.#slow = options.slow;
+    this.#post = options.post;
   }
 
   take(message: ToBench): void {
@@ -45,7 +56,7 @@ export class Desk {
     const opening = ProofBench.open(bytes, name, this.#ports);
     this.#bench = opening;
     opening.then(
-      ({ header }) => this.#post({ kind: 'opened', revision, header }, []),
+      ({ header }) => this.#post({ kind: 'opened', revision, header, slow: this.#slow }, []),
       (error) => {
         if (this.#bench === opening) this.#bench = null;
         this.#post({ kind: 'problem', revision, key: null, problem: problemOf(error) }, []);
@@ -79,19 +90,24 @@ export class Desk {
   }
 }
 
-function buffersOf(answer: Answer): Transferable[] {
+function buffersOf(answer: Answer): ArrayBuffer[] {
   switch (answer.kind) {
     case 'print':
-      return [answer.picture.codes.buffer];
+      return [bufferOf(answer.picture.codes)];
     case 'levels':
-      return answer.levels.map(({ cut }) => cut.codes.buffer);
+      return answer.levels.map(({ cut }) => bufferOf(cut.codes));
     case 'halo':
-      return answer.marks === null ? [] : [answer.marks.buffer];
+      return answer.marks === null ? [] : [bufferOf(answer.marks)];
     case 'section':
-      return [answer.codes.buffer];
+      return [bufferOf(answer.codes)];
     case 'footprint':
       return [];
   }
+}
+
+/** Codes that a bench answers lie in memory of their own, which is never shared. */
+function bufferOf(codes: Codes): ArrayBuffer {
+  return codes.buffer as ArrayBuffer;
 }
 
 function problemOf(error: unknown): Problem {
