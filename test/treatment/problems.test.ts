@@ -89,7 +89,7 @@ describe('types, ranges and choices', () => {
     ['{"defaults":[]}', '1:13 wrong-type'],
     ['{"treatments":{}}', '1:15 wrong-type'],
     ['{"treatments":[7]}', '1:16 wrong-type'],
-    [rule('"content":"color"'), '1:40 bad-choice'],
+    [rule('"content":"colour"'), '1:40 bad-choice'],
     [rule('"content":7'), '1:40 wrong-type'],
     [rule('"depth":12'), '1:38 bad-choice'],
     [rule('"depth":"8"'), '1:38 bad-choice'],

@@ -40,7 +40,7 @@ test('the tables name every key and kernel', () => {
 
 /** Settings files that are right, and what one wrong value makes of them. */
 const values: Readonly<Record<string, { readonly good: readonly unknown[]; readonly bad: readonly unknown[] }>> = {
-  content: { good: ['color', 'data', null], bad: ['color', 1, []] },
+  content: { good: ['color', 'data', null], bad: ['colour', 1, []] },
   channels: { good: [{ rg: 'normal', b: 'roughness' }, null], bad: [{}, { x: 'data' }, { r: 'x' }, 'rg'] },
   transfer: { good: ['linear', ['srgb', 'linear']], bad: ['gamma', [], [1], 1] },
   alpha: { good: [{ cutoff: 0.3 }, { use: null }, {}], bad: [{ cutof: 1 }, { cutoff: 2 }, { test: '<' }, 'mask'] },
