@@ -25,6 +25,8 @@ export interface HostCalls {
   save(file: { readonly name: string; readonly bytes: ArrayBuffer }): { readonly path: string | null };
   /** Shows the outputs of this texture in the explorer. */
   reveal(): Record<string, never>;
+  /** Makes a file of this proof, with what the page keeps, and asks where to. `path` is null where the user thought better of it. */
+  export(order: ExportOrder): { readonly path: string | null };
 }
 
 export type HostCall = keyof HostCalls;
@@ -77,6 +79,8 @@ export interface OpenReply {
   readonly preferences: Preferences;
   /** Translations of the page's own words, by English text; empty in English. */
   readonly words: Readonly<Record<string, string>>;
+  /** What was left out of an exported page; null where nothing was. */
+  readonly remark: string | null;
 }
 
 /** What the settings say about this texture; `treatment` is null where they cannot be read, `problems` then says why. */
@@ -104,11 +108,13 @@ export interface BuiltImage {
   readonly pixels: string;
 }
 
-/** What can be done here; a text says why not. */
+/** What can be done here; a text says why not, and null leaves it out: an exported page has no host to ask. */
 export interface Abilities {
-  readonly build: true | string;
-  readonly adopt: true | string;
-  readonly reveal: true | string;
+  readonly build: true | string | null;
+  readonly adopt: true | string | null;
+  readonly reveal: true | string | null;
+  readonly settings: true | null;
+  readonly export: true | null;
 }
 
 /** Settings of the extension that the page follows. */
@@ -126,4 +132,10 @@ export interface AdoptChange {
   /** `file` adds a last treatment for this file alone; `matching` changes the last treatment that matches. */
   readonly scope: 'file' | 'matching';
   readonly settings: Readonly<Record<string, unknown>>;
+}
+
+/** What to export: one page that stands alone. `state` is what the page keeps, as it gives it to `keep`. */
+export interface ExportOrder {
+  readonly form: 'page';
+  readonly state: Readonly<Record<string, unknown>>;
 }

@@ -126,6 +126,9 @@ const usage = {
   'no-treatment': 'No treatment matches {path}. Adopt for this file only.',
   'bad-message':
     'The page sent what was not understood: expected {expected} for {where}. Close the proof and open it again.',
+  'export-too-large':
+    'The page would carry {bytes} bytes of source; more than {limit} are carried only when asked for. Say what to keep: all of it, or its middle.',
+  'exported-page': 'This page was exported and has no editor to ask. Open the texture in the editor.',
   'page-outdated':
     'This page speaks version {page} of the protocol and the extension version {host}. Close the proof and open it again.',
 } as const;

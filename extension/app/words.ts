@@ -14,3 +14,9 @@ export function sayProblemLine(problem: Problem, nameOf: (path: string) => strin
   const name = path === undefined ? '.' : nameOf(path);
   return oneLine(`${name}:${line}:${column}: ${severity} ${code}: ${sayProblem(problem)}`);
 }
+
+/** Translations by English text, as the host loaded them. */
+export function translations(): Record<string, string> {
+  const entries = Object.entries(vscode.l10n.bundle ?? {}).filter(([, text]) => typeof text === 'string');
+  return Object.fromEntries(entries);
+}

@@ -4,7 +4,7 @@ import { expect, test } from 'vitest';
 import { words } from '../../core/words.ts';
 import { placeOf, readSources, type Source, walkSyntax } from './tree.ts';
 
-const sources = readSources('core', 'extension').filter((each) => each.path !== 'core/words.ts');
+const sources = readSources('core', 'extension', 'webview').filter((each) => each.path !== 'core/words.ts');
 
 test.each(Object.keys(words))('%s is said somewhere', (code) => {
   const users = sources.filter((each) => literalsOf(each).has(code)).map((each) => each.path);

@@ -83,6 +83,8 @@ const states: readonly State[] = [
           build: 'Building is off in a folder that is not trusted.',
           adopt: 'Not trusted.',
           reveal: 'Not trusted.',
+          settings: true,
+          export: true,
         },
       }),
     marker: /not trusted/,

@@ -38,9 +38,10 @@ export function record(bytes: Uint8Array, path: string, rest: Partial<OpenReply>
     byteCount: bytes.length,
     settings: { file: null, treatment, origins, problems: [], matching: null },
     state: { kind: 'not-built' },
-    abilities: { build: true, adopt: true, reveal: true },
+    abilities: { build: true, adopt: true, reveal: true, settings: true, export: true },
     preferences: { backdrop: 'checker', fovY: 60, screenHeight: 1080, swapDwell: 333 },
     words: {},
+    remark: null,
     ...rest,
   };
   return { open, bytes, ...(kept !== undefined && { kept }) };

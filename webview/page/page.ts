@@ -1,3 +1,6 @@
+import { WORKER_BLOCK } from '../../core/export/document.ts';
+import { carriedJson } from '../link/carried.ts';
+import { openEmbeddedLink } from '../link/embedded.ts';
 import { openHostLink, type VsCodeApi } from '../link/host.ts';
 import './page.css';
 import { BenchLink } from './proof/bench-link.ts';
@@ -6,7 +9,7 @@ import { ProofPage } from './proof/proof-page.ts';
 
 declare function acquireVsCodeApi(): VsCodeApi;
 
-const link = openHostLink(acquireVsCodeApi(), window);
+const link = openEmbeddedLink(document) ?? openHostLink(acquireVsCodeApi(), window);
 const model = new Model(link, async (changed) => new BenchLink(await startWorker(), changed));
 const page = new ProofPage();
 page.model = model;
@@ -14,17 +17,23 @@ document.body.append(page);
 window.addEventListener('pagehide', () => model.close());
 void model.start();
 
-/** A webview runs workers from blobs alone, so the worker's code is fetched first; whoever opens the page says where it is. */
+/** A webview runs workers from blobs alone, so the worker's code is read first: an exported page carries it, and whoever else opens
+ *  the page says where it is. */
 async function startWorker(): Promise<Worker> {
-  const { worker } = document.body.dataset;
-  if (worker === undefined) throw new Error('The page does not say where its worker is');
-  const response = await fetch(worker);
-  if (!response.ok) throw new Error(`The worker could not be loaded: ${response.status}`);
-  const url = URL.createObjectURL(new Blob([await response.text()], { type: 'text/javascript' }));
+  const code = carriedJson(document, WORKER_BLOCK) ?? (await fetchWorker());
+  const url = URL.createObjectURL(new Blob([code as string], { type: 'text/javascript' }));
   try {
     return new Worker(url);
   } finally {
     // The worker has read its script long before; until it has, the blob must live.
     setTimeout(() => URL.revokeObjectURL(url), 10_000);
   }
+}
+
+async function fetchWorker(): Promise<string> {
+  const { worker } = document.body.dataset;
+  if (worker === undefined) throw new Error('The page does not say where its worker is');
+  const response = await fetch(worker);
+  if (!response.ok) throw new Error(`The worker could not be loaded: ${response.status}`);
+  return response.text();
 }

@@ -8,16 +8,17 @@ import type { Platform } from '../platform.ts';
 import { readConfiguration } from '../settings/configuration.ts';
 import { hindranceToWriting } from '../settings/create.ts';
 import { openSettings } from '../settings/open.ts';
-import { sayProblem } from '../words.ts';
+import { sayProblem, translations } from '../words.ts';
 import { adopt } from './adopt.ts';
 import type { Answers } from './channel.ts';
+import { type ExportTools, exportProof } from './export.ts';
 import type { TextureFacts } from './facts.ts';
 import { revealOutputs } from './outputs.ts';
 
 /** What the host answers to a proof's page. */
 export function answersFor(
   texture: TextureFacts,
-  { platform, desk }: { readonly platform: Platform; readonly desk: BuildDesk },
+  { platform, desk, pages }: ExportTools & { readonly desk: BuildDesk },
 ): Answers {
   const { uri } = texture;
   return {
@@ -32,6 +33,7 @@ export function answersFor(
         abilities: abilitiesFor(uri, platform),
         preferences: readConfiguration(uri).preferences,
         words: translations(),
+        remark: null,
       };
     },
     async bytes() {
@@ -63,6 +65,10 @@ export function answersFor(
       await revealOutputs(texture);
       return {};
     },
+    async export(order) {
+      const written = await exportProof(texture, order, { platform, pages });
+      return { path: written?.path ?? null };
+    },
   };
 }
 
@@ -75,11 +81,7 @@ function abilitiesFor(uri: vscode.Uri, platform: Platform): Abilities {
     build: 'problem' in building ? sayProblem(building.problem) : true,
     adopt: writing === null ? true : sayProblem(writing),
     reveal: 'problem' in reading ? sayProblem(reading.problem) : true,
+    settings: true,
+    export: true,
   };
-}
-
-/** Translations by English text, as the host loaded them. */
-function translations(): Record<string, string> {
-  const entries = Object.entries(vscode.l10n.bundle ?? {}).filter(([, text]) => typeof text === 'string');
-  return Object.fromEntries(entries);
 }

@@ -1,6 +1,13 @@
 import { choice, either, integer, Misfit, nothing, object, type Shape, text } from '../../../core/manifest/shape.ts';
 import { refuse } from '../../../core/problem.ts';
-import { type AdoptChange, type HostCall, PROTOCOL, type Question, type Request } from '../../../core/protocol.ts';
+import {
+  type AdoptChange,
+  type ExportOrder,
+  type HostCall,
+  PROTOCOL,
+  type Question,
+  type Request,
+} from '../../../core/protocol.ts';
 
 /** Reads a message of a page, and trusts nothing in it. Throws Refusal: `bad-message`, or `page-outdated` for another version of
  *  the protocol. */
@@ -31,7 +38,7 @@ const envelope = object<Omit<Request, 'question'> & { readonly question: unknown
   protocol: integer(PROTOCOL, PROTOCOL),
   kind: choice('ask'),
   id: integer(0, Number.MAX_SAFE_INTEGER),
-  call: choice('open', 'bytes', 'build', 'adopt', 'showSettings', 'copy', 'save', 'reveal'),
+  call: choice('open', 'bytes', 'build', 'adopt', 'showSettings', 'copy', 'save', 'reveal', 'export'),
   // An `optional` of anything would let the key be left out.
   question: anything as never,
 });
@@ -60,7 +67,11 @@ const questions: { readonly [K in HostCall]: Shape<Question<K>> } = {
     bytes: fileBytes,
   }),
   reveal: nothing,
+  export: object<ExportOrder>({ form: choice('page'), state: plainState }),
 };
+
+/** Characters of what a page keeps, as JSON. */
+const STATE_LIMIT = 2 ** 18;
 
 function shortText(value: unknown, at: string): string {
   if (typeof value !== 'string' || value.length > COPY_LIMIT) throw new Misfit(at, `up to ${COPY_LIMIT} characters`);
@@ -74,10 +85,23 @@ function fileBytes(value: unknown, at: string): ArrayBuffer {
 
 /** An object of JSON values; what it may hold, reading the settings file that it makes will tell. */
 function plainSettings(value: unknown, at: string): Readonly<Record<string, unknown>> {
+  return plainObject(value, ADOPT_LIMIT) ?? misfit(at, 'an object of settings');
+}
+
+/** What a page keeps; which of it a sheet understands, core/export/look.ts says. */
+function plainState(value: unknown, at: string): Readonly<Record<string, unknown>> {
+  return plainObject(value, STATE_LIMIT) ?? misfit(at, 'what a page keeps');
+}
+
+function misfit(at: string, expected: string): never {
+  throw new Misfit(at, expected);
+}
+
+/** A copy of an object of JSON values; null for anything else, and for more characters than `limit`. */
+function plainObject(value: unknown, limit: number): Readonly<Record<string, unknown>> | null {
   const isObject = typeof value === 'object' && value !== null && !Array.isArray(value);
   const json = isObject ? jsonOf(value) : undefined;
-  if (json === undefined || json.length > ADOPT_LIMIT) throw new Misfit(at, 'an object of settings');
-  return JSON.parse(json);
+  return json === undefined || json.length > limit ? null : JSON.parse(json);
 }
 
 /** Undefined for a ring, which messages may hold and JSON may not. */

@@ -187,6 +187,7 @@ export class ProofPage extends LitElement {
     const ratio = window.devicePixelRatio;
     const { treatment, header } = model;
     const words = [t('Codes are shown as sRGB; what they look like depends on the screen.')];
+    if (model.open?.remark != null) words.unshift(model.open.remark);
     if (ratio !== 1) words.push(t('One CSS pixel is {ratio} device pixels.', { ratio: Number(ratio.toFixed(3)) }));
     if ((header?.channels ?? 3) % 2 === 0) {
       words.push(

@@ -99,7 +99,7 @@ export function readState(kept: unknown): State {
   return { ...startState, ...state, slots };
 }
 
-export function writeState(state: State): unknown {
+export function writeState(state: State): Readonly<Record<string, unknown>> {
   return { version: VERSION, ...state };
 }
 

@@ -1,10 +1,11 @@
 import { css, html, LitElement, nothing } from 'lit';
 import { say } from '../../../core/problem.ts';
-import type { AdoptChange, HostCall, Question } from '../../../core/protocol.ts';
+import type { AdoptChange, ExportOrder, HostCall, Question } from '../../../core/protocol.ts';
 import { controls } from '../form/controls.ts';
 import { adoptable } from '../treatment/change.ts';
 import { t } from '../words/t.ts';
 import type { Model } from './model.ts';
+import { writeState } from './state.ts';
 
 /** What the file is, what the settings make of it, whether that is built, and the page's three actions. */
 export class TopBar extends LitElement {
@@ -78,15 +79,7 @@ export class TopBar extends LitElement {
       <span class="gap"></span>
       <span class=${note?.kind === 'failed' ? 'failed' : 'quiet'} role="status">${note?.text ?? ''}</span>
       <span class="group">
-        ${this.#adopt(model)}
-        <button
-          class="main"
-          ?disabled=${open.abilities.build !== true || this.busy !== null}
-          title=${open.abilities.build === true ? t('Writes every level and target of this texture') : open.abilities.build}
-          @click=${() => this.#do(model, 'build', null)}
-        >
-          ${this.busy === 'build' ? t('Building …') : t('Build')}
-        </button>
+        ${this.#adopt(model)} ${this.#export(model)} ${this.#build(model)}
       </span>
       ${typeof open.abilities.build === 'string' ? html`<span class="quiet why">${open.abilities.build}</span>` : nothing}
     `;
@@ -110,6 +103,9 @@ export class TopBar extends LitElement {
     const globs = settings.matching?.globs.join(', ');
     const text =
       settings.file === null ? t('no settings file') : (globs ?? t('defaults of {file}', { file: settings.file }));
+    if (model.open!.abilities.settings === null) {
+      return html`<span><span class="quiet">${t('treatment')}</span> ${text}</span>`;
+    }
     return html`<span><span class="quiet">${t('treatment')}</span> <button
       class="link"
       title=${t('Show the settings that apply')}
@@ -119,9 +115,37 @@ export class TopBar extends LitElement {
     </button></span>`;
   }
 
+  #build(model: Model) {
+    const able = model.open!.abilities.build;
+    if (able === null) return nothing;
+    return html`<button
+      class="main"
+      ?disabled=${able !== true || this.busy !== null}
+      title=${able === true ? t('Writes every level and target of this texture') : able}
+      @click=${() => this.#do(model, 'build', null)}
+    >
+      ${this.busy === 'build' ? t('Building …') : t('Build')}
+    </button>`;
+  }
+
+  #export(model: Model) {
+    if (model.open!.abilities.export === null) return nothing;
+    const button = (form: ExportOrder['form'], text: string, title: string) => html`<button
+      ?disabled=${this.busy !== null || model.header === null || model.treatment === null}
+      title=${title}
+      @click=${() => this.#do(model, 'export', { form, state: writeState(model.state) })}
+    >
+      ${text}
+    </button>`;
+    return html`
+      ${button('page', t('Export page'), t('One HTML file that shows this proof without an editor and without a network'))}
+    `;
+  }
+
   #adopt(model: Model) {
     const settings = adoptable(model.slot);
     const able = model.open!.abilities.adopt;
+    if (able === null) return nothing;
     if (model.slot.id === 0 || Object.keys(settings).length === 0) return nothing;
     const why = able === true ? '' : able;
     const { matching } = model.settings!;
@@ -147,12 +171,16 @@ export class TopBar extends LitElement {
     `;
   }
 
-  async #do<K extends 'build' | 'adopt' | 'showSettings'>(model: Model, call: K, question: Question<K>): Promise<void> {
+  async #do<K extends 'build' | 'adopt' | 'showSettings' | 'export'>(
+    model: Model,
+    call: K,
+    question: Question<K>,
+  ): Promise<void> {
     this.busy = call;
     const { reply } = await model.link.ask(call, question);
     this.busy = null;
     if ('problem' in reply) model.say({ text: say(reply.problem), kind: 'failed' });
-    else model.say(call === 'showSettings' ? null : { text: doneWords(reply.ok), kind: 'said' });
+    else model.say(call === 'showSettings' ? null : { text: doneWords(call, reply.ok), kind: 'said' });
   }
 }
 
@@ -178,7 +206,11 @@ function builtWords({ built }: Model): string {
   }
 }
 
-function doneWords(done: object): string {
+function doneWords(call: HostCall, done: object): string {
+  if (call === 'export') {
+    const { path } = done as { readonly path: string | null };
+    return path === null ? '' : t('Wrote {path}.', { path: path.slice(path.lastIndexOf('/') + 1) });
+  }
   if ('path' in done) return t('Put into {path}, not saved yet.', { path: String(done.path) });
   if (!('failed' in done)) return '';
   const { built, unchanged, failed } = done as { built: number; unchanged: number; failed: number };
