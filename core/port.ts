@@ -1,3 +1,4 @@
+import type { RowFilters } from './codec/png/filters.ts';
 import type { Engine } from './resample/engine.ts';
 
 // What the platform must give. core calls nothing else of the outside world.
@@ -53,6 +54,8 @@ export class Cancelled extends Error {
 export interface Ports {
   /** Makes the rows of chains; the plain engine where it is left out. The pixels are the same. */
   readonly engine?: Engine;
+  /** Undoes and chooses the row filters of PNG; the plain ones where they are left out. The bytes are the same. */
+  readonly filters?: RowFilters;
   readonly inflate: Inflate;
   readonly deflate: Deflate;
   readonly newHash: () => Hash;

@@ -128,5 +128,5 @@ function texelsOf(images: readonly Pick<PlannedImage, 'extent'>[]): number {
   return images.reduce((sum, { extent }) => sum + extent.width * extent.height, 0);
 }
 
-/** What the streams of a port hold for themselves: some buffers of up to 256 KiB. */
+/** What the streams of a port and the row filters hold for themselves: some buffers of up to 256 KiB. */
 const PORT_BYTES = 1 << 20;

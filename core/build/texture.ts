@@ -80,7 +80,7 @@ async function emitImage(work: Emission, planned: PlannedImage, image: ChainImag
   const same = planned.level === 0 && pixels === source?.pixels;
   const wanted = planned.png !== null && (!same || plan.chain.treatment.png.base);
   const file = wanted
-    ? await emitFile(work, planned.png!, await encodePng(pngRaster(image.raster), ports.deflate))
+    ? await emitFile(work, planned.png!, await encodePng(pngRaster(image.raster), ports.deflate, ports.filters))
     : null;
   return describeImage(planned, image, pixels, file);
 }

@@ -32,7 +32,7 @@ import {
 } from './want.ts';
 
 /** What a bench needs beside the build's ports. */
-export interface BenchPorts extends Pick<Ports, 'engine' | 'inflate' | 'newHash'> {
+export interface BenchPorts extends Pick<Ports, 'engine' | 'filters' | 'inflate' | 'newHash'> {
   /** Lets others work; asked for every few million operations. */
   readonly pause: () => Promise<void>;
 }
@@ -54,7 +54,7 @@ export class ProofBench {
 
   /** Reads an image file; `name` tells its extension. Throws Refusal. */
   static async open(bytes: Uint8Array, name: string, ports: BenchPorts): Promise<ProofBench> {
-    const image = openImage(bytes, name, ports.inflate);
+    const image = openImage(bytes, name, ports.inflate, ports.filters);
     return new ProofBench(image.header, await decodeImage(image), ports);
   }
 

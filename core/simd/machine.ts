@@ -5,6 +5,10 @@ export interface Kernels {
   acrossEqual(rows: number, weights: number, taps: number, out: number, floats: number): void;
   acrossPairs(rows: number, weights: number, taps: number, out: number, floats: number): void;
   pad(pairs: number, count: number, bytes: number): void;
+  unfilter(type: number, row: number, above: number, step: number, bytes: number): void;
+  chooseFilter(row: number, above: number, step: number, bytes: number): number;
+  filter(type: number, row: number, above: number, step: number, bytes: number, out: number): void;
+  swapBytes(codes: number, bytes: number): void;
   decodeBytes(codes: number, step: number, table: number, out: number, stride: number, texels: number): void;
   decodeWords(codes: number, step: number, table: number, out: number, stride: number, texels: number): void;
   decodeQuads(codes: number, tables: number, alpha: number, out: number, texels: number, sums: number): void;

@@ -1,7 +1,9 @@
 import type { MessagePort } from 'node:worker_threads';
 import { buildTexture } from '../../core/build/texture.ts';
+import { plainFilters } from '../../core/codec/png/filters.ts';
 import { plainEngine } from '../../core/resample/plain.ts';
 import { createEngine } from '../../core/simd/engine.ts';
+import { createFilters } from '../../core/simd/filters.ts';
 import { runJob } from './measure-job.ts';
 import { nodeDisk } from './node-disk.ts';
 import { planJob } from './plan-job.ts';
@@ -12,6 +14,7 @@ import type { Bench, Outcome, TextureJob } from './texture-job.ts';
 /** Answers a pool's messages: builds one texture after another, by the compiled kernels where there are any. */
 export function serve(port: MessagePort, kernels: WebAssembly.Module | null, isCancelled: () => boolean): void {
   const engine = kernels === null ? plainEngine : createEngine(kernels);
+  const filters = kernels === null ? plainFilters : createFilters(kernels);
   const cancel = {
     get cancelled() {
       return isCancelled();
@@ -25,7 +28,7 @@ export function serve(port: MessagePort, kernels: WebAssembly.Module | null, isC
 
   async function run(job: TextureJob): Promise<Outcome> {
     try {
-      const ports = { ...nodePorts, engine };
+      const ports = { ...nodePorts, engine, filters };
       const plan: Bench['planJob'] = (one, image, roughness) => planJob(one, image, roughness, engine);
       return await runJob(job, { disk: nodeDisk, ports, cancel, buildTexture, planJob: plan, admit });
     } catch (error) {

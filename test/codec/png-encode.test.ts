@@ -8,6 +8,7 @@ import type { Deflate, DeflateHints } from '../../core/port.ts';
 import { expandIndexed, type IndexedRaster, type StraightRaster } from '../../core/raster/raster.ts';
 import { deflate } from '../../extension/node/deflate.ts';
 import { noiseRaster, numbers, type Pattern } from '../fixtures/noise.ts';
+import { simdFilters } from '../fixtures/simd.ts';
 import { chunkData, readChunks } from './chunks.ts';
 
 const sizes = fc.integer({ min: 1, max: 40 });
@@ -33,10 +34,13 @@ const indexedRasters: fc.Arbitrary<IndexedRaster> = fc
   );
 
 describe('pngjs reads back', () => {
-  test('the codes of every channel count and depth', async () => {
+  test('the codes of every channel count and depth, which the kernels write as the plain filters do', async () => {
+    const kernels = simdFilters();
     await fc.assert(
       fc.asyncProperty(straightRasters, async (raster) => {
-        expect(judge(await encodePng(raster, deflate))).toEqual(wide(raster));
+        const file = await encodePng(raster, deflate);
+        expect(judge(file)).toEqual(wide(raster));
+        expect(Buffer.compare(await encodePng(raster, deflate, kernels), file)).toBe(0);
       }),
       { numRuns: 200 },
     );

@@ -1,9 +1,11 @@
 import { describe, expect, test } from 'vitest';
 import { decodeImage } from '../../core/codec/decode.ts';
+import { plainFilters } from '../../core/codec/png/filters.ts';
 import { openPng } from '../../core/codec/png/open.ts';
 import { inflate } from '../../extension/node/inflate.ts';
 import { asJudged, decodeRgba, firstDifference, judgeRgba } from '../fixtures/judge.ts';
 import { problemOf } from '../fixtures/refusal.ts';
+import { simdFilters } from '../fixtures/simd.ts';
 import { openTestData } from '../fixtures/testdata.ts';
 
 /** Damage as PngSuite's README describes it, with the problem it has to lead to. */
@@ -35,11 +37,17 @@ describe.skipIf(suite === null)('PngSuite', () => {
     expect(names.filter((name) => name.startsWith('x'))).toEqual(Object.keys(DAMAGED).sort());
   });
 
-  test.each([...valid, 'PngSuite.png'])('%s reads as the judge reads it', async (name) => {
-    const bytes = suite!.read(name);
-    const ours = await decodeRgba(openPng(bytes, inflate));
-    expect(firstDifference(asJudged(ours, bytes), judgeRgba(bytes))).toBeNull();
-  });
+  test.each([...valid, 'PngSuite.png'])(
+    '%s reads as the judge reads it, by plain filters and by the kernels',
+    async (name) => {
+      const bytes = suite!.read(name);
+      const judged = judgeRgba(bytes);
+      for (const filters of [plainFilters, simdFilters()]) {
+        const ours = await decodeRgba(openPng(bytes, inflate, filters));
+        expect(firstDifference(asJudged(ours, bytes), judged)).toBeNull();
+      }
+    },
+  );
 
   test.each(Object.entries(DAMAGED))('%s is refused', async (name, [code, values]) => {
     const problem = await problemOf(async () => decodeImage(openPng(suite!.read(name), inflate)));

@@ -2,21 +2,28 @@ import { createHash } from 'node:crypto';
 import { readFileSync } from 'node:fs';
 import fc from 'fast-check';
 import { buildChain } from '../../core/chain/chain.ts';
+import { plainFilters, type RowFilters } from '../../core/codec/png/filters.ts';
 import type { Engine } from '../../core/resample/engine.ts';
 import { plainEngine } from '../../core/resample/plain.ts';
 import { createEngine } from '../../core/simd/engine.ts';
+import { createFilters } from '../../core/simd/filters.ts';
 import { noiseRaster, withAlpha } from '../fixtures/noise.ts';
 import { treatment } from '../fixtures/treatment.ts';
 import { passes, traceOf } from './passes.ts';
+import { filterCases, undone, written } from './rows-through-filters.ts';
 
 // Run by itself, with flags for V8: prints a hash of what an engine makes. Arguments: `plain`, or the file of the kernels.
 
 const [file] = process.argv.slice(2);
-const engine = file === 'plain' ? plainEngine : createEngine(new WebAssembly.Module(readFileSync(file)));
-console.log(hashOf(engine));
+const kernels = file === 'plain' ? null : new WebAssembly.Module(readFileSync(file));
+const engine = kernels === null ? plainEngine : createEngine(kernels);
+console.log(hashOf(engine, kernels === null ? plainFilters : createFilters(kernels)));
 
-function hashOf(of: Engine): string {
+function hashOf(of: Engine, filters: RowFilters): string {
   const hash = createHash('sha256');
+  for (const one of fc.sample(filterCases, { numRuns: 300, seed: 1 })) {
+    for (const row of [...written(filters, one), ...undone(filters, one)]) hash.update(row);
+  }
   for (const one of fc.sample(passes, { numRuns: 40, seed: 1 })) hash.update(traceOf(of, one));
   for (const channels of [1, 2, 3, 4] as const) {
     for (const depth of [8, 16] as const) {

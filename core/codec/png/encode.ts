@@ -1,8 +1,8 @@
 import type { Deflate } from '../../port.ts';
-import type { ChannelCount, IndexedRaster, StraightRaster } from '../../raster/raster.ts';
+import type { ChannelCount, Codes, IndexedRaster, StraightRaster } from '../../raster/raster.ts';
 import { type Compression, chooseCompression, compressions } from '../compression.ts';
 import { crc32 } from '../crc.ts';
-import { newAdaptiveFilter } from './filter.ts';
+import { plainFilters, type RowFilters } from './filters.ts';
 
 /** A PNG file of the raster: gray, gray and alpha, RGB or RGBA of 8 or 16 bits, or indexed with the palette's order, the
  *  tRNS length and the bits of an index kept. Not interlaced. Equal rasters give equal bytes for an equal deflate.
@@ -11,11 +11,16 @@ import { newAdaptiveFilter } from './filter.ts';
  *  and an untagged PNG is shown as sRGB; a tag on a normal or a roughness map would be false.
  *
  *  Throws RangeError when codes do not fit the extent or an index leaves the palette. [PNG3] */
-export async function encodePng(raster: StraightRaster | IndexedRaster, deflate: Deflate): Promise<Uint8Array> {
+export async function encodePng(
+  raster: StraightRaster | IndexedRaster,
+  deflate: Deflate,
+  filters: RowFilters = plainFilters,
+): Promise<Uint8Array> {
   expectFit(raster);
   const compression = chooseCompression(raster);
   const stream: Uint8Array[] = [];
-  for await (const piece of deflate(filteredRows(raster, compression), compressions[compression])) stream.push(piece);
+  const rows = filteredRows(raster, compression, filters);
+  for await (const piece of deflate(rows, compressions[compression])) stream.push(piece);
   return layChunks(headChunks(raster), stream);
 }
 
@@ -43,46 +48,46 @@ function expectFit(raster: StraightRaster | IndexedRaster): void {
 }
 
 /** Rows behind their filter's number. One piece a row, valid until the next is asked for, so that no second image is held. */
-function filteredRows(raster: StraightRaster | IndexedRaster, compression: Compression): Iterable<Uint8Array> {
+function filteredRows(
+  raster: StraightRaster | IndexedRaster,
+  compression: Compression,
+  filters: RowFilters,
+): Iterable<Uint8Array> {
   if (raster.kind === 'indexed') return packedRows(raster);
-  return compression === 'labels' ? plainRows(raster) : adaptiveRows(raster);
+  return compression === 'labels' ? plainRows(raster) : adaptiveRows(raster, filters);
 }
 
-function* adaptiveRows(raster: StraightRaster): Iterable<Uint8Array> {
-  const { height } = raster.extent;
-  const texelBytes = raster.channels * (raster.depth / 8);
-  const rowBytes = raster.extent.width * texelBytes;
-  const filter = newAdaptiveFilter(rowBytes, texelBytes);
-  let above = new Uint8Array(rowBytes);
-  let row = new Uint8Array(rowBytes);
-  for (let y = 0; y < height; y++) {
-    copyRow(raster, y, row);
-    yield filter(row, above);
-    [above, row] = [row, above];
+function* adaptiveRows(raster: StraightRaster, filters: RowFilters): Iterable<Uint8Array> {
+  const { extent, channels, codes, depth } = raster;
+  const texelBytes = channels * (depth / 8);
+  const writer = filters.openWriter(texelBytes, extent.width * texelBytes);
+  const rowCodes = extent.width * channels;
+  try {
+    for (let y = 0; y < extent.height; y++) {
+      const row = codes.subarray(y * rowCodes, (y + 1) * rowCodes);
+      writer.row.set(depth === 8 ? row : bytesOf(row));
+      if (depth === 16 && IS_LITTLE_ENDIAN) writer.swap();
+      yield writer.write();
+    }
+  } finally {
+    writer.close();
   }
 }
 
-/** Filter 0: differences of colors that are names would only spoil the matches. [PNG3, "Filter selection"] */
-function* plainRows(raster: StraightRaster): Iterable<Uint8Array> {
-  const out = new Uint8Array(1 + raster.extent.width * raster.channels * (raster.depth / 8));
-  for (let y = 0; y < raster.extent.height; y++) {
-    copyRow(raster, y, out.subarray(1));
+function bytesOf(codes: Codes): Uint8Array {
+  return new Uint8Array(codes.buffer, codes.byteOffset, codes.byteLength);
+}
+
+const IS_LITTLE_ENDIAN = new Uint8Array(Uint16Array.of(1).buffer)[0] === 1;
+
+/** Filter 0: differences of colors that are names would only spoil the matches, and few colors have 8 bits.
+ *  [PNG3, "Filter selection"] */
+function* plainRows({ extent, channels, codes }: StraightRaster): Iterable<Uint8Array> {
+  const rowBytes = extent.width * channels;
+  const out = new Uint8Array(1 + rowBytes);
+  for (let y = 0; y < extent.height; y++) {
+    out.set(codes.subarray(y * rowBytes, (y + 1) * rowBytes), 1);
     yield out;
-  }
-}
-
-/** Row `y` as PNG orders its bytes: 16-bit codes have the high byte first. */
-function copyRow(raster: StraightRaster, y: number, out: Uint8Array): void {
-  const { codes, channels, depth } = raster;
-  const rowCodes = raster.extent.width * channels;
-  const row = codes.subarray(y * rowCodes, (y + 1) * rowCodes);
-  if (depth === 8) {
-    out.set(row);
-    return;
-  }
-  for (let at = 0; at < rowCodes; at++) {
-    out[2 * at] = row[at] >>> 8;
-    out[2 * at + 1] = row[at];
   }
 }
 

@@ -21,6 +21,11 @@ export function rowFormat(structure: Pick<PngStructure, 'header' | 'transparentC
   return { rowChannels, depth: header.bitDepth === 16 ? 16 : 8 };
 }
 
+/** Whether the bytes of a line are the codes already. */
+export function isExpanded({ header, transparentColor }: PngStructure): boolean {
+  return header.bitDepth === 8 && header.colorType !== 3 && transparentColor === null;
+}
+
 /** Chooses the expansion once for all rows. */
 export function expansionOf(structure: PngStructure): Expand {
   const { header, transparentColor } = structure;

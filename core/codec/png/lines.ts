@@ -1,7 +1,8 @@
 import { InflateError } from '../../port.ts';
 import { refuse } from '../../problem.ts';
+import type { FilterReader, RowFilters } from './filters.ts';
 import { type Layout, type Pass, rowByteCount } from './layout.ts';
-import { LAST_FILTER, unfilterRow } from './unfilter.ts';
+import { LAST_FILTER } from './unfilter.ts';
 
 /** One unfiltered row of a pass; `row` counts within it. The view is valid until the next line is asked for. */
 export interface Line {
@@ -12,10 +13,16 @@ export interface Line {
 
 /** Cuts inflated image data into lines and undoes their filters, holding two lines. Throws Refusal where the data is
  *  damaged, shorter than the layout or longer. */
-export async function* readLines(inflated: AsyncIterable<Uint8Array>, layout: Layout): AsyncGenerator<Line> {
+export async function* readLines(
+  inflated: AsyncIterable<Uint8Array>,
+  layout: Layout,
+  filters: RowFilters,
+): AsyncGenerator<Line> {
+  const longest = Math.max(...layout.passes.map(({ extent }) => rowByteCount(extent.width, layout.texelBits)));
+  const reader = filters.openReader(layout.filterStep, longest);
   let received = 0;
   try {
-    const cutter = new Cutter(layout);
+    const cutter = new Cutter(layout, reader);
     for await (const piece of inflated) {
       received += piece.length;
       for (let taken = 0; taken < piece.length; ) {
@@ -28,26 +35,24 @@ export async function* readLines(inflated: AsyncIterable<Uint8Array>, layout: La
   } catch (error) {
     if (error instanceof InflateError) refuseFault(error, received, layout.byteCount);
     throw error;
+  } finally {
+    reader.close();
   }
   if (received < layout.byteCount) refuse('png-truncated', { found: received, expected: layout.byteCount });
 }
 
-/** Fills one line after the other. A line buffer is `filterStep` bytes, the last of which takes the filter byte, and then
- *  the row; once the filter is known all of the front is zero, which is what lies left of the first texel. */
+/** Fills one line after the other. The byte before a row takes its filter's number. */
 class Cutter {
   readonly #layout: Layout;
+  readonly #reader: FilterReader;
   #passIndex = 0;
   #row = 0;
-  #current: Uint8Array;
-  #above: Uint8Array;
   #filled: number;
   #end: number;
 
-  constructor(layout: Layout) {
-    const longest = Math.max(...layout.passes.map(({ extent }) => rowByteCount(extent.width, layout.texelBits)));
+  constructor(layout: Layout, reader: FilterReader) {
     this.#layout = layout;
-    this.#current = new Uint8Array(layout.filterStep + longest);
-    this.#above = new Uint8Array(layout.filterStep + longest);
+    this.#reader = reader;
     this.#filled = layout.filterStep - 1;
     this.#end = layout.filterStep + rowByteCount(layout.passes[0].extent.width, layout.texelBits);
   }
@@ -59,7 +64,7 @@ class Cutter {
   /** Takes what the current line lacks from `piece`, from `start` on, and gives how many bytes that were. */
   take(piece: Uint8Array, start: number): number {
     const count = Math.min(this.#end - this.#filled, piece.length - start);
-    this.#current.set(piece.subarray(start, start + count), this.#filled);
+    this.#reader.row.set(piece.subarray(start, start + count), this.#filled);
     this.#filled += count;
     return count;
   }
@@ -69,26 +74,25 @@ class Cutter {
     if (this.#filled < this.#end) return null;
     const step = this.#layout.filterStep;
     const pass = this.#layout.passes[this.#passIndex];
-    const [row, current, above, end] = [this.#row, this.#current, this.#above, this.#end];
-    const filter = current[step - 1];
+    const [row, end] = [this.#row, this.#end];
+    const line = this.#reader.row;
+    const filter = line[step - 1];
     if (filter > LAST_FILTER) refuse('png-filter', { row: pass.y + row * pass.dy, found: filter });
-    current[step - 1] = 0;
-    unfilterRow(filter, current, above, step, end);
+    this.#reader.undo(filter, end);
     this.#advance();
-    return { pass, row, bytes: current.subarray(step, end) };
+    return { pass, row, bytes: line.subarray(step, end) };
   }
 
   #advance(): void {
     const { passes, filterStep, texelBits } = this.#layout;
-    [this.#current, this.#above] = [this.#above, this.#current];
+    this.#reader.advance();
     this.#filled = filterStep - 1;
     this.#row += 1;
     if (this.#row < passes[this.#passIndex].extent.height) return;
     this.#row = 0;
     this.#passIndex += 1;
     if (this.finished) return;
-    // The first row of a pass has none above it: zeros. `current` is overwritten, `above` is still the caller's line.
-    this.#above = new Uint8Array(this.#above.length);
+    this.#reader.restart();
     this.#end = filterStep + rowByteCount(passes[this.#passIndex].extent.width, texelBits);
   }
 }

@@ -2,15 +2,16 @@ import type { Inflate } from '../../port.ts';
 import { refuse } from '../../problem.ts';
 import { newCodes } from '../../raster/raster.ts';
 import type { ImageSource, SourceHeader, SourceRow } from '../source.ts';
-import { expansionOf, rowFormat } from './expand.ts';
+import { expansionOf, isExpanded, rowFormat } from './expand.ts';
+import { plainFilters, type RowFilters } from './filters.ts';
 import { type Layout, layoutOf, rowByteCount } from './layout.ts';
-import { readLines } from './lines.ts';
+import { type Line, readLines } from './lines.ts';
 import { type PngStructure, readStructure } from './structure.ts';
 
 /** A PNG whose chunks and header have been checked; its rows inflate as they are asked for. `bytes` is viewed, not copied,
  *  and must not change. Throws Refusal, without a path.
  *  [PNG3: Portable Network Graphics (PNG) Specification, Third Edition, W3C Recommendation, 24 June 2025] */
-export function openPng(bytes: Uint8Array, inflate: Inflate): ImageSource {
+export function openPng(bytes: Uint8Array, inflate: Inflate, filters: RowFilters = plainFilters): ImageSource {
   const structure = readStructure(bytes);
   const layout = layoutOf(structure.header);
   checkPromise(structure, layout);
@@ -18,7 +19,10 @@ export function openPng(bytes: Uint8Array, inflate: Inflate): ImageSource {
   return {
     header: pngSourceHeader(structure),
     decodeBytes: interlaced ? rasterBytes(structure) : lineBytes(layout),
-    rows: () => (interlaced ? interlacedRows : streamedRows)(structure, layout, inflate),
+    rows() {
+      const lines = readLines(inflate(structure.imageData, layout.byteCount), layout, filters);
+      return interlaced ? interlacedRows(structure, lines) : streamedRows(structure, lines);
+    },
   };
 }
 
@@ -49,26 +53,30 @@ function checkPromise(structure: PngStructure, layout: Layout): void {
   if (found * DEFLATE_RATIO < layout.byteCount) refuse('png-promise', { expected: layout.byteCount, found });
 }
 
-async function* streamedRows(structure: PngStructure, layout: Layout, inflate: Inflate): AsyncGenerator<SourceRow> {
+async function* streamedRows(structure: PngStructure, lines: AsyncIterable<Line>): AsyncGenerator<SourceRow> {
   const { width } = structure.header.extent;
   const { rowChannels, depth } = rowFormat(structure);
   const expand = expansionOf(structure);
+  if (isExpanded(structure)) {
+    for await (const line of lines) yield { y: line.row, codes: line.bytes };
+    return;
+  }
   const codes = newCodes(depth, width * rowChannels);
-  for await (const line of readLines(inflate(structure.imageData, layout.byteCount), layout)) {
+  for await (const line of lines) {
     expand(line, width, codes);
     yield { y: line.row, codes };
   }
 }
 
 /** The last pass completes the image, so all of it is held before the first row is given. */
-async function* interlacedRows(structure: PngStructure, layout: Layout, inflate: Inflate): AsyncGenerator<SourceRow> {
+async function* interlacedRows(structure: PngStructure, lines: AsyncIterable<Line>): AsyncGenerator<SourceRow> {
   const { width, height } = structure.header.extent;
   const { rowChannels, depth } = rowFormat(structure);
   const expand = expansionOf(structure);
   const rowLength = width * rowChannels;
   const raster = newCodes(depth, rowLength * height);
   const codes = newCodes(depth, rowLength);
-  for await (const line of readLines(inflate(structure.imageData, layout.byteCount), layout)) {
+  for await (const line of lines) {
     const { pass, row } = line;
     expand(line, pass.extent.width, codes);
     let to = (pass.y + row * pass.dy) * rowLength + pass.x * rowChannels;
