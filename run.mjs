@@ -26,6 +26,15 @@ const KERNEL_FLAGS = [
   ...['--enable', 'simd', '--enable', 'bulk-memory'],
 ];
 
+/** What the benchmark runs: the command line with its worker, itself, and what it runs in processes of their own. */
+const BENCH_ENTRIES = [
+  'extension/cli/main.ts',
+  'extension/node/pool.worker.ts',
+  'test/bench/main.ts',
+  'test/bench/cold-start.ts',
+  'test/bench/peak.ts',
+];
+
 /** Rooms with a tsconfig of their own. */
 const ROOMS = [
   'core',
@@ -40,7 +49,7 @@ const ROOMS = [
   'test',
 ];
 
-const COMMANDS = { start, test, build, types, lint, mutate, paint, schema, kernels, pack, page, host };
+const COMMANDS = { start, test, build, types, lint, mutate, paint, schema, kernels, pack, page, host, bench };
 
 const nodeVersion = process.versions.node;
 if (Number(nodeVersion.split('.')[0]) < OLDEST_NODE_MAJOR) {
@@ -161,6 +170,31 @@ async function host(rest) {
   await install('test');
   await bundle();
   return countTests('test/host/vitest.config.ts', rest);
+}
+
+/** Measures what README and test/bench/RESULTS.md say of speed; `--smoke` only sees that all of it runs. */
+async function bench(rest) {
+  await install('.');
+  await install('test');
+  await kernels();
+  const { copyFileSync, mkdirSync, rmSync } = await import('node:fs');
+  // Bundles of its own: others may be reading those that ship.
+  const folder = rest.includes('--smoke') ? `dist/bench/smoke.${process.pid}` : 'dist/bench/whole';
+  mkdirSync(folder, { recursive: true });
+  try {
+    for (const entry of BENCH_ENTRIES) {
+      const file = `${folder}/${entry.slice(entry.lastIndexOf('/') + 1).replace(/\.ts$/, '.js')}`;
+      await bundleOne({
+        entry,
+        file: file.replace(/main\.js$/, entry.includes('cli') ? 'cli.js' : 'main.js'),
+        head: '',
+      });
+    }
+    copyFileSync(KERNELS, `${folder}/engine.wasm`);
+    return await run([`${folder}/main.js`, ...rest]);
+  } finally {
+    rmSync(folder, { recursive: true, force: true });
+  }
 }
 
 /** Runs a set of tests; the last line counts them. */
