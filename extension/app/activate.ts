@@ -6,6 +6,7 @@ import type { Platform } from './platform.ts';
 import { registerProofEditor } from './proof/editor.ts';
 import { watchSettings } from './settings/diagnostics.ts';
 import { serveExplanations } from './settings/explain.ts';
+import { serveSchema } from './settings/schema.ts';
 import { provideTasks } from './tasks/provider.ts';
 
 /** Everything the extension does in an editor, on the ports of whichever host runs it. */
@@ -16,6 +17,7 @@ export function activateApp(context: vscode.ExtensionContext, platform: Platform
     log,
     desk,
     watchSettings(),
+    serveSchema(),
     serveExplanations(platform),
     registerProofEditor(context.extensionUri, platform, desk, log),
     registerCommands(platform, desk, log),

@@ -23,7 +23,7 @@ describe('in the extension host', () => {
     test('tests ran, each that there is', () => {
       expect(outcomes.map((each) => each.name)).toEqual(namesOfTests('suite'));
     });
-    test.each(outcomes)('$name', ({ failure }) => {
+    test.each(outcomes.map(({ name, failure }) => [name, failure] as const))('%s', (_, failure) => {
       if (failure !== null) throw new Error(failure);
     });
   }

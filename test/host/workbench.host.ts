@@ -61,7 +61,6 @@ describe.skipIf(isLeftOut)('the packed extension in a workbench', () => {
       'dist/page/page.js',
       'dist/page/worker.js',
       'dist/pool.worker.js',
-      'dist/sizeproof.schema.json',
       'icon.png',
       'package.json',
       'package.nls.json',

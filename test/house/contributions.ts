@@ -1,9 +1,7 @@
 import { mkdirSync, readdirSync, readFileSync, writeFileSync } from 'node:fs';
-import { openSchema } from '../../core/treatment/open-schema.ts';
 import { textBundle, textsIn } from './texts.ts';
 
-// Writes what package.json refers to and code makes: the schema that editors complete the settings file by, and the texts that
-// translators start from. The build runs this from the top.
+// Writes what package.json refers to and code makes: the texts that translators start from. The build runs this from the top.
 const sources = ['extension/app', 'webview/page'].flatMap((room) =>
   readdirSync(room, { recursive: true, encoding: 'utf8' })
     .filter((name) => name.endsWith('.ts'))
@@ -11,5 +9,4 @@ const sources = ['extension/app', 'webview/page'].flatMap((room) =>
 );
 
 mkdirSync('dist/l10n', { recursive: true });
-writeFileSync('dist/sizeproof.schema.json', `${JSON.stringify(openSchema())}\n`);
 writeFileSync('dist/l10n/bundle.l10n.json', `${JSON.stringify(textBundle(sources.flatMap(textsIn)), null, 2)}\n`);
