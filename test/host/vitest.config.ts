@@ -1,4 +1,5 @@
 import { defineConfig } from 'vitest/config';
+import { choice } from './skip.ts';
 
 // Tests in a real host: one at a time, since each has a browser and a server to itself.
 export default defineConfig({
@@ -6,6 +7,7 @@ export default defineConfig({
     root: import.meta.dirname,
     include: ['**/*.host.ts'],
     pool: 'forks',
+    ...choice,
     fileParallelism: false,
     testTimeout: 240_000,
     hookTimeout: 240_000,

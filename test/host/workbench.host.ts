@@ -5,7 +5,6 @@ import { afterAll, afterEach, beforeAll, describe, expect, test } from 'vitest';
 import { top } from '../house/tree.ts';
 import { launchBrowser } from './browser.ts';
 import { type Host, startHost } from './server.ts';
-import { isLeftOut } from './skip.ts';
 import { packVsix } from './vsix.ts';
 import { explorerRow, newPage, openWorkbench, pickFromExplorer, runCommand, toast, webviewOf } from './workbench.ts';
 import { makeWorkspace } from './workspace.ts';
@@ -16,7 +15,7 @@ const SHOTS = join(top, 'dist', 'test', 'host');
 /** What a user downloads, in bytes. */
 const MOST_BYTES = 2_000_000;
 
-describe.skipIf(isLeftOut)('the packed extension in a workbench', () => {
+describe('the packed extension in a workbench', () => {
   let host: Host;
   let browser: Browser;
   let page: Page;

@@ -196,7 +196,7 @@ test('keys move the sight, the cursor, the zoom and the divider; what is kept is
   await print.focus();
   await page.keyboard.press('ArrowRight');
   await page.keyboard.press('Shift+ArrowDown');
-  await expect.poll(() => page.getByRole('region', { name: 'Texel' }).textContent()).toMatch(/17, 24/);
+  await expect.poll(() => page.getByRole('region', { name: 'Texel', exact: true }).textContent()).toMatch(/17, 24/);
   await page.keyboard.press('1');
   await expect.poll(() => page.locator('view-bar .zoom').textContent()).toBe('1:1');
   const divider = page.getByRole('slider', { name: 'Divider' }).first();
