@@ -54,9 +54,10 @@ export async function startHost({ vsix, settings = {}, env: more = {}, trust }: 
     mkdirSync(join(folder, name), { recursive: true });
     return join(folder, name);
   };
-  const [data, extensions, temporary] = ['data', 'exts', 't'].map(made);
+  const [data, extensions, temporary, cache] = ['data', 'exts', 't', 'cache'].map(made);
   writeFileSync(join(made('data/User'), 'settings.json'), JSON.stringify({ ...QUIET_SETTINGS, ...settings }));
-  const env = { ...cleanEnvironment(), ...more, TMPDIR: temporary };
+  // The server names its machine in a cache folder; nothing of it is to stay.
+  const env = { ...cleanEnvironment(), TMPDIR: temporary, XDG_CACHE_HOME: cache, ...more };
   const folders = ['--server-data-dir', data, '--user-data-dir', data, '--extensions-dir', extensions];
   const common = [server, ...folders, '--accept-server-license-terms'];
   if (vsix !== undefined) await run(process.execPath, [...common, '--install-extension', vsix, '--force'], folder, env);
