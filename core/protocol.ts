@@ -1,20 +1,29 @@
 // Every message between the extension host and a proof's page. Types and their checks only; no file in core imports this.
 // The page asks by HostCalls and gets a Reply; the host tells by HostEvent. Every message carries the protocol's version.
 
+import type { SourceHeader } from './codec/source.ts';
 import type { Problem } from './problem.ts';
+import type { BuiltImage, Opening } from './proof/opening.ts';
+import type { Picture, PrintStats } from './proof/want.ts';
 import type { Origin, Treatment } from './treatment/treatment.ts';
 
 /** Raised when a message changes its shape; a page of another version is told to reload. */
-export const PROTOCOL = 1;
+export const PROTOCOL = 2;
 
 /** What the page asks the host for. A call's name fixes the shape of its reply. */
 export interface HostCalls {
   /** Handshake. Asked again after a reload and when the page becomes visible. */
   open(): OpenReply;
+  /** The settings' own print where the page opens, made by the host while the file's bytes are still to come: the image asked
+   *  for, or a coarser level where that has more than `FIRST_PRINT_BYTES` of codes. Null where the host makes none. It says
+   *  nothing of hashes: the page judges by the codes themselves. */
+  firstPrint(at: Opening): { readonly print: FirstPrint | null };
   /** The source file's bytes, and those of its roughness map where the treatment names one. */
   bytes(): { readonly image: ArrayBuffer; readonly roughness: ArrayBuffer | null };
   /** Builds this texture. Refused where the workspace is not trusted or has no disk. */
   build(): { readonly built: number; readonly unchanged: number; readonly failed: number };
+  /** Whether the build's pixels of an image have this hash; null where nothing was built. The build's own hash stays here. */
+  isBuilt(print: PrintHash): { readonly equal: boolean | null };
   /** Puts settings into the settings file, in an editor beside the proof, unsaved. */
   adopt(change: AdoptChange): { readonly path: string };
   /** Shows the settings file at the place of a key, or of the treatment that applies. */
@@ -96,17 +105,29 @@ export interface SettingsReply {
 
 export type BuiltState =
   | { readonly kind: 'not-built' }
-  | { readonly kind: 'built'; readonly images: readonly BuiltImage[] }
-  | { readonly kind: 'stale'; readonly moved: readonly string[]; readonly images: readonly BuiltImage[] }
+  | { readonly kind: 'built' }
+  | { readonly kind: 'stale'; readonly moved: readonly string[] }
   /** Nobody can say here: no disk, or no hash yet. */
   | { readonly kind: 'unknown' };
 
-/** What the manifest says of one image: enough to compare a print with it. */
-export interface BuiltImage {
+/** A print that a page made: its image, and the hash of its pixels. */
+export interface PrintHash {
   readonly level: number | null;
   readonly target: string | null;
   readonly pixels: string;
 }
+
+/** What the host's worker made of the file. */
+export interface FirstPrint {
+  readonly header: SourceHeader;
+  readonly treatment: Treatment;
+  readonly image: BuiltImage;
+  readonly picture: Picture;
+  readonly stats: PrintStats;
+}
+
+/** Most bytes of codes in a first print: moving more to a page takes longer than making it there. */
+export const FIRST_PRINT_BYTES = 2 ** 20;
 
 /** What can be done here; a text says why not, and null leaves it out: an exported page has no host to ask. */
 export interface Abilities {

@@ -2,6 +2,7 @@ import { randomBytes } from 'node:crypto';
 import { pathToFileURL } from 'node:url';
 import * as vscode from 'vscode';
 import { activateApp } from './app/activate.ts';
+import { startBenchWorker } from './node/bench-worker.ts';
 import { openDoor } from './node/door.ts';
 import { nodePorts } from './node/ports.ts';
 
@@ -11,6 +12,7 @@ export function activate(context: vscode.ExtensionContext): void {
   activateApp(context, {
     ports: nodePorts,
     disk: openDoor(pathToFileURL(worker.fsPath)),
+    startBench: () => startBenchWorker(pathToFileURL(worker.fsPath)),
     newNonce: () => randomBytes(16).toString('base64'),
     encodeUtf8: (text) => new TextEncoder().encode(text),
     after(milliseconds, act) {

@@ -1,17 +1,28 @@
 import type { Manifest } from '../../core/manifest/manifest.ts';
 import type { FileTree, Ports } from '../../core/port.ts';
 import type { Problem } from '../../core/problem.ts';
+import type { FromBench, ToBench } from '../../core/proof/want.ts';
 
 /** What the entry hands to the app: everything that depends on where the extension host runs. */
 export interface Platform {
   readonly ports: Ports;
   /** Where textures lie on a disk; null in a host that has none. */
   readonly disk: DiskDoor | null;
+  /** Starts a worker that makes prints as a page's own does; null where the host has none. */
+  readonly startBench: (() => BenchWorker) | null;
   /** A text that nobody can guess, for the page's policy. */
   newNonce(): string;
   encodeUtf8(text: string): Uint8Array;
   /** Calls once, after a while; disposing calls it off. */
   after(milliseconds: number, act: () => void): { dispose(): void };
+}
+
+/** A worker behind core's Desk. */
+export interface BenchWorker {
+  post(message: ToBench): void;
+  /** Calls back for each message, and once with null where the worker ended by itself. */
+  listen(take: (message: FromBench | null) => void): void;
+  stop(): void;
 }
 
 /** The engine's work on a disk. Paths are absolute and "/"-separated. */

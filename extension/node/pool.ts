@@ -45,7 +45,7 @@ export function runInWorkers({ workerUrl, workers, memoryBytes, cancel }: PoolOp
           done(index, { kind: 'cancelled' });
           continue;
         }
-        thread ??= startThread(workerUrl, { cancel, kernels });
+        thread ??= startThread(workerUrl, { kind: 'build', cancel, kernels });
         const { outcome, heldBytes } = await thread.run(jobs[index], gate);
         done(index, unsaid === null ? outcome : warned(outcome, unsaid));
         if (outcome.kind === 'built') unsaid = null;
@@ -70,6 +70,7 @@ export function defaultWorkers(): number {
 
 /** What a worker is given when it starts. */
 export interface WorkerData {
+  readonly kind: 'build';
   readonly cancel: SharedArrayBuffer;
   readonly kernels: WebAssembly.Module | null;
 }

@@ -1,8 +1,15 @@
 import { parentPort, workerData } from 'node:worker_threads';
+import type { BenchData } from './bench-worker.ts';
 import type { WorkerData } from './pool.ts';
 import { serve } from './serve.ts';
+import { serveBench } from './serve-bench.ts';
 
-const given = workerData as WorkerData;
-const cancel = new Int32Array(given.cancel);
+const given = workerData as WorkerData | BenchData;
 
-if (parentPort !== null) serve(parentPort, given.kernels, () => Atomics.load(cancel, 0) === 1);
+if (parentPort !== null) {
+  if (given.kind === 'bench') serveBench(parentPort, new URL(given.kernels));
+  else {
+    const cancel = new Int32Array(given.cancel);
+    serve(parentPort, given.kernels, () => Atomics.load(cancel, 0) === 1);
+  }
+}

@@ -9,7 +9,10 @@ const ask = (call: string, question: unknown = null) => ({ protocol: PROTOCOL, k
 
 const good: readonly (readonly [call: string, question: unknown])[] = [
   ['open', null],
+  ['firstPrint', { level: null, target: null }],
+  ['firstPrint', { level: 3, target: null }],
   ['bytes', null],
+  ['isBuilt', { level: null, target: '2x', pixels: '0'.repeat(64) }],
   ['build', null],
   ['reveal', null],
   ['adopt', { scope: 'file', settings: { kernel: { name: 'kaiser', alpha: 3 }, fill: null } }],
@@ -39,6 +42,8 @@ describe('what a page may not ask', () => {
     ['a broken id', { ...ask('open'), id: 0.5 }],
     ['a question where none is taken', ask('bytes', {})],
     ['a stranger among the keys', { ...ask('open'), more: 1 }],
+    ['a level that no texture has', ask('firstPrint', { level: 16, target: null })],
+    ['a hash that is none', ask('isBuilt', { level: 0, target: null, pixels: 'f00' })],
     ['another scope', ask('adopt', { scope: 'all', settings: {} })],
     ['a list of settings', ask('adopt', { scope: 'file', settings: [] })],
     ['settings in a ring', ask('adopt', { scope: 'file', settings: ring })],

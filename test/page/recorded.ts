@@ -1,9 +1,15 @@
 import { readFileSync } from 'node:fs';
 import { join } from 'node:path';
 import type { Problem } from '../../core/problem.ts';
-import { type BuiltState, type OpenReply, PROTOCOL } from '../../core/protocol.ts';
+import { ProofBench } from '../../core/proof/bench.ts';
+import { firstImage, type Opening } from '../../core/proof/opening.ts';
+import type { Print } from '../../core/proof/want.ts';
+import { type BuiltState, FIRST_PRINT_BYTES, type FirstPrint, type OpenReply, PROTOCOL } from '../../core/protocol.ts';
+import type { Codes } from '../../core/raster/raster.ts';
 import { resolveTreatment } from '../../core/treatment/resolve.ts';
 import { parseSettings } from '../../core/treatment/settings.ts';
+import { newHash } from '../../extension/node/hash.ts';
+import { inflate } from '../../extension/node/inflate.ts';
 import { top } from '../house/tree.ts';
 
 /** What a host would answer: a recording that a page is played with. */
@@ -14,6 +20,14 @@ export interface Recording {
   readonly bytesProblem?: Problem;
   /** What the page kept before. */
   readonly kept?: unknown;
+  /** The host's first print; without it the host makes none. */
+  readonly first?: FirstPrint;
+  /** Whether the file is held back until `window.release()`. */
+  readonly held?: 'held';
+  /** What the host says of prints and the build. */
+  readonly isBuilt?: boolean;
+  /** Revision that the file's bytes come with; the rest is of revision 1. */
+  readonly bytesRevision?: number;
 }
 
 const demo = join(top, 'test/demo');
@@ -47,7 +61,7 @@ export function record(bytes: Uint8Array, path: string, rest: Partial<OpenReply>
   return { open, bytes, ...(kept !== undefined && { kept }) };
 }
 
-export const stale: BuiltState = { kind: 'stale', moved: ['settings'], images: [] };
+export const stale: BuiltState = { kind: 'stale', moved: ['settings'] };
 
 /** Runs in the page before its script: stands in for VS Code and answers from the recording. Every request is kept in
  *  `window.asked`. */
@@ -57,6 +71,10 @@ export function playRecording(data: {
   readonly bytes: string | null;
   readonly bytesProblem: unknown;
   readonly kept: unknown;
+  readonly first: { readonly print: FirstPrint; readonly codes: string; readonly palette: string } | null;
+  readonly held: boolean;
+  readonly isBuilt: boolean | null;
+  readonly bytesRevision: number;
 }): void {
   const stage = window as unknown as {
     acquireVsCodeApi: () => unknown;
@@ -64,7 +82,13 @@ export function playRecording(data: {
     kept: unknown;
     violations: string[];
     longTasks: number[];
+    release: () => void;
   };
+  const unpacked = (text: string) => Uint8Array.from(atob(text), (letter) => letter.charCodeAt(0));
+  const released = new Promise<void>((resolve) => {
+    stage.release = resolve;
+    if (!data.held) resolve();
+  });
   stage.asked = [];
   stage.kept = data.kept ?? undefined;
   stage.violations = [];
@@ -81,9 +105,22 @@ export function playRecording(data: {
         return data.open !== null && 'problem' in (data.open as object) ? data.open : { ok: data.open };
       case 'bytes': {
         if (data.bytes === null) return { problem: data.bytesProblem };
-        const image = Uint8Array.from(atob(data.bytes), (letter) => letter.charCodeAt(0)).buffer;
-        return { ok: { image, roughness: null } };
+        return { ok: { image: unpacked(data.bytes).buffer, roughness: null } };
       }
+      case 'firstPrint': {
+        if (data.first === null) return { ok: { print: null } };
+        const { print, codes, palette } = data.first;
+        const { buffer } = unpacked(codes);
+        const picture = {
+          ...print.picture,
+          codes: print.picture.depth === 8 ? new Uint8Array(buffer) : new Uint16Array(buffer),
+        };
+        const { indexed } = print.header;
+        const header = { ...print.header, indexed: indexed && { ...indexed, palette: unpacked(palette) } };
+        return { ok: { print: { ...print, header, picture } } };
+      }
+      case 'isBuilt':
+        return { ok: { equal: data.isBuilt } };
       case 'build':
         return { ok: { built: 1, unchanged: 0, failed: 0 } };
       case 'adopt':
@@ -99,10 +136,11 @@ export function playRecording(data: {
         protocol: data.protocol,
         kind: 'reply',
         id: request.id,
-        revision: 1,
+        revision: request.call === 'bytes' ? data.bytesRevision : 1,
         reply: answer(request.call),
       };
-      setTimeout(() => window.postMessage(reply, '*'), 0);
+      const ready = request.call === 'bytes' ? released : Promise.resolve();
+      void ready.then(() => setTimeout(() => window.postMessage(reply, '*'), 0));
     },
     getState: () => stage.kept,
     setState: (state: unknown) => {
@@ -118,5 +156,28 @@ export function playData(recording: Recording): Parameters<typeof playRecording>
     bytes: recording.bytesProblem === undefined ? Buffer.from(recording.bytes).toString('base64') : null,
     bytesProblem: recording.bytesProblem ?? null,
     kept: recording.kept ?? null,
+    first: recording.first === undefined ? null : packFirst(recording.first),
+    held: recording.held !== undefined,
+    isBuilt: recording.isBuilt ?? null,
+    bytesRevision: recording.bytesRevision ?? 1,
   };
+}
+
+function packFirst(print: FirstPrint) {
+  const packed = ({ buffer, byteOffset, byteLength }: Codes) =>
+    Buffer.from(buffer as ArrayBuffer, byteOffset, byteLength).toString('base64');
+  const { indexed } = print.header;
+  return { print, codes: packed(print.picture.codes), palette: indexed === null ? '' : packed(indexed.palette) };
+}
+
+/** What the host's worker would make first, by the host's own code. */
+export async function firstPrintOf({ open, bytes }: Recording, opening: Opening): Promise<FirstPrint> {
+  if ('problem' in open) throw new Error('Expected a recording that opens');
+  const pause = async () => undefined;
+  const bench = await ProofBench.open(bytes, open.name, { inflate, newHash, pause });
+  const { header } = bench;
+  const treatment = open.settings.treatment!;
+  const image = firstImage(header, treatment, opening, FIRST_PRINT_BYTES);
+  const { picture, stats } = (await bench.answer({ kind: 'print', treatment, image }, { cancelled: false })) as Print;
+  return { header, treatment, image, picture, stats };
 }

@@ -46,6 +46,10 @@ async function answer(
       if (image === null) return { problem: { code: 'file-empty', severity: 'error', values: {} } };
       return { ok: { image, roughness: await carriedBytes(source, ROUGHNESS_BLOCK) } };
     }
+    case 'firstPrint':
+      return { ok: { print: null } };
+    case 'isBuilt':
+      return { ok: { equal: null } };
     case 'copy':
       await navigator.clipboard.writeText((asked.question as Question<'copy'>).text);
       return { ok: {} };

@@ -11,13 +11,13 @@ import { openSettings } from '../settings/open.ts';
 import { sayProblem, translations } from '../words.ts';
 import { adopt } from './adopt.ts';
 import type { Answers } from './channel.ts';
+import type { ProofDocument } from './document.ts';
 import { type ExportTools, exportProof } from './export.ts';
-import type { TextureFacts } from './facts.ts';
 import { revealOutputs } from './outputs.ts';
 
 /** What the host answers to a proof's page. */
 export function answersFor(
-  texture: TextureFacts,
+  { facts: texture, first }: ProofDocument,
   { platform, desk, pages }: ExportTools & { readonly desk: BuildDesk },
 ): Answers {
   const { uri } = texture;
@@ -36,6 +36,9 @@ export function answersFor(
         remark: null,
       };
     },
+    async firstPrint(at) {
+      return { print: await first.print(at) };
+    },
     async bytes() {
       return { image: await texture.bytes(), roughness: await texture.roughness() };
     },
@@ -44,6 +47,9 @@ export function answersFor(
       if ('problem' in opened) throw new Refusal(opened.problem);
       const report = await desk.build('build', [uri], 'asked');
       return report === null ? { built: 0, unchanged: 0, failed: 0 } : countBuild(report);
+    },
+    async isBuilt(print) {
+      return { equal: await texture.isBuilt(print) };
     },
     adopt: (change) => adopt(uri, change, platform),
     async showSettings({ key }) {

@@ -1,20 +1,25 @@
 import * as vscode from 'vscode';
 import type { Channel } from './channel.ts';
 import type { TextureFacts } from './facts.ts';
+import { FirstPrinter } from './first-print.ts';
 import { type WatchTools, watchTexture } from './watch.ts';
 
 /** One texture that is proofed, however many pages show it. It is watched as long as one does. */
 export class ProofDocument implements vscode.CustomDocument {
   readonly facts: TextureFacts;
+  readonly first: FirstPrinter;
   readonly #pages = new Set<Channel>();
   readonly #watching: vscode.Disposable;
   #revision = 0;
 
   constructor(facts: TextureFacts, tools: WatchTools) {
     this.facts = facts;
+    this.first = new FirstPrinter(facts, tools.platform, tools.report);
+    this.first.begin();
     this.#watching = watchTexture(facts, tools, {
       nextRevision: () => ++this.#revision,
       tell: (event) => {
+        if (event.kind === 'source') this.first.forget();
         for (const page of this.#pages) page.tell(event);
       },
     });
@@ -40,5 +45,6 @@ export class ProofDocument implements vscode.CustomDocument {
 
   dispose(): void {
     this.#watching.dispose();
+    this.first.forget();
   }
 }

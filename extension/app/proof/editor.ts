@@ -27,7 +27,7 @@ export function registerProofEditor(
     resolveCustomEditor(document, panel) {
       const { webview } = panel;
       webview.options = { enableScripts: true, localResourceRoots: [pages] };
-      const answers = answersFor(document.facts, { platform, desk, pages });
+      const answers = answersFor(document, { platform, desk, pages });
       const channel = new Channel(webview, { answers, revision: () => document.revision, report });
       const added = document.addPage(channel);
       panel.onDidDispose(() => added.dispose());

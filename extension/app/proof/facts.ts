@@ -1,6 +1,6 @@
 import * as vscode from 'vscode';
 import { type Problem, Refusal } from '../../../core/problem.ts';
-import type { BuiltState, SettingsReply } from '../../../core/protocol.ts';
+import type { BuiltState, PrintHash, SettingsReply } from '../../../core/protocol.ts';
 import { sourcePath } from '../../../core/treatment/names.ts';
 import { resolvePath } from '../../../core/treatment/path.ts';
 import { isOnDisk, unsavedSettings } from '../files/place.ts';
@@ -67,10 +67,17 @@ export class TextureFacts {
     if (found === null) return { kind: 'unknown' };
     const { manifest, reasons } = found;
     if (manifest === null) return { kind: 'not-built' };
-    const images = [...manifest.levels, ...manifest.targets]
-      .filter((image) => image.use === 'image')
-      .map(({ level, target, pixels }) => ({ level: level ?? null, target: target ?? null, pixels }));
-    return reasons.length === 0 ? { kind: 'built', images } : { kind: 'stale', moved: reasons, images };
+    return reasons.length === 0 ? { kind: 'built' } : { kind: 'stale', moved: reasons };
+  }
+
+  /** Whether the manifest has this hash for an image; null where it has none. */
+  async isBuilt({ level, target, pixels }: PrintHash): Promise<boolean | null> {
+    const manifest = (await this.inspect())?.manifest ?? null;
+    if (manifest === null) return null;
+    const found = [...manifest.levels, ...manifest.targets].find(
+      (image) => image.use === 'image' && (image.level ?? null) === level && (image.target ?? null) === target,
+    );
+    return found === undefined ? null : found.pixels === pixels;
   }
 
   async byteCount(): Promise<number> {

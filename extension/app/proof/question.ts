@@ -1,10 +1,12 @@
 import { choice, either, integer, Misfit, nothing, object, type Shape, text } from '../../../core/manifest/shape.ts';
 import { refuse } from '../../../core/problem.ts';
+import type { Opening } from '../../../core/proof/opening.ts';
 import {
   type AdoptChange,
   type ExportOrder,
   type HostCall,
   PROTOCOL,
+  type PrintHash,
   type Question,
   type Request,
 } from '../../../core/protocol.ts';
@@ -38,13 +40,29 @@ const envelope = object<Omit<Request, 'question'> & { readonly question: unknown
   protocol: integer(PROTOCOL, PROTOCOL),
   kind: choice('ask'),
   id: integer(0, Number.MAX_SAFE_INTEGER),
-  call: choice('open', 'bytes', 'build', 'adopt', 'showSettings', 'copy', 'save', 'reveal', 'export'),
+  call: choice(
+    'open',
+    'firstPrint',
+    'bytes',
+    'build',
+    'isBuilt',
+    'adopt',
+    'showSettings',
+    'copy',
+    'save',
+    'reveal',
+    'export',
+  ),
   // An `optional` of anything would let the key be left out.
   question: anything as never,
 });
 
 /** Characters of a dotted key; the longest has fewer than 40. */
 const key = text(/^[A-Za-z0-9.-]{1,200}$/, 'a dotted key');
+
+/** Images of this texture; a texture has 15 levels at most. */
+const level = either<number | null>(nothing, integer(0, 15));
+const target = either<string | null>(nothing, text(/^[^\p{Cc}]{1,240}$/u, 'the name of a target'));
 
 /** What a page may put on the clipboard: 16 Mi characters. */
 const COPY_LIMIT = 2 ** 24;
@@ -57,8 +75,10 @@ const ADOPT_LIMIT = 2 ** 16;
 
 const questions: { readonly [K in HostCall]: Shape<Question<K>> } = {
   open: nothing,
+  firstPrint: object<Opening>({ level, target }),
   bytes: nothing,
   build: nothing,
+  isBuilt: object<PrintHash>({ level, target, pixels: text(/^[0-9a-f]{64}$/, 'a pixel hash') }),
   adopt: object<AdoptChange>({ scope: choice('file', 'matching'), settings: plainSettings }),
   showSettings: object<{ key: string | null }>({ key: either<string | null>(nothing, key) }),
   copy: object<{ text: string }>({ text: shortText }),

@@ -6,10 +6,11 @@ import type { Picture, Print } from '../../../core/proof/want.ts';
 import type { Treatment } from '../../../core/treatment/treatment.ts';
 import { controls } from '../form/controls.ts';
 import { isProblem } from '../proof/bench-link.ts';
-import { kernelFits, type Model } from '../proof/model.ts';
+import type { Model } from '../proof/model.ts';
 import type { Slot, State } from '../proof/state.ts';
 import { cursorTexel, lineOf } from '../readings/line.ts';
 import { changeWords } from '../treatment/change-words.ts';
+import { unfitFor } from '../treatment/fit.ts';
 import { light, percent } from '../words/figures.ts';
 import { t } from '../words/t.ts';
 import './print-card.ts';
@@ -103,7 +104,7 @@ export class PrintRow extends LitElement {
     if (print !== null) this.#shown.set(slot.id, print.picture);
     const shrinks = seen.lod > 0 || (seen.lod === 0 && 'level' in seen.image);
     const kernel = shrinks ? treatment.kernel.minify : treatment.kernel.magnify;
-    const unfit = slot.kernel === null ? null : kernelFits(slot.kernel, seen.stop, model.base!);
+    const unfit = slot.kernel === null ? null : unfitFor(slot.kernel, seen.stop, model.base!);
     const problem = isProblem(told) ? say(told.problem) : unfit === null ? null : unfitWords(slot.kernel!.name, unfit);
     return {
       slot,
@@ -123,7 +124,7 @@ export class PrintRow extends LitElement {
   #scene(model: Model, slot: Slot, treatment: Treatment, print: Print | null, failed: boolean): Scene {
     const { state } = model;
     const seen = model.seen!;
-    const picture = failed ? null : (print?.picture ?? this.#shown.get(slot.id) ?? null);
+    const picture = failed ? null : (print?.picture ?? this.#shown.get(slot.id) ?? model.takeover.standIn(treatment));
     const own = model.print(model.treatmentOf(state.slots[0])!, seen.image);
     const settings = own === undefined || isProblem(own) ? null : own.picture;
     const source = model.sourcePrint(seen.image)?.print?.picture ?? null;
@@ -236,9 +237,8 @@ function figuresOf(model: Model, treatment: Treatment, print: Print): readonly C
 }
 
 function builtWords(model: Model, print: Print): string | null {
-  const pixels = model.builtPixels(model.seen!.image);
-  if (pixels === null || print.pixels === '') return null;
-  return pixels === print.pixels ? t('equals the build') : t('differs from the build');
+  const equal = model.equalsBuild(model.seen!.image, print.pixels);
+  return equal === null ? null : equal ? t('equals the build') : t('differs from the build');
 }
 
 function unfitWords(kernel: string, action: 'minify' | 'magnify'): string {

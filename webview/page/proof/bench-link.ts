@@ -2,6 +2,7 @@ import type { SourceHeader } from '../../../core/codec/source.ts';
 import type { Problem } from '../../../core/problem.ts';
 import { Shelf } from '../../../core/proof/shelf.ts';
 import type { Answer, Answers, FromBench, ToBench, Want, WantKind } from '../../../core/proof/want.ts';
+import { treatmentText } from './treatment-text.ts';
 
 /** What the worker said to a want; undefined while it has said nothing. */
 export type Told<K extends WantKind> = Answers[K] | { readonly problem: Problem } | undefined;
@@ -17,6 +18,9 @@ export class BenchLink {
   readonly #changed: () => void;
   #revision = 0;
   #sent = '';
+  /** Whether the file that was opened last has been read. */
+  #ready = false;
+  /** Of the last file that was read: another one may be on its way. */
   header: SourceHeader | null = null;
   problem: Problem | null = null;
   /** Why prints are made slowly; null where they are not. */
@@ -38,14 +42,14 @@ export class BenchLink {
     this.#revision++;
     this.#sent = '';
     this.#answers.clear();
-    this.header = null;
+    this.#ready = false;
     this.problem = null;
     this.#post({ kind: 'open', revision: this.#revision, name, bytes }, [bytes]);
   }
 
   /** In the order in which they are needed. What is known is not asked for again. */
   want(wants: readonly Want[]): void {
-    if (this.header === null) return;
+    if (!this.#ready) return;
     const keyed = new Map(wants.map((want) => [keyOf(want), want]));
     const open = [...keyed].filter(([key]) => this.#answers.get(key) === undefined);
     const list = open.map(([key]) => key).join('\n');
@@ -71,6 +75,7 @@ export class BenchLink {
     switch (message.kind) {
       case 'opened':
         this.header = message.header;
+        this.#ready = true;
         this.slow = message.slow;
         break;
       case 'answer':
@@ -88,18 +93,10 @@ export class BenchLink {
 /** Bytes of answers that the page keeps, so that going back is immediate. */
 const ANSWER_BYTES = 160 * 1024 * 1024;
 
-const keys = new WeakMap<object, string>();
-
-/** Treatments are the long part of a want and the same object for long: their text is made once. */
 function keyOf(want: Want): string {
   if (!('treatment' in want)) return JSON.stringify(want);
   const { treatment, ...rest } = want;
-  let text = keys.get(treatment);
-  if (text === undefined) {
-    text = JSON.stringify(treatment);
-    keys.set(treatment, text);
-  }
-  return `${JSON.stringify(rest)} ${text}`;
+  return `${JSON.stringify(rest)} ${treatmentText(treatment)}`;
 }
 
 function sizeOf(answer: Answer | { readonly problem: Problem }): number {

@@ -1,18 +1,18 @@
-import { planSheet } from '../../../core/chain/grid.ts';
-import { levelCount } from '../../../core/chain/levels.ts';
-import { findKernel } from '../../../core/kernel/table.ts';
 import type { Problem } from '../../../core/problem.ts';
+import { lastLevelOf, type Opening, openingLevel } from '../../../core/proof/opening.ts';
 import type { HaloAnswer, LevelsAnswer, Print, PrintImage, Want } from '../../../core/proof/want.ts';
 import type { BuiltState, HostEvent, OpenReply, SettingsReply } from '../../../core/protocol.ts';
 import type { Extent } from '../../../core/raster/raster.ts';
-import type { KernelChoice, Target, Treatment } from '../../../core/treatment/treatment.ts';
+import type { Target, Treatment } from '../../../core/treatment/treatment.ts';
 import type { Link } from '../../link/link.ts';
 import type { Outlook } from '../axis/lod.ts';
 import { extentAt, type Stop, stopsOf } from '../axis/scale.ts';
 import { treatmentOf } from '../treatment/change.ts';
 import { setWords } from '../words/t.ts';
 import { type BenchLink, isProblem, type Told } from './bench-link.ts';
-import { readState, type Slot, type State, writeState } from './state.ts';
+import { BuiltChecks } from './built-checks.ts';
+import { readState, type Sight, type Slot, type State, writeState } from './state.ts';
+import { Takeover } from './takeover.ts';
 
 /** All that the page knows, and the one way in which it changes. Fires `change` when something did. */
 export class Model extends EventTarget {
@@ -26,6 +26,8 @@ export class Model extends EventTarget {
     readonly typed: readonly Target[];
     readonly stops: readonly Stop[];
   } | null = null;
+  readonly takeover = new Takeover();
+  readonly #checks: BuiltChecks;
   readonly #treatments = new WeakMap<Slot, { readonly settings: Treatment; readonly treatment: Treatment }>();
   open: OpenReply | null = null;
   settings: SettingsReply | null = null;
@@ -42,6 +44,7 @@ export class Model extends EventTarget {
     super();
     this.link = link;
     this.#makeBench = makeBench;
+    this.#checks = new BuiltChecks(link, () => this.#changed());
     this.#state = readState(link.kept());
     link.listen((event) => this.#take(event));
   }
@@ -74,7 +77,9 @@ export class Model extends EventTarget {
     this.settings = reply.ok.settings;
     this.built = reply.ok.state;
     if (this.#state.backdrop === 'checker') this.#state = { ...this.#state, backdrop: reply.ok.preferences.backdrop };
+    this.#checks.forget();
     this.#changed();
+    await this.#askFirst(reply.ok.byteCount);
     await this.#load();
   }
 
@@ -85,7 +90,7 @@ export class Model extends EventTarget {
   }
 
   get header() {
-    return this.#bench?.header ?? null;
+    return this.#bench?.header ?? this.takeover.header;
   }
 
   /** Why prints take longer here than they could; null where they do not. */
@@ -133,7 +138,7 @@ export class Model extends EventTarget {
       stops.find((each) =>
         sight?.kind === 'target'
           ? each.label === sight.name && each.kind !== 'level'
-          : 'level' in each.image && each.image.level === (sight?.level ?? firstLevel(stops)),
+          : 'level' in each.image && each.image.level === (sight?.level ?? openingLevel(base, this.treatment!)),
       ) ?? stops[0];
     return { image: stop.image, lod: stop.lod, extent: stop.extent, stop };
   }
@@ -175,7 +180,7 @@ export class Model extends EventTarget {
   }
 
   print(treatment: Treatment, image: PrintImage): Told<'print'> {
-    return this.#bench?.told({ kind: 'print', treatment, image });
+    return this.#bench?.told({ kind: 'print', treatment, image }) ?? this.takeover.printOf(treatment, image);
   }
 
   levels(): LevelsAnswer | null {
@@ -208,22 +213,30 @@ export class Model extends EventTarget {
     return { treatment: mean, print: told === undefined || isProblem(told) ? null : told };
   }
 
-  /** What the manifest says of an image's pixels; null where it says nothing. */
-  builtPixels(image: PrintImage): string | null {
-    const { built } = this;
-    if (built.kind !== 'built' && built.kind !== 'stale') return null;
-    const found = built.images.find((each) =>
-      'level' in image ? each.level === image.level : 'target' in image && each.target === image.target.name,
-    );
-    return found?.pixels ?? null;
+  /** Whether a print has the pixels that were built; null where that is not known. */
+  equalsBuild(image: PrintImage, pixels: string): boolean | null {
+    return this.built.kind === 'built' || this.built.kind === 'stale' ? this.#checks.equals(image, pixels) : null;
+  }
+
+  /** The host's own print, while the file is still to come. A small file comes as fast. */
+  async #askFirst(byteCount: number): Promise<void> {
+    this.takeover.reset();
+    const asked = this.link.ask('firstPrint', openingOf(this.#state.sight)).then(({ revision, reply }) => {
+      if ('problem' in reply) return;
+      this.takeover.take(reply.ok.print, revision);
+      this.#judgeFirst();
+      this.#changed();
+    });
+    if (byteCount > FAST_BYTES) await Promise.race([asked, new Promise((go) => setTimeout(go, FIRST_PRINT_MS))]);
   }
 
   async #load(): Promise<void> {
     const { open } = this;
     if (open === null) return;
-    const { reply } = await this.link.ask('bytes', null);
+    const { reply, revision } = await this.link.ask('bytes', null);
     if ('problem' in reply) return this.#fail(reply.problem);
     this.present = true;
+    this.takeover.arrive(revision);
     try {
       this.#bench ??= await this.#makeBench(() => this.#benchChanged());
     } catch (error) {
@@ -236,7 +249,15 @@ export class Model extends EventTarget {
 
   #benchChanged(): void {
     if (this.#bench?.problem != null) this.problem = this.#bench.problem;
+    this.#judgeFirst();
     this.#changed();
+  }
+
+  #judgeFirst(): void {
+    const { treatment } = this;
+    const wanted = treatment === null ? null : this.takeover.wanted(treatment);
+    const own = wanted === null ? undefined : this.#bench?.told(wanted);
+    if (own !== undefined && !isProblem(own)) this.takeover.judge(own);
   }
 
   #fail(problem: Problem): void {
@@ -258,6 +279,7 @@ export class Model extends EventTarget {
         break;
       case 'built':
         this.built = event.state;
+        this.#checks.forget();
         break;
     }
     this.#changed();
@@ -270,28 +292,21 @@ export class Model extends EventTarget {
 
 const SOURCE_MEAN: Slot = { id: -1, kernel: { name: 'even', params: {} }, change: {} };
 
-/** A kernel that can make this image from the source, or why not. */
-export function kernelFits(choice: KernelChoice, stop: Stop | null, base: Extent): 'minify' | 'magnify' | null {
-  const kernel = findKernel(choice.name);
-  if (kernel === undefined || stop === null || 'level' in stop.image)
-    return kernel?.minifies === false ? 'minify' : null;
-  const shrinks = stop.lod > 0 || (stop.lod === 0 && stop.extent.width < base.width);
-  if (stop.lod < 0 && !kernel.magnifies) return 'magnify';
-  return shrinks && !kernel.minifies ? 'minify' : null;
-}
+/** Up to this many bytes a file crosses to the page as fast as a print. */
+const FAST_BYTES = 2 ** 20;
 
-export function lastLevelOf(base: Extent, treatment: Treatment): number {
-  if (treatment.grid === null) return levelCount(base) - 1;
-  try {
-    return planSheet(base, treatment.grid).levels - 1;
-  } catch {
-    // A grid that does not fit is a problem of its own, which every print says.
-    return levelCount(base) - 1;
+/** Longest that a file waits for the host's first print, in milliseconds. */
+const FIRST_PRINT_MS = 300;
+
+function openingOf(sight: Sight | null): Opening {
+  switch (sight?.kind) {
+    case 'level':
+      return { level: sight.level, target: null };
+    case 'target':
+      return { level: null, target: sight.name };
+    case 'lod':
+      return { level: Math.round(sight.lod), target: null };
+    case undefined:
+      return { level: null, target: null };
   }
-}
-
-/** The first level that fits a usual frame, so that the page opens on something that can be judged. */
-function firstLevel(stops: readonly Stop[]): number {
-  const fit = stops.find((stop) => stop.kind === 'level' && Math.max(stop.extent.width, stop.extent.height) <= 128);
-  return fit !== undefined && 'level' in fit.image ? Math.max(0, fit.image.level) : 0;
 }

@@ -1,9 +1,10 @@
 import { type Problem, say } from '../../../core/problem.ts';
 import { t } from '../words/t.ts';
+import type { Disagreement } from './takeover.ts';
 
 /** A state of the page in which there is nothing to show: one sentence, and one thing to do. */
 export interface Note {
-  readonly state: 'loading' | 'damaged' | 'not-downloaded' | 'too-large' | 'settings' | 'gone' | 'failed';
+  readonly state: 'loading' | 'damaged' | 'not-downloaded' | 'too-large' | 'settings' | 'gone' | 'disagrees' | 'failed';
   readonly text: string;
   readonly action: 'again' | 'settings' | null;
 }
@@ -31,6 +32,16 @@ export function loadingNote(): Note {
 
 export function goneNote(name: string): Note {
   return { state: 'gone', text: t('{name} is no longer there. It is shown as it was.', { name }), action: 'again' };
+}
+
+/** The host's first print and the page's own are not the same. */
+export function disagreementNote({ count, all }: Disagreement): Note {
+  const values = { count, all };
+  const text = t(
+    'The print made beside the file and the one made here differ in {count} of {all} codes. Either the file changed meanwhile or it did not come whole.',
+    values,
+  );
+  return { state: 'disagrees', text, action: 'again' };
 }
 
 /** Settings that cannot be read: their first problem. */

@@ -12,7 +12,7 @@ import '../treatment/treatment-switches.ts';
 import '../view/view-bar.ts';
 import { t } from '../words/t.ts';
 import type { Model } from './model.ts';
-import { goneNote, loadingNote, type Note, noteOf, settingsNote } from './note.ts';
+import { disagreementNote, goneNote, loadingNote, type Note, noteOf, settingsNote } from './note.ts';
 import { SwapHold } from './swap-hold.ts';
 import './top-bar.ts';
 import { wantsOf } from './wants.ts';
@@ -153,14 +153,17 @@ export class ProofPage extends LitElement {
 
   #proof(model: Model) {
     const { tick } = this;
-    const gone = model.present ? null : goneNote(model.open!.name);
+    const { disagreement } = model.takeover;
+    const notes = [
+      ...(model.present ? [] : [goneNote(model.open!.name)]),
+      ...(disagreement === null ? [] : [disagreementNote(disagreement)]),
+    ];
     return html`
       <div>
-        ${
-          gone === null
-            ? nothing
-            : html`<div class="banner" role="alert" data-state="gone">${gone.text} ${this.#action(model, gone)}</div>`
-        }
+        ${notes.map(
+          (note) =>
+            html`<div class="banner" role="alert" data-state=${note.state}>${note.text} ${this.#action(model, note)}</div>`,
+        )}
       </div>
       <section class="axis" aria-label=${t('Size axis')}>
         <size-axis .model=${model} .tick=${tick}></size-axis>

@@ -18,6 +18,8 @@ export function wantsOf(model: Model): readonly Want[] {
     const source = model.sourcePrint(image);
     if (source !== null) wants.push(print(source.treatment));
   }
+  const first = model.takeover.wanted(treatment);
+  if (first !== null) wants.push(first);
   const own = model.treatmentOf(model.slot)!;
   wants.push({ kind: 'footprint', treatment: own, image, ...cursorTexel(state.cursor, seen.extent) });
   wants.push({ kind: 'section', ...lineOf(state, seen.extent) });
