@@ -55,10 +55,7 @@ describe('a print on the screen', () => {
   const builtOf = (name: string): Pixels => PNG.sync.read(readFileSync(fileOf(name)));
 
   async function open(name: string): Promise<void> {
-    await explorerRow(page, name).click();
-    await page.locator(`.tab.active[data-resource-name="${name}"]`).waitFor();
-    await runCommand(page, 'Sizeproof: Open Proof');
-    proof = webviewOf(page);
+    proof = await openProof(page, name);
     await proof.locator('top-bar [data-built="built"]').waitFor();
     await showLevel(page, proof, LEVEL);
   }
@@ -108,6 +105,30 @@ describe('a print on the screen', () => {
     expect(await again()).toEqual([]);
   });
 
+  test('that the host makes while the file is on its way is the built file too, and is found out where one byte is another', async () => {
+    const other = await newPage(browser, host);
+    try {
+      await other.setViewportSize({ width: 1600, height: 1100 });
+      await other.addInitScript(holdFile);
+      await openWorkbench(other, host.url(folder));
+      const opened = await openProof(other, 'ground.png');
+      await showTrueSize(other, opened);
+      const level = await opened.getByLabel('Level', { exact: true }).inputValue();
+      const built: Pixels = PNG.sync.read(readFileSync(join(folder, 'built', `ground.${level}.png`)));
+      expect(differences(await printOnScreen(other, opened, built), built, asStored)).toEqual([
+        expect.stringMatching(/^3,0 r: /),
+      ]);
+      const held = await opened.locator('proof-page').elementHandle();
+      await held?.evaluate(() => (globalThis as unknown as { release: () => void }).release());
+      const count = built.width * built.height * 3;
+      await opened.getByText(`differ in 1 of ${count} codes`).waitFor();
+      await showTrueSize(other, opened);
+      expect(differences(await printOnScreen(other, opened, built), built, asStored)).toEqual([]);
+    } finally {
+      await other.context().close();
+    }
+  });
+
   test('of a transparent texture is the built file over black and over white, to the nearest code', async () => {
     await open('leaf.png');
     for (const [backdrop, light] of [
@@ -128,3 +149,35 @@ describe('a print on the screen', () => {
     expect(await wrongPlaces('leaf', asBlended(1))).not.toEqual([]);
   });
 });
+
+async function openProof(page: Page, name: string): Promise<FrameLocator> {
+  await explorerRow(page, name).click();
+  await page.locator(`.tab.active[data-resource-name="${name}"]`).waitFor();
+  await runCommand(page, 'Sizeproof: Open Proof');
+  return webviewOf(page);
+}
+
+/** Runs in every frame before its scripts. The host's first print comes with its tenth code changed, and the file's bytes wait for
+ *  `release`, so that nothing but that print can be on the screen. */
+function holdFile(): void {
+  const held: (() => void)[] = [];
+  let isHolding = true;
+  const add = EventTarget.prototype.addEventListener;
+  // The editor writes the document anew, which takes listeners off; what adds them stays.
+  EventTarget.prototype.addEventListener = function (type: string, listener: unknown, options?: unknown) {
+    const hear = listener as (event: Event) => void;
+    const filtered = (event: Event): void => {
+      const ok = (event as MessageEvent).data?.reply?.ok;
+      const codes = ok?.print?.picture?.codes;
+      if (codes !== undefined) codes[9] ^= 1;
+      if (isHolding && ok?.image !== undefined && ok.roughness !== undefined) held.push(() => hear(event));
+      else hear(event);
+    };
+    const isOurs = this === window && type === 'message' && typeof listener === 'function';
+    add.call(this, type, (isOurs ? filtered : listener) as EventListener, options as boolean);
+  };
+  (globalThis as unknown as { release: () => void }).release = () => {
+    isHolding = false;
+    for (const deliver of held) deliver();
+  };
+}
