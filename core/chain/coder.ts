@@ -13,17 +13,24 @@ export function plainCoder(encoding: Encoding): RowCoder {
     encode: (floats, codes, offset, clipped, lengths) => encodeRow(encoding, floats, codes, offset, clipped, lengths),
     light(floats, codes, offset) {
       const { alpha } = layout;
-      return sumLight(encoding, codes.subarray(offset), floats.length / floatChannels, (x) =>
-        alpha === null ? 1 : clampedShare(floats[x * floatChannels + alpha], maxCode(layout.depth)),
-      );
+      const whole = maxCode(layout.depth);
+      const of = (x: number): number => Math.min(whole, Math.max(0, floats[x * floatChannels + (alpha ?? 0)]));
+      const texels = floats.length / floatChannels;
+      return sumLight(encoding, codes.subarray(offset), texels, alpha === null ? null : { whole, of });
     },
     keepAlpha: (floats, values) => keepAlpha(encoding, floats, values),
     measureLengths: (floats, lengths) => measureLengths(encoding, floats, lengths),
   };
 }
 
-/** Luminance of stored codes, weighed by `weightOf` each texel. */
-export function sumLight(encoding: Encoding, codes: Codes, texels: number, weightOf: (x: number) => number): LightSum {
+/** What weighs texels: alpha in units of which `whole` is 1. */
+export interface Alphas {
+  readonly whole: number;
+  readonly of: (texel: number) => number;
+}
+
+/** Luminance of stored codes, weighed by alpha, or each by 1. Texels of even and of odd index are summed apart. */
+export function sumLight(encoding: Encoding, codes: Codes, texels: number, alphas: Alphas | null): LightSum {
   const { layout, depth } = encoding;
   const { channels } = layout;
   const tables = layout.roles.slice(0, frontChannels(channels)).map((role) => {
@@ -33,19 +40,23 @@ export function sumLight(encoding: Encoding, codes: Codes, texels: number, weigh
   const [red, green = red, blue = red] = tables;
   const [r, g, b] = tables.length === 1 ? [0, 0, 0] : [0, 1, 2];
   const premultiplied = encoding.store === 'premultiplied' && layout.alpha !== null;
-  let light = 0;
-  let weight = 0;
+  const light = [0, 0];
+  const weight = [0, 0];
   for (let x = 0, at = 0; x < texels; x++, at += channels) {
     const y = luminance(
       red.table[codes[at + r]] / red.whole,
       green.table[codes[at + g]] / green.whole,
       blue.table[codes[at + b]] / blue.whole,
     );
-    const share = weightOf(x);
-    light += premultiplied ? y : y * share;
-    weight += share;
+    const share = alphas === null ? 1 : alphas.of(x);
+    light[x & 1] += premultiplied ? y : y * share;
+    weight[x & 1] += share;
   }
-  return { light, weight };
+  const whole = alphas?.whole ?? 1;
+  return {
+    light: (light[0] + light[1]) / (premultiplied ? 1 : whole),
+    weight: (weight[0] + weight[1]) / whole,
+  };
 }
 
 function clampedShare(value: number, max: number): number {

@@ -9,6 +9,16 @@ export function fillFrom(raster: StraightRaster, coarser: StraightRaster, alpha:
   const { channels, codes } = raster;
   const columns = texelsOver(raster.extent, coarser.extent, 'width');
   const rows = texelsOver(raster.extent, coarser.extent, 'height');
+  const [words, from] = [wordsOf(raster, alpha), wordsOf(coarser, alpha)];
+  if (words !== null && from !== null) {
+    for (let y = 0, at = 0; y < height; y++) {
+      const over = rows[y] * coarser.extent.width;
+      for (let x = 0; x < width; x++, at++) {
+        if (words[at] >>> 24 === 0) words[at] = from[over + columns[x]] & 0xffffff;
+      }
+    }
+    return;
+  }
   for (let y = 0; y < height; y++) {
     for (let x = 0; x < width; x++) {
       const at = (y * width + x) * channels;
@@ -26,6 +36,14 @@ export function fillWith(raster: StraightRaster, texel: StraightRaster, alpha: n
     if (codes[at + alpha] === 0) copyColor(texel.codes, 0, codes, at, channels, alpha);
   }
 }
+
+/** RGBA of 8 bits as numbers with alpha on top, a texel in one step instead of five; null where that cannot be. */
+function wordsOf({ codes, channels, depth }: StraightRaster, alpha: number): Uint32Array | null {
+  if (depth !== 8 || channels !== 4 || alpha !== 3 || codes.byteOffset % 4 !== 0 || !isLittleEndian) return null;
+  return new Uint32Array(codes.buffer, codes.byteOffset, codes.length / 4);
+}
+
+const isLittleEndian = new Uint8Array(Uint32Array.of(1).buffer)[0] === 1;
 
 function copyColor(
   from: StraightRaster['codes'],

@@ -1,3 +1,4 @@
+import { luminance } from '../color/luminance.ts';
 import { expandIndexed, maxCode, type Raster, type StraightRaster } from '../raster/raster.ts';
 import type { RowsRun } from '../resample/engine.ts';
 import { boundCodes } from './bounds.ts';
@@ -8,7 +9,7 @@ import type { CoverageScale } from './coverage.ts';
 import type { Draft } from './draft.ts';
 import { fillFrom, fillWith } from './fill.ts';
 import { type ChainImage, ImageInWork, type LightSum } from './image.ts';
-import { holdsColor } from './layout.ts';
+import { frontChannels, holdsColor } from './layout.ts';
 import { coverageOf, keepCoverage } from './mask.ts';
 import { type ChainPlan, pictureExtent } from './plan.ts';
 import { encodingOf } from './store.ts';
@@ -18,7 +19,7 @@ import { encodingOf } from './store.ts';
 export function finishImages(
   plan: ChainPlan,
   drafts: { readonly levels: readonly (Draft | null)[]; readonly targets: readonly Draft[] },
-  run: Pick<RowsRun, 'sums' | 'sourceLight'>,
+  run: Pick<RowsRun, 'sums'>,
 ): readonly ChainImage[] {
   const scales = plan.keepsCoverage ? keepAll(plan, drafts) : new Map<Draft, CoverageScale>();
   if (plan.fill !== 'none') fillAll(plan, drafts, run.sums());
@@ -89,12 +90,12 @@ function imageOf(
   plan: ChainPlan,
   draft: Draft,
   scales: ReadonlyMap<Draft, CoverageScale>,
-  run: Pick<RowsRun, 'sourceLight'>,
+  run: Pick<RowsRun, 'sums'>,
 ): ChainImage {
   const { planned, work, raster } = draft;
   const { layout, treatment } = plan;
   const scale = scales.get(draft);
-  const measured = 'level' in planned && planned.level === 0 ? run.sourceLight() : null;
+  const measured = 'level' in planned && planned.level === 0 ? sumsLight(plan, run.sums()) : null;
   const light = work?.light() ?? measured ?? codesLight(plan, raster);
   const placed = 'place' in planned ? placeInCell(raster, planned.place, layout.alpha) : raster;
   const normalLength = layout.normals.length === 0 ? undefined : (work?.normalLength() ?? 1);
@@ -118,15 +119,34 @@ function clippedOf(work: ImageInWork | null, raster: Raster, channels: number): 
   return { below: [...clipped.below, 0], above: [...clipped.above, 0] };
 }
 
+/** Luminance of level 0 from the sums of what it was decoded to, weighed by its alpha; null where its codes are not the source's or
+ *  its floats are not light times alpha. */
+function sumsLight(plan: ChainPlan, sums: Float64Array): LightSum | null {
+  const { layout, head, treatment } = plan;
+  const { alpha, depth, weighted } = layout;
+  if (plan.light !== 'coded' || plan.depth !== depth || layout.gamma !== null || !holdsColor(layout)) return null;
+  if (alpha !== null && treatment.alpha.store === 'premultiplied') return null;
+  const whole = alpha === null ? 1 : maxCode(depth);
+  const shares: number[] = [];
+  for (const [channel, role] of layout.roles.slice(0, frontChannels(layout.channels)).entries()) {
+    if (role.kind !== 'color' || role.transfer !== role.stored) return null;
+    if (alpha !== null && !weighted.includes(channel)) return null;
+    shares.push(sums[channel] / (role.transfer === 'srgb' ? whole : whole * maxCode(depth)));
+  }
+  const [red, green = red, blue = red] = shares;
+  const texels = head.extent.width * head.extent.height;
+  return { light: luminance(red, green, blue), weight: alpha === null ? texels : sums[alpha] / whole };
+}
+
 /** Luminance of codes that were moved, weighed by the alpha they carry. */
 function codesLight(plan: ChainPlan, raster: Raster): LightSum {
   const straight = straightOf(raster);
   const { alpha } = plan.layout;
   const max = maxCode(straight.depth);
   const texels = straight.extent.width * straight.extent.height;
-  return sumLight(encodingOf(plan), straight.codes, texels, (texel) =>
-    alpha === null ? 1 : straight.codes[texel * straight.channels + alpha] / max,
-  );
+  const alphas =
+    alpha === null ? null : { whole: max, of: (texel: number) => straight.codes[texel * straight.channels + alpha] };
+  return sumLight(encodingOf(plan), straight.codes, texels, alphas);
 }
 
 function boundsOf(plan: ChainPlan, levels: readonly (Draft | null)[]): ChainImage[] {

@@ -72,12 +72,9 @@ export interface RowsRun {
   push(codes: Codes): void;
   /** The same of a source that is floats already: `floatChannels` a texel. */
   pushFloats(floats: Float32Array): void;
-  /** Sums of each float channel of the source over the rows so far, in double precision: each row by itself, rows from the
-   *  top. */
+  /** Sums of each float channel of the source over the rows so far: four texels in float32, (a + b) + (c + d), fours of a row
+   *  in double precision from the left, then rows from the top. */
   sums(): Float64Array;
-  /** Luminance of the source's own codes, weighed by their own alpha, summed over the rows so far texel by texel; null where the
-   *  engine does not measure it, or its rows are not those of level 0 as it is stored. */
-  sourceLight(): LightSum | null;
 }
 
 export interface Engine {

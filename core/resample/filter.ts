@@ -13,7 +13,14 @@ export interface Filter {
 }
 
 export function makeFilter(taps: Taps): Filter {
-  return { taps, symmetric: Uint8Array.from({ length: taps.to }, (_, phase) => (isSymmetric(taps, phase) ? 1 : 0)) };
+  const { start, to } = taps;
+  const symmetric = new Uint8Array(to);
+  for (let phase = 0; phase < to; phase++) {
+    // Texels of one phase share their weights.
+    const same = phase > 0 && start[phase] === start[phase - 1];
+    symmetric[phase] = same ? symmetric[phase - 1] : isSymmetric(taps, phase) ? 1 : 0;
+  }
+  return { taps, symmetric };
 }
 
 /** The first texel and the last that any phase reads, unwrapped. */

@@ -14,6 +14,8 @@ export interface RowOrder {
   readonly slots: number;
   /** Row of the result that is made first; the others follow cyclically. */
   readonly firstOut: number;
+  /** Whether the row of index n is always in slot n modulo `slots`. */
+  readonly isRing: boolean;
   /** Where the n-th arriving row is stored. */
   slotOf(received: number): number;
   /** How many rows must have arrived before the n-th result row can be made. */
@@ -35,6 +37,13 @@ function inOrder(taps: Taps, wrap: Wrap): RowOrder {
   let slots = 1;
   let highest = 0;
   for (let y = 0; y < taps.to; y++) {
+    if (taps.first[y] >= 0 && taps.first[y] + taps.count[y] <= taps.from) {
+      // Nothing is wrapped.
+      highest = Math.max(highest, taps.first[y] + taps.count[y] - 1);
+      ready[y] = highest + 1;
+      slots = Math.max(slots, ready[y] - taps.first[y]);
+      continue;
+    }
     let lowest = taps.from;
     for (let k = 0; k < taps.count[y]; k++) {
       const row = wrapIndex(taps.first[y] + k, taps.from, wrap);
@@ -48,6 +57,7 @@ function inOrder(taps: Taps, wrap: Wrap): RowOrder {
   return {
     slots,
     firstOut: 0,
+    isRing: true,
     slotOf: (received) => received % slots,
     readyAfter: (emitted) => ready[emitted],
     outRow: (emitted) => emitted,
@@ -87,6 +97,7 @@ function cyclic(taps: Taps, start: number): RowOrder | null {
   return {
     slots: heads + ring,
     firstOut,
+    isRing: false,
     slotOf,
     readyAfter,
     outRow,
@@ -102,6 +113,7 @@ function whole(taps: Taps, wrap: Wrap, start: number): RowOrder {
   return {
     slots: taps.from,
     firstOut: 0,
+    isRing: false,
     slotOf: (received) => (start + received) % taps.from,
     readyAfter: () => taps.from,
     outRow: (emitted) => emitted,

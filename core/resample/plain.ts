@@ -55,20 +55,23 @@ class PlainRun implements RowsRun {
     return this.#sums.slice();
   }
 
-  sourceLight(): null {
-    return null;
-  }
-
   #publish(): void {
     const { floats } = this.#source;
     const channels = this.#sums.length;
-    for (let channel = 0; channel < channels; channel++) {
-      let row = 0;
-      for (let at = channel; at < floats.length; at += channels) row += floats[at];
-      this.#sums[channel] += row;
-    }
+    for (let channel = 0; channel < channels; channel++) this.#sums[channel] += sumRow(floats, channel, channels);
     this.#source.publish();
   }
+}
+
+/** Texels that a last four has not are zeros. */
+function sumRow(floats: Float32Array, channel: number, channels: number): number {
+  const at = (i: number): number => (i < floats.length ? floats[i] : 0);
+  let row = 0;
+  for (let i = channel; i < floats.length; i += 4 * channels) {
+    const front = Math.fround(floats[i] + at(i + channels));
+    row += Math.fround(front + Math.fround(at(i + 2 * channels) + at(i + 3 * channels)));
+  }
+  return row;
 }
 
 /** The current row of a node, with room at both ends for the texels that wrapping reads. */

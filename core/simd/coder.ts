@@ -24,7 +24,7 @@ export class SimdCoder implements RowCoder {
   readonly #plane: number;
   readonly #colors: number;
   readonly #sums: number;
-  readonly #shares: number;
+  readonly #views = new Map<number, Codes>();
 
   /** `texels` is the length of the longest row. */
   constructor(machine: Machine, encoding: Encoding, texels: number) {
@@ -36,30 +36,11 @@ export class SimdCoder implements RowCoder {
     this.#sums = machine.take(SUM_BYTES);
     this.#curves = writeCurves(machine, encoding);
     this.#colors = holdsColor(encoding.layout) ? writeColors(machine, encoding) : 0;
-    this.#shares = measuresSource(encoding) ? machine.keep(shareTable(encoding)) : 0;
     this.#quads = takesQuads(encoding);
-    machine.views.doubles.fill(0, this.#sums >> 3, (this.#sums >> 3) + 4);
-  }
-
-  /** Adds a row of the source's codes to what `sourceLight` answers. */
-  addSource(codes: number, texels: number): void {
-    if (this.#shares === 0) return;
-    const { kernels } = this.#machine;
-    const { layout, depth } = this.#encoding;
-    const size = depth / 8;
-    const alpha = layout.alpha === null ? -1 : layout.alpha * size;
-    const add = depth === 8 ? kernels.addBytes : kernels.addWords;
-    add(codes, layout.channels * size, this.#colors, alpha, this.#shares, texels, this.#sums + 16);
-  }
-
-  sourceLight(): LightSum | null {
-    if (this.#shares === 0) return null;
-    const [light, weight] = this.#machine.views.doubles.subarray((this.#sums >> 3) + 2);
-    return { light, weight };
   }
 
   encode(floats: Float32Array, codes: Codes, offset: number, clipped: Clipped): void {
-    const { kernels, views } = this.#machine;
+    const { kernels } = this.#machine;
     const { layout, depth } = this.#encoding;
     const { channels } = layout;
     const row = floats.byteOffset;
@@ -71,8 +52,7 @@ export class SimdCoder implements RowCoder {
     for (const { x, y, z } of layout.normals) {
       kernels.encodeNormals(row, this.#stride, texels, this.#codes, channels, x, y, z, SHORTEST, most);
     }
-    const [from, memory] = depth === 8 ? [this.#codes, views.bytes] : [this.#codes >> 1, views.words];
-    codes.set(memory.subarray(from, from + texels * channels), offset);
+    codes.set(this.#row(texels * channels), offset);
     this.#count(clipped);
   }
 
@@ -108,6 +88,19 @@ export class SimdCoder implements RowCoder {
     lengths.set(views.floats.subarray(this.#plane >> 2, (this.#plane >> 2) + lengths.length));
   }
 
+  /** The codes of a row that has just been stored. Views are made once a length, not once a row. */
+  #row(length: number): Codes {
+    let row = this.#views.get(length);
+    if (row === undefined) {
+      const { bytes, words } = this.#machine.views;
+      const is8 = this.#encoding.depth === 8;
+      const from = is8 ? this.#codes : this.#codes >> 1;
+      row = (is8 ? bytes : words).subarray(from, from + length);
+      this.#views.set(length, row);
+    }
+    return row;
+  }
+
   #texels(floats: Float32Array): number {
     return floats.length / this.#encoding.floatChannels;
   }
@@ -116,6 +109,9 @@ export class SimdCoder implements RowCoder {
   #count({ below, above }: Clipped): void {
     const { integers } = this.#machine.views;
     const curves = this.#curves >> 2;
+    let any = 0;
+    for (let at = BELOW / 4; at < ABOVE / 4 + 4; at++) any |= integers[curves + at];
+    if (any === 0) return;
     for (let channel = 0; channel < below.length; channel++) {
       below[channel] += integers[curves + BELOW / 4 + channel];
       above[channel] += integers[curves + ABOVE / 4 + channel];
@@ -127,13 +123,12 @@ export class SimdCoder implements RowCoder {
 /** Bytes that a coder takes. */
 export function coderBytes(encoding: Encoding, texels: number): number {
   const colors = holdsColor(encoding.layout) ? colorBytes(encoding) : 0;
-  const shares = measuresSource(encoding) ? aligned((maxCode(encoding.depth) + 1) * 8) : 0;
   const rows = aligned(codeBytes(encoding, texels)) + aligned(texels * 4);
-  return rows + aligned(SUM_BYTES) + curveBytes(encoding.depth) + colors + shares;
+  return rows + aligned(SUM_BYTES) + curveBytes(encoding.depth) + colors;
 }
 
-/** Light and weight of a row, and of the source. */
-const SUM_BYTES = 32;
+/** Light and weight of a row. */
+const SUM_BYTES = 16;
 
 /** Three codes more are written behind a row. */
 function codeBytes({ layout, depth }: Encoding, texels: number): number {
@@ -147,16 +142,6 @@ function takesQuads({ layout, depth, light }: Encoding): boolean {
     const role = layout.roles[channel];
     return role.kind === 'color' && role.transfer === 'srgb' && layout.weighted.includes(channel);
   });
-}
-
-/** Whether the source's codes are those of level 0, and hold light. */
-function measuresSource({ layout, depth, light }: Encoding): boolean {
-  return holdsColor(layout) && light === 'coded' && depth === layout.depth && layout.gamma === null;
-}
-
-/** Alpha 0..1 of each code. */
-function shareTable({ depth }: Encoding): Float64Array {
-  return madeTable(`alpha ${depth}`, decodeTable(depth, 'linear'), 1, maxCode(depth));
 }
 
 /** Bytes of what kernels/measure.ts asks of red, green and blue. */

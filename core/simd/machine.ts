@@ -2,6 +2,7 @@
 export interface Kernels {
   along(row: number, phases: number, out: number, texels: number, stride: number): void;
   alongHalves(row: number, phases: number, out: number, texels: number): void;
+  alongSix(row: number, phases: number, out: number, texels: number): void;
   acrossEqual(rows: number, weights: number, taps: number, out: number, floats: number): void;
   acrossPairs(rows: number, weights: number, taps: number, out: number, floats: number): void;
   pad(pairs: number, count: number, bytes: number): void;
@@ -11,7 +12,7 @@ export interface Kernels {
   swapBytes(codes: number, bytes: number): void;
   decodeBytes(codes: number, step: number, table: number, out: number, stride: number, texels: number): void;
   decodeWords(codes: number, step: number, table: number, out: number, stride: number, texels: number): void;
-  decodeQuads(codes: number, tables: number, alpha: number, out: number, texels: number, sums: number): void;
+  decodeQuads(codes: number, out: number, texels: number, sums: number): void;
   weigh(channel: number, alpha: number, stride: number, texels: number): void;
   makeUnit(x: number, y: number, z: number, rebuilt: number, shortest: number, stride: number, texels: number): void;
   sumRow(row: number, stride: number, texels: number, sums: number): void;
@@ -49,24 +50,6 @@ export interface Kernels {
     stride: number,
     alpha: number,
     most: number,
-    texels: number,
-    sums: number,
-  ): void;
-  addBytes(
-    codes: number,
-    step: number,
-    colors: number,
-    alpha: number,
-    shares: number,
-    texels: number,
-    sums: number,
-  ): void;
-  addWords(
-    codes: number,
-    step: number,
-    colors: number,
-    alpha: number,
-    shares: number,
     texels: number,
     sums: number,
   ): void;
@@ -112,7 +95,10 @@ export class Machine {
     const address = this.#top;
     const top = address + aligned(bytes);
     const missing = top - this.#memory.buffer.byteLength;
-    if (missing > 0) this.#memory.grow(Math.ceil(missing / PAGE_BYTES));
+    if (missing > 0) {
+      this.#memory.grow(Math.ceil(missing / PAGE_BYTES));
+      this.#views = viewsOf(this.#memory.buffer);
+    }
     this.#top = top;
     return address;
   }
@@ -130,7 +116,6 @@ export class Machine {
   }
 
   get views(): Views {
-    if (this.#views.bytes.buffer !== this.#memory.buffer) this.#views = viewsOf(this.#memory.buffer);
     return this.#views;
   }
 
@@ -150,8 +135,8 @@ export function aligned(bytes: number): number {
   return Math.ceil(bytes / 64) * 64;
 }
 
-/** 0 is no address. */
-const FIRST_ADDRESS = 64;
+/** What is taken first has this address, which stands in kernels/decode.ts. 0 is no address. */
+export const FIRST_ADDRESS = 64;
 
 const PAGE_BYTES = 65536;
 

@@ -1,4 +1,3 @@
-import type { LightSum } from '../chain/image.ts';
 import { wrapIndex } from '../kernel/wrap.ts';
 import type { Codes, Extent } from '../raster/raster.ts';
 import { floatChannels } from '../resample/decode.ts';
@@ -21,7 +20,6 @@ export class SimdRun implements RowsRun {
   readonly #source: NodeRow;
   readonly #done: () => void;
   #missing: number;
-  #ended: { readonly sums: Float64Array; readonly light: LightSum | null } | null = null;
 
   /** `done` is called after the last row. */
   constructor(machine: Machine, pass: Pass, sink: RowSink, done: () => void) {
@@ -49,36 +47,39 @@ export class SimdRun implements RowsRun {
   }
 
   push(codes: Codes): void {
-    this.#decoder.decode(codes, this.#source.row);
-    this.coder?.addSource(this.#decoder.codes, this.#width);
+    const { row } = this.#source;
+    this.#decoder.take(codes);
+    // What has just been decoded is filtered along x while it lies in the nearest cache.
+    for (let from = 0; from < this.#width; from += CHUNK_TEXELS) {
+      const to = Math.min(this.#width, from + CHUNK_TEXELS);
+      this.#decoder.decode(row, from, to);
+      if (to < this.#width) this.#source.publishPart(to);
+    }
     this.#publish();
   }
 
   pushFloats(floats: Float32Array): void {
     this.#machine.views.floats.set(floats, this.#source.row >> 2);
-    this.#decoder.sum(this.#source.row);
+    this.#decoder.sum(this.#source.row, this.#width);
     this.#publish();
   }
 
   sums(): Float64Array {
-    if (this.#ended !== null) return this.#ended.sums;
-    const { sums } = this.#decoder;
-    return this.#machine.views.doubles.slice(sums >> 3, (sums >> 3) + this.#channels);
-  }
-
-  sourceLight(): LightSum | null {
-    return this.#ended === null ? (this.coder?.sourceLight() ?? null) : this.#ended.light;
+    return this.#decoder.sums.slice();
   }
 
   #publish(): void {
+    this.#decoder.endRow();
     this.#source.publish();
     this.#missing--;
     if (this.#missing > 0) return;
     // The machine may go to another pass.
-    this.#ended = { sums: this.sums(), light: this.sourceLight() };
     this.#done();
   }
 }
+
+/** 8 KiB of floats, four channels: a quarter of the smallest nearest cache that is still about. A multiple of 4. */
+const CHUNK_TEXELS = 512;
 
 /** Bytes that a run takes. */
 export function runBytes(pass: Pass): number {
@@ -145,6 +146,11 @@ class NodeRow {
     };
     for (let x = -span.left; x < 0; x++) pad(x);
     for (let x = extent.width; x < extent.width + span.right; x++) pad(x);
+  }
+
+  /** The row is there up to texel `to`. */
+  publishPart(to: number): void {
+    for (const [window] of this.windows) window.pushPart(this.row, to);
   }
 
   /** The row is complete: hands it on. */

@@ -18,7 +18,14 @@ const anyWrap = oneOf<Wrap>(['clamp-to-edge', 'repeat', 'mirror-repeat', 'clamp-
 
 const side = fc.oneof(fc.integer({ min: 1, max: 40 }), fc.constantFrom(1, 2, 4, 16, 17, 32, 33, 64, 127, 128));
 
-const extent: fc.Arbitrary<Extent> = fc.record({ width: side, height: side });
+/** Some rows are so long that they come in parts. */
+const extent: fc.Arbitrary<Extent> = fc.oneof(
+  { arbitrary: fc.record({ width: side, height: side }), weight: 9 },
+  {
+    arbitrary: fc.record({ width: oneOf([512, 513, 1024, 1100, 1541]), height: fc.integer({ min: 1, max: 5 }) }),
+    weight: 1,
+  },
+);
 
 /** Passes of up to five steps, each from the source or from an earlier one, down and up, in any channels. */
 export const passes: fc.Arbitrary<PassCase> = fc

@@ -28,6 +28,8 @@ export function encodeBytes(
   const end = row + <usize>texels * stride;
   const transferred = v128.load(curves, 128);
   const isCoded = v128.any_true(transferred);
+  const least = v128.load32_splat(<usize>load<u32>(curves, 176));
+  const base = firstEntry(<usize>load<u32>(curves, 176));
   let below = v128.load(curves, 144);
   let above = v128.load(curves, 160);
   while (row < end) {
@@ -35,7 +37,7 @@ export function encodeBytes(
     below = i32x4.sub(below, f32x4.lt(value, v128.load(curves, 32)));
     above = i32x4.sub(above, f32x4.gt(value, v128.load(curves, 48)));
     let code = linearCode(value, curves);
-    if (isCoded) code = v128.bitselect(transferCode(value, <usize>load<u32>(curves, 176)), code, transferred);
+    if (isCoded) code = v128.bitselect(transferCode(value, least, base), code, transferred);
     const words = i16x8.narrow_i32x4_u(code, code);
     store<u32>(codes, i32x4.extract_lane(i8x16.narrow_i16x8_u(words, words), 0));
     row += stride;
@@ -97,13 +99,16 @@ function linearCode(value: v128, curves: usize): v128 {
 // which is at its address, to that of 1. No bucket holds two thresholds: an entry is (code + 1) * 2^24 less the bits of the
 // threshold, so that the float's own bits, added to it, carry into the top byte exactly where they reach the threshold.
 
-/** Four codes of 8 bits. The table begins with the least value that it is asked for. */
-function transferCode(value: v128, table: usize): v128 {
-  const least = v128.load32_splat(table);
+/** Where the entry of bucket 0 would be. The table begins with the least value that it is asked for. */
+function firstEntry(table: usize): usize {
+  return table - <usize>((load<u32>(table) >>> 14) & 0x3fffc) + 4;
+}
+
+/** Four codes of 8 bits: `least` is the table's own, `base` its first entry. */
+function transferCode(value: v128, least: v128, base: usize): v128 {
   const bits = f32x4.pmin(f32x4.splat(1), f32x4.pmax(least, value));
   const low = i64x2.extract_lane(bits, 0);
   const high = i64x2.extract_lane(bits, 1);
-  const base = table - <usize>((i32x4.extract_lane(least, 0) >>> 14) & 0x3fffc) + 4;
   let entries = v128.load32_zero(base + <usize>((<u32>low >> 14) & 0x3fffc));
   entries = v128.load32_lane(base + <usize>((low >>> 46) & 0x3fffc), entries, 1);
   entries = v128.load32_lane(base + <usize>((<u32>high >> 14) & 0x3fffc), entries, 2);
@@ -135,6 +140,11 @@ function searched(value: f32, curves: usize): i32 {
 export function encodeQuads(row: usize, texels: i32, codes: usize, curves: usize): void {
   const end = row + ((<usize>(texels & ~3)) << 4);
   const table = <usize>load<u32>(curves, 176);
+  const bottom = v128.load32_splat(table);
+  const base = firstEntry(table);
+  const rounder = f32x4.splat(ROUNDER);
+  const full = f32x4.splat(255);
+  const none = f32x4.splat(0);
   const below = v128.load32_splat(curves, 32);
   const above = v128.load32_splat(curves, 48);
   const alphaBelow = v128.load32_splat(curves, 44);
@@ -149,21 +159,25 @@ export function encodeQuads(row: usize, texels: i32, codes: usize, curves: usize
     const pqHigh = v128.shuffle<f32>(p, q, 2, 6, 3, 7);
     const stHigh = v128.shuffle<f32>(s, t, 2, 6, 3, 7);
     const alpha = v128.shuffle<f64>(pqHigh, stHigh, 1, 3);
-    const kept = f32x4.gt(alpha, f32x4.splat(0));
-    const red = v128.and(f32x4.div(v128.shuffle<f64>(pq, st, 0, 2), alpha), kept);
-    const green = v128.and(f32x4.div(v128.shuffle<f64>(pq, st, 1, 3), alpha), kept);
-    const blue = v128.and(f32x4.div(v128.shuffle<f64>(pqHigh, stHigh, 0, 2), alpha), kept);
+    const red = f32x4.div(v128.shuffle<f64>(pq, st, 0, 2), alpha);
+    const green = f32x4.div(v128.shuffle<f64>(pq, st, 1, 3), alpha);
+    const blue = f32x4.div(v128.shuffle<f64>(pqHigh, stHigh, 0, 2), alpha);
+    // Color over no alpha is none: it is taken out behind, of the codes.
+    const kept = f32x4.gt(alpha, none);
     const least = f32x4.pmin(f32x4.pmin(red, green), blue);
     const most = f32x4.pmax(f32x4.pmax(red, green), blue);
     const outside = v128.or(
       v128.or(f32x4.lt(least, below), f32x4.gt(most, above)),
       v128.or(f32x4.lt(alpha, alphaBelow), f32x4.gt(alpha, alphaAbove)),
     );
-    if (v128.any_true(outside)) countFour(red, green, blue, alpha, curves);
-    const clamped = f32x4.pmin(f32x4.splat(255), f32x4.pmax(f32x4.splat(0), alpha));
-    const opacity = i32x4.shl(f32x4.add(clamped, f32x4.splat(ROUNDER)), 24);
-    const redGreen = v128.or(transferCode(red, table), i32x4.shl(transferCode(green, table), 8));
-    v128.store(codes, v128.or(v128.or(redGreen, i32x4.shl(transferCode(blue, table), 16)), opacity));
+    if (v128.any_true(outside)) {
+      countFour(v128.and(red, kept), v128.and(green, kept), v128.and(blue, kept), alpha, curves);
+    }
+    const clamped = f32x4.pmin(full, f32x4.pmax(none, alpha));
+    const opacity = i32x4.shl(f32x4.add(clamped, rounder), 24);
+    const redGreen = v128.or(transferCode(red, bottom, base), i32x4.shl(transferCode(green, bottom, base), 8));
+    const color = v128.and(v128.or(redGreen, i32x4.shl(transferCode(blue, bottom, base), 16)), kept);
+    v128.store(codes, v128.or(color, opacity));
     row += 64;
     codes += 16;
   }

@@ -36,6 +36,7 @@ export function lightOfWords(
   lightOf<u16>(codes, step, colors, row, stride, alpha, most, texels, sums);
 }
 
+/** Two texels side by side: even ones in the low lane, odd ones in the high. */
 function lightOf<Code extends number>(
   codes: usize,
   step: usize,
@@ -53,80 +54,45 @@ function lightOf<Code extends number>(
   const reds = <usize>load<u32>(colors, 4);
   const greens = <usize>load<u32>(colors, 20);
   const blues = <usize>load<u32>(colors, 36);
-  const end = codes + <usize>texels * step;
+  const end = codes + <usize>(texels & ~1) * step;
+  const whole = f32x4.splat(<f32>most);
+  const one = f64x2.splat(1);
   let place = row + <usize>alpha;
-  let light: f64 = 0;
-  let weight: f64 = 0;
+  let light = f64x2.splat(0);
+  let weight = f64x2.splat(0);
   while (codes < end) {
+    const next = codes + step;
+    let y = v128.load64_zero(reds + ((<usize>load<Code>(codes + red)) << 3));
+    y = v128.load64_lane(reds + ((<usize>load<Code>(next + red)) << 3), y, 1);
+    let g = v128.load64_zero(greens + ((<usize>load<Code>(codes + green)) << 3));
+    g = v128.load64_lane(greens + ((<usize>load<Code>(next + green)) << 3), g, 1);
+    let b = v128.load64_zero(blues + ((<usize>load<Code>(codes + blue)) << 3));
+    b = v128.load64_lane(blues + ((<usize>load<Code>(next + blue)) << 3), b, 1);
+    y = f64x2.add(f64x2.add(y, g), b);
+    if (alpha < 0) {
+      light = f64x2.add(light, y);
+      weight = f64x2.add(weight, one);
+    } else {
+      const alphas = v128.load32_lane(place + stride, v128.load32_zero(place), 1);
+      const share = f64x2.promote_low_f32x4(f32x4.pmin(whole, f32x4.pmax(f32x4.splat(0), alphas)));
+      light = f64x2.add(light, f64x2.mul(y, share));
+      weight = f64x2.add(weight, share);
+      place += stride << 1;
+    }
+    codes = next + step;
+  }
+  if (texels & 1) {
     const r = load<f64>(reds + ((<usize>load<Code>(codes + red)) << 3));
     const g = load<f64>(greens + ((<usize>load<Code>(codes + green)) << 3));
     const b = load<f64>(blues + ((<usize>load<Code>(codes + blue)) << 3));
-    const share: f64 = alpha < 0 ? 1 : clampedShare(<f64>load<f32>(place), most);
-    light += (r + g + b) * share;
-    weight += share;
-    codes += step;
-    place += stride;
+    const value: f64 = alpha < 0 ? 1 : <f64>load<f32>(place);
+    const share: f64 = alpha < 0 ? 1 : value >= most ? most : value > 0 ? value : 0;
+    light = f64x2.replace_lane(light, 0, f64x2.extract_lane(light, 0) + (r + g + b) * share);
+    weight = f64x2.replace_lane(weight, 0, f64x2.extract_lane(weight, 0) + share);
   }
-  store<f64>(sums, light);
-  store<f64>(sums, weight, 8);
-}
-
-/** Adds luminance of 8-bit codes, and what weighs them, to the sums. `alpha` is the byte of alpha in a texel of codes, -1 where
- *  every texel weighs 1; `shares` is a table of f64 a code. */
-export function addBytes(
-  codes: usize,
-  step: usize,
-  colors: usize,
-  alpha: i32,
-  shares: usize,
-  texels: i32,
-  sums: usize,
-): void {
-  add<u8>(codes, step, colors, alpha, shares, texels, sums);
-}
-
-/** The same of 16-bit codes. */
-export function addWords(
-  codes: usize,
-  step: usize,
-  colors: usize,
-  alpha: i32,
-  shares: usize,
-  texels: i32,
-  sums: usize,
-): void {
-  add<u16>(codes, step, colors, alpha, shares, texels, sums);
-}
-
-function add<Code extends number>(
-  codes: usize,
-  step: usize,
-  colors: usize,
-  alpha: i32,
-  shares: usize,
-  texels: i32,
-  sums: usize,
-): void {
-  const red = <usize>load<u32>(colors, 0);
-  const green = <usize>load<u32>(colors, 16);
-  const blue = <usize>load<u32>(colors, 32);
-  const reds = <usize>load<u32>(colors, 4);
-  const greens = <usize>load<u32>(colors, 20);
-  const blues = <usize>load<u32>(colors, 36);
-  const end = codes + <usize>texels * step;
-  let light = load<f64>(sums);
-  let weight = load<f64>(sums, 8);
-  while (codes < end) {
-    const r = load<f64>(reds + ((<usize>load<Code>(codes + red)) << 3));
-    const g = load<f64>(greens + ((<usize>load<Code>(codes + green)) << 3));
-    const b = load<f64>(blues + ((<usize>load<Code>(codes + blue)) << 3));
-    const share: f64 = alpha < 0 ? 1 : load<f64>(shares + ((<usize>load<Code>(codes + <usize>alpha)) << 3));
-    light += (r + g + b) * share;
-    weight += share;
-    codes += step;
-  }
-  store<f64>(sums, light);
-  store<f64>(sums, weight, 8);
+  const divisor: f64 = alpha < 0 ? 1 : most;
+  store<f64>(sums, (f64x2.extract_lane(light, 0) + f64x2.extract_lane(light, 1)) / divisor);
+  store<f64>(sums, (f64x2.extract_lane(weight, 0) + f64x2.extract_lane(weight, 1)) / divisor, 8);
 }
 
 /** Alpha as words: 65535 is 1. */
