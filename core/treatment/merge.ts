@@ -1,5 +1,5 @@
 import type { Entry } from './entry.ts';
-import type { Settings } from './settings.ts';
+import type { Rule, Settings } from './settings.ts';
 
 /** A leaf, or a null, with the rule that set it. */
 export interface Merged extends Entry {
@@ -23,7 +23,11 @@ export function mergePatches(earlier: Patch, later: Patch): Patch {
 
 /** What the settings say about a texture; nulls have done their work and are left out. */
 export function mergedFor(settings: Settings | null, path: string): Patch {
-  const rules = settings?.rules.filter((rule) => rule.hits(path)) ?? [];
+  return mergeRules(settings?.rules.filter((rule) => rule.hits(path)) ?? []);
+}
+
+/** The same of the rules that hit a texture. */
+export function mergeRules(rules: readonly Rule[]): Patch {
   const patches = rules.map((rule) => patchOf(rule.name, rule.entries));
   return withoutNulls(patches.reduce(mergePatches, new Map()));
 }

@@ -1,18 +1,38 @@
 import { type Problem, Refusal, warning } from '../problem.ts';
 import { completePatch } from './complete.ts';
 import { findConflicts } from './conflict-check.ts';
-import { mergedFor } from './merge.ts';
-import type { Settings } from './settings.ts';
+import { mergeRules } from './merge.ts';
+import type { Rule, Settings } from './settings.ts';
 import type { Texture } from './treatment.ts';
 
 /** What applies to a texture, every leaf with the rule that set it. `texturePath` is relative to the root, "/"-separated,
  *  in NFC; without settings the built-in defaults apply. Throws Refusal where rules contradict each other for this texture. */
 export function resolveTreatment(settings: Settings | null, texturePath: string): Texture {
-  const merged = mergedFor(settings, texturePath);
-  const { treatment, origins } = completePatch(merged, settings?.path);
-  const [conflict] = findConflicts(treatment, merged, settings?.path);
-  if (conflict !== undefined) throw new Refusal(conflict.problem);
-  return { path: texturePath, treatment, origins };
+  const rules = settings?.rules.filter((rule) => rule.hits(texturePath)) ?? [];
+  const resolved = resolveRules(settings, rules);
+  if ('code' in resolved) throw new Refusal(resolved);
+  return { path: texturePath, ...resolved };
+}
+
+type Resolved = Pick<Texture, 'treatment' | 'origins'>;
+
+/** Thousands of textures follow the same few rules: what these say is made out once, and is one object for all of them. */
+function resolveRules(settings: Settings | null, rules: readonly Rule[]): Resolved | Problem {
+  const known = settings === null ? new Map<string, Resolved | Problem>() : (shelves.get(settings) ?? new Map());
+  if (settings !== null) shelves.set(settings, known);
+  const key = rules.map((rule) => rule.name).join(' ');
+  const resolved = known.get(key) ?? completeRules(settings, rules);
+  known.set(key, resolved);
+  return resolved;
+}
+
+const shelves = new WeakMap<Settings, Map<string, Resolved | Problem>>();
+
+function completeRules(settings: Settings | null, rules: readonly Rule[]): Resolved | Problem {
+  const merged = mergeRules(rules);
+  const completed = completePatch(merged, settings?.path);
+  const [conflict] = findConflicts(completed.treatment, merged, settings?.path);
+  return conflict === undefined ? completed : conflict.problem;
 }
 
 /** A warning for each treatment whose globs hit none of the paths. */

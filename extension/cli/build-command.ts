@@ -70,7 +70,10 @@ function resultOf(report: BuildReport, shell: Shell, mood: 'would be ' | ''): Re
   const prunes = pruned.length === 0 ? '' : `, ${pruned.length} ${mood}pruned`;
   const ending = report.cancelled ? ' Interrupted; build again to go on.' : '';
   return {
-    textures: report.textures.map((each) => jsonOf(each, nameOf)),
+    // Only one voice asks for them, and of ten thousand textures they take a while.
+    get textures() {
+      return report.textures.map((each) => jsonOf(each, nameOf));
+    },
     more: { pruned },
     problems: report.problems,
     summary,
@@ -86,12 +89,11 @@ function resultOf(report: BuildReport, shell: Shell, mood: 'would be ' | ''): Re
 function lineOf(texture: TextureReport, nameOf: (path: string) => string): string[] {
   const why = texture.reasons.length === 0 ? '' : ` (${texture.reasons.join(', ')})`;
   const count = texture.outputs.length === 1 ? '1 file' : `${texture.outputs.length} files`;
-  const source = nameOf(texture.source);
   switch (texture.action) {
     case 'built':
-      return [`built ${source} -> ${nameOf(texture.manifest)} and ${count}${why}`];
+      return [`built ${nameOf(texture.source)} -> ${nameOf(texture.manifest)} and ${count}${why}`];
     case 'planned':
-      return [`would build ${source} -> ${nameOf(texture.manifest)} and ${count}${why}`];
+      return [`would build ${nameOf(texture.source)} -> ${nameOf(texture.manifest)} and ${count}${why}`];
     case 'unchanged':
     case 'failed':
     case 'cancelled':

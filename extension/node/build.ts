@@ -10,6 +10,7 @@ import { parentOf } from './path.ts';
 import { planFromHead } from './plan-job.ts';
 import type { RunJobs } from './pool.ts';
 import { absolute, jobFor, openEmptyRoots, openProject, type ProjectRoot, type ProjectTexture } from './project.ts';
+import { openRunRecord, type RunRecord } from './run-record.ts';
 import { openStatIndex, type StatIndex } from './stat-index.ts';
 import { type PresentSource, type Reason, readState, type TextureState } from './state.ts';
 import { findTraces, sweep, type Traces } from './sweep.ts';
@@ -82,6 +83,7 @@ export async function buildProject(options: BuildOptions, tools: BuildTools, rep
       jobs.map((work) => work.job as TextureJob),
       (index, outcome) => {
         take(jobs[index], outcome);
+        if (outcome.kind === 'built') learn(jobs[index], outcome);
         reporter.done(reportOf(jobs[index]));
       },
     );
@@ -106,7 +108,7 @@ export async function buildProject(options: BuildOptions, tools: BuildTools, rep
     pruned.push(...found.map((orphan) => orphan.manifest));
     problems = await withoutAnswered(tools.disk, options.query, problems, found);
   }
-  for (const room of rooms) if (options.mode === 'build') await room.index.save();
+  for (const room of rooms) if (options.mode === 'build') await remember(room);
   const roots = project.roots.map((root) => root.selection.folder);
   return { textures: works.map(reportOf), pruned, problems, cancelled, roots };
 }
@@ -114,6 +116,7 @@ export async function buildProject(options: BuildOptions, tools: BuildTools, rep
 interface RootBuild {
   readonly root: ProjectRoot;
   readonly index: StatIndex;
+  readonly record: RunRecord;
   readonly traces: Traces;
   readonly works: readonly Work[];
   readonly problems: readonly Problem[];
@@ -122,6 +125,7 @@ interface RootBuild {
 interface Work {
   readonly texture: ProjectTexture;
   readonly root: ProjectRoot;
+  readonly index: StatIndex;
   readonly state: TextureState;
   action: Action;
   /** `null` where there is nothing to do. */
@@ -137,6 +141,7 @@ const TURN = 256;
 async function judgeRoot(root: ProjectRoot, options: BuildOptions, tools: BuildTools): Promise<RootBuild> {
   const { disk } = tools;
   const index = await openStatIndex(disk, options.cacheFolder, root.selection.folder);
+  const record = openRunRecord(disk, options.cacheFolder, root.selection.folder);
   const whole = root.selection.extent === 'whole' || options.orphans === 'prune';
   const folders = new Set(root.textures.map((texture) => parentOf(texture.manifestPath)));
   const traces = await findTraces(disk, whole ? [root.outFolder] : folders, whole ? 'below' : 'folder');
@@ -144,9 +149,12 @@ async function judgeRoot(root: ProjectRoot, options: BuildOptions, tools: BuildT
   for (const texture of root.textures) {
     if (tools.isCancelled()) break;
     if (works.length % TURN === TURN - 1) await new Promise((turn) => setImmediate(turn));
-    works.push(await judge(texture, root, index, traces, options, disk));
+    works.push(
+      (await known(texture, root, index, record, traces)) ?? (await judge(texture, root, index, traces, options, disk)),
+    );
   }
-  const problems = await collisionsOf(disk, root, works);
+  // Where nothing is written, nothing collides that did not when it was.
+  const problems = works.some((work) => work.job !== null) ? await collisionsOf(disk, root, works) : [];
   if (problems.length > 0) {
     for (const work of works) {
       if (work.job !== null) work.action = 'failed';
@@ -158,7 +166,41 @@ async function judgeRoot(root: ProjectRoot, options: BuildOptions, tools: BuildT
   } else if (options.mode === 'build') {
     await sweep(disk, traces.temporaries);
   }
-  return { root, index, traces, works, problems };
+  return { root, index, record, traces, works, problems };
+}
+
+/** A texture of which every file is as the last run that looked into it left it. */
+async function known(
+  texture: ProjectTexture,
+  root: ProjectRoot,
+  index: StatIndex,
+  record: RunRecord,
+  traces: Traces,
+): Promise<Work | null> {
+  if (!traces.manifests.has(texture.manifestPath) || traces.interrupted.has(texture.manifestPath)) return null;
+  const found = await record.find(texture);
+  if (found === null) return null;
+  const state: TextureState = { manifest: null, reasons: [], trouble: null, sources: found.sources, outputs: [] };
+  return { texture, root, index, state, action: 'unchanged', job: null, outputs: found.outputs, problems: [] };
+}
+
+/** What was written, if the source that it was made from is the one that was looked at. */
+function learn({ state, index }: Work, { manifest, files }: Outcome & { readonly kind: 'built' }): void {
+  const isSame = manifest.sources.every(({ use, sha256 }) =>
+    state.sources.some((each) => each.use === use && each.sha256 === sha256),
+  );
+  if (isSame) for (const { path, sha256, stat } of files) index.learn(path, sha256, stat);
+}
+
+/** Keeps what this run learned about a root, for the next. */
+async function remember({ index, record, works }: RootBuild): Promise<void> {
+  await index.settle();
+  for (const { texture, action, state, outputs } of works) {
+    const wasLookedInto = action === 'built' || (action === 'unchanged' && state.manifest !== null);
+    if (wasLookedInto) await record.keep(texture, outputs, index);
+  }
+  await record.save();
+  await index.save();
 }
 
 async function judge(
@@ -169,8 +211,10 @@ async function judge(
   options: BuildOptions,
   disk: Disk,
 ): Promise<Work> {
+  // Hashed before it is read: a manifest that changes in between is noticed by the next run.
+  if (traces.manifests.has(texture.manifestPath)) await index.hash(texture.manifestPath);
   const state = await readState(disk, index, texture, traces, 'with outputs');
-  const work: Work = { texture, root, state, action: 'unchanged', job: null, outputs: [], problems: [] };
+  const work: Work = { texture, root, index, state, action: 'unchanged', job: null, outputs: [], problems: [] };
   if (state.manifest !== null) work.outputs = state.outputs.map((output) => output.path);
   if (state.reasons.length === 0) return work;
   try {

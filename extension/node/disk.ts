@@ -10,6 +10,11 @@ export interface FileStat {
   readonly inode: number;
 }
 
+/** A stat as numbers that can be compared one by one. */
+export function statNumbers({ size, mtimeMs, inode }: FileStat): [number, number, number] {
+  return [size, mtimeMs, inode];
+}
+
 /** `busy`: open elsewhere, worth trying again. `full`: no space or quota left. `denied`: permissions, a read-only system, or
  *  something else of that name. `missing`: a folder on the way is gone. */
 export type DiskFault = 'busy' | 'full' | 'denied' | 'missing' | 'other';
@@ -34,8 +39,11 @@ export class DiskError extends Error {
 export interface Disk extends FileTree {
   /** `null` for what is not a file. Links are followed. */
   stat(path: string): Promise<FileStat | null>;
-  /** Makes a new file of these bytes and flushes it. An existing file is refused, and a failed one leaves nothing behind. */
-  write(path: string, bytes: Uint8Array): Promise<void>;
+  /** Whether all of these are files whose stats are the numbers that `statNumbers` gives, three a file in order. */
+  areStill(paths: readonly string[], numbers: readonly number[]): Promise<boolean>;
+  /** Makes a new file of these bytes and flushes it; answers its stat, which it keeps when it is renamed. An existing file is
+   *  refused, and a failed one leaves nothing behind. */
+  write(path: string, bytes: Uint8Array): Promise<FileStat>;
   /** Puts a file in the place of another, whole, at once. */
   rename(from: string, to: string): Promise<void>;
   /** Removes a file; a missing one is fine. */

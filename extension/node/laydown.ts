@@ -5,7 +5,7 @@ import { readManifest } from '../../core/manifest/read.ts';
 import { writeManifest } from '../../core/manifest/write.ts';
 import { type Problem, Refusal, refuse, warning } from '../../core/problem.ts';
 import { pathBelow, resolvePath } from '../../core/treatment/path.ts';
-import { type Disk, DiskError } from './disk.ts';
+import { type Disk, DiskError, type FileStat } from './disk.ts';
 import { parentOf } from './path.ts';
 import { nextOf, temporaryFor } from './temporary.ts';
 
@@ -27,10 +27,18 @@ export interface Place {
 export interface Laydown {
   /** Takes one finished file. Nothing is replaced yet. Throws Refusal. */
   write(path: string, bytes: Uint8Array): Promise<void>;
-  /** Replaces the former outputs. Answers warnings about files that were kept. Throws Refusal, after which `abort` still tidies. */
-  commit(manifest: Manifest): Promise<Problem[]>;
+  /** Replaces the former outputs. Answers warnings about files that were kept, and the stat of every file that is there now.
+   *  Throws Refusal, after which `abort` still tidies. */
+  commit(manifest: Manifest): Promise<{ readonly warnings: Problem[]; readonly files: readonly LaidFile[] }>;
   /** Removes what was written for nothing. What was replaced already stays, and stays marked. */
   abort(): Promise<void>;
+}
+
+/** A file that was laid down, or was there already. */
+export interface LaidFile {
+  readonly path: string;
+  readonly sha256: string;
+  readonly stat: FileStat;
 }
 
 /** How long a rename is tried again while another program holds the file. */
@@ -46,6 +54,7 @@ export function openLaydown(disk: Disk, place: Place, wait: Pause = pause): Layd
   const staged: { readonly temporary: string; readonly path: string }[] = [];
   const madeFolders: string[] = [];
   const checkedFolders = new Set<string>();
+  const stats = new Map<string, FileStat>();
   let marked: 'no' | 'by us' | 'for good' = 'no';
 
   return { write, commit, abort };
@@ -54,11 +63,11 @@ export function openLaydown(disk: Disk, place: Place, wait: Pause = pause): Layd
     await checkPlace(path);
     if (await holds(path, bytes)) return;
     const temporary = temporaryFor(path);
-    await orRefuse(path, bytes.length, () => writeNew(temporary, bytes));
+    stats.set(path, await orRefuse(path, bytes.length, () => writeNew(temporary, bytes)));
     staged.push({ temporary, path });
   }
 
-  async function commit(manifest: Manifest): Promise<Problem[]> {
+  async function commit(manifest: Manifest) {
     const { manifestPath } = place;
     await checkPlace(manifestPath);
     const text = new TextEncoder().encode(writeManifest(manifest));
@@ -72,7 +81,7 @@ export function openLaydown(disk: Disk, place: Place, wait: Pause = pause): Layd
     const warnings = await removeUnedited(disk, forgotten, place.within);
     const wasMarked = (await disk.kind(next)) !== null;
     const temporary = temporaryFor(manifestPath);
-    await orRefuse(manifestPath, text.length, () => writeNew(temporary, text));
+    stats.set(manifestPath, await orRefuse(manifestPath, text.length, () => writeNew(temporary, text)));
     staged.unshift({ temporary, path: next });
     await replace(temporary, next, manifestPath);
     staged.shift();
@@ -93,7 +102,12 @@ export function openLaydown(disk: Disk, place: Place, wait: Pause = pause): Layd
     await disk.flushFolder(parentOf(manifestPath));
     marked = 'no';
     madeFolders.length = 0;
-    return warnings;
+    const all = [...filesOf(manifest, manifestPath), [manifestPath, sha256Of(text)] as const];
+    const files = all.flatMap(([path, sha256]) => {
+      const stat = stats.get(path);
+      return stat === undefined ? [] : [{ path, sha256, stat }];
+    });
+    return { warnings, files };
   }
 
   async function abort(): Promise<void> {
@@ -113,12 +127,15 @@ export function openLaydown(disk: Disk, place: Place, wait: Pause = pause): Layd
   }
 
   async function holds(path: string, bytes: Uint8Array): Promise<boolean> {
-    if ((await disk.stat(path))?.size !== bytes.length) return false;
+    const stat = await disk.stat(path);
+    if (stat?.size !== bytes.length) return false;
     const present = await disk.read(path);
-    return present !== null && Buffer.compare(present, bytes) === 0;
+    if (present === null || Buffer.compare(present, bytes) !== 0) return false;
+    stats.set(path, stat);
+    return true;
   }
 
-  async function writeNew(path: string, bytes: Uint8Array): Promise<void> {
+  async function writeNew(path: string, bytes: Uint8Array): Promise<FileStat> {
     for (let tries = 0; ; tries++) {
       try {
         await makeFolder(parentOf(path));
@@ -195,8 +212,7 @@ export async function removeUnedited(
     if (pathBelow(allowed, await disk.realPath(parentOf(path))) === null) continue;
     const bytes = await disk.read(path);
     if (bytes === null) continue;
-    if (recorded.includes(createHash('sha256').update(bytes).digest('hex')))
-      await orRefuse(path, 0, () => disk.remove(path));
+    if (recorded.includes(sha256Of(bytes))) await orRefuse(path, 0, () => disk.remove(path));
     else warnings.push(warning('output-edited', {}, { path }));
   }
   return warnings;
@@ -219,6 +235,10 @@ export async function orRefuse<T>(path: string, bytes: number, act: () => Promis
         return refuse('output-unwritable', { reason: error.reason }, { path });
     }
   }
+}
+
+function sha256Of(bytes: Uint8Array): string {
+  return createHash('sha256').update(bytes).digest('hex');
 }
 
 async function quietly(tidy: () => Promise<void>): Promise<void> {

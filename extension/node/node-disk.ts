@@ -24,10 +24,13 @@ export const nodeDisk: Disk = {
   },
   async stat(path): Promise<FileStat | null> {
     const stats = attempt(() => fs.statSync(path, { throwIfNoEntry: false })) ?? null;
-    return stats?.isFile() ? { size: stats.size, mtimeMs: stats.mtimeMs, inode: stats.ino } : null;
+    return stats?.isFile() ? statOf(stats) : null;
+  },
+  async areStill(paths, numbers) {
+    return paths.every((path, at) => isStill(path, numbers, 3 * at));
   },
   async write(path, bytes) {
-    change(path, () => write(path, bytes));
+    return change(path, () => write(path, bytes));
   },
   async rename(from, to) {
     change(to, () => fs.renameSync(from, to));
@@ -63,6 +66,17 @@ function entryOf(folder: string, entry: fs.Dirent): FileEntry {
   return { name, kind: stats.isDirectory() ? 'folder-link' : stats.isFile() ? 'file-link' : 'other' };
 }
 
+function statOf(stats: fs.Stats): FileStat {
+  return { size: stats.size, mtimeMs: stats.mtimeMs, inode: stats.ino };
+}
+
+/** One call for each of a hundred thousand files: nothing else may be done for it. */
+function isStill(path: string, numbers: readonly number[], at: number): boolean {
+  const stats = attempt(() => fs.statSync(path, { throwIfNoEntry: false })) ?? null;
+  if (stats === null || !stats.isFile()) return false;
+  return stats.size === numbers[at] && stats.mtimeMs === numbers[at + 1] && stats.ino === numbers[at + 2];
+}
+
 function readHead(path: string, byteCount: number): Uint8Array {
   const handle = fs.openSync(path, 'r');
   try {
@@ -87,17 +101,20 @@ function realPath(path: string): string {
   return `${realPath(parent).replace(/\/$/, '')}/${path.slice(path.lastIndexOf('/') + 1)}`;
 }
 
-function write(path: string, bytes: Uint8Array): void {
+function write(path: string, bytes: Uint8Array): FileStat {
+  let stat: FileStat;
   const handle = fs.openSync(path, 'wx');
   try {
     for (let written = 0; written < bytes.length; ) written += fs.writeSync(handle, bytes, written);
     fs.fsyncSync(handle);
+    stat = statOf(fs.fstatSync(handle));
   } catch (error) {
     fs.closeSync(handle);
     fs.rmSync(path, { force: true });
     throw error;
   }
   fs.closeSync(handle);
+  return stat;
 }
 
 function flush(folder: string): void {

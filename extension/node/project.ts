@@ -1,6 +1,6 @@
 import { type Problem, Refusal } from '../../core/problem.ts';
 import { manifestPath, sourcePath } from '../../core/treatment/names.ts';
-import { pathBelow, resolvePath } from '../../core/treatment/path.ts';
+import { baseName, pathBelow, resolvePath } from '../../core/treatment/path.ts';
 import { findRoot } from '../../core/treatment/root.ts';
 import { loadRoot } from '../../core/treatment/root-settings.ts';
 import { type Query, type RootSelection, type SelectedTexture, selectSources } from '../../core/treatment/select.ts';
@@ -105,9 +105,25 @@ export function referenceTo(
   manifest: string,
   root: string,
 ): { readonly reference: string; readonly base: 'root' | null } {
-  const way = relative(parentOf(manifest), path);
-  if (way !== null) return { reference: way.normalize('NFC'), base: null };
+  const way = wayBetween(parentOf(manifest), parentOf(path));
+  if (way !== null) return { reference: joinWay(way, baseName(path)).normalize('NFC'), base: null };
   return { reference: (pathBelow(root, path) ?? path).normalize('NFC'), base: 'root' };
+}
+
+/** Thousands of textures lie in a few folders: the way of the last two is kept. */
+function wayBetween(from: string, to: string): string | null {
+  if (from !== lastWay.from || to !== lastWay.to) lastWay = { from, to, way: relative(from, to) };
+  return lastWay.way;
+}
+
+let lastWay: { readonly from: string; readonly to: string; readonly way: string | null } = {
+  from: '',
+  to: '',
+  way: null,
+};
+
+function joinWay(way: string, name: string): string {
+  return way === '.' ? name : `${way}/${name}`;
 }
 
 function openRoot(

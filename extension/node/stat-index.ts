@@ -4,7 +4,8 @@ import { type Disk, DiskError, type FileStat } from './disk.ts';
 import { parentOf } from './path.ts';
 import { temporaryFor } from './temporary.ts';
 
-// What files hashed to when they were last read, so that an unchanged one costs a stat. One text file for each root:
+// What files hashed to when they were last read or written, so that an unchanged one costs a stat. One text file for each folder
+// of a root, read when a file of that folder is asked for:
 //
 //   sizeproof stat index 1
 //   <sha256> <size> <mtime in ms> <inode> <when hashed, ms since 1970> <path relative to the root>
@@ -14,8 +15,22 @@ import { temporaryFor } from './temporary.ts';
 export interface StatIndex {
   /** SHA-256 of a file, `null` where there is none. Reads it only if its stat moved, or is too fresh to trust. */
   hash(path: string): Promise<string | null>;
+  /** Takes what a build has just written; `settle` makes use of it. */
+  learn(path: string, sha256: string, stat: FileStat): void;
+  /** Looks again at what was learned, and keeps what has stayed as it was. */
+  settle(): Promise<void>;
+  /** What a file hashed to and its stat at that time, where both may be relied on without reading it; else `null`. */
+  trusted(path: string): (FileStat & { readonly sha256: string }) | null;
   /** Keeps what was learned, if anything was. Failing is harmless. */
   save(): Promise<void>;
+}
+
+/** The files of one folder. */
+interface Shard {
+  /** `null` where nothing is kept. */
+  readonly file: string | null;
+  readonly entries: Map<string, Entry>;
+  changed: boolean;
 }
 
 interface Entry extends FileStat {
@@ -39,22 +54,22 @@ export async function openStatIndex(
   root: string,
   now: () => number = Date.now,
 ): Promise<StatIndex> {
-  const file = cacheFolder === null ? null : joinPath(cacheFolder, `${sha256Of(Buffer.from(root)).slice(0, 16)}.txt`);
-  const bytes = file === null ? null : await disk.read(file);
-  const entries = bytes === null ? new Map<string, Entry>() : parse(Buffer.from(bytes).toString());
-  let changed = false;
+  const shards = new Map<string, Shard>();
+  const learned: { readonly path: string; readonly sha256: string; readonly stat: FileStat }[] = [];
 
-  return { hash, save };
+  return { hash, learn, settle, trusted, save };
 
   async function hash(path: string): Promise<string | null> {
     const stat = await disk.stat(path);
     const key = keyOf(path);
+    const shard = await shardOf(path);
+    const { entries } = shard;
     const known = entries.get(key);
     if (stat === null) {
-      if (known !== undefined) changed = entries.delete(key);
+      if (known !== undefined) shard.changed = entries.delete(key);
       return null;
     }
-    if (known !== undefined && isSame(known, stat) && known.hashedMs - known.mtimeMs >= FRESH_MS) {
+    if (known !== undefined && isSame(known, stat) && isSettled(known)) {
       known.used = true;
       return known.sha256;
     }
@@ -63,23 +78,48 @@ export async function openStatIndex(
     if (bytes === null) return null;
     const sha256 = sha256Of(bytes);
     entries.set(key, { ...stat, sha256, hashedMs, used: true });
-    changed = true;
+    shard.changed = true;
     return sha256;
   }
 
-  async function save(): Promise<void> {
-    if (file === null || !changed) return;
-    const text = print(entries);
-    const temporary = temporaryFor(file);
-    try {
-      await disk.makeFolder(parentOf(file));
-      await disk.write(temporary, text);
-      await disk.rename(temporary, file);
-      changed = false;
-    } catch (error) {
-      if (!(error instanceof DiskError)) throw error;
-      await disk.remove(temporary).catch(() => undefined);
+  function learn(path: string, sha256: string, stat: FileStat): void {
+    learned.push({ path, sha256, stat });
+  }
+
+  async function settle(): Promise<void> {
+    for (const { path, sha256, stat } of learned.splice(0)) {
+      const hashedMs = now();
+      const present = await disk.stat(path);
+      // What was written meanwhile has another time stamp.
+      if (present === null || !isSame(stat, present)) continue;
+      const shard = await shardOf(path);
+      shard.entries.set(keyOf(path), { ...stat, sha256, hashedMs, used: true });
+      shard.changed = true;
     }
+  }
+
+  function trusted(path: string): Entry | null {
+    const entry = shards.get(parentOf(path))?.entries.get(keyOf(path));
+    return entry?.used && isSettled(entry) ? entry : null;
+  }
+
+  async function save(): Promise<void> {
+    for (const shard of shards.values()) {
+      if (shard.file === null || !shard.changed) continue;
+      if (await replaceFile(disk, shard.file, print(shard.entries))) shard.changed = false;
+    }
+  }
+
+  async function shardOf(path: string): Promise<Shard> {
+    const folder = parentOf(path);
+    const known = shards.get(folder);
+    if (known !== undefined) return known;
+    const file = cacheFile(cacheFolder, root, keyOf(folder), 'txt');
+    const bytes = file === null ? null : await disk.read(file);
+    const entries = bytes === null ? new Map<string, Entry>() : parse(Buffer.from(bytes).toString());
+    const shard = { file, entries, changed: false };
+    shards.set(folder, shard);
+    return shard;
   }
 
   /** Paths below the root are kept relative to it: shorter, and alike on drives that move. */
@@ -100,7 +140,32 @@ export function cacheFolder(env: Readonly<Record<string, string | undefined>>, p
   return base ? joinPath(base.replaceAll('\\', '/'), 'sizeproof') : null;
 }
 
-function isSame(entry: Entry, stat: FileStat): boolean {
+/** Where the cache keeps what is known of one folder of a root. */
+export function cacheFile(cacheFolder: string | null, root: string, folder: string, ending: string): string | null {
+  if (cacheFolder === null) return null;
+  return joinPath(cacheFolder, `${sha256Of(Buffer.from(`${root}\n${folder}`)).slice(0, 24)}.${ending}`);
+}
+
+/** Writes a file of the cache anew, whole at each instant. Failing is harmless; answers whether it went well. */
+export async function replaceFile(disk: Disk, file: string, bytes: Uint8Array): Promise<boolean> {
+  const temporary = temporaryFor(file);
+  try {
+    await disk.makeFolder(parentOf(file));
+    await disk.write(temporary, bytes);
+    await disk.rename(temporary, file);
+    return true;
+  } catch (error) {
+    if (!(error instanceof DiskError)) throw error;
+    await disk.remove(temporary).catch(() => undefined);
+    return false;
+  }
+}
+
+function isSettled(entry: Entry): boolean {
+  return entry.hashedMs - entry.mtimeMs >= FRESH_MS;
+}
+
+function isSame(entry: FileStat, stat: FileStat): boolean {
   return entry.size === stat.size && entry.mtimeMs === stat.mtimeMs && entry.inode === stat.inode;
 }
 
@@ -128,6 +193,6 @@ function print(entries: ReadonlyMap<string, Entry>): Uint8Array {
   return Buffer.from(`${header}\n${lines.join('\n')}\n`);
 }
 
-function sha256Of(bytes: Uint8Array): string {
+export function sha256Of(bytes: Uint8Array): string {
   return createHash('sha256').update(bytes).digest('hex');
 }

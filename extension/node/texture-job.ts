@@ -6,7 +6,7 @@ import { type Problem, placed, Refusal, refuse } from '../../core/problem.ts';
 import { joinPath } from '../../core/treatment/path.ts';
 import type { Treatment } from '../../core/treatment/treatment.ts';
 import type { Disk } from './disk.ts';
-import { openLaydown, type Pause } from './laydown.ts';
+import { type LaidFile, openLaydown, type Pause } from './laydown.ts';
 
 /** One texture to build, as it is posted to a worker. Paths are absolute unless they say otherwise. */
 export interface TextureJob {
@@ -36,7 +36,13 @@ export interface JobFile {
 
 /** What became of a job. Warnings name files that were kept. */
 export type Outcome =
-  | { readonly kind: 'built'; readonly manifest: Manifest; readonly warnings: readonly Problem[] }
+  | {
+      readonly kind: 'built';
+      readonly manifest: Manifest;
+      /** As they lie there now, the manifest among them. */
+      readonly files: readonly LaidFile[];
+      readonly warnings: readonly Problem[];
+    }
   | { readonly kind: 'measured'; readonly halos: readonly Halo[] }
   | { readonly kind: 'failed'; readonly problem: Problem }
   | { readonly kind: 'cancelled' };
@@ -84,8 +90,8 @@ export async function runTextureJob(job: TextureJob, bench: Bench): Promise<Outc
       await laydown.abort();
       return { kind: 'cancelled' };
     }
-    const warnings = await laydown.commit(job.base === null ? manifest : { ...manifest, base: job.base });
-    return { kind: 'built', manifest, warnings };
+    const laid = await laydown.commit(job.base === null ? manifest : { ...manifest, base: job.base });
+    return { kind: 'built', manifest, ...laid };
   } catch (error) {
     await laydown.abort();
     if (error instanceof Refusal) return { kind: 'failed', problem: placed(error.problem, job.image.path) };

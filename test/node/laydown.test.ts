@@ -7,7 +7,7 @@ import { openLaydown } from '../../extension/node/laydown.ts';
 import { nodeDisk } from '../../extension/node/node-disk.ts';
 import { findTraces, sweep } from '../../extension/node/sweep.ts';
 import { temporaryFor, temporaryOwner } from '../../extension/node/temporary.ts';
-import { sampleManifest } from '../manifest/sample.ts';
+import { sampleManifest, sha256 as sha256Of } from '../manifest/sample.ts';
 import { countingDisk, Died, dyingDisk, type Ending, faultyDisk } from './disks.ts';
 import { filesBelow, newFolder, putFiles } from './folder.ts';
 
@@ -42,8 +42,13 @@ const problemOf = (build: Promise<unknown>) =>
 
 test('a build takes the place of another: files no longer listed go, the rest is new', async () => {
   const folder = newFolder(built(old));
-  expect(await lay(nodeDisk, folder, now)).toEqual([]);
+  const { warnings, files } = await lay(nodeDisk, folder, now);
+  expect(warnings).toEqual([]);
   expect(filesBelow(folder)).toEqual(built(now));
+  expect(files.map((file) => file.path.slice(folder.length + 1)).sort()).toEqual(Object.keys(built(now)).sort());
+  for (const { path, sha256, stat } of files) {
+    expect([sha256, stat]).toEqual([sha256Of(fs.readFileSync(path)), await nodeDisk.stat(path)]);
+  }
 });
 
 test('the .next manifest is there before the first rename, and goes last', async () => {
@@ -116,7 +121,8 @@ test('equal files are not written again', async () => {
 
 test('an edited file that is no longer listed is kept and named', async () => {
   const folder = newFolder({ ...built(old), 'leaf.ktx2': 'by hand' });
-  expect(await lay(nodeDisk, folder, now)).toMatchObject([{ code: 'output-edited', path: `${folder}/leaf.ktx2` }]);
+  const { warnings } = await lay(nodeDisk, folder, now);
+  expect(warnings).toMatchObject([{ code: 'output-edited', path: `${folder}/leaf.ktx2` }]);
   expect(filesBelow(folder)).toEqual({ ...built(now), 'leaf.ktx2': 'by hand' });
 });
 
