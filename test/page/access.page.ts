@@ -4,11 +4,12 @@ import type { Browser, Page } from 'playwright-core';
 import { afterAll, beforeAll, expect, test } from 'vitest';
 import { crc32 } from '../../core/codec/crc.ts';
 import { encodePng } from '../../core/codec/png/encode.ts';
+import { type HostEvent, PROTOCOL } from '../../core/protocol.ts';
 import { deflate } from '../../extension/node/deflate.ts';
 import { noiseRaster } from '../fixtures/noise.ts';
 import { launchBrowser } from '../host/browser.ts';
 import { changeTheme, type Showing, showPage, waitForPrints } from './browser.ts';
-import { type Recording, record, recordDemo, stale } from './recorded.ts';
+import { firstPrintOf, type Recording, record, recordDemo, stale } from './recorded.ts';
 import { troubleOf } from './stage.ts';
 import type { ThemeName } from './themes.ts';
 
@@ -28,6 +29,10 @@ interface State {
   readonly marker: RegExp;
   readonly prints: number;
   readonly showing?: Showing;
+  /** A field by its name, and the value that shows that the page is in this state. */
+  readonly field?: readonly [name: string, value: string];
+  /** What the host tells meanwhile. */
+  readonly told?: HostEvent;
 }
 
 const two = [
@@ -39,7 +44,81 @@ const cobbles = (more: object) =>
   recordDemo('ground/cobbles.png', {}, kept({ sight: { kind: 'level', level: 4 }, ...more }));
 const pointer = `version https://git-lfs.github.com/spec/v1\noid sha256:${'0'.repeat(64)}\nsize 4567\n`;
 
+const viewOf = (path: string, show: string): State => ({
+  name: `${path} as ${show}`,
+  recording: () => recordDemo(path, {}, kept({ sight: { kind: 'level', level: 2 }, show })),
+  marker: /KiB|B$/,
+  prints: 2,
+  field: ['View', show],
+});
+
 const states: readonly State[] = [
+  ...['r', 'g', 'b', 'a', 'bare', 'overshoot'].map((show) => viewOf('foliage/alder-twig.png', show)),
+  { name: 'loading', recording: async () => ({ ...cobbles({}), held: 'held' }), marker: /Reading the file/, prints: 0 },
+  { name: 'empty', recording: () => record(new Uint8Array(0), 'a.png'), marker: /empty/, prints: 0 },
+  {
+    name: 'prints that do not agree',
+    recording: async () => {
+      const recording = cobbles({});
+      const first = await firstPrintOf(recording, { level: 4, target: null });
+      first.picture.codes[7] ^= 4;
+      return { ...recording, first };
+    },
+    marker: /differ in 1 of 3072 codes/,
+    prints: 2,
+  },
+  {
+    name: 'a file that is gone',
+    recording: () => cobbles({}),
+    marker: /no longer there/,
+    prints: 2,
+    told: { protocol: PROTOCOL, kind: 'source', revision: 2, present: false },
+  },
+  {
+    name: 'built',
+    recording: () => ({ ...recordDemo('ui/lantern.png', { state: { kind: 'built' } }), isBuilt: true }),
+    marker: /equals the build/,
+    prints: 1,
+  },
+  {
+    name: 'built otherwise',
+    recording: () => ({ ...recordDemo('ui/lantern.png', { state: { kind: 'built' } }), isBuilt: false }),
+    marker: /differs from the build/,
+    prints: 1,
+  },
+  {
+    name: 'difference of a channel',
+    recording: () => cobbles({ show: 'difference', metric: 'g', against: 'settings' }),
+    marker: /±16|16/,
+    prints: 2,
+    field: ['View', 'difference'],
+  },
+  { name: 'tiles', recording: () => cobbles({ tiles: true }), marker: /3×3/, prints: 2 },
+  {
+    name: 'bilinear',
+    recording: () => cobbles({ magnify: 'bilinear' }),
+    marker: /cobbles/,
+    prints: 2,
+    field: ['Texels', 'bilinear'],
+  },
+  {
+    name: 'a drawn line',
+    recording: () => cobbles({ line: 'drawn' }),
+    marker: /▲▼ overshoot/,
+    prints: 2,
+    field: ['Along', 'drawn'],
+  },
+  {
+    name: 'a kernel that cannot',
+    recording: () =>
+      recordDemo(
+        'ground/cobbles.png',
+        {},
+        kept({ slots: [two[0], { id: 1, kernel: { name: 'epx', params: {} }, change: {} }] }),
+      ),
+    marker: /epx only magnifies/,
+    prints: 0,
+  },
   { name: 'color', recording: () => cobbles({}), marker: /cobbles\.png/, prints: 2 },
   {
     name: 'a mask',
@@ -131,10 +210,14 @@ const states: readonly State[] = [
   { name: 'narrow', recording: () => cobbles({}), marker: /cobbles/, prints: 2, showing: { width: 400, height: 1400 } },
 ];
 
-test.each(states)('axe finds nothing in any theme: $name', async ({ recording, marker, prints, showing }) => {
+test.each(states)('axe finds nothing in any theme: $name', async (state) => {
+  const { recording, marker, prints, showing, field, told } = state;
   const { page, context } = await showPage(browser, await recording(), showing);
-  await page.getByText(marker).first().waitFor();
   if (prints > 0) await waitForPrints(page, prints);
+  if (told !== undefined) await page.evaluate((event) => window.postMessage(event, '*'), told);
+  await page.getByText(marker).first().waitFor();
+  if (field !== undefined)
+    expect(await page.getByRole('combobox', { name: field[0], exact: true }).inputValue()).toBe(field[1]);
   for (const theme of themes) {
     await changeTheme(page, theme);
     expect({ theme, violations: await violationsOf(page) }).toEqual({ theme, violations: [] });
@@ -225,15 +308,79 @@ test('a switch on the settings’ print begins a print beside it, which can be a
   await context.close();
 });
 
-test('text of twice the size and forced colors leave everything in reach', async () => {
-  const { page, context } = await showPage(browser, await cobbles({}), {
-    width: 640,
-    height: 900,
-    forcedColors: 'active',
-  });
+/** Twice the size: by the text's own size, and as an editor's zoom makes it, which leaves half the room. The narrowest is as an
+ *  editor among others. */
+test.each([
+  { name: 'text of twice the size', width: 1280, fontSize: 26 },
+  { name: 'zoomed to twice the size', width: 640, fontSize: 13 },
+  { name: '400 pixels wide', width: 400, fontSize: 13 },
+  { name: '400 pixels wide in forced colors', width: 400, fontSize: 13, forcedColors: 'active' },
+] as const)('nothing is cut off or overlaps: $name', async ({ width, fontSize, ...showing }) => {
+  const recording = recordDemo('foliage/alder-twig.png', {}, kept({ sight: { kind: 'level', level: 3 } }));
+  const { page, context } = await showPage(browser, recording, { width, height: 900, ...showing });
+  await page.evaluate((px) => document.documentElement.style.setProperty('--vscode-font-size', `${px}px`), fontSize);
   await waitForPrints(page, 2);
-  const wide = await page.evaluate(() => document.documentElement.scrollWidth - document.documentElement.clientWidth);
-  expect(wide).toBe(0);
+  await page.locator('size-axis .curve').first().waitFor({ state: 'attached' });
+  const found = await page.evaluate(() => {
+    const all: Element[] = [];
+    const visit = (root: Document | ShadowRoot): void => {
+      for (const element of Array.from(root.querySelectorAll('*'))) {
+        all.push(element);
+        if (element.shadowRoot !== null) visit(element.shadowRoot);
+      }
+    };
+    visit(document);
+    const name = (element: Element) => `${element.localName} "${element.textContent?.trim().slice(0, 30)}"`;
+    const cut = all.filter(
+      (element) =>
+        element.matches('button, select, input, h1, label, .badge') &&
+        (element.scrollHeight > element.clientHeight + 1 || element.scrollWidth > element.clientWidth + 1) &&
+        getComputedStyle(element).display !== 'inline' &&
+        element.clientHeight > 0,
+    );
+    const beyond = all.filter((element) => {
+      const box = element.getBoundingClientRect();
+      return element.matches('button, select, input, label') && (box.right > innerWidth + 1 || box.left < -1);
+    });
+    const texts = all
+      .filter((element) => element.matches('size-axis *, text') && element.localName === 'text')
+      .map((element) => ({ element, box: element.getBoundingClientRect() }));
+    const over = texts.flatMap(({ element, box }, i) =>
+      texts.slice(i + 1).flatMap((other) => {
+        const apart =
+          box.right <= other.box.left + 0.5 ||
+          other.box.right <= box.left + 0.5 ||
+          box.bottom <= other.box.top + 4 ||
+          other.box.bottom <= box.top + 4;
+        return apart ? [] : [`${name(element)} and ${name(other.element)}`];
+      }),
+    );
+    const { scrollWidth, clientWidth } = document.documentElement;
+    return { cut: cut.map(name), beyond: beyond.map(name), over, wide: scrollWidth - clientWidth };
+  });
+  expect(found).toEqual({ cut: [], beyond: [], over: [], wide: 0 });
+  await context.close();
+});
+
+test.each(['reduce', 'no-preference'] as const)('nothing moves by itself: %s', async (reducedMotion) => {
+  const { page, context } = await showPage(browser, await cobbles({ compare: 'swap' }), { reducedMotion });
+  await waitForPrints(page, 2);
+  const before = await page.locator('print-row').screenshot();
+  const moving = await page.evaluate(() => {
+    const found: string[] = [];
+    const visit = (root: Document | ShadowRoot): void => {
+      for (const element of Array.from(root.querySelectorAll('*'))) {
+        const { transitionDuration, animationName } = getComputedStyle(element);
+        if (transitionDuration !== '0s' || animationName !== 'none') found.push(element.localName);
+        if (element.shadowRoot !== null) visit(element.shadowRoot);
+      }
+    };
+    visit(document);
+    return [...found, ...document.getAnimations().map(String)];
+  });
+  expect(moving).toEqual([]);
+  await page.waitForTimeout(1000);
+  expect((await page.locator('print-row').screenshot()).equals(before)).toBe(true);
   await context.close();
 });
 

@@ -2,32 +2,46 @@ import { svg } from 'lit';
 import type { Treatment } from '../../../core/treatment/treatment.ts';
 import type { Stop } from './scale.ts';
 
-export const THUMB_TOP = 18;
+/** Height of the thumbs, in CSS pixels. */
 export const THUMB_HEIGHT = 74;
-export const CURVE_HEIGHT = 22;
 
 /** Where the rows of the axis lie, in CSS pixels from its top. */
 export interface Rows {
+  /** Baseline of a text in a row, from the row's top. */
+  readonly baseline: number;
+  readonly thumbs: number;
   readonly level: number;
   /** 0 where there are none. */
   readonly targets: number;
   /** 0 where there are no distances. */
   readonly meters: number;
   readonly curves: number;
+  /** Height of one curve. */
+  readonly curve: number;
   readonly height: number;
 }
 
-export function rowsOf(has: { readonly curves: number; readonly targets: boolean; readonly distances: boolean }): Rows {
-  const level = THUMB_TOP + THUMB_HEIGHT + 16;
-  const targets = level + 18;
-  const below = targets + (has.targets ? 16 : 0);
-  const curves = below + (has.distances ? 16 : 0) + (has.curves > 0 ? 4 : 0);
+/** `scale` is that of the text. */
+export function rowsOf(
+  has: { readonly curves: number; readonly targets: boolean; readonly distances: boolean },
+  scale: number,
+): Rows {
+  const line = 16 * scale;
+  const thumbs = line + 2;
+  const level = thumbs + THUMB_HEIGHT + 14;
+  const targets = level + line + 2;
+  const below = targets + (has.targets ? line : 0);
+  const curves = below + (has.distances ? line : 0) + (has.curves > 0 ? 4 : 0);
+  const curve = 22 * scale;
   return {
+    baseline: 12 * scale,
+    thumbs,
+    curve,
     level,
     targets: has.targets ? targets : 0,
     meters: has.distances ? below : 0,
     curves,
-    height: curves + has.curves * CURVE_HEIGHT + 4,
+    height: curves + has.curves * curve + 4,
   };
 }
 
@@ -41,9 +55,9 @@ export function drawSight(x: number, rows: Rows) {
 }
 
 /** The longer side where there is little room, both where sides differ and there is more. */
-export function sizeText({ extent }: Stop, spacing: number): string {
+export function sizeText({ extent }: Stop, spacing: number, scale: number): string {
   const { width, height } = extent;
-  return width === height || spacing < 64 ? String(Math.max(width, height)) : `${width}×${height}`;
+  return width === height || spacing < 64 * scale ? String(Math.max(width, height)) : `${width}×${height}`;
 }
 
 /** Stops closer than this share a place: of one size but for rounding. */

@@ -24,13 +24,13 @@ export class SightFields extends LitElement {
         padding: 4px 10px 6px;
       }
       input {
-        width: 64px;
+        width: 5.4em;
       }
       .size {
-        width: 88px;
+        width: 7.4em;
       }
       .small {
-        width: 52px;
+        width: 4.4em;
       }
       .gap {
         flex: 1;

@@ -16,7 +16,7 @@ export const axisStyles = css`
     height: 100%;
     overflow: visible;
     font-family: var(--proof-mono);
-    font-size: 11px;
+    font-size: calc(var(--proof-font-size) * 0.85);
     user-select: none;
   }
   text {

@@ -1,6 +1,7 @@
 import { html, LitElement, nothing, svg } from 'lit';
 import type { Picture } from '../../../core/proof/want.ts';
 import { controls } from '../form/controls.ts';
+import { textScale } from '../form/text-scale.ts';
 import { isProblem } from '../proof/bench-link.ts';
 import type { Model } from '../proof/model.ts';
 import { figure, meters } from '../words/figures.ts';
@@ -9,7 +10,6 @@ import { type Curve, drawCurve, isBeyond } from './curve.ts';
 import { curvesOf } from './curves.ts';
 import { distanceOf } from './lod.ts';
 import {
-  CURVE_HEIGHT,
   drawSight,
   isFirstAt,
   isShipped,
@@ -19,7 +19,6 @@ import {
   SAME_PLACE,
   sizeText,
   THUMB_HEIGHT,
-  THUMB_TOP,
 } from './rows.ts';
 import { type AxisScale, axisScale, type Stop, stopNear } from './scale.ts';
 import { goToWorst, sightBetween, sightOf, stepFrom, valueText } from './sight.ts';
@@ -31,10 +30,16 @@ const SNAP = 7;
 
 /** The size axis: levels and targets from large to small, each at its true size, what is measured on them, and the sight. */
 export class SizeAxis extends LitElement {
-  static override properties = { model: { attribute: false }, tick: { type: Number }, width: { state: true } };
+  static override properties = {
+    model: { attribute: false },
+    tick: { type: Number },
+    width: { state: true },
+    textScale: { state: true },
+  };
   declare model: Model | null;
   declare tick: number;
   declare width: number;
+  declare textScale: number;
   readonly #observer = new ResizeObserver(([entry]) => {
     this.width = entry.contentRect.width;
   });
@@ -47,6 +52,7 @@ export class SizeAxis extends LitElement {
     this.model = null;
     this.tick = 0;
     this.width = 0;
+    this.textScale = 1;
   }
 
   override connectedCallback(): void {
@@ -61,11 +67,11 @@ export class SizeAxis extends LitElement {
 
   /** Room at the left for the names of rows; narrow pages put the names into the rows. */
   get #gutter(): number {
-    return this.width < 620 ? 0 : 96;
+    return this.width < 620 * this.textScale ? 0 : 96 * this.textScale;
   }
 
   #scale(stops: readonly Stop[]): AxisScale {
-    return axisScale(stops, Math.max(120, this.width - this.#gutter), this.width < 620 ? 26 : 54);
+    return axisScale(stops, Math.max(120, this.width - this.#gutter), (this.#gutter === 0 ? 26 : 54) * this.textScale);
   }
 
   override render() {
@@ -75,19 +81,22 @@ export class SizeAxis extends LitElement {
     if (model === null || seen === null || this.width === 0) return html`<div class="plot"></div>`;
     const scale = this.#scale(stops);
     const curves = curvesOf(model);
-    const rows = rowsOf({
-      curves: curves.length,
-      targets: stops.some(({ kind }) => kind !== 'level'),
-      distances: model.outlook !== null,
-    });
+    const rows = rowsOf(
+      {
+        curves: curves.length,
+        targets: stops.some(({ kind }) => kind !== 'level'),
+        distances: model.outlook !== null,
+      },
+      this.textScale,
+    );
     const value = valueText(model);
     return html`
-      <div class="plot" data-height=${rows.height}>
+      <div class="plot" data-height=${rows.height} data-thumbs=${rows.thumbs}>
         ${stops.map((stop) => html`<canvas class="thumb" aria-hidden="true" data-stop=${stop.label}></canvas>`)}
         <svg aria-hidden="true">
           <g transform=${`translate(${this.#gutter} 0)`}>
             ${this.#levels(model, stops, scale, rows)}
-            ${curves.map((curve, i) => drawCurve(curve, scale, rows.curves + i * CURVE_HEIGHT, CURVE_HEIGHT))}
+            ${curves.map((curve, i) => drawCurve(curve, scale, rows.curves + i * rows.curve, rows.curve))}
             ${drawSight(scale.x(seen.lod), rows)}
           </g>
           ${this.#names(curves, rows, seen.lod)}
@@ -105,7 +114,7 @@ export class SizeAxis extends LitElement {
           @pointermove=${this.#move}
           @keydown=${this.#key}
         ></div>
-        ${curves.flatMap((curve, i) => this.#beyond(model, curve, scale, rows.curves + i * CURVE_HEIGHT))}
+        ${curves.flatMap((curve, i) => this.#beyond(model, curve, scale, rows.curves + (i + 0.5) * rows.curve))}
       </div>
     `;
   }
@@ -122,16 +131,16 @@ export class SizeAxis extends LitElement {
         const here = model.seen!.stop?.label === stop.label && model.seen!.stop.kind === stop.kind ? 'here' : '';
         if (stop.kind !== 'level') {
           return svg`<path class=${stop.kind} d=${`M${x} ${rail - 4.5}l4.5 4.5l-4.5 4.5l-4.5 -4.5z`}></path>
-            ${isFirstAt(stops, stop) ? svg`<text x=${x} y=${rows.targets + 11} class=${here}>${labelsAt(stops, stop)}</text>` : nothing}`;
+            ${isFirstAt(stops, stop) ? svg`<text x=${x} y=${rows.targets + rows.baseline} class=${here}>${labelsAt(stops, stop)}</text>` : nothing}`;
         }
-        const crowded = spacing < 34 && stop.lod % 2 === 1;
+        const crowded = spacing < 34 * this.textScale && stop.lod % 2 === 1;
         return svg`<line class="tick" x1=${x} x2=${x} y1=${rail - 4} y2=${rail + 4}></line>
-          <text class="${here} ${shipped}" x=${x} y=${rows.level + 13}>${shipped === '' ? stop.label : `(${stop.label})`}</text>
-          ${crowded ? nothing : svg`<text class="${here} ${shipped}" x=${x} y="12">${sizeText(stop, spacing)}</text>`}
+          <text class="${here} ${shipped}" x=${x} y=${rows.level + rows.baseline + 1}>${shipped === '' ? stop.label : `(${stop.label})`}</text>
+          ${crowded ? nothing : svg`<text class="${here} ${shipped}" x=${x} y=${rows.baseline}>${sizeText(stop, spacing, this.textScale)}</text>`}
           ${
             outlook === null || crowded
               ? nothing
-              : svg`<text x=${x} y=${rows.meters + 11} class="faint">${meters(distanceOf(stop.lod, outlook))}</text>`
+              : svg`<text x=${x} y=${rows.meters + rows.baseline} class="faint">${meters(distanceOf(stop.lod, outlook))}</text>`
           }`;
       })}
     `;
@@ -139,30 +148,30 @@ export class SizeAxis extends LitElement {
 
   #names(curves: readonly Curve[], rows: Rows, lod: number) {
     const name = (text: string, y: number) => svg`<text class="name" x="10" y=${y}>${text}</text>`;
-    if (this.#gutter === 0) return curves.map((curve, i) => name(curve.name, rows.curves + i * CURVE_HEIGHT + 9));
+    if (this.#gutter === 0) return curves.map((curve, i) => name(curve.name, rows.curves + i * rows.curve + 9));
     return svg`
-      ${name(t('size'), 12)}
-      ${name(t('true size'), 30)}
-      ${name(t('level'), rows.level + 13)}
-      ${rows.targets > 0 ? name(t('target'), rows.targets + 11) : nothing}
-      ${rows.meters > 0 ? name(t('meters'), rows.meters + 11) : nothing}
+      ${name(t('size'), rows.baseline)}
+      ${name(t('true size'), rows.thumbs + rows.baseline)}
+      ${name(t('level'), rows.level + rows.baseline + 1)}
+      ${rows.targets > 0 ? name(t('target'), rows.targets + rows.baseline) : nothing}
+      ${rows.meters > 0 ? name(t('meters'), rows.meters + rows.baseline) : nothing}
       ${curves.map((curve, i) => {
         const at = curve.points.find((point) => point.lod === Math.round(lod));
         const text = at === undefined ? curve.name : `${curve.name} ${curve.format(at.value)}`;
-        return name(text, rows.curves + i * CURVE_HEIGHT + 15);
+        return name(text, rows.curves + (i + 0.68) * rows.curve);
       })}
     `;
   }
 
   /** Where a curve leaves its limit: a button that takes the sight there, and the cursor to the worst texel. */
-  #beyond(model: Model, curve: Curve, scale: AxisScale, top: number) {
+  #beyond(model: Model, curve: Curve, scale: AxisScale, middle: number) {
     return curve.points
       .filter(({ value }) => isBeyond(curve, value))
       .map(
         ({ lod, value }) => html`<button
           class="worst"
           data-x=${this.#gutter + scale.x(lod)}
-          data-y=${top + CURVE_HEIGHT / 2}
+          data-y=${middle}
           aria-label=${t('{name} is beyond its limit at level {level}: {value}. Go there.', {
             name: curve.name,
             level: lod,
@@ -174,6 +183,7 @@ export class SizeAxis extends LitElement {
   }
 
   override updated(): void {
+    this.textScale = textScale(this);
     const plot = this.renderRoot.querySelector<HTMLElement>('.plot');
     if (plot !== null && plot.dataset.height !== undefined) plot.style.height = `${plot.dataset.height}px`;
     for (const button of this.renderRoot.querySelectorAll<HTMLElement>('.worst')) {
@@ -211,7 +221,7 @@ export class SizeAxis extends LitElement {
       const snap = (length: number): number => Math.round(length * ratio) / ratio;
       canvas.style.left = `${snap(this.#gutter + scale.x(stop.lod) - canvas.width / ratio / 2)}px`;
       // They stand on the rail.
-      canvas.style.top = `${snap(THUMB_TOP + THUMB_HEIGHT - canvas.height / ratio)}px`;
+      canvas.style.top = `${snap(Number(this.renderRoot.querySelector<HTMLElement>('.plot')!.dataset.thumbs) + THUMB_HEIGHT - canvas.height / ratio)}px`;
     });
   }
 

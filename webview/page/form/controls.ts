@@ -25,7 +25,7 @@ export const controls = css`
     background: var(--proof-input);
     border: 1px solid var(--proof-input-line);
     border-radius: 2px;
-    height: 22px;
+    height: round(1.7em, 1px);
     padding: 0 6px;
     margin: 0;
   }
@@ -37,6 +37,7 @@ export const controls = css`
   }
   input[type='text'],
   input[type='number'] {
+    height: round(1.85em, 1px);
     font-family: var(--proof-mono);
     font-size: var(--proof-mono-size);
   }
@@ -48,8 +49,8 @@ export const controls = css`
   }
   input[type='checkbox'] {
     margin: 0;
-    width: 14px;
-    height: 14px;
+    width: 1.08em;
+    height: 1.08em;
     accent-color: var(--proof-accent);
   }
   button {

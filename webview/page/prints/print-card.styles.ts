@@ -14,7 +14,7 @@ export const cardStyles = css`
     display: flex;
     align-items: center;
     gap: 6px;
-    min-height: 30px;
+    min-height: 2.3em;
     padding: 3px 6px 3px 10px;
     border-bottom: 1px solid var(--proof-line);
     flex-wrap: wrap;
@@ -58,22 +58,22 @@ export const cardStyles = css`
     color: var(--proof-quiet);
   }
   input.param-value {
-    width: 46px;
-    height: 20px;
+    width: 3.9em;
+    height: round(1.65em, 1px);
     padding: 0 4px;
     color: var(--proof-input-text);
   }
   select {
-    height: 20px;
+    height: round(1.55em, 1px);
     font-weight: 600;
-    max-width: 120px;
+    max-width: 9.3em;
   }
   .gap {
     flex: 1;
   }
   .remove {
-    width: 20px;
-    height: 20px;
+    width: round(1.55em, 1px);
+    height: round(1.55em, 1px);
     padding: 0;
     line-height: 1;
   }
@@ -83,11 +83,11 @@ export const cardStyles = css`
     display: flex;
     flex-wrap: wrap;
     gap: 0 12px;
-    min-height: 27px;
+    min-height: 2.1em;
     align-content: start;
   }
   footer.tall {
-    min-height: 42px;
+    min-height: 3.3em;
   }
   .figure b {
     font-weight: 400;

@@ -46,7 +46,7 @@ export class PrintRow extends LitElement {
         display: grid;
         grid-template-rows: auto minmax(220px, 1fr) auto;
         grid-auto-flow: column;
-        grid-auto-columns: minmax(min(260px, 100%), 1fr);
+        grid-auto-columns: minmax(min(20em, 100%), 1fr);
         overflow-x: auto;
       }
       @media (max-width: 560px) {

@@ -39,6 +39,7 @@ export class ProofPage extends LitElement {
     css`
       :host {
         display: grid;
+        grid-template-columns: minmax(0, 1fr);
         grid-template-rows: auto auto auto auto auto minmax(340px, 1fr) auto auto;
         min-height: 100vh;
       }

@@ -24,25 +24,34 @@ export class ReadingsStrip extends LitElement {
   static override styles = [
     controls,
     css`
+      /* Lines between sections are the ground that shows through, however they wrap. */
       :host {
-        display: grid;
-        grid-template-columns: minmax(330px, 1.15fr) minmax(230px, 0.7fr) minmax(260px, 1.6fr);
+        display: flex;
+        flex-wrap: wrap;
+        gap: 1px;
         border-top: 1px solid var(--proof-line);
+        background: var(--proof-line);
       }
       section {
         padding: 6px 10px 8px;
-        min-width: 0;
-        border-right: 1px solid var(--proof-line);
+        min-width: min(100%, 12em);
+        background: var(--proof-ground);
       }
-      section:last-child {
-        border-right: 0;
+      .texel {
+        flex: 115 1 25em;
+      }
+      .footprint {
+        flex: 70 1 17em;
+      }
+      .cut {
+        flex: 160 1 26em;
       }
       header {
         display: flex;
         align-items: center;
         flex-wrap: wrap;
         gap: 4px 8px;
-        min-height: 24px;
+        min-height: 1.85em;
         margin-bottom: 4px;
       }
       .gap {
@@ -64,31 +73,13 @@ export class ReadingsStrip extends LitElement {
       }
       tbody th {
         white-space: normal;
-        min-width: 88px;
+        min-width: 6.8em;
       }
       tr.chosen th {
         font-weight: 600;
       }
       .wide {
         overflow-x: auto;
-      }
-      @media (max-width: 900px) {
-        :host {
-          grid-template-columns: 1fr 1fr;
-        }
-        section:last-child {
-          grid-column: 1 / -1;
-          border-top: 1px solid var(--proof-line);
-        }
-      }
-      @media (max-width: 560px) {
-        :host {
-          grid-template-columns: 1fr;
-        }
-        section {
-          border-right: 0;
-          border-top: 1px solid var(--proof-line);
-        }
       }
     `,
   ];
@@ -111,7 +102,7 @@ export class ReadingsStrip extends LitElement {
     const footprint = model.told({ kind: 'footprint', treatment: own, image, ...texel });
     const section = this.#section(model);
     return html`
-      <section aria-label=${t('Texel')}>
+      <section class="texel" aria-label=${t('Texel')}>
         <header>
           <span class="heading">${t('Texel')}</span>
           <span class="number">${texel.x}, ${texel.y}</span>
@@ -142,11 +133,11 @@ export class ReadingsStrip extends LitElement {
         </div>
         <p class="unseen" aria-live="polite">${place}: ${readings[0]?.codes.join(' ') ?? ''}</p>
       </section>
-      <section aria-label=${t('Footprint')}>
+      <section class="footprint" aria-label=${t('Footprint')}>
         <header><span class="heading">${t('Footprint')}</span><span class="quiet">${kernelName(model.slot, model)}</span></header>
         <footprint-plot .footprint=${footprint} .why=${whyNoWeights(model)}></footprint-plot>
       </section>
-      <section aria-label=${t('Cross-section')}>
+      <section class="cut" aria-label=${t('Cross-section')}>
         <header>
           <span class="heading">${t('Cross-section')}</span>
           ${this.#lineChoice(model)} ${this.#letterChoice(model)}

@@ -1,10 +1,12 @@
 import { css, html, LitElement, nothing, svg } from 'lit';
 import { controls } from '../form/controls.ts';
+import { textScale } from '../form/text-scale.ts';
 import { figure } from '../words/figures.ts';
 import { t } from '../words/t.ts';
 import { overshootsOf, type Section, sectionRows, type Track } from './section.ts';
 
 const HEIGHT = 112;
+/** Room for the numbers at the left, at the usual size of text. */
 const LEFT = 30;
 const BOTTOM = 14;
 
@@ -31,7 +33,7 @@ export class SectionPlot extends LitElement {
         width: 100%;
         height: ${HEIGHT}px;
         font-family: var(--proof-mono);
-        font-size: 10px;
+        font-size: calc(var(--proof-font-size) * 0.77);
         overflow: visible;
       }
       text {
@@ -68,7 +70,7 @@ export class SectionPlot extends LitElement {
         display: flex;
         flex-wrap: wrap;
         gap: 2px 12px;
-        padding-left: ${LEFT}px;
+        padding-left: calc(var(--proof-font-size) * ${LEFT / 13});
       }
       .legend svg {
         display: inline-block;
@@ -119,13 +121,14 @@ export class SectionPlot extends LitElement {
   override render() {
     const { section, width } = this;
     if (section === null || width < 40) return html`<svg aria-hidden="true"></svg>`;
-    const x = (share: number): number => LEFT + share * (width - LEFT - 4);
+    const left = LEFT * textScale(this);
+    const x = (share: number): number => left + share * (width - left - 4);
     const y = (code: number): number => 4 + (1 - code / 255) * (HEIGHT - BOTTOM - 8);
     return html`
       <svg aria-hidden="true">
         ${[0, 64, 128, 192, 255].map(
-          (code) => svg`<line class="rule" x1=${LEFT} x2=${x(1)} y1=${y(code)} y2=${y(code)}></line>
-            ${code % 128 === 0 || code === 255 ? svg`<text x=${LEFT - 5} y=${y(code) + 3}>${code}</text>` : nothing}`,
+          (code) => svg`<line class="rule" x1=${left} x2=${x(1)} y1=${y(code)} y2=${y(code)}></line>
+            ${code % 128 === 0 || code === 255 ? svg`<text x=${left - 5} y=${y(code) + 3}>${code}</text>` : nothing}`,
         )}
         <line class="here" x1=${x(this.cursor)} x2=${x(this.cursor)} y1="0" y2=${HEIGHT - BOTTOM}></line>
         <polyline class="source" points=${stairs(section.source, x, y)}></polyline>

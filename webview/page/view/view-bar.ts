@@ -38,11 +38,11 @@ export class ViewBar extends LitElement {
         gap: 4px;
       }
       .step {
-        width: 22px;
+        width: 1.7em;
         padding: 0;
       }
       .zoom {
-        min-width: 34px;
+        min-width: 2.9em;
         text-align: center;
       }
       canvas {
