@@ -24,6 +24,17 @@ const findings = {
     'The chain takes {bytes} bytes as {format}; the budget is {budget}. Drop levels, choose a smaller format or raise the budget.',
   'engine-plain':
     'The SIMD engine cannot run here: {reason}. The plain engine makes the same files in several times the time. Allow WebAssembly with SIMD to have the fast one.',
+  'review-harm': 'The change does harm: {harm}. Look at it, or set `review.harm` to report.',
+  'review-coverage':
+    'At {image} the change loses {loss} of the coverage; the limit is {limit}. Keep coverage, or raise `review.coverageLoss`.',
+  'review-light':
+    'At {image} the change moves mean luminance by {change}; the limit is {limit}. Look at it, or raise `review.lightChange`.',
+  'review-texels':
+    'The change loses {loss} of the texels; the limit is {limit}. Bring the former extent back, or raise `review.texelLoss`.',
+  'review-file':
+    'The file grows from {before} to {after}; the limit is {limit} more. Save it smaller, or raise `review.fileGrowth`.',
+  'review-memory':
+    'The levels take {bytes} bytes more on the GPU; the limit is {limit}. Ship fewer texels or channels, or raise `review.memoryGrowth`.',
   'match-unused': 'The glob {glob} of {rule} matches no texture. Correct or remove it.',
 } as const;
 
@@ -40,6 +51,14 @@ const usage = {
   'options-exclude': '{first} and {second} cannot be used together. Leave one of them out.',
   'missing-argument': '{command} needs {what}. Name at least one.',
   'several-roots': '--out takes one root, but the paths given lie in {count}: {roots}. Run once for each.',
+  'git-missing': 'Git is not installed, or not on the PATH. Install it, or compare two files with `review --files`.',
+  'git-no-repository': '{folder} is in no Git repository. Run this in one, or compare two files with `review --files`.',
+  'git-ref': 'There is no commit {ref} in this repository. Check its spelling, or fetch it.',
+  'git-ref-dash': 'The name {ref} begins with a dash and is not handed to Git. Name the commit by its id.',
+  'git-shallow':
+    'This clone is shallow and holds no {what}. Fetch more of its history, such as with `git fetch --unshallow`, and review again.',
+  'git-no-base': '{from} and {to} have no commit in common. Compare them as they are, with `{from}..{to}`.',
+  'git-failed': 'Git could not tell what changed: {reason}. Put that right and review again.',
   'settings-exist': 'There is a settings file here already; it was left as it is. Edit it, or remove it first.',
   'color-chunk':
     'The color chunk {chunk} says {value}, which cannot be obeyed. Convert the image to sRGB, or set `colorChunks` to `ignore`.',
@@ -137,6 +156,20 @@ const usage = {
 const sources = {
   'not-downloaded':
     'This is a Git LFS pointer, not the image: {bytes} bytes are expected. Fetch it with `git lfs pull` and build again.',
+  'git-object-missing':
+    'The repository has no object {id} for this file. Fetch it, and check the repository with `git fsck`.',
+  'git-object-damaged': 'Git cannot read object {id} of this file: {reason}. Check the repository with `git fsck`.',
+  'git-unmerged': 'This file has a merge conflict. Settle it, and review again.',
+  'submodule-missing':
+    'The submodule moved from {from} to {to}, and its repository here does not hold both. Fetch it with `git submodule update --init`.',
+  'lfs-missing':
+    'Git LFS has not fetched this version of the file: {bytes} bytes are expected. Fetch it with `git lfs fetch` and review again.',
+  'lfs-damaged':
+    'The copy of this file that Git LFS keeps has SHA-256 {found}, not {expected}. Remove it and fetch it again.',
+  'side-too-large': 'This version of the file has {bytes} bytes; up to {limit} are looked at. Raise `--memory`.',
+  'settings-broken':
+    'The settings of this texture cannot be read, so nobody knows how it is treated. Correct them first.',
+  'not-a-file': 'This is {kind}, not a file. There is no picture to compare.',
   'file-empty': 'The file is empty. Restore it or export it again.',
   'unknown-format':
     'The content is not PNG and the extension {extension} is none of {known}. Convert the image or exclude the file.',

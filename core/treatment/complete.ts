@@ -3,11 +3,14 @@ import { kernelFor } from './kernel-direction.ts';
 import { standard } from './keys.ts';
 import type { Patch } from './merge.ts';
 import { resolveTarget, type TargetSetting } from './target.ts';
-import type { Limits, Origin, Roughness, Texture, Treatment } from './treatment.ts';
+import type { Limits, Origin, ReviewLimits, Roughness, Texture, Treatment } from './treatment.ts';
 
 /** The treatment that merged rules make, built-in defaults filled in, and where each leaf is from, in the order of keys.ts.
  *  `path` is the settings file's. */
-export function completePatch(merged: Patch, path: string | undefined): Pick<Texture, 'treatment' | 'origins'> {
+export function completePatch(
+  merged: Patch,
+  path: string | undefined,
+): Pick<Texture, 'treatment' | 'review' | 'origins'> {
   const origins: Origin[] = [];
 
   function take<T>(key: string, fallback: T = standard<T>(key)): T {
@@ -100,5 +103,13 @@ export function completePatch(merged: Patch, path: string | undefined): Pick<Tex
     },
     limits: { thinning: take('limits.thinning'), halo: take('limits.halo'), overBudget: takeBudget() },
   };
-  return { treatment, origins };
+  const review: ReviewLimits = {
+    coverageLoss: take('review.coverageLoss'),
+    lightChange: take('review.lightChange'),
+    texelLoss: take('review.texelLoss'),
+    fileGrowth: take('review.fileGrowth'),
+    memoryGrowth: take('review.memoryGrowth'),
+    harm: take('review.harm'),
+  };
+  return { treatment, review, origins };
 }

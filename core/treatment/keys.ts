@@ -290,6 +290,39 @@ export const treatmentKeys: readonly Key[] = [
     inner(),
     'Findings above these fail `check`.',
   ),
+  key(
+    'review',
+    group(
+      key(
+        'coverageLoss',
+        number('share', 0, 1),
+        value(null),
+        'Largest loss of coverage at any size, against the same size before.',
+      ),
+      key(
+        'lightChange',
+        number('share', 0, 1000),
+        value(null),
+        'Largest change of mean luminance at any size, against the same size before.',
+      ),
+      key(
+        'texelLoss',
+        number('share', 0, 1),
+        value(null),
+        'Largest loss of texels; half the width and height is 0.75.',
+      ),
+      key('fileGrowth', number('share', 0, 1000), value(null), 'Largest growth of the file; twice its size is 1.'),
+      key(
+        'memoryGrowth',
+        whole('bytes', 0, Number.MAX_SAFE_INTEGER),
+        value(null),
+        'Most bytes that the levels may grow by on the GPU.',
+      ),
+      key('harm', choice('report', 'fail'), value('report'), 'Whether any harm that is found fails `review`.'),
+    ),
+    inner(),
+    'Changes above these fail `review`; they are no part of how a texture is built.',
+  ),
 ];
 
 /** Keys of an entry of `treatments`. */

@@ -14,7 +14,7 @@ export function resolveTreatment(settings: Settings | null, texturePath: string)
   return { path: texturePath, ...resolved };
 }
 
-type Resolved = Pick<Texture, 'treatment' | 'origins'>;
+type Resolved = Pick<Texture, 'treatment' | 'review' | 'origins'>;
 
 /** Thousands of textures follow the same few rules: what these say is made out once, and is one object for all of them. */
 function resolveRules(settings: Settings | null, rules: readonly Rule[]): Resolved | Problem {

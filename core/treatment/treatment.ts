@@ -99,6 +99,23 @@ export interface Limits {
   readonly overBudget: { readonly bytes: number; readonly format: string } | null;
 }
 
+/** How much a change may do before it fails `review`; null is no limit. No part of the treatment: they say nothing of a build, and
+ *  no manifest holds them. */
+export interface ReviewLimits {
+  /** Largest loss of coverage at any size, as a share of what it was before, 0..1. */
+  readonly coverageLoss: number | null;
+  /** Largest change of mean luminance at any size, as a share of what it was before. */
+  readonly lightChange: number | null;
+  /** Largest loss of texels, as a share of those before, 0..1. */
+  readonly texelLoss: number | null;
+  /** Largest growth of the file, as a share of its bytes before. */
+  readonly fileGrowth: number | null;
+  /** Bytes that the levels may grow by on the GPU. */
+  readonly memoryGrowth: number | null;
+  /** Whether any harm that a review finds fails it. */
+  readonly harm: 'report' | 'fail';
+}
+
 /** Which settings rule set a leaf. `rule` is `defaults`, `treatments[2]`, or `built-in`. */
 export interface Origin {
   /** Dotted path of the leaf: `alpha.cutoff`. */
@@ -116,6 +133,7 @@ export interface Texture {
   /** Root-relative, "/"-separated, NFC. */
   readonly path: string;
   readonly treatment: Treatment;
+  readonly review: ReviewLimits;
   readonly origins: readonly Origin[];
 }
 

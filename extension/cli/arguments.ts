@@ -10,6 +10,7 @@ export interface Arguments {
   readonly settings: string | null;
   readonly out: string | null;
   readonly sourceRoot: string | null;
+  readonly markdown: string | null;
   /** Workers; `null` leaves it to the machine. */
   readonly jobs: number | null;
   /** Bytes; `null` leaves it to the machine. */
@@ -45,6 +46,7 @@ export function readArguments(words: readonly string[]): Arguments | readonly Pr
   const jobs = note(() => readJobs(values.get('jobs')));
   const memoryBytes = note(() => readMemory(values.get('memory')));
   if (isCommand && !values.has('help')) note(() => checkCount(command, paths));
+  if (command === 'review' && !values.has('help')) note(() => checkReview(values, paths));
   for (const other of ['plan', 'json'] as const) {
     if (values.has('watch') && values.has(other)) {
       note(() => refuse('options-exclude', { first: '--watch', second: `--${other}` }));
@@ -57,6 +59,7 @@ export function readArguments(words: readonly string[]): Arguments | readonly Pr
     settings: values.get('settings') ?? null,
     out: values.get('out') ?? null,
     sourceRoot: values.get('source-root') ?? null,
+    markdown: values.get('markdown') ?? null,
     jobs: jobs ?? null,
     memoryBytes: memoryBytes ?? null,
     flags: new Set(values.keys()),
@@ -128,5 +131,17 @@ function checkCount(command: CommandName, paths: readonly string[]): void {
   if (entry !== undefined && paths.length < entry.least) refuse('missing-argument', { command, what: entry.takes });
   if (command === 'init' && paths.length > 1) {
     refuse('option-value', { expected: 'one folder at most', option: 'init', received: paths.join(' ') });
+  }
+}
+
+function checkReview(values: ReadonlyMap<OptionName, string>, paths: readonly string[]): void {
+  if (values.has('files') && values.has('staged')) refuse('options-exclude', { first: '--files', second: '--staged' });
+  const received = paths.length === 0 ? 'nothing' : paths.join(' ');
+  if (values.has('files')) {
+    if (paths.length !== 2) refuse('option-value', { expected: 'two files', option: '--files', received });
+  } else if (values.has('staged')) {
+    if (paths.length > 0) refuse('option-value', { expected: 'no range', option: '--staged', received });
+  } else if (paths.length > 1) {
+    refuse('option-value', { expected: 'one range at most', option: 'review', received });
   }
 }

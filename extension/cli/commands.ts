@@ -20,6 +20,12 @@ export const commands = [
     least: 1,
     says: 'Say which treatment each texture gets, and which rule set each setting.',
   },
+  {
+    name: 'review',
+    takes: '[RANGE]',
+    least: 0,
+    says: 'Say what changed in textures at the sizes that matter, the most harmful first.',
+  },
 ] as const;
 
 export type CommandName = (typeof commands)[number]['name'];
@@ -32,7 +38,7 @@ export interface OptionEntry {
   readonly says: string;
 }
 
-const all: readonly CommandName[] = ['init', 'build', 'check', 'rebuild', 'explain'];
+const all: readonly CommandName[] = ['init', 'build', 'check', 'rebuild', 'explain', 'review'];
 const project: readonly CommandName[] = ['build', 'check', 'explain'];
 
 /** Every option there is. `--help` and `--version` also stand alone. */
@@ -49,14 +55,14 @@ export const options = [
   {
     name: 'jobs',
     value: 'COUNT',
-    commands: ['build', 'check', 'rebuild'],
-    says: 'Textures built at a time; otherwise one for each processor.',
+    commands: ['build', 'check', 'rebuild', 'review'],
+    says: 'Textures worked on at a time; otherwise one for each processor.',
   },
   {
     name: 'memory',
     value: 'SIZE',
-    commands: ['build', 'check', 'rebuild'],
-    says: "Bytes that building may hold, as 512MiB or 2GiB; otherwise a quarter of the machine's memory.",
+    commands: ['build', 'check', 'rebuild', 'review'],
+    says: "Bytes that this may hold, as 512MiB or 2GiB; otherwise a quarter of the machine's memory.",
   },
   { name: 'plan', value: null, commands: ['build'], says: 'Say what would be built and why, and build nothing.' },
   { name: 'watch', value: null, commands: ['build'], says: 'Go on building whenever something changes, until Ctrl-C.' },
@@ -78,6 +84,20 @@ export const options = [
     value: null,
     commands: ['rebuild'],
     says: 'Rebuild what another revision of the algorithm built; pixels may change.',
+  },
+  { name: 'staged', value: null, commands: ['review'], says: 'Compare the last commit with what is staged.' },
+  {
+    name: 'files',
+    value: null,
+    commands: ['review'],
+    says: 'Compare two files, BEFORE and AFTER, in place of a range.',
+  },
+  { name: 'headers', value: null, commands: ['review'], says: 'Judge by headers alone, without looking at pixels.' },
+  {
+    name: 'markdown',
+    value: 'FILE',
+    commands: ['review'],
+    says: 'Write the report as Markdown too, for a comment on the change.',
   },
   { name: 'gitattributes', value: null, commands: ['init'], says: 'Add the line for manifests to .gitattributes.' },
   { name: 'help', value: null, commands: all, says: 'Print this.' },

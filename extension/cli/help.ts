@@ -16,7 +16,10 @@ export function helpText(version: string): string {
     '',
     'A PATH is a file, a folder or a glob. Settings come from the nearest sizeproof.json in its folder or above.',
     '',
-    'Exit codes: 0 fine; 1 stale outputs or findings over their limit; 2 usage or settings; 3 a source could not be read;',
+    'A RANGE is nothing for the working tree against the last commit, COMMIT for what it did, FROM..TO, or BASE...TIP for what a',
+    'branch did since it left BASE; an end that is left out is HEAD.',
+    '',
+    'Exit codes: 0 fine; 1 stale outputs, findings or changes over their limit; 2 usage or settings; 3 a source could not be read;',
     '4 outputs could not be written; 130 interrupted, after tidying.',
     '',
   ].join('\n');

@@ -11,7 +11,9 @@ export interface Terminal {
 const CELLS = 24;
 
 /** A bar that is redrawn in place on a terminal; nothing is drawn elsewhere. `clear` makes room for other lines. */
-export function openProgress(terminal: Terminal): Reporter & { clear(): void } {
+export function openProgress(
+  terminal: Terminal,
+): Pick<Reporter, 'begin'> & { done(what?: unknown): void; clear(): void } {
   let count = 0;
   let finished = 0;
   const shown = terminal.isTTY === true;

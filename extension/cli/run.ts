@@ -8,6 +8,7 @@ import { runExplain } from './explain-command.ts';
 import { helpText } from './help.ts';
 import { runInit } from './init-command.ts';
 import { nameFrom } from './print.ts';
+import { runReview } from './review-command.ts';
 import { conclude, onlyProblems, type Result, type Shell, type Voice } from './shell.ts';
 import { buildOnChange } from './watch.ts';
 
@@ -36,6 +37,7 @@ const commands: Readonly<Record<CommandName, (args: Arguments, shell: Shell) => 
   check: runCheck,
   rebuild: runRebuild,
   explain: runExplain,
+  review: runReview,
 };
 
 async function watchBuild(args: Arguments, shell: Shell, voice: Voice): Promise<number> {

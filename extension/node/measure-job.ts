@@ -3,11 +3,20 @@ import { openImage } from '../../core/codec/open.ts';
 import { measureHalo } from '../../core/finding/halo.ts';
 import { placed, Refusal, refuse } from '../../core/problem.ts';
 import { expandIndexed } from '../../core/raster/raster.ts';
+import { type ReviewJob, runReviewJob } from './review/job.ts';
 import { type Bench, type Outcome, readSource, runTextureJob, type TextureJob } from './texture-job.ts';
 
+/** Anything that a worker may be asked to do. */
+export type Job = TextureJob | ReviewJob;
+
 /** Does what a job asks for. */
-export function runJob(job: TextureJob, bench: Bench): Promise<Outcome> {
+export async function runJob(job: Job, bench: Bench): Promise<Outcome> {
   switch (job.task) {
+    case 'review': {
+      const { versions } = bench;
+      if (versions === undefined) throw new TypeError('Expected a bench that reads versions');
+      return runReviewJob(job, { ...bench, versions });
+    }
     case 'build':
       return runTextureJob(job, bench);
     case 'measure':

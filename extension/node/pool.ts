@@ -2,11 +2,12 @@ import { availableParallelism } from 'node:os';
 import { Worker } from 'node:worker_threads';
 import type { Problem } from '../../core/problem.ts';
 import { readKernels } from './kernels.ts';
+import type { Job } from './measure-job.ts';
 import { type MemoryGate, openMemoryGate } from './memory.ts';
-import type { Outcome, TextureJob } from './texture-job.ts';
+import type { Outcome } from './texture-job.ts';
 
 /** Runs jobs, and tells what became of each as it ends. Ends when all have. */
-export type RunJobs = (jobs: readonly TextureJob[], done: (index: number, outcome: Outcome) => void) => Promise<void>;
+export type RunJobs = (jobs: readonly Job[], done: (index: number, outcome: Outcome) => void) => Promise<void>;
 
 export interface PoolOptions {
   /** The bundled pool.worker.ts, with the compiled kernels beside it. */
@@ -18,7 +19,7 @@ export interface PoolOptions {
   readonly cancel: SharedArrayBuffer;
 }
 
-export type ToWorker = { readonly kind: 'job'; readonly job: TextureJob } | { readonly kind: 'admitted' };
+export type ToWorker = { readonly kind: 'job'; readonly job: Job } | { readonly kind: 'admitted' };
 
 export type FromWorker =
   /** The job asks to hold these bytes. */
@@ -77,7 +78,7 @@ export interface WorkerData {
 
 interface Thread {
   /** Answers what became of the job, and the bytes that are to leave the gate now. */
-  run(job: TextureJob, gate: MemoryGate): Promise<{ readonly outcome: Outcome; readonly heldBytes: number }>;
+  run(job: Job, gate: MemoryGate): Promise<{ readonly outcome: Outcome; readonly heldBytes: number }>;
   ended(): boolean;
   stop(): Promise<unknown>;
 }
@@ -98,7 +99,7 @@ function startThread(url: URL, workerData: WorkerData): Thread {
     },
   };
 
-  async function run(job: TextureJob, gate: MemoryGate) {
+  async function run(job: Job, gate: MemoryGate) {
     let heldBytes = 0;
     const outcome = await new Promise<Outcome>((resolve) => {
       let isOver = false;
@@ -131,6 +132,6 @@ function startThread(url: URL, workerData: WorkerData): Thread {
   }
 }
 
-function endedProblem(job: TextureJob, reason: string): Problem {
+function endedProblem(job: Job, reason: string): Problem {
   return { code: 'worker-ended', severity: 'error', values: { reason }, path: job.image.path };
 }

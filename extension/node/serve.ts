@@ -4,12 +4,13 @@ import { plainFilters } from '../../core/codec/png/filters.ts';
 import { plainEngine } from '../../core/resample/plain.ts';
 import { createEngine } from '../../core/simd/engine.ts';
 import { createFilters } from '../../core/simd/filters.ts';
-import { runJob } from './measure-job.ts';
+import { openVersions } from './git/versions.ts';
+import { type Job, runJob } from './measure-job.ts';
 import { nodeDisk } from './node-disk.ts';
 import { planJob } from './plan-job.ts';
 import type { FromWorker, ToWorker } from './pool.ts';
 import { nodePorts } from './ports.ts';
-import type { Bench, Outcome, TextureJob } from './texture-job.ts';
+import type { Bench, Outcome } from './texture-job.ts';
 
 /** Answers a pool's messages: builds one texture after another, by the compiled kernels where there are any. */
 export function serve(port: MessagePort, kernels: WebAssembly.Module | null, isCancelled: () => boolean): void {
@@ -20,17 +21,19 @@ export function serve(port: MessagePort, kernels: WebAssembly.Module | null, isC
       return isCancelled();
     },
   };
+  // A Git that it opens ends with this thread, whose pipe it reads.
+  const versions = openVersions(nodeDisk);
   let admitted: () => void = () => undefined;
   port.on('message', async (message: ToWorker) => {
     if (message.kind === 'admitted') return admitted();
     answer({ kind: 'done', outcome: await run(message.job) });
   });
 
-  async function run(job: TextureJob): Promise<Outcome> {
+  async function run(job: Job): Promise<Outcome> {
     try {
       const ports = { ...nodePorts, engine, filters };
       const plan: Bench['planJob'] = (one, image, roughness) => planJob(one, image, roughness, engine);
-      return await runJob(job, { disk: nodeDisk, ports, cancel, buildTexture, planJob: plan, admit });
+      return await runJob(job, { disk: nodeDisk, ports, cancel, buildTexture, planJob: plan, admit, versions });
     } catch (error) {
       const reason = error instanceof Error ? (error.stack ?? error.message).replaceAll(/\s+/g, ' ') : String(error);
       return {

@@ -3,9 +3,11 @@ import type { BuildPlan, BuildTexture } from '../../core/job.ts';
 import type { Manifest } from '../../core/manifest/manifest.ts';
 import type { Cancel, Ports } from '../../core/port.ts';
 import { type Problem, placed, Refusal, refuse } from '../../core/problem.ts';
+import type { Review } from '../../core/review/review.ts';
 import { joinPath } from '../../core/treatment/path.ts';
 import type { Treatment } from '../../core/treatment/treatment.ts';
 import type { Disk } from './disk.ts';
+import type { Versions } from './git/versions.ts';
 import { type LaidFile, openLaydown, type Pause } from './laydown.ts';
 
 /** One texture to build, as it is posted to a worker. Paths are absolute unless they say otherwise. */
@@ -44,6 +46,7 @@ export type Outcome =
       readonly warnings: readonly Problem[];
     }
   | { readonly kind: 'measured'; readonly halos: readonly Halo[] }
+  | { readonly kind: 'reviewed'; readonly review: Review }
   | { readonly kind: 'failed'; readonly problem: Problem }
   | { readonly kind: 'cancelled' };
 
@@ -58,6 +61,8 @@ export interface Bench {
   /** Waits until the bytes may be held. */
   readonly admit: (peakBytes: number) => Promise<void>;
   readonly wait?: Pause;
+  /** Reads versions of files, for reviews. */
+  readonly versions?: Versions;
 }
 
 /** Builds one texture and lays its outputs down. Bad data and a disk that fails are outcomes, not exceptions; what else is

@@ -1,0 +1,51 @@
+import { baseName, resolvePath } from '../../../core/treatment/path.ts';
+import type { Disk } from '../disk.ts';
+import type { FileRef } from '../git/changes.ts';
+import { parentOf } from '../path.ts';
+import type { ReviewList } from './list.ts';
+import { openSettings } from './settings.ts';
+
+/** Two files as before and after, each by the settings that lie over it. No repository is needed; Git LFS pointers are followed where
+ *  the second lies in one. */
+export async function listFiles(disk: Disk, folder: string, paths: readonly string[]): Promise<ReviewList> {
+  const [one, other] = paths.map((path) => resolvePath(folder, path));
+  const [was, is] = [await settingsOf(disk, one), await settingsOf(disk, other)];
+  const version = async (path: string, treatment: typeof was.treatment) => {
+    const file: FileRef = { kind: 'file', path, store: await storeOf(disk, path) };
+    return { file, treatment };
+  };
+  return {
+    folder,
+    before: paths[0],
+    after: paths[1],
+    entries: [
+      {
+        path: baseName(other),
+        oldPath: baseName(one),
+        status: 'changed',
+        before: await version(one, was.treatment ?? is.treatment),
+        after: await version(other, is.treatment ?? was.treatment),
+        limits: is.limits,
+        manifest: 'none',
+        problems: [...was.problems, ...is.problems],
+      },
+    ],
+    outputs: 0,
+    excluded: 0,
+    problems: [],
+  };
+}
+
+/** Treatments are asked for whatever the globs exclude: these very files were named. */
+async function settingsOf(disk: Disk, path: string) {
+  const settings = openSettings({ tree: disk, files: new Map() }, parentOf(path));
+  return settings(baseName(path));
+}
+
+/** The folder named `.git` over a file; a place where nothing is, without one. */
+async function storeOf(disk: Disk, path: string): Promise<string> {
+  for (let folder = parentOf(path); ; folder = parentOf(folder)) {
+    const git = resolvePath(folder, '.git');
+    if ((await disk.kind(git)) === 'folder' || parentOf(folder) === folder) return git;
+  }
+}
