@@ -46,8 +46,8 @@ export interface OpenedSide {
 }
 
 /** Opens a side; its structure is checked and nothing decoded. Throws Refusal for what a build would refuse. */
-export function openSide(side: ReviewSide, ports: Pick<Ports, 'inflate' | 'engine'>): OpenedSide {
-  const image = openImage(side.bytes, side.path, ports.inflate);
+export function openSide(side: ReviewSide, ports: Pick<Ports, 'inflate' | 'filters' | 'engine'>): OpenedSide {
+  const image = openImage(side.bytes, side.path, ports.inflate, ports.filters);
   const facts = factsOf(image, side.bytes.length);
   const plan = planBuild(side.path, facts, side.treatment, ports.engine ?? plainEngine);
   const { width, height } = facts.extent;
