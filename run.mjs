@@ -17,6 +17,12 @@ const PAGE_BUNDLES = [
   { entry: 'webview/worker/worker.ts', file: 'dist/page/worker.js' },
 ];
 
+/** VS Code 1.100, the oldest that the extension supports, is built on Chromium 132. */
+const FOR_BROWSERS = { platform: 'browser', target: 'chrome132', minify: true };
+
+/** The extension for a host in a browser; it loads nothing that does not end in `.js`. */
+const WEB_BUNDLE = { entry: 'extension/main.web.ts', file: 'dist/extension.web.js' };
+
 /** The SIMD engine's kernels, compiled; the bundles read it where it lies beside them. */
 const KERNELS = 'dist/engine.wasm';
 
@@ -42,7 +48,9 @@ const ROOMS = [
   'extension/node',
   'extension/cli',
   'extension/app',
+  'extension/web',
   'extension',
+  'extension/tsconfig.web.json',
   'webview/worker',
   'webview/link',
   'webview/page',
@@ -279,6 +287,13 @@ async function bundle() {
   const code = await runSource('test/house/contributions.ts', []);
   if (code !== 0) throw new Stop(`What package.json refers to could not be written: exit code ${code}.`);
   for (const each of PAGE_BUNDLES) await bundleForPage(each);
+  await runEsbuild(WEB_BUNDLE.entry, {
+    ...FOR_BROWSERS,
+    outfile: WEB_BUNDLE.file,
+    format: 'cjs',
+    external: ['vscode'],
+    mainFields: ['module', 'main'],
+  });
 }
 
 function bundleOne({ entry, file, head }) {
@@ -301,16 +316,8 @@ function bundleOne({ entry, file, head }) {
   });
 }
 
-/** VS Code 1.100, the oldest that the extension supports, is built on Chromium 132. */
 function bundleForPage({ entry, file }) {
-  return runEsbuild(entry, {
-    outfile: file,
-    platform: 'browser',
-    target: 'chrome132',
-    format: 'iife',
-    minify: true,
-    loader: { '.wasm': 'binary' },
-  });
+  return runEsbuild(entry, { ...FOR_BROWSERS, outfile: file, format: 'iife', loader: { '.wasm': 'binary' } });
 }
 
 async function runEsbuild(entry, options) {

@@ -22,7 +22,9 @@ export interface Host {
 
 export interface HostOptions {
   /** Installed before the start. */
-  readonly vsix?: string;
+  readonly vsix: string;
+  /** Others to install, which the tests need. */
+  readonly others?: readonly string[];
   readonly settings?: Readonly<Record<string, unknown>>;
   /** Variables for the extension host. */
   readonly env?: Readonly<Record<string, string>>;
@@ -47,7 +49,13 @@ const QUIET_SETTINGS = {
   'files.autoSave': 'off',
 };
 
-export async function startHost({ vsix, settings = {}, env: more = {}, trust }: HostOptions): Promise<Host> {
+export async function startHost({
+  vsix,
+  others = [],
+  settings = {},
+  env: more = {},
+  trust,
+}: HostOptions): Promise<Host> {
   const server = join(await serverFolder(), 'out', 'server-main.js');
   const folder = mkdtempSync(join(tmpdir(), 'sph-'));
   const made = (name: string): string => {
@@ -60,7 +68,8 @@ export async function startHost({ vsix, settings = {}, env: more = {}, trust }: 
   const env = { ...cleanEnvironment(), TMPDIR: temporary, XDG_CACHE_HOME: cache, ...more };
   const folders = ['--server-data-dir', data, '--user-data-dir', data, '--extensions-dir', extensions];
   const common = [server, ...folders, '--accept-server-license-terms'];
-  if (vsix !== undefined) await run(process.execPath, [...common, '--install-extension', vsix, '--force'], folder, env);
+  const installs = [vsix, ...others].flatMap((each) => ['--install-extension', each]);
+  await run(process.execPath, [...common, ...installs, '--force'], folder, env);
   const port = await freePort();
   const options = [
     '--host',

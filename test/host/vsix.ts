@@ -1,5 +1,6 @@
-import { mkdirSync } from 'node:fs';
+import { cpSync, mkdirSync, writeFileSync } from 'node:fs';
 import { join } from 'node:path';
+import { build } from 'esbuild';
 import { top } from '../house/tree.ts';
 import { run } from './process.ts';
 
@@ -7,6 +8,31 @@ import { run } from './process.ts';
 export async function packVsix(folder: string): Promise<string> {
   mkdirSync(folder, { recursive: true });
   const file = join(folder, 'sizeproof.vsix');
+  await pack(top, file);
+  return file;
+}
+
+/** Packs an extension that gives the editor a file system in memory, which holds what a folder holds, and answers the file. */
+export async function packMemlab(seed: string, folder: string): Promise<string> {
+  const made = join(folder, 'memlab');
+  cpSync(seed, join(made, 'seed'), { recursive: true });
+  cpSync(join(import.meta.dirname, 'memlab', 'package.json'), join(made, 'package.json'));
+  writeFileSync(join(made, 'LICENSE'), 'MIT\n');
+  writeFileSync(join(made, 'README.md'), 'For tests.\n');
+  await build({
+    entryPoints: [join(import.meta.dirname, 'memlab', 'main.ts')],
+    outfile: join(made, 'main.js'),
+    bundle: true,
+    platform: 'node',
+    format: 'cjs',
+    external: ['vscode'],
+  });
+  const file = join(folder, 'memlab.vsix');
+  await pack(made, file);
+  return file;
+}
+
+async function pack(folder: string, file: string): Promise<void> {
   const vsce = join(top, 'test', 'node_modules', '@vscode', 'vsce', 'vsce');
   const options = [
     'package',
@@ -16,6 +42,5 @@ export async function packVsix(folder: string): Promise<string> {
     '--out',
     file,
   ];
-  await run(process.execPath, [vsce, ...options], top);
-  return file;
+  await run(process.execPath, [vsce, ...options], folder);
 }

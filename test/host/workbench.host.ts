@@ -55,6 +55,7 @@ describe('the packed extension in a workbench', () => {
       'dist/cli.js',
       'dist/engine.wasm',
       'dist/extension.cjs',
+      'dist/extension.web.js',
       'dist/l10n/bundle.l10n.json',
       'dist/page/page.css',
       'dist/page/page.js',

@@ -15,7 +15,7 @@ const ROOMS: readonly Room[] = [
   { at: 'core/', files: ['core/'], packages: ['ktx-parse', 'picomatch', 'jsonc-parser'] },
   { at: 'extension/cli/', files: ['core/', 'extension/cli/', 'extension/node/', 'package.json'], packages: ['node:*'] },
   { at: 'extension/node/', files: ['core/', 'extension/node/'], packages: ['node:*'] },
-  { at: 'extension/web/', files: ['core/', 'extension/web/'], packages: [] },
+  { at: 'extension/web/', files: ['core/', 'extension/web/', 'webview/worker/'], packages: [] },
   { at: 'extension/app/', files: ['core/', 'extension/app/'], packages: ['vscode'] },
   { at: 'extension/main.ts', files: ['core/', 'extension/app/', 'extension/node/'], packages: ['vscode', 'node:*'] },
   { at: 'extension/main.web.ts', files: ['core/', 'extension/app/', 'extension/web/'], packages: ['vscode'] },
