@@ -38,7 +38,8 @@ export async function buildChains(
     return { source: described, coded, linear };
   }
   const runs = lights.map((light) => {
-    const run = new ChainRun(plan.head, treatment, { engine, light });
+    const base = plan.chain.keepsBase ? 'kept' : 'dropped';
+    const run = new ChainRun(plan.head, treatment, { engine, light, base });
     if (source.palette !== null) run.setPalette(source.palette);
     return run;
   });

@@ -5,7 +5,7 @@ import type { PlannedImage } from './outputs.ts';
 /** What the manifest says of an image. Measured numbers have 6 significant digits. */
 export function describeImage(
   planned: PlannedImage,
-  image: ChainImage,
+  image: Omit<ChainImage, 'use' | 'raster'>,
   pixels: string,
   file: ManifestFile | null,
 ): ManifestImage {

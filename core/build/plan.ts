@@ -1,3 +1,4 @@
+import { withoutBase } from '../chain/base-facts.ts';
 import { planSheet, sheetNotes, targetExtent } from '../chain/grid.ts';
 import type { ChainHead } from '../chain/layout.ts';
 import { levelExtent } from '../chain/levels.ts';
@@ -13,6 +14,7 @@ import type { Engine } from '../resample/engine.ts';
 import { plainEngine } from '../resample/plain.ts';
 import type { Treatment } from '../treatment/treatment.ts';
 import {
+  changesBase,
   containerLayout,
   type OutputPlan,
   type PlannedImage,
@@ -65,7 +67,8 @@ export function planBuild(texture: string, facts: SourceFacts, treatment: Treatm
     const chain = planChain(head, treatment);
     const levels = chain.levels.filter((level) => level.shipped);
     const outputs = planOutputs(texture, chain, levels);
-    return { head, chain, outputs, chainBytes: chainBytes(chain, engine), notes: chain.notes };
+    const held = asksForBase(chain, outputs) ? chain : withoutBase(chain);
+    return { head, chain: held, outputs, chainBytes: chainBytes(held, engine), notes: chain.notes };
   }
   if (treatment.normal.roughness !== null) refuse('roughness-grid', {});
   const sheet = planSheet(facts.extent, treatment.grid);
@@ -87,6 +90,16 @@ export function planBuild(texture: string, facts: SourceFacts, treatment: Treatm
     chainBytes: sheetBytes(whole, cell, sheet.columns * sheet.rows, engine),
     notes: [...cell.notes, ...sheetNotes(sheet, treatment)],
   };
+}
+
+/** Whether an output holds the codes of level 0, or may. */
+function asksForBase(chain: ChainPlan, { images, containers }: OutputPlan): boolean {
+  if (chain.treatment.normal.roughness !== null || chain.treatment.png.base) return true;
+  return (
+    changesBase(chain, 'image') ||
+    images.some(({ use, level, png }) => use === 'image' && level === 0 && png !== null) ||
+    containers.some(({ use, levels }) => use === 'image' && levels.includes(0))
+  );
 }
 
 function headOf(facts: SourceFacts, treatment: Treatment): ChainHead {

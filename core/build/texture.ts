@@ -38,6 +38,11 @@ export const buildTexture: BuildTexture = async (job, ports, cancel, write) => {
   const work: Emission = { plan, chains, sources, folder: folderOf(manifestPath(job.texture)), ports, cancel, write };
   const images: ManifestImage[] = [];
   for (const planned of plan.outputs.images) {
+    const { base } = chains.coded;
+    if (base !== null && planned.use === 'image' && planned.level === 0) {
+      images.push(describeImage(planned, base, chains.source.pixels, null));
+      continue;
+    }
     const from = planned.use === 'roughness' ? roughness!.chain.images : chains.coded.images;
     images.push(await emitImage(work, planned, findImage(from, planned)));
   }

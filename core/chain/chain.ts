@@ -3,6 +3,7 @@ import type { Engine, RowsRun } from '../resample/engine.ts';
 import { plainEngine } from '../resample/plain.ts';
 import type { Treatment } from '../treatment/treatment.ts';
 import { BaseImage } from './base.ts';
+import { type BaseFacts, baseFacts, withoutBase } from './base-facts.ts';
 import { draftImages } from './draft.ts';
 import { finishImages } from './finish.ts';
 import { type ChainImage, ImageInWork } from './image.ts';
@@ -27,9 +28,13 @@ export interface Chain {
   /** Mean lengths of the normals of each image but level 0, in the order of `images`; empty where there are no normals. */
   readonly lengths: ReadonlyMap<PlannedLevel | PlannedTarget, Float32Array>;
   readonly plan: ChainPlan;
+  /** What is known of level 0 where it was not kept, and so is not among the images; else null. */
+  readonly base: BaseFacts | null;
 }
 
 export interface ChainOptions {
+  /** `dropped`: nobody asks for the codes of level 0. They are kept all the same where the chain needs them. */
+  readonly base?: 'kept' | 'dropped';
   readonly engine?: Engine;
   readonly light?: Light;
   /** The gamma that the file's tag names, where it is obeyed. */
@@ -75,7 +80,8 @@ export class ChainRun {
 
   constructor(head: ChainHead, treatment: Treatment, options: ChainOptions = {}) {
     this.#options = options;
-    this.plan = planChain(head, treatment, options.light);
+    const plan = planChain(head, treatment, options.light);
+    this.plan = options.base === 'dropped' ? withoutBase(plan) : plan;
     this.#base = new BaseImage(this.plan);
     // Where lengths are measured apart, they must be there before the first row of the chain.
     this.#run = this.plan.lengthPass ? null : this.#openPass(() => null);
@@ -112,7 +118,8 @@ export class ChainRun {
     const images = finishImages(plan, draftImages(plan, source, this.#works), run);
     const lengths = new Map<PlannedLevel | PlannedTarget, Float32Array>();
     for (const [image, work] of this.#works) if (work.lengths !== null) lengths.set(image, work.lengths);
-    return { images, notes: plan.notes, lengths, plan };
+    const base = plan.keepsBase || !plan.levels[0].shipped ? null : baseFacts(plan, run.sums());
+    return { images, notes: plan.notes, lengths, plan, base };
   }
 
   #openPass(lengthsOf: (image: PlannedLevel | PlannedTarget, y: number) => Float32Array | null): RowsRun {

@@ -121,7 +121,7 @@ function clippedOf(work: ImageInWork | null, raster: Raster, channels: number): 
 
 /** Luminance of level 0 from the sums of what it was decoded to, weighed by its alpha; null where its codes are not the source's or
  *  its floats are not light times alpha. */
-function sumsLight(plan: ChainPlan, sums: Float64Array): LightSum | null {
+export function sumsLight(plan: ChainPlan, sums: Float64Array): LightSum | null {
   const { layout, head, treatment } = plan;
   const { alpha, depth, weighted } = layout;
   if (plan.light !== 'coded' || plan.depth !== depth || layout.gamma !== null || !holdsColor(layout)) return null;

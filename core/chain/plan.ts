@@ -28,6 +28,8 @@ export interface ChainPlan {
   readonly fill: 'none' | 'hidden' | 'all';
   /** Mean normal lengths need a pass of their own, before the chain's. */
   readonly lengthPass: boolean;
+  /** Something is made from the codes of level 0, or measured on them, after its rows have gone by. */
+  readonly needsBase: boolean;
   /** The codes of level 0 are held until the end. */
   readonly keepsBase: boolean;
   readonly notes: readonly string[];
@@ -72,12 +74,17 @@ export function planChain(head: ChainHead, treatment: Treatment, light: Light = 
     fill !== 'all' &&
     depth === 8 &&
     light === 'coded';
-  const rows = methods.filter((method) => method.kind === 'rows');
   const lengthPass =
     layout.normals.length > 0 &&
     [...levels, ...targets].some(
       (image) => image.method?.kind === 'rows' && !weighsAreas(head.extent, pictureExtent(image), treatment),
     );
+  const needsBase =
+    lengthPass ||
+    methods.some((method) => method.kind !== 'rows') ||
+    fill === 'all' ||
+    keepsCoverage ||
+    treatment.height.minmax;
   return {
     head,
     treatment,
@@ -90,13 +97,8 @@ export function planChain(head: ChainHead, treatment: Treatment, light: Light = 
     keepsCoverage,
     fill,
     lengthPass,
-    keepsBase:
-      lengthPass ||
-      rows.length < methods.length ||
-      fill === 'all' ||
-      keepsCoverage ||
-      treatment.height.minmax ||
-      levels[0].shipped,
+    needsBase,
+    keepsBase: needsBase || levels[0].shipped,
     notes,
   };
 }

@@ -28,7 +28,7 @@ export function buildSheet(source: StraightRaster | IndexedRaster, treatment: Tr
     return first.level === 0 ? wholeImage(plan, source, sheet, parts) : assemble(sheet, treatment, parts);
   });
   const notes = [...cells[0].notes, ...sheetNotes(sheet, treatment)];
-  return { images, notes, lengths: new Map(), plan };
+  return { images, notes, lengths: new Map(), plan, base: null };
 }
 
 /** The treatment of one cell: its chain ends where the sheet's does. */

@@ -32,6 +32,7 @@ const data = { use: 'data' } as const;
 const cases: [string, Uint8Array, Treatment][] = [
   ['gray', pngOf(gray), treatment({ content: 'data' })],
   ['RGBA', pngOf(clear), treatment()],
+  ['RGBA to PNG alone', pngOf(clear), treatment({ outputs: ['png'] })],
   ['RGBA, deflated', pngOf(clear), treatment({ ktx2: { supercompress: 'zlib' } })],
   ['RGBA at 16 bits', pngOf(clear), treatment({ depth: 16 })],
   ['RGBA at 8 of 16 bits', pngOf(deep), treatment({ depth: 8 })],
