@@ -1,8 +1,8 @@
 import type { Extent } from '../raster/raster.ts';
 import { type Clipped, newClipped } from './clip.ts';
 import { sumsLight } from './finish.ts';
-import type { LightSum } from './image.ts';
 import { holdsColor } from './layout.ts';
+import type { LightSum } from './light.ts';
 import type { ChainPlan } from './plan.ts';
 
 /** What is measured of a level 0 whose codes are the source's and were not kept. */

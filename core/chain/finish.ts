@@ -1,15 +1,14 @@
-import { luminance } from '../color/luminance.ts';
 import { expandIndexed, maxCode, type Raster, type StraightRaster } from '../raster/raster.ts';
 import type { RowsRun } from '../resample/engine.ts';
 import { boundCodes } from './bounds.ts';
 import { placeInCell } from './cell.ts';
 import { type Clipped, newClipped } from './clip.ts';
-import { sumLight } from './coder.ts';
 import type { CoverageScale } from './coverage.ts';
 import type { Draft } from './draft.ts';
 import { fillFrom, fillWith } from './fill.ts';
-import { type ChainImage, ImageInWork, type LightSum } from './image.ts';
-import { frontChannels, holdsColor } from './layout.ts';
+import { type ChainImage, ImageInWork } from './image.ts';
+import { holdsColor } from './layout.ts';
+import { isLightInFloats, type LightSum, lightOfCodes, lightOfSums } from './light.ts';
 import { coverageOf, keepCoverage } from './mask.ts';
 import { type ChainPlan, pictureExtent } from './plan.ts';
 import { encodingOf } from './store.ts';
@@ -119,23 +118,9 @@ function clippedOf(work: ImageInWork | null, raster: Raster, channels: number): 
   return { below: [...clipped.below, 0], above: [...clipped.above, 0] };
 }
 
-/** Luminance of level 0 from the sums of what it was decoded to, weighed by its alpha; null where its codes are not the source's or
- *  its floats are not light times alpha. */
-export function sumsLight(plan: ChainPlan, sums: Float64Array): LightSum | null {
-  const { layout, head, treatment } = plan;
-  const { alpha, depth, weighted } = layout;
-  if (plan.light !== 'coded' || plan.depth !== depth || layout.gamma !== null || !holdsColor(layout)) return null;
-  if (alpha !== null && treatment.alpha.store === 'premultiplied') return null;
-  const whole = alpha === null ? 1 : maxCode(depth);
-  const shares: number[] = [];
-  for (const [channel, role] of layout.roles.slice(0, frontChannels(layout.channels)).entries()) {
-    if (role.kind !== 'color' || role.transfer !== role.stored) return null;
-    if (alpha !== null && !weighted.includes(channel)) return null;
-    shares.push(sums[channel] / (role.transfer === 'srgb' ? whole : whole * maxCode(depth)));
-  }
-  const [red, green = red, blue = red] = shares;
-  const texels = head.extent.width * head.extent.height;
-  return { light: luminance(red, green, blue), weight: alpha === null ? texels : sums[alpha] / whole };
+/** Luminance of level 0 from the sums of what it was decoded to; null where they are no light. */
+export function sumsLight({ layout, head }: ChainPlan, sums: Float64Array): LightSum | null {
+  return isLightInFloats(layout) ? lightOfSums(layout, sums, head.extent.width * head.extent.height) : null;
 }
 
 /** Luminance of codes that were moved, weighed by the alpha they carry. */
@@ -144,9 +129,9 @@ function codesLight(plan: ChainPlan, raster: Raster): LightSum {
   const { alpha } = plan.layout;
   const max = maxCode(straight.depth);
   const texels = straight.extent.width * straight.extent.height;
-  const alphas =
-    alpha === null ? null : { whole: max, of: (texel: number) => straight.codes[texel * straight.channels + alpha] };
-  return sumLight(encodingOf(plan), straight.codes, texels, alphas);
+  return lightOfCodes(encodingOf(plan), straight.codes, texels, (texel) =>
+    alpha === null ? 1 : straight.codes[texel * straight.channels + alpha] / max,
+  );
 }
 
 function boundsOf(plan: ChainPlan, levels: readonly (Draft | null)[]): ChainImage[] {

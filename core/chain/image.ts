@@ -6,6 +6,7 @@ import { plainCoder } from './coder.ts';
 import type { CoverageScale, UnscaledAlpha } from './coverage.ts';
 import type { Encoding } from './encode.ts';
 import { holdsColor } from './layout.ts';
+import { type LightSum, lightOf, SUMS_A_ROW } from './light.ts';
 
 /** One finished level or target, with what was measured on the way. */
 export interface ChainImage {
@@ -16,16 +17,10 @@ export interface ChainImage {
   readonly raster: Raster;
   readonly coverage?: number;
   readonly coverageScale?: CoverageScale;
-  /** Sums of luminance times alpha, and of alpha, over all texels; the mean is their quotient. */
   readonly light?: LightSum;
   /** Mean length of the mean normals, 0..1. */
   readonly normalLength?: number;
   readonly clipped: Clipped;
-}
-
-export interface LightSum {
-  readonly light: number;
-  readonly weight: number;
 }
 
 /** An image that is made row by row: stored codes, and the planes and sums that later phases ask for. Rows may come in any
@@ -41,8 +36,7 @@ export class ImageInWork {
   readonly lengths: Float32Array | null;
   readonly #coder: RowCoder;
   readonly #holdsColor: boolean;
-  readonly #light: Float64Array;
-  readonly #weight: Float64Array;
+  readonly #sums: Float64Array;
 
   /** `coder` stores the rows, where their engine has one. */
   constructor(
@@ -60,8 +54,7 @@ export class ImageInWork {
     this.lengths = encoding.layout.normals.length > 0 ? new Float32Array(texels) : null;
     this.#coder = coder ?? plainCoder(encoding);
     this.#holdsColor = holdsColor(encoding.layout);
-    this.#light = new Float64Array(extent.height);
-    this.#weight = new Float64Array(extent.height);
+    this.#sums = new Float64Array(extent.height * SUMS_A_ROW);
   }
 
   /** Takes a finished float row. `lengths` is given where they were measured apart; otherwise they are this row's own. */
@@ -78,9 +71,7 @@ export class ImageInWork {
     coder.encode(floats, this.codes, offset, this.clipped, own ?? lengths);
     if (this.alpha !== null) coder.keepAlpha(floats, this.alpha.values.subarray(y * width, (y + 1) * width));
     if (!this.#holdsColor) return;
-    const { light, weight } = coder.light(floats, this.codes, offset);
-    this.#light[y] = light;
-    this.#weight[y] = weight;
+    coder.measure(floats, this.codes, offset, this.#sums, y * SUMS_A_ROW);
   }
 
   straight(): StraightRaster {
@@ -89,8 +80,10 @@ export class ImageInWork {
   }
 
   light(): LightSum {
-    const sum = (rows: Float64Array): number => rows.reduce((total, row) => total + row, 0);
-    return { light: sum(this.#light), weight: sum(this.#weight) };
+    const { width, height } = this.extent;
+    const total = new Float64Array(SUMS_A_ROW);
+    for (let at = 0; at < this.#sums.length; at++) total[at % SUMS_A_ROW] += this.#sums[at];
+    return lightOf(this.encoding.layout, total, width * height);
   }
 
   normalLength(): number | undefined {

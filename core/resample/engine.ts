@@ -1,6 +1,5 @@
 import type { Clipped } from '../chain/clip.ts';
 import type { Encoding } from '../chain/encode.ts';
-import type { LightSum } from '../chain/image.ts';
 import type { Taps } from '../kernel/taps.ts';
 import type { Codes, Depth, Extent } from '../raster/raster.ts';
 import type { Wrap } from '../treatment/treatment.ts';
@@ -57,8 +56,8 @@ export interface RowCoder {
   /** Stores the row in `codes` from sample `offset` on and counts what clamping changed. `lengths` are the mean lengths of the
    *  normals over each texel, where there are any. */
   encode(floats: Float32Array, codes: Codes, offset: number, clipped: Clipped, lengths: Float32Array | null): void;
-  /** Luminance of the row that `encode` has just stored there, weighed by the alpha it was stored from. */
-  light(floats: Float32Array, codes: Codes, offset: number): LightSum;
+  /** Writes what `lightOf` asks of the row that `encode` has just stored there: SUMS_A_ROW numbers to `sums` from `at` on. */
+  measure(floats: Float32Array, codes: Codes, offset: number, sums: Float64Array, at: number): void;
   /** Alpha clamped to 0..1, 65535 is 1. */
   keepAlpha(floats: Float32Array, values: Uint16Array): void;
   /** Mean length of the normals over each texel, alpha taken out where it weighs them. */

@@ -5,6 +5,7 @@ import type { Wrap } from '../treatment/treatment.ts';
 import { decodeRow, floatChannels } from './decode.ts';
 import type { Engine, Pass, RowSink, RowsRun, Step } from './engine.ts';
 import { type Filter, filterAcross, filterAlong, makeFilter, tapSpan } from './filter.ts';
+import { sumByFours } from './fours.ts';
 import { planRows, type RowOrder } from './order.ts';
 
 /** The plain engine: every operation rounded to float32, in the order that the algorithm revision fixes. It is the
@@ -58,20 +59,12 @@ class PlainRun implements RowsRun {
   #publish(): void {
     const { floats } = this.#source;
     const channels = this.#sums.length;
-    for (let channel = 0; channel < channels; channel++) this.#sums[channel] += sumRow(floats, channel, channels);
+    const texels = floats.length / channels;
+    for (let channel = 0; channel < channels; channel++) {
+      this.#sums[channel] += sumByFours(texels, (x) => floats[x * channels + channel]);
+    }
     this.#source.publish();
   }
-}
-
-/** Texels that a last four has not are zeros. */
-function sumRow(floats: Float32Array, channel: number, channels: number): number {
-  const at = (i: number): number => (i < floats.length ? floats[i] : 0);
-  let row = 0;
-  for (let i = channel; i < floats.length; i += 4 * channels) {
-    const front = Math.fround(floats[i] + at(i + channels));
-    row += Math.fround(front + Math.fround(at(i + 2 * channels) + at(i + 3 * channels)));
-  }
-  return row;
 }
 
 /** The current row of a node, with room at both ends for the texels that wrapping reads. */

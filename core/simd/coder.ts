@@ -1,9 +1,7 @@
 import type { Clipped } from '../chain/clip.ts';
+import { measureRow } from '../chain/coder.ts';
 import type { Encoding } from '../chain/encode.ts';
-import type { LightSum } from '../chain/image.ts';
-import { frontChannels, holdsColor } from '../chain/layout.ts';
-import { LUMINANCE_BLUE, LUMINANCE_GREEN, LUMINANCE_RED } from '../color/luminance.ts';
-import { decodeTable } from '../color/transfer.ts';
+import { isLightInFloats, wholeOf } from '../chain/light.ts';
 import { type Codes, maxCode } from '../raster/raster.ts';
 import { SHORTEST } from '../resample/decode.ts';
 import type { RowCoder } from '../resample/engine.ts';
@@ -22,7 +20,9 @@ export class SimdCoder implements RowCoder {
   readonly #quads: boolean;
   readonly #codes: number;
   readonly #plane: number;
-  readonly #colors: number;
+  readonly #wholes: number;
+  /** Whether float rows hold light. */
+  readonly #measures: boolean;
   readonly #sums: number;
   readonly #views = new Map<number, Codes>();
 
@@ -35,7 +35,8 @@ export class SimdCoder implements RowCoder {
     this.#plane = machine.take(texels * 4);
     this.#sums = machine.take(SUM_BYTES);
     this.#curves = writeCurves(machine, encoding);
-    this.#colors = holdsColor(encoding.layout) ? writeColors(machine, encoding) : 0;
+    this.#wholes = writeWholes(machine, encoding);
+    this.#measures = isLightInFloats(encoding.layout);
     this.#quads = takesQuads(encoding);
   }
 
@@ -56,18 +57,18 @@ export class SimdCoder implements RowCoder {
     this.#count(clipped);
   }
 
-  light(floats: Float32Array): LightSum {
+  measure(floats: Float32Array, codes: Codes, offset: number, sums: Float64Array, at: number): void {
+    if (!this.#measures) {
+      measureRow(this.#encoding, floats, codes, offset, sums, at);
+      return;
+    }
     const { kernels, views } = this.#machine;
-    const { layout, depth } = this.#encoding;
+    const { layout } = this.#encoding;
     const alpha = layout.alpha === null ? -1 : layout.alpha * 4;
-    const step = (layout.channels * depth) / 8;
-    const most = maxCode(layout.depth);
     const texels = this.#texels(floats);
-    const row = floats.byteOffset;
-    const lightOf = depth === 8 ? kernels.lightOfBytes : kernels.lightOfWords;
-    lightOf(this.#codes, step, this.#colors, row, this.#stride, alpha, most, texels, this.#sums);
-    const at = this.#sums >> 3;
-    return { light: views.doubles[at], weight: views.doubles[at + 1] };
+    kernels.sumHeld(floats.byteOffset, this.#stride, alpha, maxCode(layout.depth), this.#wholes, texels, this.#sums);
+    const from = this.#sums >> 3;
+    for (let channel = 0; channel < layout.channels; channel++) sums[at + channel] = views.doubles[from + channel];
   }
 
   keepAlpha(floats: Float32Array, values: Uint16Array): void {
@@ -122,13 +123,12 @@ export class SimdCoder implements RowCoder {
 
 /** Bytes that a coder takes. */
 export function coderBytes(encoding: Encoding, texels: number): number {
-  const colors = holdsColor(encoding.layout) ? colorBytes(encoding) : 0;
   const rows = aligned(codeBytes(encoding, texels)) + aligned(texels * 4);
-  return rows + aligned(SUM_BYTES) + curveBytes(encoding.depth) + colors;
+  return rows + aligned(SUM_BYTES) + curveBytes(encoding.depth) + aligned(16);
 }
 
-/** Light and weight of a row. */
-const SUM_BYTES = 16;
+/** Four lanes of a row. */
+const SUM_BYTES = 32;
 
 /** Three codes more are written behind a row. */
 function codeBytes({ layout, depth }: Encoding, texels: number): number {
@@ -144,45 +144,8 @@ function takesQuads({ layout, depth, light }: Encoding): boolean {
   });
 }
 
-/** Bytes of what kernels/measure.ts asks of red, green and blue. */
-const COLOR_BYTES = 48;
-
-function writeColors(machine: Machine, encoding: Encoding): number {
-  const colors = machine.take(COLOR_BYTES);
-  SHARES.forEach((share, index) => {
-    const channel = frontChannels(encoding.layout.channels) === 1 ? 0 : index;
-    const table = machine.keep(colorTable(encoding, channel, share));
-    const { addresses } = machine.views;
-    addresses[(colors >> 2) + index * 4] = (channel * encoding.depth) / 8;
-    addresses[(colors >> 2) + index * 4 + 1] = table;
-  });
-  return colors;
+/** What full light is in each lane, a float. Alpha bounds itself. */
+function writeWholes(machine: Machine, { layout }: Encoding): number {
+  const wholes = layout.roles.map((_, channel) => (channel === layout.alpha ? 1 : wholeOf(layout, channel)));
+  return machine.keep(Float32Array.of(...wholes, 1, 1, 1, 1).subarray(0, 4));
 }
-
-function colorBytes({ depth }: Encoding): number {
-  return aligned(COLOR_BYTES) + SHARES.length * aligned((maxCode(depth) + 1) * 8);
-}
-
-const SHARES = [LUMINANCE_RED, LUMINANCE_GREEN, LUMINANCE_BLUE] as const;
-
-/** Light of each code, 0..1, times a share of luminance. */
-function colorTable({ layout, light, depth }: Encoding, channel: number, share: number): Float64Array {
-  const role = layout.roles[channel];
-  const isCoded = light === 'coded' && role.kind === 'color' && role.stored === 'srgb';
-  const transfer = isCoded ? 'srgb' : 'linear';
-  const whole = isCoded ? 1 : maxCode(depth);
-  return madeTable(`${share} ${transfer} ${depth}`, decodeTable(depth, transfer), share, whole);
-}
-
-/** Tables are made once: those of 16 bits take longer than a small chain. */
-function madeTable(key: string, values: Float32Array, share: number, whole: number): Float64Array {
-  let table = tables.get(key);
-  if (table === undefined) {
-    table = new Float64Array(values.length);
-    for (let code = 0; code < table.length; code++) table[code] = share * (values[code] / whole);
-    tables.set(key, table);
-  }
-  return table;
-}
-
-const tables = new Map<string, Float64Array>();

@@ -31,28 +31,7 @@ export interface Kernels {
     shortest: number,
     most: number,
   ): void;
-  lightOfBytes(
-    codes: number,
-    step: number,
-    colors: number,
-    row: number,
-    stride: number,
-    alpha: number,
-    most: number,
-    texels: number,
-    sums: number,
-  ): void;
-  lightOfWords(
-    codes: number,
-    step: number,
-    colors: number,
-    row: number,
-    stride: number,
-    alpha: number,
-    most: number,
-    texels: number,
-    sums: number,
-  ): void;
+  sumHeld(row: number, stride: number, alpha: number, most: number, wholes: number, texels: number, sums: number): void;
   keepAlpha(alpha: number, stride: number, most: number, values: number, texels: number): void;
   measureLengths(
     row: number,

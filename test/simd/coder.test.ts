@@ -2,6 +2,7 @@ import { expect, it } from 'vitest';
 import { headOf } from '../../core/chain/chain.ts';
 import { CLIP_SLACK, newClipped } from '../../core/chain/clip.ts';
 import { plainCoder } from '../../core/chain/coder.ts';
+import { SUMS_A_ROW } from '../../core/chain/light.ts';
 import { type ChainPlan, passOf, planChain } from '../../core/chain/plan.ts';
 import { encodeThresholds } from '../../core/color/encoder.ts';
 import { type ChannelCount, type Depth, maxCode, newCodes } from '../../core/raster/raster.ts';
@@ -54,17 +55,17 @@ function stored(plan: ChainPlan, rows: readonly Float32Array[], use: 'own' | nul
   const clipped = newClipped(layout.channels);
   const lengths = rows.map(() => new Float32Array(EXTENT.width));
   const alphas = rows.map(() => new Uint16Array(EXTENT.width));
-  const lights: object[] = [];
+  const lights = new Float64Array(rows.length * SUMS_A_ROW);
   const run = simd.open(pass, (_, y, floats) => {
     if (layout.normals.length > 0) coder.measureLengths(floats, lengths[y]);
     coder.encode(floats, codes, y * length, clipped, lengths[y]);
     if (layout.alpha !== null) coder.keepAlpha(floats, alphas[y]);
-    if (plan.treatment.content === 'color') lights.push(coder.light(floats, codes, y * length));
+    if (plan.treatment.content === 'color') coder.measure(floats, codes, y * length, lights, y * SUMS_A_ROW);
   });
   if (run.coder === null) throw new TypeError('Expected an engine with a coder of its own');
   const coder: RowCoder = use === 'own' ? run.coder : plainCoder(pass.encoding!);
   for (const row of rows) run.pushFloats(row);
-  return { codes: hash(codes), clipped, lengths: lengths.map(hash), alphas: alphas.map(hash), lights };
+  return { codes: hash(codes), clipped, lengths: lengths.map(hash), alphas: alphas.map(hash), lights: [...lights] };
 }
 
 /** Rows of texels of which each channel has one value of those that decide, as it is or times the texel's alpha. */

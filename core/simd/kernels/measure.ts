@@ -1,98 +1,48 @@
-// What is measured on float rows, in double precision.
+// What is measured on float rows.
 
-// Luminance of codes. Of red, green and blue, 16 bytes each:
-//
-//   u32 bytes from a texel's first code to the color's
-//   u32 address of a table, f64 a code: light, times the color's share of luminance
-
-/** Adds up luminance of 8-bit codes and the weight of each texel, alpha clamped to 0..1, and writes both sums. Texels of codes are
- *  `step` bytes apart. `alpha` is the byte of alpha in a texel of the float row; -1 where every texel weighs 1. */
-export function lightOfBytes(
-  codes: usize,
-  step: usize,
-  colors: usize,
+/** Sums four lanes of a row by fours of texels, as decode.ts does, clamped: alpha, at byte `alpha` of a texel, to 0..most, every lane to
+ *  0 and alpha times its line of `wholes`. -1 is an alpha of 1. */
+export function sumHeld(
   row: usize,
   stride: usize,
   alpha: i32,
-  most: f64,
+  most: f32,
+  wholes: usize,
   texels: i32,
   sums: usize,
 ): void {
-  lightOf<u8>(codes, step, colors, row, stride, alpha, most, texels, sums);
+  const end = row + <usize>(texels & ~3) * stride;
+  const whole = v128.load(wholes);
+  const all = f32x4.splat(most);
+  const none = f32x4.splat(0);
+  let low = f64x2.splat(0);
+  let high = f64x2.splat(0);
+  while (row < end) {
+    const third = row + (stride << 1);
+    const front = f32x4.add(held(row, alpha, all, whole), held(row + stride, alpha, all, whole));
+    const back = f32x4.add(held(third, alpha, all, whole), held(third + stride, alpha, all, whole));
+    const four = f32x4.add(front, back);
+    low = f64x2.add(low, f64x2.promote_low_f32x4(four));
+    high = f64x2.add(high, f64x2.promote_low_f32x4(v128.shuffle<f64>(four, four, 1, 1)));
+    row += stride << 2;
+  }
+  if (texels & 3) {
+    const second = (texels & 3) > 1 ? held(row + stride, alpha, all, whole) : none;
+    const third = (texels & 3) > 2 ? held(row + (stride << 1), alpha, all, whole) : none;
+    const four = f32x4.add(f32x4.add(held(row, alpha, all, whole), second), f32x4.add(third, none));
+    low = f64x2.add(low, f64x2.promote_low_f32x4(four));
+    high = f64x2.add(high, f64x2.promote_low_f32x4(v128.shuffle<f64>(four, four, 1, 1)));
+  }
+  v128.store(sums, low);
+  v128.store(sums, high, 16);
 }
 
-/** The same of 16-bit codes. */
-export function lightOfWords(
-  codes: usize,
-  step: usize,
-  colors: usize,
-  row: usize,
-  stride: usize,
-  alpha: i32,
-  most: f64,
-  texels: i32,
-  sums: usize,
-): void {
-  lightOf<u16>(codes, step, colors, row, stride, alpha, most, texels, sums);
-}
-
-/** Two texels side by side: even ones in the low lane, odd ones in the high. */
-function lightOf<Code extends number>(
-  codes: usize,
-  step: usize,
-  colors: usize,
-  row: usize,
-  stride: usize,
-  alpha: i32,
-  most: f64,
-  texels: i32,
-  sums: usize,
-): void {
-  const red = <usize>load<u32>(colors, 0);
-  const green = <usize>load<u32>(colors, 16);
-  const blue = <usize>load<u32>(colors, 32);
-  const reds = <usize>load<u32>(colors, 4);
-  const greens = <usize>load<u32>(colors, 20);
-  const blues = <usize>load<u32>(colors, 36);
-  const end = codes + <usize>(texels & ~1) * step;
-  const whole = f32x4.splat(<f32>most);
-  const one = f64x2.splat(1);
-  let place = row + <usize>alpha;
-  let light = f64x2.splat(0);
-  let weight = f64x2.splat(0);
-  while (codes < end) {
-    const next = codes + step;
-    let y = v128.load64_zero(reds + ((<usize>load<Code>(codes + red)) << 3));
-    y = v128.load64_lane(reds + ((<usize>load<Code>(next + red)) << 3), y, 1);
-    let g = v128.load64_zero(greens + ((<usize>load<Code>(codes + green)) << 3));
-    g = v128.load64_lane(greens + ((<usize>load<Code>(next + green)) << 3), g, 1);
-    let b = v128.load64_zero(blues + ((<usize>load<Code>(codes + blue)) << 3));
-    b = v128.load64_lane(blues + ((<usize>load<Code>(next + blue)) << 3), b, 1);
-    y = f64x2.add(f64x2.add(y, g), b);
-    if (alpha < 0) {
-      light = f64x2.add(light, y);
-      weight = f64x2.add(weight, one);
-    } else {
-      const alphas = v128.load32_lane(place + stride, v128.load32_zero(place), 1);
-      const share = f64x2.promote_low_f32x4(f32x4.pmin(whole, f32x4.pmax(f32x4.splat(0), alphas)));
-      light = f64x2.add(light, f64x2.mul(y, share));
-      weight = f64x2.add(weight, share);
-      place += stride << 1;
-    }
-    codes = next + step;
-  }
-  if (texels & 1) {
-    const r = load<f64>(reds + ((<usize>load<Code>(codes + red)) << 3));
-    const g = load<f64>(greens + ((<usize>load<Code>(codes + green)) << 3));
-    const b = load<f64>(blues + ((<usize>load<Code>(codes + blue)) << 3));
-    const value: f64 = alpha < 0 ? 1 : <f64>load<f32>(place);
-    const share: f64 = alpha < 0 ? 1 : value >= most ? most : value > 0 ? value : 0;
-    light = f64x2.replace_lane(light, 0, f64x2.extract_lane(light, 0) + (r + g + b) * share);
-    weight = f64x2.replace_lane(weight, 0, f64x2.extract_lane(weight, 0) + share);
-  }
-  const divisor: f64 = alpha < 0 ? 1 : most;
-  store<f64>(sums, (f64x2.extract_lane(light, 0) + f64x2.extract_lane(light, 1)) / divisor);
-  store<f64>(sums, (f64x2.extract_lane(weight, 0) + f64x2.extract_lane(weight, 1)) / divisor, 8);
+function held(texel: usize, alpha: i32, all: v128, whole: v128): v128 {
+  const none = f32x4.splat(0);
+  const positive = f32x4.pmax(none, v128.load(texel));
+  if (alpha < 0) return f32x4.pmin(whole, positive);
+  const share = f32x4.pmin(all, f32x4.pmax(none, v128.load32_splat(texel + <usize>alpha)));
+  return f32x4.pmin(f32x4.mul(share, whole), positive);
 }
 
 /** Alpha as words: 65535 is 1. */
