@@ -74,6 +74,8 @@ export type HostEvent =
       readonly revision: number;
       readonly settings: SettingsReply;
     }
+  /** Somebody asked for an export by a command: the page is to ask for it, since it knows what it shows. */
+  | { readonly protocol: number; readonly kind: 'export'; readonly form: ExportOrder['form'] }
   /** The outputs or the manifest changed. */
   | { readonly protocol: number; readonly kind: 'built'; readonly revision: number; readonly state: BuiltState };
 
@@ -155,8 +157,8 @@ export interface AdoptChange {
   readonly settings: Readonly<Record<string, unknown>>;
 }
 
-/** What to export: one page that stands alone. `state` is what the page keeps, as it gives it to `keep`. */
+/** What to export: one picture, or one page that stands alone. `state` is what the page keeps, as it gives it to `keep`. */
 export interface ExportOrder {
-  readonly form: 'page';
+  readonly form: 'sheet' | 'page';
   readonly state: Readonly<Record<string, unknown>>;
 }

@@ -145,8 +145,12 @@ const usage = {
   'no-treatment': 'No treatment matches {path}. Adopt for this file only.',
   'bad-message':
     'The page sent what was not understood: expected {expected} for {where}. Close the proof and open it again.',
+  'proof-nowhere': 'Nothing says what to write. Add `--sheet FILE` for a picture, `--html FILE` for a page, or both.',
+  'one-texture': 'A proof is of one texture, and {count} lie under this path. Name the file.',
+  'no-such-target':
+    'There is no target "{given}". Name a level such as 3, a scale such as 0.5x, an extent such as 48x48, or one of the settings: {known}.',
   'export-too-large':
-    'The page would carry {bytes} bytes of source; more than {limit} are carried only when asked for. Say what to keep: all of it, or its middle.',
+    'The page would carry {bytes} bytes of source; more than {limit} are carried only when asked for. Add `--keep all`, or `--keep middle` for its middle alone.',
   'exported-page': 'This page was exported and has no editor to ask. Open the texture in the editor.',
   'page-outdated':
     'This page speaks version {page} of the protocol and the extension version {host}. Close the proof and open it again.',

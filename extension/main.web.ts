@@ -1,6 +1,7 @@
 import type * as vscode from 'vscode';
 import { activateApp } from './app/activate.ts';
 import { webPorts } from './web/ports.ts';
+import { drawSheet } from './web/sheet.ts';
 import { after, encodeUtf8, randomText } from './web/surroundings.ts';
 
 /** The extension in a browser: no disk, so nothing is built or checked; proofs, explanations and settings work on whatever file
@@ -10,6 +11,7 @@ export function activate(context: vscode.ExtensionContext): void {
     ports: webPorts,
     disk: null,
     startBench: null,
+    drawSheet,
     newNonce: () => randomText(16),
     encodeUtf8,
     after,

@@ -1,9 +1,8 @@
 import type { Hash } from '../port.ts';
-import { refuse } from '../problem.ts';
 import { baseName } from '../treatment/path.ts';
 import type { Origin } from '../treatment/treatment.ts';
 import { documentOf, type PageCode } from './document.ts';
-import { type ProofOrder, SOURCE_LIMIT } from './order.ts';
+import type { ProofOrder } from './order.ts';
 
 /** Ids of what the page of a proof carries. */
 export const PROOF_BLOCK = 'proof';
@@ -22,20 +21,17 @@ export interface CarriedProof extends Omit<ProofOrder, 'image' | 'roughness'> {
 }
 
 /** The proof as one HTML file that computes its prints from the source that it carries. Equal orders, words and code give equal
- *  texts. `over` says what to do with more than `SOURCE_LIMIT` bytes. Throws Refusal: `export-too-large`. */
+ *  texts. Doors ask what to keep of a large source first: core/export/keep.ts. */
 export function proofPage(
   order: ProofOrder,
   page: {
     readonly code: PageCode;
     readonly language: string;
     readonly words: Readonly<Record<string, string>>;
-    readonly over: 'refuse' | 'keep';
   },
   newHash: () => Hash,
 ): string {
   const { image, roughness, ...rest } = order;
-  const bytes = image.length + (roughness?.length ?? 0);
-  if (bytes > SOURCE_LIMIT && page.over === 'refuse') refuse('export-too-large', { bytes, limit: SOURCE_LIMIT });
   const carried: CarriedProof = {
     format: FORMAT,
     ...rest,

@@ -3,7 +3,8 @@ import { BuildDesk } from './build/desk.ts';
 import { buildOnSave } from './build/on-save.ts';
 import { registerCommands } from './commands.ts';
 import type { Platform } from './platform.ts';
-import { registerProofEditor } from './proof/editor.ts';
+import { pagesFolder, registerProofEditor } from './proof/editor.ts';
+import { OpenPages } from './proof/open-pages.ts';
 import { watchSettings } from './settings/diagnostics.ts';
 import { serveExplanations } from './settings/explain.ts';
 import { serveSchema } from './settings/schema.ts';
@@ -13,14 +14,15 @@ import { provideTasks } from './tasks/provider.ts';
 export function activateApp(context: vscode.ExtensionContext, platform: Platform): void {
   const log = vscode.window.createOutputChannel('Sizeproof', { log: true });
   const desk = new BuildDesk(platform, log);
+  const tools = { platform, desk, log, open: new OpenPages() };
   context.subscriptions.push(
     log,
     desk,
     watchSettings(),
     serveSchema(),
     serveExplanations(platform),
-    registerProofEditor(context.extensionUri, platform, desk, log),
-    registerCommands(platform, desk, log),
+    registerProofEditor(context.extensionUri, tools),
+    registerCommands(tools, pagesFolder(context.extensionUri)),
     provideTasks(desk),
     buildOnSave(desk, platform),
   );

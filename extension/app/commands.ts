@@ -1,9 +1,9 @@
 import * as vscode from 'vscode';
 import { Refusal } from '../../core/problem.ts';
-import type { BuildDesk, BuildKind } from './build/desk.ts';
-import type { Platform } from './platform.ts';
+import type { BuildKind } from './build/desk.ts';
 import { TextureCounts } from './proof/counts.ts';
-import { VIEW_TYPE } from './proof/editor.ts';
+import { type EditorTools, VIEW_TYPE } from './proof/editor.ts';
+import { exportByCommand } from './proof/export-command.ts';
 import { TextureFacts } from './proof/facts.ts';
 import { reportOf, revealOutputs } from './proof/outputs.ts';
 import { selectedResources, selectedTexture } from './selected.ts';
@@ -13,7 +13,7 @@ import { openSettings } from './settings/open.ts';
 import { sayProblem } from './words.ts';
 
 /** Registers every command of the extension. The explorer hands over the item that was clicked and all that are selected. */
-export function registerCommands(platform: Platform, desk: BuildDesk, log: vscode.LogOutputChannel): vscode.Disposable {
+export function registerCommands({ platform, desk, log, open }: EditorTools, pages: vscode.Uri): vscode.Disposable {
   const aboutTexture = (act: (texture: vscode.Uri) => Promise<void>) => async (first: unknown, all: unknown) => {
     const texture = await selectedTexture(first, all);
     if (texture !== null) await act(texture);
@@ -31,6 +31,7 @@ export function registerCommands(platform: Platform, desk: BuildDesk, log: vscod
         await vscode.commands.executeCommand('vscode.openWith', each, VIEW_TYPE);
       }
     },
+    exportProof: aboutTexture((texture) => exportByCommand(factsOf(texture), open, { platform, pages })),
     build: building('build'),
     buildAndPrune: building('prune'),
     rebuild: building('rebuild'),

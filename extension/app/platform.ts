@@ -1,3 +1,4 @@
+import type { ProofOrder } from '../../core/export/order.ts';
 import type { Manifest } from '../../core/manifest/manifest.ts';
 import type { FileTree, Ports } from '../../core/port.ts';
 import type { Problem } from '../../core/problem.ts';
@@ -12,6 +13,8 @@ export interface Platform {
   readonly startBench: (() => BenchWorker) | null;
   /** A text that nobody can guess, for the page's policy. */
   newNonce(): string;
+  /** Draws a proof sheet (core/export/sheet.ts, `makeSheet`) where it holds nobody up. Throws Refusal, and Cancelled. */
+  drawSheet(order: ProofOrder, cancel: CancelToken): Promise<Uint8Array>;
   encodeUtf8(text: string): Uint8Array;
   /** Calls once, after a while; disposing calls it off. */
   after(milliseconds: number, act: () => void): { dispose(): void };

@@ -1,5 +1,7 @@
+import { defaultParams, findKernel, kernels } from '../../core/kernel/table.ts';
 import { type Problem, Refusal, refuse } from '../../core/problem.ts';
 import { nearest } from '../../core/treatment/nearest.ts';
+import type { KernelChoice } from '../../core/treatment/treatment.ts';
 import { type CommandName, commands, type OptionEntry, type OptionName, options } from './commands.ts';
 
 /** A command line, understood. */
@@ -10,12 +12,23 @@ export interface Arguments {
   readonly settings: string | null;
   readonly out: string | null;
   readonly sourceRoot: string | null;
+  readonly proof: ProofArguments;
   readonly markdown: string | null;
   /** Workers; `null` leaves it to the machine. */
   readonly jobs: number | null;
   /** Bytes; `null` leaves it to the machine. */
   readonly memoryBytes: number | null;
   readonly flags: ReadonlySet<OptionName>;
+}
+
+/** What `proof` is to write. */
+export interface ProofArguments {
+  readonly sheet: string | null;
+  readonly html: string | null;
+  /** Null leaves it to the texture. */
+  readonly kernels: readonly KernelChoice[] | null;
+  readonly at: string | null;
+  readonly keep: 'all' | 'middle' | null;
 }
 
 /** Understands a command line, or says all that is wrong with it. `words` are the arguments behind the program's name. */
@@ -45,12 +58,17 @@ export function readArguments(words: readonly string[]): Arguments | readonly Pr
   if (isCommand) paths.shift();
   const jobs = note(() => readJobs(values.get('jobs')));
   const memoryBytes = note(() => readMemory(values.get('memory')));
+  const compared = note(() => readKernels(values.get('kernels')));
+  const keep = note(() => readKeep(values.get('keep')));
   if (isCommand && !values.has('help')) note(() => checkCount(command, paths));
   if (command === 'review' && !values.has('help')) note(() => checkReview(values, paths));
   for (const other of ['plan', 'json'] as const) {
     if (values.has('watch') && values.has(other)) {
       note(() => refuse('options-exclude', { first: '--watch', second: `--${other}` }));
     }
+  }
+  if (command === 'proof' && !values.has('help') && !values.has('sheet') && !values.has('html')) {
+    note(() => refuse('proof-nowhere', {}));
   }
   if (problems.length > 0) return problems;
   return {
@@ -59,6 +77,13 @@ export function readArguments(words: readonly string[]): Arguments | readonly Pr
     settings: values.get('settings') ?? null,
     out: values.get('out') ?? null,
     sourceRoot: values.get('source-root') ?? null,
+    proof: {
+      sheet: values.get('sheet') ?? null,
+      html: values.get('html') ?? null,
+      kernels: compared ?? null,
+      at: values.get('at') ?? null,
+      keep: keep ?? null,
+    },
     markdown: values.get('markdown') ?? null,
     jobs: jobs ?? null,
     memoryBytes: memoryBytes ?? null,
@@ -126,11 +151,31 @@ function readMemory(text: string | undefined): number | null {
   return refuse('option-value', { expected: 'a size such as 512MiB or 2GiB', option: '--memory', received: text });
 }
 
+function readKernels(text: string | undefined): readonly KernelChoice[] | null {
+  if (text === undefined) return null;
+  return text.split(',').map((word) => {
+    const name = word.trim();
+    const kernel = findKernel(name);
+    if (kernel !== undefined) return { name, params: defaultParams(kernel) };
+    const names = kernels.map((each) => each.name).join(', ');
+    return refuse('option-value', { expected: `some of ${names}`, option: '--kernels', received: name || 'nothing' });
+  });
+}
+
+function readKeep(text: string | undefined): 'all' | 'middle' | null {
+  if (text === undefined) return null;
+  if (text === 'all' || text === 'middle') return text;
+  return refuse('option-value', { expected: 'all or middle', option: '--keep', received: text });
+}
+
 function checkCount(command: CommandName, paths: readonly string[]): void {
   const entry = commands.find((each) => each.name === command);
   if (entry !== undefined && paths.length < entry.least) refuse('missing-argument', { command, what: entry.takes });
   if (command === 'init' && paths.length > 1) {
     refuse('option-value', { expected: 'one folder at most', option: 'init', received: paths.join(' ') });
+  }
+  if (command === 'proof' && paths.length > 1) {
+    refuse('option-value', { expected: 'one texture', option: 'proof', received: paths.join(' ') });
   }
 }
 

@@ -21,6 +21,12 @@ export const commands = [
     says: 'Say which treatment each texture gets, and which rule set each setting.',
   },
   {
+    name: 'proof',
+    takes: 'PATH',
+    least: 1,
+    says: 'Write the proof of one texture as a picture, as a page that stands alone, or both.',
+  },
+  {
     name: 'review',
     takes: '[RANGE]',
     least: 0,
@@ -38,12 +44,17 @@ export interface OptionEntry {
   readonly says: string;
 }
 
-const all: readonly CommandName[] = ['init', 'build', 'check', 'rebuild', 'explain', 'review'];
+const all: readonly CommandName[] = ['init', 'build', 'check', 'rebuild', 'explain', 'proof', 'review'];
 const project: readonly CommandName[] = ['build', 'check', 'explain'];
 
 /** Every option there is. `--help` and `--version` also stand alone. */
 export const options = [
-  { name: 'settings', value: 'FILE', commands: project, says: 'Use this settings file in place of the nearest one.' },
+  {
+    name: 'settings',
+    value: 'FILE',
+    commands: [...project, 'proof'],
+    says: 'Use this settings file in place of the nearest one.',
+  },
   {
     name: 'out',
     value: 'DIR',
@@ -84,6 +95,36 @@ export const options = [
     value: null,
     commands: ['rebuild'],
     says: 'Rebuild what another revision of the algorithm built; pixels may change.',
+  },
+  {
+    name: 'sheet',
+    value: 'FILE',
+    commands: ['proof'],
+    says: 'Write the proof sheet here: one PNG picture of every target and of kernels compared.',
+  },
+  {
+    name: 'html',
+    value: 'FILE',
+    commands: ['proof'],
+    says: 'Write the proof here as one HTML file that opens without a network.',
+  },
+  {
+    name: 'kernels',
+    value: 'NAMES',
+    commands: ['proof'],
+    says: "Compare these kernels with the settings' own, as mitchell,lanczos3.",
+  },
+  {
+    name: 'at',
+    value: 'TARGET',
+    commands: ['proof'],
+    says: 'Compare kernels at this level, scale, extent or target, as 3, 0.5x, 48x48 or badge.',
+  },
+  {
+    name: 'keep',
+    value: 'WHAT',
+    commands: ['proof'],
+    says: 'What a page carries of more than 50 MB of source: all, or middle.',
   },
   { name: 'staged', value: null, commands: ['review'], says: 'Compare the last commit with what is staged.' },
   {

@@ -8,6 +8,7 @@ import { runExplain } from './explain-command.ts';
 import { helpText } from './help.ts';
 import { runInit } from './init-command.ts';
 import { nameFrom } from './print.ts';
+import { runProof } from './proof-command.ts';
 import { runReview } from './review-command.ts';
 import { conclude, onlyProblems, type Result, type Shell, type Voice } from './shell.ts';
 import { buildOnChange } from './watch.ts';
@@ -37,6 +38,7 @@ const commands: Readonly<Record<CommandName, (args: Arguments, shell: Shell) => 
   check: runCheck,
   rebuild: runRebuild,
   explain: runExplain,
+  proof: runProof,
   review: runReview,
 };
 

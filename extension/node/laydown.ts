@@ -156,17 +156,8 @@ export function openLaydown(disk: Disk, place: Place, wait: Pause = pause): Layd
     madeFolders.push(...chain);
   }
 
-  async function replace(from: string, to: string, named: string): Promise<void> {
-    for (let tries = 0; ; tries++) {
-      try {
-        return await disk.rename(from, to);
-      } catch (error) {
-        if (!(error instanceof DiskError && error.fault === 'busy'))
-          return await orRefuse(named, 0, () => Promise.reject(error));
-        if (tries === BUSY_TRIES) refuse('output-busy', { seconds: BUSY_SECONDS }, { path: named });
-        await wait((BUSY_SECONDS * 1000) / BUSY_TRIES);
-      }
-    }
+  function replace(from: string, to: string, named: string): Promise<void> {
+    return replaceFile(disk, { from, to, named }, wait);
   }
 
   async function readFormer(path: string): Promise<Manifest | null> {
@@ -191,6 +182,25 @@ export function openLaydown(disk: Disk, place: Place, wait: Pause = pause): Layd
       }
     }
     return files;
+  }
+}
+
+/** Puts a file in the place of another, and tries again while another program holds that open. `named` is the path that a refusal
+ *  speaks of. Throws Refusal. */
+export async function replaceFile(
+  disk: Disk,
+  { from, to, named }: { readonly from: string; readonly to: string; readonly named: string },
+  wait: Pause,
+): Promise<void> {
+  for (let tries = 0; ; tries++) {
+    try {
+      return await disk.rename(from, to);
+    } catch (error) {
+      if (!(error instanceof DiskError && error.fault === 'busy'))
+        return await orRefuse(named, 0, () => Promise.reject(error));
+      if (tries === BUSY_TRIES) refuse('output-busy', { seconds: BUSY_SECONDS }, { path: named });
+      await wait((BUSY_SECONDS * 1000) / BUSY_TRIES);
+    }
   }
 }
 

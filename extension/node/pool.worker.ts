@@ -3,11 +3,13 @@ import type { BenchData } from './bench-worker.ts';
 import type { WorkerData } from './pool.ts';
 import { serve } from './serve.ts';
 import { serveBench } from './serve-bench.ts';
+import { type SheetData, serveSheet } from './sheet.ts';
 
-const given = workerData as WorkerData | BenchData;
+const given = workerData as WorkerData | BenchData | SheetData;
 
 if (parentPort !== null) {
   if (given.kind === 'bench') serveBench(parentPort, new URL(given.kernels));
+  else if (given.kind === 'sheet') void serveSheet(parentPort, given);
   else {
     const cancel = new Int32Array(given.cancel);
     serve(parentPort, given.kernels, () => Atomics.load(cancel, 0) === 1);

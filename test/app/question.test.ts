@@ -21,6 +21,8 @@ const good: readonly (readonly [call: string, question: unknown])[] = [
   ['showSettings', { key: 'limits.over-budget' }],
   ['copy', { text: '' }],
   ['save', { name: 'leaf proof.png', bytes: new ArrayBuffer(3) }],
+  ['export', { form: 'sheet', state: { version: 1, slots: [] } }],
+  ['export', { form: 'page', state: {} }],
 ];
 
 test.each(good)('%s with %o is understood', (call, question) => {
@@ -53,6 +55,10 @@ describe('what a page may not ask', () => {
     ['a name that leads elsewhere', ask('save', { name: '../leaf.png', bytes: new ArrayBuffer(0) })],
     ['a name that hides', ask('save', { name: '.bashrc', bytes: new ArrayBuffer(0) })],
     ['a name with a line break', ask('save', { name: 'a\nb', bytes: new ArrayBuffer(0) })],
+    ['another form', ask('export', { form: 'film', state: {} })],
+    ['a state that is none', ask('export', { form: 'sheet', state: [] })],
+    ['a state in a ring', ask('export', { form: 'page', state: ring })],
+    ['a state beyond measure', ask('export', { form: 'page', state: { show: 'x'.repeat(2 ** 19) } })],
     ['bytes that are none', ask('save', { name: 'a.png', bytes: [1, 2] })],
   ])('%s', async (_, message) => {
     expect((await problemOf(() => readRequest(message)))?.code).toBe('bad-message');

@@ -12,7 +12,7 @@ interface Room {
 
 // The first room whose `at` a path starts with is its room. `main.ts` and `main.web.ts` are rooms of one file.
 const ROOMS: readonly Room[] = [
-  { at: 'core/', files: ['core/'], packages: ['ktx-parse', 'picomatch', 'jsonc-parser'] },
+  { at: 'core/', files: ['core/'], packages: ['ktx-parse', 'picomatch', 'jsonc-parser', 'fflate'] },
   { at: 'extension/cli/', files: ['core/', 'extension/cli/', 'extension/node/', 'package.json'], packages: ['node:*'] },
   { at: 'extension/node/', files: ['core/', 'extension/node/'], packages: ['node:*'] },
   { at: 'extension/web/', files: ['core/', 'extension/web/', 'webview/worker/'], packages: [] },

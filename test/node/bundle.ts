@@ -1,4 +1,4 @@
-import { copyFileSync, existsSync, rmSync } from 'node:fs';
+import { copyFileSync, cpSync, existsSync, rmSync } from 'node:fs';
 import { build } from 'esbuild';
 import { afterAll } from 'vitest';
 import { kernelBytes } from '../fixtures/simd.ts';
@@ -39,6 +39,7 @@ async function bundle(): Promise<string> {
   });
   kernelBytes();
   copyFileSync(`${top}dist/engine.wasm`, `${outdir}/engine.wasm`);
+  cpSync(`${top}dist/page`, `${outdir}/page`, { recursive: true });
   if (!existsSync(`${outdir}/cli.js`)) throw new Error('The command line was not bundled.');
   return outdir;
 }

@@ -59,7 +59,7 @@ async function openExported(
   const at = (name: string) => readFileSync(join(top, 'dist/page', name), 'utf8');
   const code = { script: at('page.js'), worker: at('worker.js'), style: at('page.css') };
   const file = join(folder, 'proof.html');
-  writeFileSync(file, proofPage(order, { code, language: 'en', words: {}, over: 'refuse' }, newHash));
+  writeFileSync(file, proofPage(order, { code, language: 'en', words: {} }, newHash));
   const context = await browser.newContext({
     viewport: { width: 1280, height: 900 },
     colorScheme: scheme,

@@ -7,18 +7,29 @@ import { TextureCounts } from './counts.ts';
 import { ProofDocument } from './document.ts';
 import { TextureFacts } from './facts.ts';
 import { pageHtml } from './html.ts';
+import type { OpenPages } from './open-pages.ts';
 
 export const VIEW_TYPE = 'sizeproof.proof';
+
+export interface EditorTools {
+  readonly platform: Platform;
+  readonly desk: BuildDesk;
+  readonly log: vscode.LogOutputChannel;
+  readonly open: OpenPages;
+}
+
+/** The folder of the built page. */
+export function pagesFolder(extensionUri: vscode.Uri): vscode.Uri {
+  return vscode.Uri.joinPath(extensionUri, 'dist', 'page');
+}
 
 /** The read-only editor that shows a texture at its sizes. A document is the texture, each view a page that may come and go. */
 export function registerProofEditor(
   extensionUri: vscode.Uri,
-  platform: Platform,
-  desk: BuildDesk,
-  log: vscode.LogOutputChannel,
+  { platform, desk, log, open }: EditorTools,
 ): vscode.Disposable {
   const counts = new TextureCounts();
-  const pages = vscode.Uri.joinPath(extensionUri, 'dist', 'page');
+  const pages = pagesFolder(extensionUri);
   const report = (error: unknown) => log.error(error instanceof Error ? error : String(error));
   const provider: vscode.CustomReadonlyEditorProvider<ProofDocument> = {
     openCustomDocument(uri) {
@@ -30,7 +41,8 @@ export function registerProofEditor(
       const answers = answersFor(document, { platform, desk, pages });
       const channel = new Channel(webview, { answers, revision: () => document.revision, report });
       const added = document.addPage(channel);
-      panel.onDidDispose(() => added.dispose());
+      const opened = open.add({ uri: document.uri, panel, channel });
+      panel.onDidDispose(() => vscode.Disposable.from(added, opened).dispose());
       webview.html = pageHtml(webview, pages, platform.newNonce());
     },
   };

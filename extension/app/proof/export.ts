@@ -1,8 +1,12 @@
 import * as vscode from 'vscode';
-import { type ProofOrder, SOURCE_LIMIT } from '../../../core/export/order.ts';
+import { openImage } from '../../../core/codec/open.ts';
+import { isLarge, keepMiddle, sourceBytes } from '../../../core/export/keep.ts';
+import type { ProofOrder } from '../../../core/export/order.ts';
 import { proofPage } from '../../../core/export/proof-page.ts';
+import { Cancelled } from '../../../core/port.ts';
 import { Refusal, refuse } from '../../../core/problem.ts';
 import type { ExportOrder } from '../../../core/protocol.ts';
+import { baseName } from '../../../core/treatment/path.ts';
 import type { Platform } from '../platform.ts';
 import { readConfiguration } from '../settings/configuration.ts';
 import { matchingRule } from '../settings/open.ts';
@@ -21,39 +25,50 @@ export interface ExportTools {
  *  where the user thought better of it. Throws Refusal. */
 export async function exportProof(
   texture: TextureFacts,
-  { state }: { readonly form: ExportOrder['form']; readonly state: unknown },
+  { form, state }: { readonly form: ExportOrder['form']; readonly state: unknown },
   tools: ExportTools,
 ): Promise<vscode.Uri | null> {
-  const order = await orderOf(texture, state);
-  if (!(await isToBeKept(order))) return null;
+  const order = await orderOf(texture, state, tools.platform);
+  const kept = form === 'page' ? await keptOf(order, tools.platform) : order;
+  if (kept === null) return null;
   const stem = texture.name.replace(/\.[^.]*$/, '');
   const target = await vscode.window.showSaveDialog({
-    defaultUri: vscode.Uri.joinPath(texture.uri, '..', `${stem}.proof.html`),
-    filters: { HTML: ['html'] },
+    defaultUri: vscode.Uri.joinPath(texture.uri, '..', `${stem}.proof.${form === 'sheet' ? 'png' : 'html'}`),
+    filters: form === 'sheet' ? { PNG: ['png'] } : { HTML: ['html'] },
   });
   if (target === undefined) return null;
   if (target.toString() === texture.uri.toString()) refuse('output-is-source', { source: texture.name });
   const title = vscode.l10n.t('Exporting the proof of {name}', { name: texture.name });
-  await vscode.window.withProgress({ location: vscode.ProgressLocation.Window, title }, async () => {
-    await writeWhole(target, await makePage(order, tools), tools.platform);
+  const location = vscode.ProgressLocation.Notification;
+  return vscode.window.withProgress({ location, title, cancellable: true }, async (_, token) => {
+    try {
+      const bytes = form === 'sheet' ? await tools.platform.drawSheet(kept, token) : await makePage(kept, tools);
+      if (token.isCancellationRequested) return null;
+      await writeWhole(target, bytes, tools.platform);
+      return target;
+    } catch (error) {
+      if (error instanceof Cancelled) return null;
+      throw error;
+    }
   });
-  return target;
 }
 
 /** The proof as the settings are typed now. */
-async function orderOf(texture: TextureFacts, state: unknown): Promise<ProofOrder> {
+async function orderOf(texture: TextureFacts, state: unknown, { ports }: Platform): Promise<ProofOrder> {
   const settings = await texture.settings();
   if (settings.texture === null) throw new Refusal(settings.problems[0]);
   const { treatment, origins } = settings.texture;
-  const { file } = settings.root;
   const roughness = await texture.roughness();
+  const image = new Uint8Array(await texture.bytes());
+  // What cannot be opened is refused here, and not by a page that somebody was sent.
+  openImage(image, texture.name, ports.inflate);
   return {
     name: texture.name,
     path: settings.path,
-    image: new Uint8Array(await texture.bytes()),
+    image,
     roughness: roughness === null ? null : new Uint8Array(roughness),
     settings: {
-      file: file === null ? null : file.slice(file.lastIndexOf('/') + 1),
+      file: settings.root.file === null ? null : baseName(settings.root.file),
       globs: matchingRule(settings)?.rule.match ?? null,
       treatment,
       origins,
@@ -64,17 +79,25 @@ async function orderOf(texture: TextureFacts, state: unknown): Promise<ProofOrde
   };
 }
 
-/** Whether all of the source is to be carried; a large one is asked about. */
-async function isToBeKept({ image, roughness, name }: ProofOrder): Promise<boolean> {
-  const bytes = image.length + (roughness?.length ?? 0);
-  if (bytes <= SOURCE_LIMIT) return true;
+/** What is to be carried of the source: a large one is asked about. Null where the user thought better of it. */
+async function keptOf(order: ProofOrder, { ports }: Platform): Promise<ProofOrder | null> {
+  if (!isLarge(order)) return order;
   const all = vscode.l10n.t('Carry All of It');
+  const middle = vscode.l10n.t('Carry Its Middle');
+  const size = Math.ceil(sourceBytes(order) / 1e6);
   const chosen = await vscode.window.showWarningMessage(
-    vscode.l10n.t('The page would carry {size} MB of {name}.', { size: Math.ceil(bytes / 1e6), name }),
-    { modal: true, detail: vscode.l10n.t('It computes its prints from the source, which goes with it.') },
+    vscode.l10n.t('The page would carry {size} MB of {name}.', { size, name: order.name }),
+    {
+      modal: true,
+      detail: vscode.l10n.t(
+        'A page computes its prints from the source, which goes with it. The middle is 2048 texels a side, and the page says so.',
+      ),
+    },
     all,
+    middle,
   );
-  return chosen === all;
+  if (chosen === middle) return keepMiddle(order, ports.inflate);
+  return chosen === all ? order : null;
 }
 
 async function makePage(order: ProofOrder, { platform, pages }: ExportTools): Promise<Uint8Array> {
@@ -82,6 +105,5 @@ async function makePage(order: ProofOrder, { platform, pages }: ExportTools): Pr
   // A page without translations is in English, whatever the editor speaks.
   const language = Object.keys(words).length === 0 ? 'en' : vscode.env.language;
   const code = await readPageCode(pages);
-  const text = proofPage(order, { code, language, words, over: 'keep' }, platform.ports.newHash);
-  return platform.encodeUtf8(text);
+  return platform.encodeUtf8(proofPage(order, { code, language, words }, platform.ports.newHash));
 }

@@ -87,7 +87,7 @@ const questions: { readonly [K in HostCall]: Shape<Question<K>> } = {
     bytes: fileBytes,
   }),
   reveal: nothing,
-  export: object<ExportOrder>({ form: choice('page'), state: plainState }),
+  export: object<ExportOrder>({ form: choice('sheet', 'page'), state: plainState }),
 };
 
 /** Characters of what a page keeps, as JSON. */

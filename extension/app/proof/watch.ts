@@ -10,7 +10,7 @@ import type { TextureFacts } from './facts.ts';
 /** Events come in heaps: a file that is written, a build that lays down many. They are waited out for this long. */
 const QUIET_MS = 120;
 
-type Change = HostEvent['kind'];
+type Change = Exclude<HostEvent['kind'], 'export'>;
 
 /** Tells what changes around a texture: its file, the settings as they are typed and as they are saved, its outputs. */
 export function watchTexture(

@@ -11,6 +11,7 @@ import { treatmentOf } from '../treatment/change.ts';
 import { setWords } from '../words/t.ts';
 import { type BenchLink, isProblem, type Told } from './bench-link.ts';
 import { BuiltChecks } from './built-checks.ts';
+import { exportProof } from './export-proof.ts';
 import { readState, type Sight, type Slot, type State, writeState } from './state.ts';
 import { Takeover } from './takeover.ts';
 
@@ -277,6 +278,9 @@ export class Model extends EventTarget {
       case 'settings':
         this.settings = event.settings;
         break;
+      case 'export':
+        void exportProof(this, event.form);
+        return;
       case 'built':
         this.built = event.state;
         this.#checks.forget();

@@ -4,8 +4,8 @@ import type { AdoptChange, ExportOrder, HostCall, Question } from '../../../core
 import { controls } from '../form/controls.ts';
 import { adoptable } from '../treatment/change.ts';
 import { t } from '../words/t.ts';
+import { exportProof } from './export-proof.ts';
 import type { Model } from './model.ts';
-import { writeState } from './state.ts';
 
 /** What the file is, what the settings make of it, whether that is built, and the page's three actions. */
 export class TopBar extends LitElement {
@@ -133,11 +133,12 @@ export class TopBar extends LitElement {
     const button = (form: ExportOrder['form'], text: string, title: string) => html`<button
       ?disabled=${this.busy !== null || model.header === null || model.treatment === null}
       title=${title}
-      @click=${() => this.#do(model, 'export', { form, state: writeState(model.state) })}
+      @click=${() => this.#exportAs(model, form)}
     >
       ${text}
     </button>`;
     return html`
+      ${button('sheet', t('Export sheet'), t('One picture: every target at its true size, and the kernels compared'))}
       ${button('page', t('Export page'), t('One HTML file that shows this proof without an editor and without a network'))}
     `;
   }
@@ -171,16 +172,18 @@ export class TopBar extends LitElement {
     `;
   }
 
-  async #do<K extends 'build' | 'adopt' | 'showSettings' | 'export'>(
-    model: Model,
-    call: K,
-    question: Question<K>,
-  ): Promise<void> {
+  async #exportAs(model: Model, form: ExportOrder['form']): Promise<void> {
+    this.busy = 'export';
+    await exportProof(model, form);
+    this.busy = null;
+  }
+
+  async #do<K extends 'build' | 'adopt' | 'showSettings'>(model: Model, call: K, question: Question<K>): Promise<void> {
     this.busy = call;
     const { reply } = await model.link.ask(call, question);
     this.busy = null;
     if ('problem' in reply) model.say({ text: say(reply.problem), kind: 'failed' });
-    else model.say(call === 'showSettings' ? null : { text: doneWords(call, reply.ok), kind: 'said' });
+    else model.say(call === 'showSettings' ? null : { text: doneWords(reply.ok), kind: 'said' });
   }
 }
 
@@ -206,11 +209,7 @@ function builtWords({ built }: Model): string {
   }
 }
 
-function doneWords(call: HostCall, done: object): string {
-  if (call === 'export') {
-    const { path } = done as { readonly path: string | null };
-    return path === null ? '' : t('Wrote {path}.', { path: path.slice(path.lastIndexOf('/') + 1) });
-  }
+function doneWords(done: object): string {
   if ('path' in done) return t('Put into {path}, not saved yet.', { path: String(done.path) });
   if (!('failed' in done)) return '';
   const { built, unchanged, failed } = done as { built: number; unchanged: number; failed: number };
