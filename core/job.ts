@@ -24,8 +24,13 @@ export interface JobSource {
 /** One finished output file. `path` is relative to the output folder, "/"-separated. */
 export interface BuiltFile {
   readonly path: string;
-  readonly bytes: Uint8Array;
+  readonly byteCount: number;
+  /** Its bytes in order, to be taken once: a large file is never held whole. A piece is valid until the next is asked for. */
+  readonly pieces: AsyncIterable<Uint8Array>;
 }
+
+/** Files of up to so many bytes may be joined by whoever takes them: the plan counts them whole. */
+export const JOINED_BYTES = 2 ** 22;
 
 /** What a treatment makes of an image, known from its header alone. */
 export interface BuildPlan {
@@ -47,7 +52,7 @@ export interface PlannedFile {
 }
 
 /** Builds one texture. Hands over each file once, in the manifest's order; the caller may write it at once to a
- *  temporary name. Nothing is complete until the manifest is returned. Throws Refusal. */
+ *  temporary name, and goes on when it has taken what it wants of the pieces, all or none of them. Nothing is complete until the manifest is returned. Throws Refusal. */
 export type BuildTexture = (
   job: BuildJob,
   ports: Ports,

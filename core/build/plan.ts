@@ -7,7 +7,7 @@ import { type ChainPlan, phasesOf, planChain } from '../chain/plan.ts';
 import { cellTreatment } from '../chain/sheet.ts';
 import type { ColorChunk } from '../codec/source.ts';
 import { obeyedGamma } from '../codec/tag.ts';
-import type { BuildPlan } from '../job.ts';
+import { type BuildPlan, JOINED_BYTES } from '../job.ts';
 import { refuse } from '../problem.ts';
 import type { ChannelCount, Depth, Extent } from '../raster/raster.ts';
 import type { Engine } from '../resample/engine.ts';
@@ -125,7 +125,10 @@ export function peakOf(facts: SourceFacts, { head, chain, outputs, chainBytes }:
     const own = outputs.images.filter((image) => image.use === use && levels.includes(image.level ?? -1));
     const { format } = containerLayout(chain, use, use === 'roughness' ? 1 : channels, chain.depth);
     const expanded = head.indexed ? 2 * channels : 0;
-    return texelsOf(own) * (2 * format.channels * codeBytes + expanded);
+    const bytes = texelsOf(own) * format.channels * codeBytes;
+    // Deflated levels wait for each other; others go by a row at a time.
+    const waiting = chain.treatment.ktx2.supercompress === 'none' ? 0 : bytes;
+    return waiting + Math.min(bytes, JOINED_BYTES) + texelsOf(own) * expanded;
   });
   // A cell adds an alpha.
   const pngs = outputs.images.map((image) =>

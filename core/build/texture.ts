@@ -1,6 +1,6 @@
 import type { ChainImage } from '../chain/image.ts';
 import { encoderFingerprint } from '../codec/encoder.ts';
-import { encodeKtx2 } from '../codec/ktx2/encode.ts';
+import { type LaidFile, layKtx2 } from '../codec/ktx2/encode.ts';
 import { hashPixels } from '../codec/pixels.ts';
 import { encodePng } from '../codec/png/encode.ts';
 import type { BuildTexture, BuiltFile } from '../job.ts';
@@ -84,10 +84,14 @@ async function emitImage(work: Emission, planned: PlannedImage, image: ChainImag
   const source = sources.find(({ use }) => use === planned.use);
   const same = planned.level === 0 && pixels === source?.pixels;
   const wanted = planned.png !== null && (!same || plan.chain.treatment.png.base);
-  const file = wanted
-    ? await emitFile(work, planned.png!, await encodePng(pngRaster(image.raster), ports.deflate, ports.filters))
-    : null;
+  const file = wanted ? await emitPng(work, planned.png!, image.raster) : null;
   return describeImage(planned, image, pixels, file);
+}
+
+async function emitPng(work: Emission, path: string, raster: Raster): Promise<ManifestFile> {
+  const { deflate, filters } = work.ports;
+  const bytes = await encodePng(pngRaster(raster), deflate, filters);
+  return emitFile(work, path, { byteCount: bytes.length, pieces: [bytes] });
 }
 
 async function emitContainer(
@@ -107,15 +111,27 @@ async function emitContainer(
     return found.kind === 'indexed' ? expandIndexed(found) : found;
   });
   const { supercompress } = plan.chain.treatment.ktx2;
-  return emitFile(work, planned.path, await encodeKtx2(levels, layout, { supercompress }, ports.deflate));
+  return emitFile(work, planned.path, await layKtx2(levels, layout, { supercompress }, ports.deflate));
 }
 
-async function emitFile(work: Emission, path: string, bytes: Uint8Array): Promise<ManifestFile> {
-  if (work.cancel.cancelled) throw new Cancelled();
-  const hash = work.ports.newHash();
-  hash.update(bytes);
-  await work.write({ path, bytes });
-  return { path: relativeTo(work.folder, path), sha256: hash.hex() };
+async function emitFile(work: Emission, path: string, { byteCount, pieces }: LaidFile): Promise<ManifestFile> {
+  const { cancel, folder, ports, write } = work;
+  if (cancel.cancelled) throw new Cancelled();
+  const hash = ports.newHash();
+  let handed = 0;
+  const hashed = (async function* () {
+    for (const piece of pieces) {
+      if (cancel.cancelled) throw new Cancelled();
+      hash.update(piece);
+      handed += piece.length;
+      yield piece;
+    }
+  })();
+  await write({ path, byteCount, pieces: hashed });
+  // Whoever took none of them has the hash all the same.
+  for await (const _ of hashed);
+  if (handed !== byteCount) throw new RangeError(`Expected ${byteCount} bytes to be taken but ${handed} were`);
+  return { path: relativeTo(folder, path), sha256: hash.hex() };
 }
 
 function findImage(images: readonly ChainImage[], wanted: Pick<PlannedImage, 'use' | 'level' | 'target'>): ChainImage {

@@ -44,6 +44,8 @@ export interface Disk extends FileTree {
   /** Makes a new file of these bytes and flushes it; answers its stat, which it keeps when it is renamed. An existing file is
    *  refused, and a failed one leaves nothing behind. */
   write(path: string, bytes: Uint8Array): Promise<FileStat>;
+  /** The same of a file that comes in pieces, each written before the next is asked for. What the pieces throw is thrown on. */
+  writePieces(path: string, pieces: AsyncIterable<Uint8Array>): Promise<FileStat>;
   /** Puts a file in the place of another, whole, at once. */
   rename(from: string, to: string): Promise<void>;
   /** Removes a file; a missing one is fine. */

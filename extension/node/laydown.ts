@@ -1,4 +1,6 @@
 import { createHash } from 'node:crypto';
+import { wholeFile } from '../../core/build/whole.ts';
+import { type BuiltFile, JOINED_BYTES } from '../../core/job.ts';
 import { manifestFiles } from '../../core/manifest/compare.ts';
 import type { Manifest } from '../../core/manifest/manifest.ts';
 import { readManifest } from '../../core/manifest/read.ts';
@@ -25,8 +27,9 @@ export interface Place {
 }
 
 export interface Laydown {
-  /** Takes one finished file. Nothing is replaced yet. Throws Refusal. */
-  write(path: string, bytes: Uint8Array): Promise<void>;
+  /** Takes one finished file. Nothing is replaced yet. A small one that is what lies there already is left alone; one that is too
+   *  large to be joined is written piece by piece. Throws Refusal. */
+  write(path: string, file: Omit<BuiltFile, 'path'>): Promise<void>;
   /** Replaces the former outputs. Answers warnings about files that were kept, and the stat of every file that is there now.
    *  Throws Refusal, after which `abort` still tidies. */
   commit(manifest: Manifest): Promise<{ readonly warnings: Problem[]; readonly files: readonly LaidFile[] }>;
@@ -59,11 +62,20 @@ export function openLaydown(disk: Disk, place: Place, wait: Pause = pause): Layd
 
   return { write, commit, abort };
 
-  async function write(path: string, bytes: Uint8Array): Promise<void> {
+  async function write(path: string, file: Omit<BuiltFile, 'path'>): Promise<void> {
     await checkPlace(path);
-    if (await holds(path, bytes)) return;
     const temporary = temporaryFor(path);
-    stats.set(path, await orRefuse(path, bytes.length, () => writeNew(temporary, bytes)));
+    if (file.byteCount > JOINED_BYTES) {
+      const { byteCount, pieces } = file;
+      stats.set(
+        path,
+        await orRefuse(path, byteCount, () => inFolder(temporary, () => disk.writePieces(temporary, pieces))),
+      );
+    } else {
+      const bytes = await wholeFile({ path, ...file });
+      if (await holds(path, bytes)) return;
+      stats.set(path, await orRefuse(path, bytes.length, () => writeNew(temporary, bytes)));
+    }
     staged.push({ temporary, path });
   }
 
@@ -135,11 +147,15 @@ export function openLaydown(disk: Disk, place: Place, wait: Pause = pause): Layd
     return true;
   }
 
-  async function writeNew(path: string, bytes: Uint8Array): Promise<FileStat> {
+  function writeNew(path: string, bytes: Uint8Array): Promise<FileStat> {
+    return inFolder(path, () => disk.write(path, bytes));
+  }
+
+  async function inFolder<T>(path: string, act: () => Promise<T>): Promise<T> {
     for (let tries = 0; ; tries++) {
       try {
         await makeFolder(parentOf(path));
-        return await disk.write(path, bytes);
+        return await act();
       } catch (error) {
         // A neighbor that failed may take away the empty folder that it made and we were about to use.
         if (!(error instanceof DiskError && error.fault === 'missing') || tries === 3) throw error;

@@ -32,6 +32,7 @@ export const nodeDisk: Disk = {
   async write(path, bytes) {
     return change(path, () => write(path, bytes));
   },
+  writePieces,
   async rename(from, to) {
     change(to, () => fs.renameSync(from, to));
   },
@@ -105,7 +106,7 @@ function write(path: string, bytes: Uint8Array): FileStat {
   let stat: FileStat;
   const handle = fs.openSync(path, 'wx');
   try {
-    for (let written = 0; written < bytes.length; ) written += fs.writeSync(handle, bytes, written);
+    writeAll(handle, bytes);
     fs.fsyncSync(handle);
     stat = statOf(fs.fstatSync(handle));
   } catch (error) {
@@ -115,6 +116,28 @@ function write(path: string, bytes: Uint8Array): FileStat {
   }
   fs.closeSync(handle);
   return stat;
+}
+
+async function writePieces(path: string, pieces: AsyncIterable<Uint8Array>): Promise<FileStat> {
+  const handle = change(path, () => fs.openSync(path, 'wx'));
+  let stat: FileStat;
+  try {
+    for await (const piece of pieces) change(path, () => writeAll(handle, piece));
+    stat = change(path, () => {
+      fs.fsyncSync(handle);
+      return statOf(fs.fstatSync(handle));
+    });
+  } catch (error) {
+    fs.closeSync(handle);
+    fs.rmSync(path, { force: true });
+    throw error;
+  }
+  fs.closeSync(handle);
+  return stat;
+}
+
+function writeAll(handle: number, bytes: Uint8Array): void {
+  for (let written = 0; written < bytes.length; ) written += fs.writeSync(handle, bytes, written);
 }
 
 function flush(folder: string): void {

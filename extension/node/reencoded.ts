@@ -1,5 +1,6 @@
 import { openSource, readSource } from '../../core/build/source.ts';
 import { buildTexture } from '../../core/build/texture.ts';
+import { wholeFile } from '../../core/build/whole.ts';
 import type { BuiltFile } from '../../core/job.ts';
 import type { Manifest, ManifestImage } from '../../core/manifest/manifest.ts';
 import { type Cancel, Cancelled, type Ports } from '../../core/port.ts';
@@ -76,7 +77,7 @@ async function rebuiltAlike(
     const path = resolvePath(job.outFolder, file.path);
     if (!paths.has(path)) return;
     const present = await disk.read(path);
-    if (present !== null && Buffer.compare(present, file.bytes) === 0) alike.push(path);
+    if (present !== null && Buffer.compare(present, await wholeFile(file)) === 0) alike.push(path);
   };
   try {
     await buildTexture(roughness === null ? build : { ...build, roughness }, ports, cancelOf(isCancelled), compare);

@@ -89,7 +89,7 @@ export async function runTextureJob(job: TextureJob, bench: Bench): Promise<Outc
       },
       bench.ports,
       bench.cancel,
-      (file) => laydown.write(joinPath(job.outFolder, file.path), file.bytes),
+      (file) => laydown.write(joinPath(job.outFolder, file.path), file),
     );
     if (bench.cancel.cancelled) {
       await laydown.abort();

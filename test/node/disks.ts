@@ -5,7 +5,15 @@ import { nodeDisk } from '../../extension/node/node-disk.ts';
 /** Stands for the end of the process: nothing in the house catches it. */
 export class Died extends Error {}
 
-const changing = ['write', 'rename', 'remove', 'makeFolder', 'removeEmptyFolder', 'flushFolder'] as const;
+const changing = [
+  'write',
+  'writePieces',
+  'rename',
+  'remove',
+  'makeFolder',
+  'removeEmptyFolder',
+  'flushFolder',
+] as const;
 
 type Change = (typeof changing)[number];
 

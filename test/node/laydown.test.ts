@@ -26,13 +26,43 @@ async function lay(disk: Disk, folder: string, files: Files) {
   const place = { manifestPath: `${folder}/leaf.mips.json`, within: folder };
   const laydown = openLaydown(disk, place, async () => undefined);
   try {
-    for (const [name, text] of Object.entries(files)) await laydown.write(`${folder}/${name}`, Buffer.from(text));
+    for (const [name, text] of Object.entries(files)) await laydown.write(`${folder}/${name}`, fileOf(text));
     return await laydown.commit(sampleManifest(files));
   } catch (error) {
     if (error instanceof Refusal) await laydown.abort();
     throw error;
   }
 }
+
+function fileOf(text: string) {
+  const bytes = Buffer.from(text);
+  async function* pieces() {
+    for (let at = 0; at < bytes.length; at += PIECE) yield bytes.subarray(at, at + PIECE);
+  }
+  return { byteCount: bytes.length, pieces: pieces() };
+}
+
+const PIECE = 1_000_003;
+
+test('a file too large to be joined is written as it comes, and leaves nothing behind where it stops coming', async () => {
+  const folder = newFolder();
+  const large = { ...now, 'leaf.0.png': 'large'.repeat(1_000_000) };
+  const calls: string[] = [];
+  const counted = { ...nodeDisk, write: countingDisk(calls).write };
+  await lay(counted, folder, large);
+  expect(calls.filter((call) => call.includes('leaf.0.png'))).toEqual([]);
+  expect(filesBelow(folder)).toEqual(built(large));
+  const laydown = openLaydown(nodeDisk, { manifestPath: `${folder}/leaf.mips.json`, within: folder });
+  const { byteCount } = fileOf(large['leaf.0.png']);
+  async function* broken() {
+    yield new Uint8Array(PIECE);
+    throw new RangeError('it stopped coming');
+  }
+  await expect(laydown.write(`${folder}/leaf.0.png`, { byteCount, pieces: broken() })).rejects.toThrow(
+    'stopped coming',
+  );
+  expect(filesBelow(folder)).toEqual(built(large));
+});
 
 const problemOf = (build: Promise<unknown>) =>
   build.then(
@@ -152,7 +182,7 @@ test('a refused folder is named, and nothing is touched', async () => {
 test('a file in the place of a folder is named', async () => {
   const folder = newFolder({ built: 'a file' });
   const laydown = openLaydown(nodeDisk, { manifestPath: `${folder}/built/a.mips.json`, within: folder });
-  expect(await problemOf(laydown.write(`${folder}/built/a.0.png`, Buffer.from('x')))).toMatchObject({
+  expect(await problemOf(laydown.write(`${folder}/built/a.0.png`, fileOf('x')))).toMatchObject({
     code: 'output-unwritable',
     values: { reason: 'a file stands where a folder is needed' },
   });
@@ -161,7 +191,7 @@ test('a file in the place of a folder is named', async () => {
 test('folders made for nothing go again', async () => {
   const folder = newFolder();
   const laydown = openLaydown(nodeDisk, { manifestPath: `${folder}/a/b/x.mips.json`, within: folder });
-  await laydown.write(`${folder}/a/b/c/x.0.png`, Buffer.from('x'));
+  await laydown.write(`${folder}/a/b/c/x.0.png`, fileOf('x'));
   expect(Object.keys(filesBelow(folder))).toHaveLength(1);
   await laydown.abort();
   expect(fs.readdirSync(folder)).toEqual([]);
@@ -203,7 +233,7 @@ test('a link does not lead an output out of its folder', async () => {
   const folder = newFolder();
   fs.symlinkSync(outside, `${folder}/link`);
   const laydown = openLaydown(nodeDisk, { manifestPath: `${folder}/link/deep/x.mips.json`, within: folder });
-  expect(await problemOf(laydown.write(`${folder}/link/deep/x.0.png`, Buffer.from('x')))).toMatchObject({
+  expect(await problemOf(laydown.write(`${folder}/link/deep/x.0.png`, fileOf('x')))).toMatchObject({
     code: 'leaves-folder',
     path: `${folder}/link/deep/x.0.png`,
   });

@@ -12,16 +12,39 @@ export interface Ktx2Options {
   readonly supercompress: 'none' | 'zlib';
 }
 
-/** A KTX2 file of a 2D texture. `levels` are in order from the largest and alike in kind, channels and depth; each is half
- *  the one before, rounded down, at least 1. Codes are stored as they are, in the lanes of the layout; see its `holds`.
- *  Without supercompression equal rasters give equal bytes everywhere; with it, for an equal deflate.
- *  Throws RangeError for levels that do not fit each other or the layout. [KTX2] */
+/** A file that is known in length before its pieces are made. A piece is valid until the next is asked for. */
+export interface LaidFile {
+  readonly byteCount: number;
+  readonly pieces: Iterable<Uint8Array>;
+}
+
+/** The bytes of `layKtx2`, in one. */
 export async function encodeKtx2(
   levels: readonly Ktx2Level[],
   layout: Ktx2Layout,
   options: Ktx2Options,
   deflate: Deflate,
 ): Promise<Uint8Array> {
+  const { byteCount, pieces } = await layKtx2(levels, layout, options, deflate);
+  const file = new Uint8Array(byteCount);
+  let at = 0;
+  for (const piece of pieces) {
+    file.set(piece, at);
+    at += piece.length;
+  }
+  return file;
+}
+
+/** A KTX2 file of a 2D texture. `levels` are in order from the largest and alike in kind, channels and depth; each is half
+ *  the one before, rounded down, at least 1. Codes are stored as they are, in the lanes of the layout; see its `holds`.
+ *  Without supercompression equal rasters give equal bytes everywhere; with it, for an equal deflate.
+ *  Throws RangeError for levels that do not fit each other or the layout. [KTX2] */
+export async function layKtx2(
+  levels: readonly Ktx2Level[],
+  layout: Ktx2Layout,
+  options: Ktx2Options,
+  deflate: Deflate,
+): Promise<LaidFile> {
   expectChain(levels, layout);
   const head = writeHead(levels, layout);
   if (options.supercompress === 'none') {
@@ -139,26 +162,29 @@ async function deflatedData(level: Ktx2Level, layout: Ktx2Layout, deflate: Defla
   return { byteCount: pieces.reduce((sum, piece) => sum + piece.length, 0), pieces };
 }
 
-/** The whole file, written once: head, then the levels from the smallest, as the format asks. */
-function layFile(head: Uint8Array, scheme: number, levels: readonly LevelData[], align: number): Uint8Array {
+/** Head, then the levels from the smallest, as the format asks. Only the head and the paddings are made here. */
+function layFile(head: Uint8Array, scheme: number, levels: readonly LevelData[], align: number): LaidFile {
   const offsets = levels.map(() => 0);
   let end = head.length;
   for (let index = levels.length - 1; index >= 0; index--) {
     offsets[index] = Math.ceil(end / align) * align;
     end = offsets[index] + levels[index].byteCount;
   }
-  const file = new Uint8Array(end);
-  const view = new DataView(file.buffer);
-  file.set(head);
+  const view = new DataView(head.buffer, head.byteOffset, head.byteLength);
   view.setUint32(SCHEME_OFFSET, scheme, true);
-  for (const [index, { byteCount, pieces }] of levels.entries()) {
+  for (const [index, { byteCount }] of levels.entries()) {
     view.setBigUint64(INDEX_OFFSET + INDEX_ENTRY * index, BigInt(offsets[index]), true);
     view.setBigUint64(INDEX_OFFSET + INDEX_ENTRY * index + 8, BigInt(byteCount), true);
-    let at = offsets[index];
-    for (const piece of pieces) {
-      file.set(piece, at);
-      at += piece.length;
-    }
   }
-  return file;
+  return { byteCount: end, pieces: piecesOf(head, levels, offsets) };
+}
+
+function* piecesOf(head: Uint8Array, levels: readonly LevelData[], offsets: readonly number[]): Iterable<Uint8Array> {
+  yield head;
+  let at = head.length;
+  for (let index = levels.length - 1; index >= 0; index--) {
+    if (offsets[index] > at) yield new Uint8Array(offsets[index] - at);
+    yield* levels[index].pieces;
+    at = offsets[index] + levels[index].byteCount;
+  }
 }
