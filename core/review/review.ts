@@ -15,6 +15,7 @@ import { findScale } from './scale.ts';
 import { pairSizes, reviewSize, type SizeReview } from './sizes.ts';
 import {
   checkPeak,
+  holdsSource,
   makeSubject,
   type OpenedSide,
   openSide,
@@ -139,12 +140,16 @@ function compareSubjects(
   const forms = [...compareForms(one.header, other.header), ...(metadata === null ? [] : [metadata])];
   const equalExtents =
     one.header.extent.width === other.header.extent.width && one.header.extent.height === other.header.extent.height;
-  const difference = equalExtents ? comparePictures(seenSource(one), seenSource(other)) : null;
   const sizes: SizeReview[] = [];
   for (const pair of pairSizes(one, other)) {
     if (cancel.cancelled) throw new Cancelled();
     sizes.push(reviewSize(pair));
   }
+  // Mostly level 0 is the source itself, and has been compared.
+  const [first] = sizes;
+  const isDone = first !== undefined && holdsSource(one) && holdsSource(other);
+  const compare = () => (isDone ? first.difference : comparePictures(seenSource(one), seenSource(other)));
+  const difference = equalExtents ? compare() : null;
   const harms: Harm[] = [...harmsOfFacts(factsOf(one), factsOf(other)), ...harmsOfSizes(sizes)];
   const verdict = sameFile
     ? treated(one.side.treatment, other.side.treatment)

@@ -90,6 +90,15 @@ export function imagesOf(chain: Chain): readonly ChainImage[] {
   return chain.images.filter((image) => image.use === 'image');
 }
 
+/** Whether the first image of the chain is the source, texel by texel and in the same memory. */
+export function holdsSource({ chain, raster }: Pick<Subject, 'raster' | 'chain'>): boolean {
+  const [first] = imagesOf(chain);
+  if (first?.level !== 0) return false;
+  const samples = (each: Subject['raster'] | ChainImage['raster']) =>
+    each.kind === 'indexed' ? each.indices : each.codes;
+  return samples(first.raster) === samples(raster);
+}
+
 /** An image of the chain as it is compared. */
 export function seenImage(chain: Chain, { raster }: ChainImage): Seen {
   return withTest(chain, pictureOf(chain.plan, raster));

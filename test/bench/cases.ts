@@ -15,6 +15,8 @@ export interface Cases {
   readonly folder: { readonly counts: readonly (readonly [side: number, count: number])[]; readonly rounds: number };
   /** Textures of a large project, their side, and rounds. */
   readonly project: { readonly count: number; readonly side: number; readonly rounds: number };
+  /** Textures that one commit changes, their side, and rounds. */
+  readonly review: { readonly count: number; readonly side: number; readonly rounds: number };
   /** Side of the image whose memory is measured. */
   readonly memory: { readonly side: number };
   /** Side of the images that are held against double precision. */
@@ -69,6 +71,7 @@ export const fullCases: Cases = {
     rounds: 3,
   },
   project: { count: 10_000, side: 32, rounds: 5 },
+  review: { count: 2000, side: 128, rounds: 3 },
   memory: { side: 4096 },
   accuracy: { side: 1024 },
   cold: { side: 1024, rounds: 11 },
@@ -88,6 +91,7 @@ export const smokeCases: Cases = {
     rounds: 1,
   },
   project: { count: 6, side: 8, rounds: 1 },
+  review: { count: 4, side: 16, rounds: 1 },
   memory: { side: 64 },
   accuracy: { side: 32 },
   cold: { side: 64, rounds: 1 },

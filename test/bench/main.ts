@@ -15,6 +15,7 @@ import { benchMemory } from './memory.ts';
 import { benchPhases } from './phases.ts';
 import { benchProject } from './project.ts';
 import { writeReport } from './report.ts';
+import { benchReview } from './review.ts';
 import { benchLater } from './slots.ts';
 
 // Run by `npm run bench`, bundled, from the top of the tree.
@@ -26,6 +27,7 @@ const benches: Readonly<Record<string, (cases: Cases) => Promise<Findings>>> = {
   builds: benchBuilds,
   folder: benchFolder,
   project: benchProject,
+  review: benchReview,
   memory: benchMemory,
   accuracy: benchAccuracy,
   cold: benchCold,

@@ -35,6 +35,7 @@ const TITLES = [
   'Whole build of',
   'A folder of',
   'A project of',
+  'A review of',
   'Memory of a build of',
   'Accuracy',
   'Cold start',

@@ -1,9 +1,11 @@
 import type { ChildProcessWithoutNullStreams } from 'node:child_process';
 import { refuse } from '../../../core/problem.ts';
-import { spawnRefusal, startGit } from './run.ts';
+import { spawnRefusal, startGit, tryGit } from './run.ts';
 
 /** Reads objects of one repository, one after the other, through a Git that stays open. */
 export interface Objects {
+  /** Asks for the sizes of many at once, so that `size` and `read` know them; those that are not there are left out. */
+  expect(ids: readonly string[]): Promise<void>;
   /** Bytes of a blob, without reading it. Throws Refusal `git-object-missing`. */
   size(id: string): Promise<number>;
   /** A blob. Throws Refusal: missing, damaged, or larger than `limitBytes`. */
@@ -14,11 +16,20 @@ export interface Objects {
 export function openObjects(repository: string): Objects {
   const sizes = openBatch(repository, '--batch-check');
   const contents = openBatch(repository, '--batch');
+  const known = new Map<string, number>();
   const size = async (id: string): Promise<number> => {
-    const { bytes } = await sizes.ask(id);
+    const bytes = known.get(id) ?? (await sizes.ask(id)).bytes;
+    known.set(id, bytes);
     return bytes;
   };
   return {
+    async expect(ids) {
+      const { stdout } = await tryGit(repository, ['cat-file', '--batch-check'], `${ids.join('\n')}\n`);
+      for (const line of stdout.toString().split('\n')) {
+        const [, id, bytes] = /^([0-9a-f]+) \w+ (\d+)$/.exec(line) ?? [];
+        if (id !== undefined) known.set(id, Number(bytes));
+      }
+    },
     size,
     async read(id, limitBytes) {
       const bytes = await size(id);

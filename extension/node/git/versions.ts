@@ -10,6 +10,8 @@ export interface Versions {
   stored(ref: FileRef, limitBytes: number): Promise<Uint8Array>;
   /** The file that people see: a Git LFS pointer is followed to the local store. Throws Refusal. */
   content(ref: FileRef, limitBytes: number): Promise<Uint8Array>;
+  /** Learns the sizes of many at once, so that each need not be asked for. */
+  expect(refs: readonly FileRef[]): Promise<void>;
   /** Bytes of the file as it is stored. Throws Refusal. */
   size(ref: FileRef): Promise<number>;
   close(): void;
@@ -50,6 +52,16 @@ export function openVersions(disk: Disk): Versions {
   }
 
   return {
+    async expect(refs) {
+      const ids = new Map<string, string[]>();
+      for (const ref of refs) {
+        if (ref.kind !== 'object') continue;
+        const own = ids.get(ref.repository) ?? [];
+        own.push(ref.id);
+        ids.set(ref.repository, own);
+      }
+      for (const [repository, own] of ids) await objectsOf(repository).expect(own);
+    },
     size,
     stored,
     async content(ref, limitBytes) {

@@ -26,6 +26,7 @@ export async function glanceEntries(
   cancel: Cancel,
   done: (index: number, glanced: GlancedEntry) => void,
 ): Promise<void> {
+  await versions.expect(entries.flatMap(({ before, after }) => [before, after].flatMap((each) => each?.file ?? [])));
   for (const [index, entry] of entries.entries()) {
     if (cancel.cancelled) throw new Cancelled();
     const sizes = await Promise.all([entry.before, entry.after].map((each) => each && sizeOf(each.file, versions)));
