@@ -1,4 +1,5 @@
-import { readdirSync, readFileSync, statSync } from 'node:fs';
+import { execFileSync } from 'node:child_process';
+import { existsSync, readdirSync, readFileSync, statSync } from 'node:fs';
 import { join } from 'node:path';
 import type { Browser, Page } from 'playwright-core';
 import { afterAll, afterEach, beforeAll, describe, expect, test } from 'vitest';
@@ -6,7 +7,17 @@ import { top } from '../house/tree.ts';
 import { launchBrowser } from './browser.ts';
 import { type Host, startHost } from './server.ts';
 import { packVsix } from './vsix.ts';
-import { explorerRow, newPage, openWorkbench, pickFromExplorer, runCommand, toast, webviewOf } from './workbench.ts';
+import {
+  acceptPath,
+  choice,
+  explorerRow,
+  newPage,
+  openWorkbench,
+  pickFromExplorer,
+  runCommand,
+  toast,
+  webviewOf,
+} from './workbench.ts';
 import { makeWorkspace } from './workspace.ts';
 
 /** Pictures of the last run, to be looked at. */
@@ -119,5 +130,28 @@ describe('the packed extension in a workbench', () => {
     await field.press('Enter');
     const built = manifest.levels.find((each: { level: number }) => each.level === 1);
     await proof.locator(`print-card print-stage[data-pixels="${built.pixels}"]`).first().waitFor();
+  });
+
+  test('the page exports what it shows, as the command line writes it, byte for byte', async () => {
+    const proof = webviewOf(page);
+    await proof.getByRole('button', { name: 'Export sheet' }).click();
+    await acceptPath(page, 'icon.proof.png');
+    await proof.getByText('Wrote icon.proof.png.').waitFor();
+    const exported = readFileSync(join(folder, 'built', 'icon.proof.png'));
+    const words = ['proof', 'icon.png', '--sheet', 'built/cli.proof.png', '--kernels', 'mitchell', '--at', '1'];
+    execFileSync(process.execPath, [join(top, 'dist', 'cli.js'), ...words], { cwd: folder });
+    expect(exported.equals(readFileSync(join(folder, 'built', 'cli.proof.png')))).toBe(true);
+  });
+
+  test('so does the explorer, without a page that is open', async () => {
+    await runCommand(page, 'View: Close All Editors');
+    await pickFromExplorer(page, 'icon.png', 'Export Proof');
+    await choice(page, 'Page').click();
+    await acceptPath(page, 'icon.proof.html');
+    await expect.poll(() => existsSync(join(folder, 'icon.proof.html'))).toBe(true);
+    const words = ['proof', 'icon.png', '--html', 'built/cli.proof.html'];
+    execFileSync(process.execPath, [join(top, 'dist', 'cli.js'), ...words], { cwd: folder });
+    const exported = readFileSync(join(folder, 'icon.proof.html'), 'utf8');
+    expect(exported).toBe(readFileSync(join(folder, 'built', 'cli.proof.html'), 'utf8'));
   });
 });

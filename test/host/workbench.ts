@@ -85,3 +85,13 @@ export async function pickFromExplorer(page: Page, row: string, label: string): 
     }
   }
 }
+
+/** Takes the path that the host's file dialog offers, which ends in this name. */
+export async function acceptPath(page: Page, name: string): Promise<void> {
+  const input = page.locator('.quick-input-widget input.input');
+  await page.waitForFunction((ending) => {
+    const field = document.querySelector<HTMLInputElement>('.quick-input-widget input.input');
+    return field?.value.endsWith(ending) ?? false;
+  }, name);
+  await input.press('Enter');
+}

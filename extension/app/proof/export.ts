@@ -9,6 +9,7 @@ import type { ExportOrder } from '../../../core/protocol.ts';
 import { baseName } from '../../../core/treatment/path.ts';
 import type { Platform } from '../platform.ts';
 import { readConfiguration } from '../settings/configuration.ts';
+import { isThere } from '../settings/create.ts';
 import { matchingRule } from '../settings/open.ts';
 import { translations } from '../words.ts';
 import type { TextureFacts } from './facts.ts';
@@ -33,7 +34,10 @@ export async function exportProof(
   if (kept === null) return null;
   const stem = texture.name.replace(/\.[^.]*$/, '');
   const target = await vscode.window.showSaveDialog({
-    defaultUri: vscode.Uri.joinPath(texture.uri, '..', `${stem}.proof.${form === 'sheet' ? 'png' : 'html'}`),
+    defaultUri: vscode.Uri.joinPath(
+      await folderFor(form, texture),
+      `${stem}.proof.${form === 'sheet' ? 'png' : 'html'}`,
+    ),
     filters: form === 'sheet' ? { PNG: ['png'] } : { HTML: ['html'] },
   });
   if (target === undefined) return null;
@@ -51,6 +55,18 @@ export async function exportProof(
       throw error;
     }
   });
+}
+
+/** Where a file is offered to go. A picture among the textures would be built as one of them: it goes to the outputs, or where there
+ *  are none yet, above the workspace. */
+async function folderFor(form: ExportOrder['form'], texture: TextureFacts): Promise<vscode.Uri> {
+  const beside = vscode.Uri.joinPath(texture.uri, '..');
+  if (form === 'page') return beside;
+  const { root, place } = await texture.settings();
+  const outputs = place.uriOf(root.outFolder);
+  if (await isThere(outputs)) return outputs;
+  const folder = vscode.workspace.getWorkspaceFolder(texture.uri);
+  return folder === undefined ? beside : vscode.Uri.joinPath(folder.uri, '..');
 }
 
 /** The proof as the settings are typed now. */
