@@ -1,6 +1,7 @@
 /** The functions of core/simd/kernels, by name. Numbers are addresses and counts. */
 export interface Kernels {
   along(row: number, phases: number, out: number, texels: number, stride: number): void;
+  alongFours(row: number, phases: number, out: number, texels: number): void;
   alongHalves(row: number, phases: number, out: number, texels: number): void;
   alongSix(row: number, phases: number, out: number, texels: number): void;
   acrossEqual(rows: number, weights: number, taps: number, out: number, floats: number): void;

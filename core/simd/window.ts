@@ -92,6 +92,7 @@ export class Window {
     if (stride > 16) kernels.along(row + 16, phases, out + 16, to - from, stride);
     if (this.#halves === 12) kernels.alongSix(row, phases, out, to - from);
     else if (this.#halves > 0) kernels.alongHalves(row, phases, out, to - from);
+    else if (stride === 16) kernels.alongFours(row, phases, out, to - from);
     else kernels.along(row, phases, out, to - from, stride);
   }
 

@@ -25,7 +25,7 @@ export const targets: readonly Target[] = [
   less(
     'phases',
     'x',
-    'any size, kernel or wrap against 2:1 of a power of two: time a tap, the worst of the cases below',
+    'any size, ratio or wrap against 2:1 of a power of two by the same kernel: time a tap, the worst of the cases below',
     1.5,
     1.1,
   ),

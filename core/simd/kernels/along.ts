@@ -41,6 +41,92 @@ function sumPhase(row: usize, phase: usize, stride: usize): v128 {
   return taps & 1 ? f32x4.add(sum, f32x4.mul(v128.load(l), v128.load32_splat(w))) : sum;
 }
 
+/** Four channels, any phases: what `along` does in two thirds of the time, two pairs of taps a step. */
+export function alongFours(row: usize, phases: usize, out: usize, texels: i32): void {
+  const end = phases + ((<usize>texels) << 4);
+  while (phases < end) {
+    const taps = load<i32>(phases, 8);
+    const l = row + <usize>load<i32>(phases, 0);
+    const w = <usize>load<u32>(phases, 4);
+    if (load<i32>(phases, 12)) v128.store(out, sumEqual(l, w, taps));
+    else if (taps === 12) v128.store(out, sumTwelve(l, w));
+    else v128.store(out, sumPairs(l, w, taps));
+    phases += 16;
+    out += 16;
+  }
+}
+
+function sumEqual(first: usize, weights: usize, taps: i32): v128 {
+  let l = first;
+  let w = weights;
+  let r = l + ((<usize>(taps - 2)) << 4);
+  let sum = f32x4.splat(0);
+  let pairs = taps >> 1;
+  while (pairs > 1) {
+    sum = f32x4.add(sum, f32x4.mul(f32x4.add(v128.load(l), v128.load(r, 16)), v128.load32_splat(w)));
+    sum = f32x4.add(sum, f32x4.mul(f32x4.add(v128.load(l, 16), v128.load(r)), v128.load32_splat(w, 4)));
+    l += 32;
+    r -= 32;
+    w += 8;
+    pairs -= 2;
+  }
+  if (pairs) {
+    sum = f32x4.add(sum, f32x4.mul(f32x4.add(v128.load(l), v128.load(r, 16)), v128.load32_splat(w)));
+    l += 16;
+    w += 4;
+  }
+  return taps & 1 ? f32x4.add(sum, f32x4.mul(v128.load(l), v128.load32_splat(w))) : sum;
+}
+
+function sumPairs(first: usize, weights: usize, taps: i32): v128 {
+  let l = first;
+  let w = weights;
+  let r = l + ((<usize>(taps - 2)) << 4);
+  let v = w + ((<usize>(taps - 2)) << 2);
+  let sum = f32x4.splat(0);
+  let pairs = taps >> 1;
+  while (pairs > 1) {
+    const outer = f32x4.mul(v128.load(l), v128.load32_splat(w));
+    sum = f32x4.add(sum, f32x4.add(outer, f32x4.mul(v128.load(r, 16), v128.load32_splat(v, 4))));
+    const inner = f32x4.mul(v128.load(l, 16), v128.load32_splat(w, 4));
+    sum = f32x4.add(sum, f32x4.add(inner, f32x4.mul(v128.load(r), v128.load32_splat(v))));
+    l += 32;
+    r -= 32;
+    w += 8;
+    v -= 8;
+    pairs -= 2;
+  }
+  if (pairs) {
+    const left = f32x4.mul(v128.load(l), v128.load32_splat(w));
+    sum = f32x4.add(sum, f32x4.add(left, f32x4.mul(v128.load(r, 16), v128.load32_splat(v, 4))));
+    l += 16;
+    w += 4;
+  }
+  return taps & 1 ? f32x4.add(sum, f32x4.mul(v128.load(l), v128.load32_splat(w))) : sum;
+}
+
+/** Lanczos3 and a Kaiser of width 3 near 2:1. Weights come four at a time: loads are what there is too much of. */
+function sumTwelve(l: usize, weights: usize): v128 {
+  const f = v128.load(weights);
+  const g = v128.load(weights, 16);
+  const h = v128.load(weights, 32);
+  let left = f32x4.mul(v128.load(l), v128.shuffle<f32>(f, f, 0, 0, 0, 0));
+  let sum = f32x4.add(
+    f32x4.splat(0),
+    f32x4.add(left, f32x4.mul(v128.load(l, 176), v128.shuffle<f32>(h, h, 3, 3, 3, 3))),
+  );
+  left = f32x4.mul(v128.load(l, 16), v128.shuffle<f32>(f, f, 1, 1, 1, 1));
+  sum = f32x4.add(sum, f32x4.add(left, f32x4.mul(v128.load(l, 160), v128.shuffle<f32>(h, h, 2, 2, 2, 2))));
+  left = f32x4.mul(v128.load(l, 32), v128.shuffle<f32>(f, f, 2, 2, 2, 2));
+  sum = f32x4.add(sum, f32x4.add(left, f32x4.mul(v128.load(l, 144), v128.shuffle<f32>(h, h, 1, 1, 1, 1))));
+  left = f32x4.mul(v128.load(l, 48), v128.shuffle<f32>(f, f, 3, 3, 3, 3));
+  sum = f32x4.add(sum, f32x4.add(left, f32x4.mul(v128.load(l, 128), v128.shuffle<f32>(h, h, 0, 0, 0, 0))));
+  left = f32x4.mul(v128.load(l, 64), v128.shuffle<f32>(g, g, 0, 0, 0, 0));
+  sum = f32x4.add(sum, f32x4.add(left, f32x4.mul(v128.load(l, 112), v128.shuffle<f32>(g, g, 3, 3, 3, 3))));
+  left = f32x4.mul(v128.load(l, 80), v128.shuffle<f32>(g, g, 1, 1, 1, 1));
+  return f32x4.add(sum, f32x4.add(left, f32x4.mul(v128.load(l, 96), v128.shuffle<f32>(g, g, 2, 2, 2, 2))));
+}
+
 /** Four channels at 2:1 where all phases are the same, symmetric and of an even count: what `along` does, four texels side by
  *  side, in 0.6 of its time. */
 export function alongHalves(row: usize, phases: usize, out: usize, texels: i32): void {
@@ -74,7 +160,7 @@ export function alongHalves(row: usize, phases: usize, out: usize, texels: i32):
     first += 128;
     out += 64;
   }
-  along(row, phases + ((<usize>fours) << 4), out, texels - fours, 16);
+  alongFours(row, phases + ((<usize>fours) << 4), out, texels - fours);
 }
 
 /** The same of twelve taps, which Lanczos3 and a Kaiser of width 3 have: six weights in registers, two texels side by side, in
@@ -109,5 +195,5 @@ export function alongSix(row: usize, phases: usize, out: usize, texels: i32): vo
     l += 64;
     out += 32;
   }
-  along(row, phases + ((<usize>twos) << 4), out, texels - twos, 16);
+  alongFours(row, phases + ((<usize>twos) << 4), out, texels - twos);
 }
