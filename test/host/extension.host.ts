@@ -34,7 +34,12 @@ async function runSuite(): Promise<readonly Outcome[]> {
   const vsix = await packVsix(folder);
   const file = join(folder, 'outcomes.json');
   rmSync(file, { force: true });
-  const host = await startHost({ vsix, trust: 'everything', env: { SIZEPROOF_OUTCOMES: file } });
+  const host = await startHost({
+    vsix,
+    trust: 'everything',
+    runs: 'extension tests',
+    env: { SIZEPROOF_OUTCOMES: file },
+  });
   try {
     return await runIn(host, file);
   } finally {

