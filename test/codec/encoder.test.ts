@@ -1,5 +1,5 @@
 import { createHash } from 'node:crypto';
-import { deflateSync } from 'node:zlib';
+import { constants, deflateSync } from 'node:zlib';
 import { describe, expect, test } from 'vitest';
 import { compressions } from '../../core/codec/compression.ts';
 import { encoderFingerprint, makeSample } from '../../core/codec/encoder.ts';
@@ -59,6 +59,21 @@ describe('the fingerprint', () => {
       );
     },
   );
+
+  test('tells a port that makes one stream of what is deflated in blocks here', async () => {
+    const whole: Deflate = async function* (pieces, { level, strategy }) {
+      const strategies = {
+        default: 'Z_DEFAULT_STRATEGY',
+        filtered: 'Z_FILTERED',
+        huffman: 'Z_HUFFMAN_ONLY',
+        rle: 'Z_RLE',
+      } as const;
+      yield deflateSync(Buffer.concat([...pieces]), { level, strategy: constants[strategies[strategy]] });
+    };
+    expect(await encoderFingerprint({ deflate: whole, newHash })).not.toBe(
+      await encoderFingerprint({ deflate, newHash }),
+    );
+  });
 
   test('tells a port that ignores the hints', async () => {
     const deaf: Deflate = (pieces) => deflate(pieces, { level: 6, strategy: 'default' });

@@ -1,4 +1,4 @@
-import { inflateSync } from 'node:zlib';
+import { constants, deflateSync, inflateSync } from 'node:zlib';
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import type { DeflateHints } from '../../core/port.ts';
@@ -9,6 +9,8 @@ const anyHints: fc.Arbitrary<DeflateHints> = fc.record({
   level: fc.integer({ min: 1, max: 9 }),
   strategy: fc.constantFrom('default', 'filtered', 'huffman', 'rle'),
 });
+
+const strategies = ['default', 'rle'] as const;
 
 /** Small uneven bytes: every strategy finds something, and each something else. */
 function someBytes(seed: number, length: number): Uint8Array {
@@ -33,7 +35,7 @@ function* reused(bytes: Uint8Array, step: number): Iterable<Uint8Array> {
 }
 
 describe('deflate on Node', () => {
-  const lengths = fc.oneof(fc.nat(300), fc.constantFrom(65535, 65536, 65537, 200_000));
+  const lengths = fc.oneof(fc.nat(300), fc.constantFrom(65535, 65536, 65537, 131071, 131072, 131073, 200_000, 700_000));
 
   test('inflates back, whatever the hints and the pieces, and the bytes do not hang on the pieces', async () => {
     await fc.assert(
@@ -53,8 +55,17 @@ describe('deflate on Node', () => {
     );
   });
 
-  test('nothing is a stream of nothing', async () => {
-    expect(inflateSync(await deflated([], { level: 6, strategy: 'default' }))).toHaveLength(0);
+  test.each(strategies)('nothing is a stream of nothing (%s)', async (strategy) => {
+    expect(inflateSync(await deflated([], { level: 6, strategy }))).toHaveLength(0);
+  });
+
+  test('runs are looked for in several blocks at a time, which come in their order and cost next to nothing', async () => {
+    const bytes = someBytes(1, 3_000_000);
+    const blocks = await deflated([bytes], { level: 6, strategy: 'rle' });
+    expect(inflateSync(blocks).equals(bytes)).toBe(true);
+    const whole = deflateSync(bytes, { level: 6, strategy: constants.Z_RLE });
+    expect(blocks.equals(whole)).toBe(false);
+    expect(blocks.length).toBeLessThan(1.001 * whole.length);
   });
 
   test('level and strategy reach zlib', async () => {
@@ -71,15 +82,15 @@ describe('deflate on Node', () => {
     expect(new Set(sizes).size).toBe(sizes.length);
   });
 
-  test('what a piece throws is thrown', async () => {
+  test.each(strategies)('what a piece throws is thrown (%s)', async (strategy) => {
     function* breaking(): Iterable<Uint8Array> {
       yield someBytes(1, 100_000);
       throw new RangeError('no such row');
     }
-    await expect(deflated(breaking(), { level: 6, strategy: 'default' })).rejects.toThrow('no such row');
+    await expect(deflated(breaking(), { level: 6, strategy })).rejects.toThrow('no such row');
   });
 
-  test('a reader that leaves early ends the pieces', async () => {
+  test.each(strategies)('a reader that leaves early ends the pieces (%s)', async (strategy) => {
     let ended = false;
     function* pieces(): Iterable<Uint8Array> {
       try {
@@ -88,7 +99,8 @@ describe('deflate on Node', () => {
         ended = true;
       }
     }
-    for await (const _ of deflate(pieces(), { level: 1, strategy: 'default' })) break;
+    let taken = 0;
+    for await (const _ of deflate(pieces(), { level: 1, strategy })) if (++taken === 3) break;
     await new Promise((resolve) => setImmediate(resolve));
     expect(ended).toBe(true);
   });
