@@ -1,6 +1,7 @@
 import type { ColorChunk } from '../codec/source.ts';
 import type { Extent } from '../raster/raster.ts';
 import type { SizeReview } from './sizes.ts';
+import { seenShare } from './visible.ts';
 
 /** Something about a change that is seldom meant and easily missed. */
 export type HarmName =
@@ -40,7 +41,7 @@ export interface Facts {
  *  share of texels that are seen to differ, in the mean over all sizes. So any harm comes before any repaint, however large, and
  *  of two repaints the one that is seen at more sizes. */
 export function impactOf(harms: readonly Harm[], sizes: readonly SizeReview[]): Impact {
-  const seen = sizes.flatMap(({ difference }) => (difference === null ? [] : [difference.seen]));
+  const seen = sizes.flatMap((size) => (size.difference === null ? [] : [seenShare(size)]));
   const mean = seen.length === 0 ? 0 : seen.reduce((sum, each) => sum + each, 0) / seen.length;
   const harm = harms.reduce((sum, { severity }) => sum + 100 + 100 * severity, 0);
   return { score: round(harm + 99 * mean), harms };

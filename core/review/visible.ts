@@ -1,10 +1,26 @@
 import { JUST_SEEN } from './lab.ts';
 import type { SizeReview } from './sizes.ts';
 
-/** Whether the change is seen at this size: some texel is at least `JUST_SEEN` from what it was. Null where one side is missing. */
-export function isSeen({ difference }: Pick<SizeReview, 'difference'>): boolean | null {
-  return difference === null ? null : difference.worst >= JUST_SEEN;
+/** Whether the change is seen at this size: some texel is at least `JUST_SEEN` from what it was, or coverage moved by a hundredth of all
+ *  samples, which is where the edges of a mask went, between its texels. Null where one side is missing. */
+export function isSeen(size: SizeReview): boolean | null {
+  const { difference } = size;
+  if (difference === null) return null;
+  return difference.worst >= JUST_SEEN || coverageMove(size) >= LEAST_COVERAGE_MOVE;
 }
+
+/** Share of the size that is seen to differ, 0..1. */
+export function seenShare(size: SizeReview): number {
+  return Math.max(size.difference?.seen ?? 0, coverageMove(size));
+}
+
+function coverageMove({ before, after }: SizeReview): number {
+  const [was, is] = [before?.coverage ?? null, after?.coverage ?? null];
+  return was === null || is === null ? 0 : Math.abs(is - was);
+}
+
+/** Common practice. */
+const LEAST_COVERAGE_MOVE = 0.01;
 
 /** In words, where a change is seen: `level 0 only`, `levels 0-3`, `every size`, `no size`; empty where nothing was compared. */
 export function seenAt(sizes: readonly SizeReview[]): string {

@@ -105,8 +105,8 @@ export const options = [
   {
     name: 'html',
     value: 'FILE',
-    commands: ['proof'],
-    says: 'Write the proof here as one HTML file that opens without a network.',
+    commands: ['proof', 'review'],
+    says: 'Write the proof, or the report of a review, here as one HTML file that opens without a network.',
   },
   {
     name: 'kernels',

@@ -1,5 +1,7 @@
 import { type Problem, Refusal, say } from '../../core/problem.ts';
+import { reportHtml } from '../../core/review/html.ts';
 import { reportMarkdown } from '../../core/review/markdown.ts';
+import type { ReviewPictures } from '../../core/review/pictures.ts';
 import { type ReportRow, reportRow, sortByImpact } from '../../core/review/report.ts';
 import { sayVerdict } from '../../core/review/verdict.ts';
 import { seenAt } from '../../core/review/visible.ts';
@@ -10,10 +12,12 @@ import { orRefuse } from '../node/laydown.ts';
 import { defaultMemoryBytes } from '../node/memory.ts';
 import { nodeDisk, slashed } from '../node/node-disk.ts';
 import { parentOf } from '../node/path.ts';
+import { nodePorts } from '../node/ports.ts';
 import { listFiles } from '../node/review/files.ts';
 import { glanceEntries } from '../node/review/glance.ts';
 import { type Judged, judgedGlance, judgedReview } from '../node/review/judge.ts';
 import { listReview, type ReviewList } from '../node/review/list.ts';
+import { picturesOf } from '../node/review/pictures.ts';
 import { reviewEntries } from '../node/review/run.ts';
 import { temporaryFor } from '../node/temporary.ts';
 import type { Arguments } from './arguments.ts';
@@ -54,12 +58,9 @@ export async function runReview(args: Arguments, shell: Shell): Promise<Result> 
     } finally {
       progress.clear();
     }
-    return await conclude(
-      args,
-      shell,
-      list,
-      judged.filter((each) => each !== undefined),
-    );
+    const sorted = sortByImpact(judged.filter((each) => each !== undefined));
+    const pictures = args.proof.html === null ? [] : await picturesOf(sorted, { versions, memoryBytes, cancel });
+    return await conclude(args, shell, list, sorted, pictures);
   } catch (error) {
     if (error instanceof Refusal) return onlyProblems([error.problem]);
     if (shell.isCancelled()) return { ...onlyProblems([]), cancelled: true };
@@ -73,8 +74,13 @@ function rangeOf(args: Arguments): Range {
   return args.flags.has('staged') ? { kind: 'index' } : readRange(args.paths[0]);
 }
 
-async function conclude(args: Arguments, shell: Shell, list: ReviewList, judged: readonly Judged[]): Promise<Result> {
-  const sorted = sortByImpact(judged);
+async function conclude(
+  args: Arguments,
+  shell: Shell,
+  list: ReviewList,
+  sorted: readonly Judged[],
+  pictures: readonly (ReviewPictures | null)[],
+): Promise<Result> {
   const rows = sorted.map(reportRow);
   const summary = summaryOf(list, sorted, shell.isCancelled());
   const problems: Problem[] = [...list.problems, ...distinct(sorted.flatMap((each) => each.problems))];
@@ -82,6 +88,15 @@ async function conclude(args: Arguments, shell: Shell, list: ReviewList, judged:
   if (args.markdown !== null) {
     const text = reportMarkdown({ ...list, rows, summary, problems: list.problems.map(say) });
     problems.push(...(await writeReport(resolvePath(shell.folder, slashed(args.markdown)), text)));
+  }
+  if (args.proof.html !== null) {
+    const entries = sorted.map(({ review }, index) => ({
+      row: rows[index],
+      review,
+      pictures: pictures[index] ?? null,
+    }));
+    const text = reportHtml({ ...list, entries, summary, problems: list.problems.map(say) }, nodePorts.newHash);
+    problems.push(...(await writeReport(resolvePath(shell.folder, slashed(args.proof.html)), text)));
   }
   const nameOf = (path: string): string => path;
   return {
