@@ -24,6 +24,8 @@ export async function openRepository(folder: string): Promise<Repository> {
     return refuse('git-failed', { reason: stderr || `\`git rev-parse\` ended with exit code ${code}` });
   }
   const [top, common, shallow] = stdout.toString().split('\n');
+  // An older Git repeats what it does not know.
+  if (top.startsWith('--')) return refuse('git-failed', { reason: 'it is older than 2.31' });
   const emptyTree = (await runGit(top, ['hash-object', '-t', 'tree', '--stdin'])).toString().trim();
   return {
     folder: slashed(top),
