@@ -1,5 +1,6 @@
 import { wrapIndex } from '../kernel/wrap.ts';
-import { type Extent, newCodes, type StraightRaster } from '../raster/raster.ts';
+import { type Codes, type Extent, newCodes, type StraightRaster } from '../raster/raster.ts';
+import type { Wrap } from '../treatment/treatment.ts';
 import type { WrapPair } from './coverage.ts';
 
 export type Bound = 'min' | 'max';
@@ -11,43 +12,63 @@ export function boundCodes(raster: StraightRaster, extent: Extent, wrap: WrapPai
   const { channels, depth } = raster;
   const narrow: Extent = { width: extent.width, height: raster.extent.height };
   const along = newCodes(depth, narrow.width * narrow.height * channels);
-  const pick = bound === 'min' ? Math.min : Math.max;
-  const columns = reachOf(raster.extent.width, extent.width);
-  for (let y = 0; y < narrow.height; y++) {
-    const row = y * raster.extent.width * channels;
+  const columns = reachOf(raster.extent.width, extent.width, wrap.x);
+  const stride = raster.extent.width * channels;
+  for (let y = 0, at = 0; y < narrow.height; y++) {
     for (let x = 0; x < extent.width; x++) {
-      for (let channel = 0; channel < channels; channel++) {
-        let found = -1;
-        for (let i = columns.first[x]; i <= columns.last[x]; i++) {
-          const column = wrapIndex(i, raster.extent.width, wrap.x);
-          const code = column < 0 ? 0 : raster.codes[row + column * channels + channel];
-          found = found < 0 ? code : pick(found, code);
+      const [start, end] = [columns.start[x], columns.start[x + 1]];
+      for (let channel = 0; channel < channels; channel++, at++) {
+        const row = y * stride + channel;
+        let found = codeAt(raster.codes, row, columns.texels[start], channels);
+        for (let i = start + 1; i < end; i++) {
+          const code = codeAt(raster.codes, row, columns.texels[i], channels);
+          if (bound === 'min' ? code < found : code > found) found = code;
         }
-        along[(y * extent.width + x) * channels + channel] = found;
+        along[at] = found;
       }
     }
   }
   const codes = newCodes(depth, extent.width * extent.height * channels);
-  const rows = reachOf(raster.extent.height, extent.height);
+  const rows = reachOf(raster.extent.height, extent.height, wrap.y);
   const width = extent.width * channels;
   for (let y = 0; y < extent.height; y++) {
-    for (let sample = 0; sample < width; sample++) {
-      let found = -1;
-      for (let i = rows.first[y]; i <= rows.last[y]; i++) {
-        const row = wrapIndex(i, raster.extent.height, wrap.y);
-        const code = row < 0 ? 0 : along[row * width + sample];
-        found = found < 0 ? code : pick(found, code);
-      }
-      codes[y * width + sample] = found;
+    const out = codes.subarray(y * width, (y + 1) * width);
+    for (let i = rows.start[y]; i < rows.start[y + 1]; i++) {
+      const row = rows.texels[i];
+      const source = row < 0 ? null : along.subarray(row * width, (row + 1) * width);
+      if (i === rows.start[y]) out.set(source ?? out);
+      else bindRow(out, source, bound);
     }
   }
   return { kind: 'straight', extent, channels, depth, codes };
 }
 
-/** First and last texel of each target's area, widened by one. */
-function reachOf(from: number, to: number): { readonly first: Int32Array; readonly last: Int32Array } {
-  return {
-    first: Int32Array.from({ length: to }, (_, j) => Math.floor((j * from) / to) - 1),
-    last: Int32Array.from({ length: to }, (_, j) => Math.ceil(((j + 1) * from) / to)),
-  };
+/** Border texels are transparent black. */
+function codeAt(codes: Codes, row: number, texel: number, channels: number): number {
+  return texel < 0 ? 0 : codes[row + texel * channels];
+}
+
+function bindRow(out: Codes, source: Codes | null, bound: Bound): void {
+  if (source === null) {
+    if (bound === 'min') out.fill(0);
+    return;
+  }
+  if (bound === 'min') {
+    for (let at = 0; at < out.length; at++) if (source[at] < out[at]) out[at] = source[at];
+  } else {
+    for (let at = 0; at < out.length; at++) if (source[at] > out[at]) out[at] = source[at];
+  }
+}
+
+/** Texels that each target's area touches, widened by one: those of target j stand at `start[j]` up to `start[j + 1]`, -1 for the
+ *  border. */
+function reachOf(from: number, to: number, wrap: Wrap): { readonly start: Int32Array; readonly texels: Int32Array } {
+  const start = new Int32Array(to + 1);
+  const texels: number[] = [];
+  for (let j = 0; j < to; j++) {
+    const last = Math.ceil(((j + 1) * from) / to);
+    for (let i = Math.floor((j * from) / to) - 1; i <= last; i++) texels.push(wrapIndex(i, from, wrap));
+    start[j + 1] = texels.length;
+  }
+  return { start, texels: Int32Array.from(texels) };
 }

@@ -54,15 +54,29 @@ export function measureHalo(
   engine: Engine = plainEngine,
   watch?: HaloWatch,
 ): readonly Halo[] {
+  const steps = haloSteps(source, treatment, engine, watch);
+  for (;;) {
+    const { done, value } = steps.next();
+    if (done === true) return value;
+  }
+}
+
+/** The same in pieces of some milliseconds, so that others can work between them, or it can be left. */
+export function* haloSteps(
+  source: StraightRaster | IndexedRaster,
+  treatment: Treatment,
+  engine: Engine = plainEngine,
+  watch?: HaloWatch,
+): Generator<undefined, readonly Halo[]> {
   const raster = source.kind === 'indexed' ? expandIndexed(source) : source;
-  if (treatment.grid === null) return measureChain(raster, treatment, { left: 0, top: 0 }, engine, watch);
+  if (treatment.grid === null) return yield* measureChain(raster, treatment, { left: 0, top: 0 }, engine, watch);
   const sheet = planSheet(raster.extent, treatment.grid);
   const alone = cellTreatment(treatment, sheet);
   const pitch = { width: sheet.cell.width + 2 * sheet.gutter, height: sheet.cell.height + 2 * sheet.gutter };
   const cells: Halo[][] = [];
   for (let top = sheet.gutter; top < raster.extent.height; top += pitch.height) {
     for (let left = sheet.gutter; left < raster.extent.width; left += pitch.width) {
-      cells.push([...measureChain(cutRegion(raster, left, top, sheet.cell), alone, { left, top }, engine)]);
+      cells.push([...(yield* measureChain(cutRegion(raster, left, top, sheet.cell), alone, { left, top }, engine))]);
     }
   }
   return cells[0].map((_, index) => worstOf(cells.map((cell) => cell[index])));
@@ -76,16 +90,16 @@ function worstOf(cells: readonly Halo[]): Halo {
 }
 
 /** `place` is where the raster stands in the whole source; halos are placed in the whole of their image. */
-function measureChain(
+function* measureChain(
   raster: StraightRaster,
   treatment: Treatment,
   place: { readonly left: number; readonly top: number },
   engine: Engine,
   watch?: HaloWatch,
-): readonly Halo[] {
+): Generator<undefined, readonly Halo[]> {
   const plan = planChain(headOf(raster), treatment);
   const { pass, nodes } = passOf(plan);
-  const ranges = rangesOf(plan, raster);
+  const ranges = yield* rangesOf(plan, raster);
   const stride = floatChannels(pass.decoding);
   const probes = nodes.map((image, index) => {
     const watched = hasLobes(pass.steps[index]) ? watch : undefined;
@@ -95,7 +109,11 @@ function measureChain(
     if (node > 0) probes[node - 1].take(y, floats);
   });
   const length = raster.extent.width * raster.channels;
-  for (let y = 0; y < raster.extent.height; y++) run.push(raster.codes.subarray(y * length, (y + 1) * length));
+  const rowsAtOnce = Math.max(1, Math.floor(TEXELS_AT_ONCE / raster.extent.width));
+  for (let y = 0; y < raster.extent.height; y++) {
+    run.push(raster.codes.subarray(y * length, (y + 1) * length));
+    if (y % rowsAtOnce === rowsAtOnce - 1) yield;
+  }
   const shipped = (image: PlannedLevel | PlannedTarget): boolean => !('level' in image) || image.shipped;
   return probes.flatMap((probe, index) => {
     const { image } = probe;
@@ -108,6 +126,9 @@ function measureChain(
     return [{ ...halo, x, y }];
   });
 }
+
+/** Source texels that are filtered and looked at in one piece. */
+const TEXELS_AT_ONCE = 1 << 17;
 
 /** Whether the step has negative weights. */
 function hasLobes({ x, y }: Step): boolean {
@@ -124,7 +145,10 @@ interface Range {
 }
 
 /** Bounds of the visible codes for every image: levels from the level before, targets from level 0. */
-function rangesOf(plan: ChainPlan, raster: StraightRaster): Map<PlannedLevel | PlannedTarget, Range> {
+function* rangesOf(
+  plan: ChainPlan,
+  raster: StraightRaster,
+): Generator<undefined, Map<PlannedLevel | PlannedTarget, Range>> {
   const { wrap } = plan.treatment;
   const base: Range = {
     min: hiddenAs(raster, plan.layout, maxCode(raster.depth)),
@@ -139,8 +163,12 @@ function rangesOf(plan: ChainPlan, raster: StraightRaster): Map<PlannedLevel | P
   for (const level of plan.levels.slice(1)) {
     finer = bound(finer, level);
     ranges.set(level, finer);
+    yield;
   }
-  for (const target of plan.targets) ranges.set(target, bound(base, target));
+  for (const target of plan.targets) {
+    ranges.set(target, bound(base, target));
+    yield;
+  }
   return ranges;
 }
 

@@ -5,7 +5,7 @@ import { openImage } from '../codec/open.ts';
 import { hashPixels } from '../codec/pixels.ts';
 import type { SourceHeader } from '../codec/source.ts';
 import { obeyedGamma } from '../codec/tag.ts';
-import { type Halo, measureHalo } from '../finding/halo.ts';
+import { type Halo, haloSteps } from '../finding/halo.ts';
 import { type Cancel, Cancelled, type Ports } from '../port.ts';
 import type { IndexedRaster, StraightRaster } from '../raster/raster.ts';
 import type { Engine } from '../resample/engine.ts';
@@ -66,7 +66,7 @@ export class ProofBench {
       case 'levels':
         return this.#levels(want.treatment, cancel);
       case 'halo':
-        return this.#halo(want.treatment, want.image);
+        return this.#halo(want.treatment, want.image, cancel);
       case 'footprint': {
         const treatment = treatmentFor(want.treatment, want.image);
         return footprintOf(headOf(this.#source), treatment, want.image, want.x, want.y);
@@ -99,9 +99,7 @@ export class ProofBench {
   async #levels(treatment: Treatment, cancel: Cancel): Promise<LevelsAnswer> {
     const whole = treatmentFor(treatment, { level: 0 });
     const chain = await this.#chain(whole, cancel);
-    await this.#ports.pause();
-    if (cancel.cancelled) throw new Cancelled();
-    const { halos } = this.#measure(whole);
+    const { halos } = await this.#measure(whole, cancel);
     return {
       kind: 'levels',
       levels: chain.images
@@ -116,19 +114,26 @@ export class ProofBench {
     };
   }
 
-  #halo(treatment: Treatment, image: PrintImage): HaloAnswer {
+  async #halo(treatment: Treatment, image: PrintImage, cancel: Cancel): Promise<HaloAnswer> {
     if ('lod' in image) return { kind: 'halo', halo: null, marks: null };
-    const maps = this.#measure(treatmentFor(treatment, image));
+    const maps = await this.#measure(treatmentFor(treatment, image), cancel);
     const name = 'level' in image ? image.level : image.target.name;
     const halo = maps.halos.find((each) => each.image === name) ?? null;
     return { kind: 'halo', halo, marks: maps.marks.get(name)?.slice() ?? null };
   }
 
-  #measure(treatment: Treatment): HaloMaps {
+  async #measure(treatment: Treatment, cancel: Cancel): Promise<HaloMaps> {
     const key = JSON.stringify(treatment);
     const known = this.#halos.get(key);
     if (known !== undefined) return known;
-    const maps = measureMaps(this.#source, treatment, this.#ports.engine);
+    const steps = measureMaps(this.#source, treatment, this.#ports.engine);
+    let step = steps.next();
+    while (step.done !== true) {
+      await this.#ports.pause();
+      if (cancel.cancelled) throw new Cancelled();
+      step = steps.next();
+    }
+    const maps = step.value;
     this.#halos.put(key, maps);
     return maps;
   }
@@ -177,17 +182,17 @@ interface HaloMaps {
   readonly bytes: number;
 }
 
-function measureMaps(
+function* measureMaps(
   source: StraightRaster | IndexedRaster,
   treatment: Treatment,
   engine: Engine | undefined,
-): HaloMaps {
+): Generator<undefined, HaloMaps> {
   const marks = new Map<number | string, Uint8Array>();
   const { plan } = new ChainRun(headOf(source), { ...treatment, grid: null });
   const extents = new Map<number | string, Picture['extent']>();
   for (const level of plan.levels) extents.set(level.level, level.extent);
   for (const target of plan.targets) extents.set(target.target.name, target.place.picture);
-  const halos = measureHalo(source, treatment, engine, (image, x, y, { above, below, clips }) => {
+  const halos = yield* haloSteps(source, treatment, engine, (image, x, y, { above, below, clips }) => {
     const { width, height } = extents.get(image)!;
     let map = marks.get(image);
     if (map === undefined) {

@@ -45,6 +45,9 @@ export async function showPage(
 <body class="${themes[theme].bodyClass}" data-worker="${ORIGIN}/worker.js"><script nonce="recorded" src="/page.js"></script></body></html>`;
       return route.fulfill({ contentType: 'text/html', body });
     }
+    if (path === '/recorded.bytes') {
+      return route.fulfill({ contentType: 'application/octet-stream', body: Buffer.from(recording.bytes) });
+    }
     const asked = themes[path.slice(1, -'.css'.length) as ThemeName];
     if (asked !== undefined) return route.fulfill({ contentType: 'text/css', body: asked.css });
     const file = join(top, 'dist/page', path.slice(1));

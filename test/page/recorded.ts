@@ -68,7 +68,6 @@ export const stale: BuiltState = { kind: 'stale', moved: ['settings'] };
 export function playRecording(data: {
   readonly protocol: number;
   readonly open: unknown;
-  readonly bytes: string | null;
   readonly bytesProblem: unknown;
   readonly kept: unknown;
   readonly first: { readonly print: FirstPrint; readonly codes: string; readonly palette: string } | null;
@@ -99,13 +98,15 @@ export function playRecording(data: {
   new PerformanceObserver((list) => {
     for (const entry of list.getEntries()) stage.longTasks.push(entry.duration);
   }).observe({ type: 'longtask', buffered: true });
-  const answer = (call: string): unknown => {
+  const answer = async (call: string): Promise<unknown> => {
     switch (call) {
       case 'open':
         return data.open !== null && 'problem' in (data.open as object) ? data.open : { ok: data.open };
       case 'bytes': {
-        if (data.bytes === null) return { problem: data.bytesProblem };
-        return { ok: { image: unpacked(data.bytes).buffer, roughness: null } };
+        if (data.bytesProblem !== null) return { problem: data.bytesProblem };
+        // Not with the script: unpacking it would hold the very thread that is watched.
+        const response = await fetch('/recorded.bytes');
+        return { ok: { image: await response.arrayBuffer(), roughness: null } };
       }
       case 'firstPrint': {
         if (data.first === null) return { ok: { print: null } };
@@ -132,15 +133,13 @@ export function playRecording(data: {
   stage.acquireVsCodeApi = () => ({
     postMessage: (request: { id: number; call: string; question: unknown }) => {
       stage.asked.push({ call: request.call, question: request.question });
-      const reply = {
-        protocol: data.protocol,
-        kind: 'reply',
-        id: request.id,
-        revision: request.call === 'bytes' ? data.bytesRevision : 1,
-        reply: answer(request.call),
-      };
       const ready = request.call === 'bytes' ? released : Promise.resolve();
-      void ready.then(() => setTimeout(() => window.postMessage(reply, '*'), 0));
+      const revision = request.call === 'bytes' ? data.bytesRevision : 1;
+      void ready
+        .then(() => answer(request.call))
+        .then((reply) =>
+          window.postMessage({ protocol: data.protocol, kind: 'reply', id: request.id, revision, reply }, '*'),
+        );
     },
     getState: () => stage.kept,
     setState: (state: unknown) => {
@@ -153,7 +152,6 @@ export function playData(recording: Recording): Parameters<typeof playRecording>
   return {
     protocol: PROTOCOL,
     open: recording.open,
-    bytes: recording.bytesProblem === undefined ? Buffer.from(recording.bytes).toString('base64') : null,
     bytesProblem: recording.bytesProblem ?? null,
     kept: recording.kept ?? null,
     first: recording.first === undefined ? null : packFirst(recording.first),

@@ -9,10 +9,12 @@ const SIDE = 96;
 
 /** The source texels that make the texel under the cursor, each as strong as its weight; those of negative weight are hatched. */
 export class FootprintPlot extends LitElement {
-  static override properties = { footprint: { attribute: false }, why: { type: String } };
+  static override properties = { footprint: { attribute: false }, why: { type: String }, open: { state: true } };
   declare footprint: FootprintAnswer | null;
   /** Why there are no weights, where there are none. */
   declare why: string;
+  /** Whether the table is shown: it is made only then. */
+  declare open: boolean;
 
   static override styles = [
     controls,
@@ -52,6 +54,7 @@ export class FootprintPlot extends LitElement {
     super();
     this.footprint = null;
     this.why = '';
+    this.open = false;
   }
 
   override render() {
@@ -76,7 +79,7 @@ export class FootprintPlot extends LitElement {
               : html`<span class="number">${percent(negative)}</span> <span class="quiet">${t('negative weight')}</span>`
           }
         </p>
-        <details>
+        <details @toggle=${this.#toggle}>
           <summary>${t('Weights')}</summary>
           <div class="scroll" tabindex="0" role="region" aria-label=${t('Weights by axis')}>
             <table class="number">
@@ -89,7 +92,7 @@ export class FootprintPlot extends LitElement {
                 </tr>
               </thead>
               <tbody>
-                ${Array.from({ length: Math.max(x.texels.length, y.texels.length) }, (_, i) => i).map(
+                ${Array.from({ length: this.open ? Math.max(x.texels.length, y.texels.length) : 0 }, (_, i) => i).map(
                   (i) => html`<tr>
                     ${[x, y].map((axis) =>
                       axis.texels[i] === undefined
@@ -105,6 +108,10 @@ export class FootprintPlot extends LitElement {
           </div>
         </details>
       </div>`;
+  }
+
+  #toggle(event: Event): void {
+    this.open = (event.target as HTMLDetailsElement).open;
   }
 
   override updated(): void {
@@ -125,20 +132,33 @@ function drawFootprint(canvas: HTMLCanvasElement, x: AxisFootprint, y: AxisFootp
   const context = canvas.getContext('2d');
   if (context === null) return;
   const most = Math.max(...x.weights.map(Math.abs)) * Math.max(...y.weights.map(Math.abs));
-  const cell = Math.max(1, Math.floor(side / Math.max(x.texels.length, y.texels.length)));
-  const left = Math.floor((side - cell * x.texels.length) / 2);
-  const top = Math.floor((side - cell * y.texels.length) / 2);
-  for (let row = 0; row < y.texels.length; row++) {
-    for (let column = 0; column < x.texels.length; column++) {
-      const weight = (x.weights[column] * y.weights[row]) / most;
-      if (weight === 0) continue;
-      const [red, green, blue] = weight > 0 ? WEIGHT_PLUS : WEIGHT_MINUS;
+  const [columns, rows] = [x.texels.length, y.texels.length];
+  const cell = Math.max(1, Math.floor(side / Math.max(columns, rows)));
+  // Where there are more texels than pixels, a pixel shows the middle ones: the rest weighs next to nothing.
+  const [width, height] = [Math.min(side, columns), Math.min(side, rows)];
+  const [skipX, skipY] = [(columns - width) >> 1, (rows - height) >> 1];
+  const image = new ImageData(width, height);
+  for (let row = 0, at = 0; row < height; row++) {
+    for (let column = 0; column < width; column++, at += 4) {
+      const weight = (x.weights[skipX + column] * y.weights[skipY + row]) / most;
+      image.data.set(weight > 0 ? WEIGHT_PLUS : WEIGHT_MINUS, at);
       // A square root keeps small weights in sight.
-      context.fillStyle = `rgb(${red} ${green} ${blue} / ${Math.sqrt(Math.abs(weight))})`;
-      const [at, down] = [left + column * cell, top + row * cell];
-      context.fillRect(at, down, cell, cell);
-      if (weight < 0 && cell >= 4) {
-        for (let i = 0; i < cell; i++) context.fillRect(at + i, down + cell - 1 - i, 1, 1);
+      image.data[at + 3] = Math.sqrt(Math.abs(weight)) * 255;
+    }
+  }
+  const [left, top] = [(side - cell * width) >> 1, (side - cell * height) >> 1];
+  const scratch = new OffscreenCanvas(width, height);
+  scratch.getContext('2d')!.putImageData(image, 0, 0);
+  context.imageSmoothingEnabled = false;
+  context.drawImage(scratch, left, top, cell * width, cell * height);
+  if (cell < 4) return;
+  const [red, green, blue] = WEIGHT_MINUS;
+  context.fillStyle = `rgb(${red} ${green} ${blue})`;
+  for (let row = 0; row < height; row++) {
+    for (let column = 0; column < width; column++) {
+      if (x.weights[skipX + column] * y.weights[skipY + row] >= 0) continue;
+      for (let i = 0; i < cell; i++) {
+        context.fillRect(left + column * cell + i, top + row * cell + cell - 1 - i, 1, 1);
       }
     }
   }

@@ -12,11 +12,18 @@ const BOTTOM = 14;
 
 /** A plot of a cross-section with a table of the same numbers. */
 export class SectionPlot extends LitElement {
-  static override properties = { section: { attribute: false }, cursor: { type: Number }, width: { state: true } };
+  static override properties = {
+    section: { attribute: false },
+    cursor: { type: Number },
+    width: { state: true },
+    open: { state: true },
+  };
   declare section: Section | null;
   /** Share of the line at which the cursor stands. */
   declare cursor: number;
   declare width: number;
+  /** Whether the table is shown: it is made only then. */
+  declare open: boolean;
   readonly #observer = new ResizeObserver(([entry]) => {
     this.width = entry.contentRect.width;
   });
@@ -106,6 +113,7 @@ export class SectionPlot extends LitElement {
     this.section = null;
     this.cursor = 0;
     this.width = 0;
+    this.open = false;
   }
 
   override connectedCallback(): void {
@@ -154,7 +162,7 @@ export class SectionPlot extends LitElement {
         )}
         <span class="quiet">${t('▲▼ overshoot')}</span>
       </div>
-      <details>
+      <details @toggle=${this.#toggle}>
         <summary>${t('Table')}</summary>
         <div class="scroll" tabindex="0" role="region" aria-label=${t('Table of the cross-section')}>
           <table class="number">
@@ -166,7 +174,7 @@ export class SectionPlot extends LitElement {
               </tr>
             </thead>
             <tbody>
-              ${sectionRows(section).map(
+              ${(this.open ? sectionRows(section) : []).map(
                 ([texel, ...values]) => html`<tr>
                   <th scope="row">${texel}</th>
                   ${values.map((value) => html`<td>${Number.isNaN(value) ? '' : figure(value, 1)}</td>`)}
@@ -177,6 +185,10 @@ export class SectionPlot extends LitElement {
         </div>
       </details>
     `;
+  }
+
+  #toggle(event: Event): void {
+    this.open = (event.target as HTMLDetailsElement).open;
   }
 }
 
