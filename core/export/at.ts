@@ -1,9 +1,8 @@
 import { refuse } from '../problem.ts';
-import type { Sight, Slot } from '../proof/slot.ts';
+import { OWN_SLOT, type Sight, type Slot, STATE_VERSION } from '../proof/slot.ts';
 import { extentText, scaleText } from '../treatment/grammar.ts';
 import { resolveTarget } from '../treatment/target.ts';
 import type { KernelChoice, Target, Treatment } from '../treatment/treatment.ts';
-import { OWN_SLOT } from './look.ts';
 
 /** The state of a page that stands at a target and compares kernels; null where neither is asked for. `at` is a level, the name
  *  of one of the settings' targets, a scale or an extent. Throws Refusal: `no-such-target`. */
@@ -17,9 +16,6 @@ export function stateAt(
   const others = (kernels ?? []).map((kernel, i): Slot => ({ id: i + 1, kernel, change: {} }));
   return { version: STATE_VERSION, sight, typed, slots: [OWN_SLOT, ...others], selected: 0 };
 }
-
-/** Of the state that a page keeps; the page's own is the same. */
-export const STATE_VERSION = 1;
 
 function placeOf(at: string, treatment: Treatment): { readonly sight: Sight; readonly typed: readonly Target[] } {
   const known = treatment.targets.find(({ name }) => name === at);

@@ -15,7 +15,7 @@ import {
   type Shape,
   text,
 } from '../manifest/shape.ts';
-import type { Change, Sight, Slot } from '../proof/slot.ts';
+import { type Change, OWN_SLOT, type Sight, type Slot } from '../proof/slot.ts';
 import type { KernelChoice, Target, Wrap } from '../treatment/treatment.ts';
 import type { ProofPreferences } from './order.ts';
 
@@ -57,9 +57,6 @@ export function readLook(state: unknown, preferences: ProofPreferences): Look {
     lamp: read('lamp', object<Look['lamp']>({ x: number(-1, 1), y: number(-1, 1) }), { x: -0.5, y: 0.6 }),
   };
 }
-
-/** The settings' own print. */
-export const OWN_SLOT: Slot = { id: 0, kernel: null, change: {} };
 
 const sight: Shape<Sight> = (value, at) => {
   const kind = (value as { readonly kind?: unknown } | null | undefined)?.kind;

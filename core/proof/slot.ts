@@ -24,8 +24,14 @@ export interface Slot {
   readonly change: Change;
 }
 
+/** The settings' own print. */
+export const OWN_SLOT: Slot = { id: 0, kernel: null, change: {} };
+
+/** Of the state that a page keeps. Raised when it changes its shape. */
+export const STATE_VERSION = 1;
+
 /** The treatment that a print is made with. */
-export function treatmentOf(slot: Omit<Slot, 'id'>, settings: Treatment, origins: readonly Origin[]): Treatment {
+export function treatmentOf(slot: Slot, settings: Treatment, origins: readonly Origin[]): Treatment {
   const derive = origins.some(({ key, rule }) => key === 'derive' && rule !== 'built-in') ? 'kept' : 'default';
   const treatment = slot.kernel === null ? settings : withKernel(settings, slot.kernel, derive);
   return changed(treatment, slot.change);

@@ -1,7 +1,8 @@
 import { describe, expect, test } from 'vitest';
-import { STATE_VERSION, stateAt } from '../../core/export/at.ts';
-import { OWN_SLOT, readLook } from '../../core/export/look.ts';
+import { stateAt } from '../../core/export/at.ts';
+import { readLook } from '../../core/export/look.ts';
 import { startPreferences } from '../../core/export/order.ts';
+import { OWN_SLOT, STATE_VERSION } from '../../core/proof/slot.ts';
 import { resolveTreatment } from '../../core/treatment/resolve.ts';
 import { parseSettings } from '../../core/treatment/settings.ts';
 import { readState, startState, writeState } from '../../webview/page/proof/state.ts';

@@ -1,5 +1,5 @@
+import type { Sight } from '../../../core/proof/slot.ts';
 import type { Model } from '../proof/model.ts';
-import type { Sight } from '../proof/state.ts';
 import { figure } from '../words/figures.ts';
 import { t } from '../words/t.ts';
 import type { Stop } from './scale.ts';

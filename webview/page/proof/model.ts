@@ -1,5 +1,6 @@
 import type { Problem } from '../../../core/problem.ts';
 import { lastLevelOf, type Opening, openingLevel } from '../../../core/proof/opening.ts';
+import { type Sight, type Slot, treatmentOf } from '../../../core/proof/slot.ts';
 import type { HaloAnswer, LevelsAnswer, Print, PrintImage, Want } from '../../../core/proof/want.ts';
 import type { BuiltState, HostEvent, OpenReply, SettingsReply } from '../../../core/protocol.ts';
 import type { Extent } from '../../../core/raster/raster.ts';
@@ -7,12 +8,11 @@ import type { Target, Treatment } from '../../../core/treatment/treatment.ts';
 import type { Link } from '../../link/link.ts';
 import type { Outlook } from '../axis/lod.ts';
 import { extentAt, type Stop, stopsOf } from '../axis/scale.ts';
-import { treatmentOf } from '../treatment/change.ts';
 import { setWords } from '../words/t.ts';
 import { type BenchLink, isProblem, type Told } from './bench-link.ts';
 import { BuiltChecks } from './built-checks.ts';
 import { exportProof } from './export-proof.ts';
-import { readState, type Sight, type Slot, type State, writeState } from './state.ts';
+import { readState, type State, writeState } from './state.ts';
 import { Takeover } from './takeover.ts';
 
 /** All that the page knows, and the one way in which it changes. Fires `change` when something did. */

@@ -1,28 +1,6 @@
+import { type Sight, type Slot, STATE_VERSION } from '../../../core/proof/slot.ts';
 import type { Preferences } from '../../../core/protocol.ts';
-import type { KernelChoice, Target, Wrap } from '../../../core/treatment/treatment.ts';
-
-/** Where the sight stands: at a level, at a target, or between levels. */
-export type Sight =
-  | { readonly kind: 'level'; readonly level: number }
-  | { readonly kind: 'target'; readonly name: string }
-  | { readonly kind: 'lod'; readonly lod: number };
-
-/** What a print tries against the settings; a key that is left out is as they say. */
-export interface Change {
-  readonly light?: 'linear' | 'code';
-  readonly weight?: boolean;
-  readonly wrap?: Wrap;
-  readonly keepCoverage?: boolean;
-  readonly fill?: 'none' | 'hidden' | 'all';
-  readonly renormalise?: boolean;
-}
-
-/** One print of the row. The first is the settings' own: no kernel, no change. */
-export interface Slot {
-  readonly id: number;
-  readonly kernel: KernelChoice | null;
-  readonly change: Change;
-}
+import type { Target } from '../../../core/treatment/treatment.ts';
 
 export type Show = 'color' | 'r' | 'g' | 'b' | 'a' | 'bare' | 'mask' | 'lit' | 'difference' | 'overshoot';
 
@@ -92,7 +70,7 @@ export const startState: State = {
 
 /** What was kept, as far as this page understands it; the rest is as at the start. */
 export function readState(kept: unknown): State {
-  if (typeof kept !== 'object' || kept === null || (kept as { version?: unknown }).version !== VERSION)
+  if (typeof kept !== 'object' || kept === null || (kept as { version?: unknown }).version !== STATE_VERSION)
     return startState;
   const { version: _, ...state } = kept as { version: number } & State;
   const slots = Array.isArray(state.slots) && state.slots[0]?.kernel === null ? state.slots : startState.slots;
@@ -100,8 +78,5 @@ export function readState(kept: unknown): State {
 }
 
 export function writeState(state: State): Readonly<Record<string, unknown>> {
-  return { version: VERSION, ...state };
+  return { version: STATE_VERSION, ...state };
 }
-
-/** Raised when a kept state changes its shape. */
-const VERSION = 1;

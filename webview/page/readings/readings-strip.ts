@@ -1,10 +1,11 @@
 import { css, html, LitElement, nothing } from 'lit';
+import type { Slot } from '../../../core/proof/slot.ts';
 import type { Picture } from '../../../core/proof/want.ts';
 import { controls } from '../form/controls.ts';
 import { colorDistance } from '../prints/view.ts';
 import { isProblem } from '../proof/bench-link.ts';
 import type { Model } from '../proof/model.ts';
-import type { Slot, State } from '../proof/state.ts';
+import type { State } from '../proof/state.ts';
 import { changeWords } from '../treatment/change-words.ts';
 import { light } from '../words/figures.ts';
 import { t } from '../words/t.ts';

@@ -1,4 +1,4 @@
-import type { Change } from '../proof/state.ts';
+import type { Change } from '../../../core/proof/slot.ts';
 import { t } from '../words/t.ts';
 
 /** What a print changes against the settings, a few words each. */

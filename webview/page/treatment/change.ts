@@ -1,32 +1,5 @@
-import { withKernel } from '../../../core/proof/variant.ts';
-import type { Origin, Treatment } from '../../../core/treatment/treatment.ts';
-import type { Change, Slot } from '../proof/state.ts';
-
-/** The treatment that a print is made with. */
-export function treatmentOf(slot: Slot, settings: Treatment, origins: readonly Origin[]): Treatment {
-  const derive = origins.some(({ key, rule }) => key === 'derive' && rule !== 'built-in') ? 'kept' : 'default';
-  const treatment = slot.kernel === null ? settings : withKernel(settings, slot.kernel, derive);
-  return changed(treatment, slot.change);
-}
-
-function changed(treatment: Treatment, change: Change): Treatment {
-  const { light, weight, wrap, keepCoverage, fill, renormalise } = change;
-  return {
-    ...treatment,
-    ...(light !== undefined && { light }),
-    ...(wrap !== undefined && { wrap: { x: wrap, y: wrap } }),
-    ...(fill !== undefined && { fill }),
-    alpha: {
-      ...treatment.alpha,
-      ...(weight !== undefined && { weight }),
-      ...(keepCoverage !== undefined && { keepCoverage }),
-    },
-    normal: {
-      ...treatment.normal,
-      ...(renormalise !== undefined && { base: renormalise ? ('renormalise' as const) : ('keep' as const) }),
-    },
-  };
-}
+import type { Change, Slot } from '../../../core/proof/slot.ts';
+import type { Treatment } from '../../../core/treatment/treatment.ts';
 
 /** What a settings file would say to make the print the settings' own: keys as it spells them, only those that differ. */
 export function adoptable(slot: Slot): Readonly<Record<string, unknown>> {

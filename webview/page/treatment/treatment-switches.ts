@@ -1,8 +1,8 @@
 import { css, html, LitElement, nothing } from 'lit';
+import type { Change } from '../../../core/proof/slot.ts';
 import type { Treatment, Wrap } from '../../../core/treatment/treatment.ts';
 import { controls } from '../form/controls.ts';
 import type { Model } from '../proof/model.ts';
-import type { Change } from '../proof/state.ts';
 import { t } from '../words/t.ts';
 import { tidied } from './change.ts';
 
