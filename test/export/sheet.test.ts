@@ -1,3 +1,5 @@
+import { readFileSync } from 'node:fs';
+import { join } from 'node:path';
 import { PNG } from 'pngjs';
 import { describe, expect, test } from 'vitest';
 import { buildChain } from '../../core/chain/chain.ts';
@@ -12,6 +14,7 @@ import type { Treatment } from '../../core/treatment/treatment.ts';
 import { inflate } from '../../extension/node/inflate.ts';
 import { noiseRaster } from '../fixtures/noise.ts';
 import { problemOf } from '../fixtures/refusal.ts';
+import { top } from '../house/tree.ts';
 import { demoOrder, goOn, ports, rasterOrder } from './orders.ts';
 
 const DEMO = [
@@ -163,6 +166,13 @@ describe('prints on a sheet, as pngjs reads them', () => {
 });
 
 describe('a sheet', () => {
+  test('of the leaf is the one in README; `sizeproof proof` with `--sheet` makes it anew', async () => {
+    const shown = PNG.sync.read(readFileSync(join(top, 'test/demo/picture/leaf-sheet.png')));
+    const drawn = PNG.sync.read(Buffer.from((await sheetOf('foliage/alder-twig.png')).png));
+    expect([shown.width, shown.height]).toEqual([drawn.width, drawn.height]);
+    expect(shown.data.equals(drawn.data)).toBe(true);
+  });
+
   test('is the same for the same order', async () => {
     const [one, other] = [await sheetOf('ui/lantern.png'), await makeSheet(demoOrder('ui/lantern.png'), ports, goOn)];
     expect(Buffer.from(one.png).equals(Buffer.from(other.png))).toBe(true);
