@@ -24,7 +24,7 @@ export function writeCurves(machine: Machine, encoding: Encoding): number {
   const { layout, depth } = encoding;
   const address = machine.take(CURVE_BYTES);
   const encoder = srgbEncoder(depth);
-  const table = depth === 8 ? machine.keep(packedTable(encoder)) : machine.keep(encoder.starts);
+  const table = machine.keep(depth === 8 ? packedTable() : encoder.starts);
   const thresholds = depth === 8 ? 0 : machine.keep(encoder.thresholds);
   const { bytes, floats, integers, addresses } = machine.views;
   bytes.fill(0, address, address + CURVE_BYTES);
@@ -52,7 +52,7 @@ export function writeCurves(machine: Machine, encoding: Encoding): number {
 /** Bytes that the curves of a depth take. */
 export function curveBytes(depth: Depth): number {
   const { starts, thresholds } = srgbEncoder(depth);
-  if (depth === 8) return aligned(CURVE_BYTES) + aligned(packedTable(srgbEncoder(8)).byteLength);
+  if (depth === 8) return aligned(CURVE_BYTES) + aligned(packedTable().byteLength);
   return aligned(CURVE_BYTES) + aligned(starts.byteLength) + aligned(thresholds.byteLength);
 }
 
@@ -95,7 +95,14 @@ function floatAtMost(value: number): number {
 }
 
 /** The table of 8 bits, as kernels/encode.ts draws it: the bits of the least value, then an entry a bucket. */
-function packedTable({ thresholds, firstBucket, shift }: Encoder): Uint32Array {
+function packedTable(): Uint32Array {
+  packed ??= pack(srgbEncoder(8));
+  return packed;
+}
+
+let packed: Uint32Array | null = null;
+
+function pack({ thresholds, firstBucket, shift }: Encoder): Uint32Array {
   const bits = new Uint32Array(thresholds.buffer, thresholds.byteOffset, thresholds.length);
   const last = new Uint32Array(Float32Array.of(1).buffer)[0] >>> shift;
   const table = new Uint32Array(last - firstBucket + 2);

@@ -4,7 +4,7 @@ import type { Cases } from './cases.ts';
 import { draw } from './characters.ts';
 import { alternate, type Contender, least, median, most, ratio } from './clock.ts';
 import { inFolder, sizeproof } from './command.ts';
-import { digits, type Figure, type Findings, type Table } from './figure.ts';
+import { digits, type Figure, type Findings, roundsText, type Table } from './figure.ts';
 import { openSharp } from './peers.ts';
 import { buildBySharp, packingFor, packingWords } from './sharp-build.ts';
 import { plainSettings, writeSource } from './sources.ts';
@@ -52,7 +52,7 @@ async function ofSide(folder: string, side: number, rounds: number) {
   ];
   const table: Table = {
     title: `Whole build of ${side} x ${side}`,
-    says: `Painted RGBA of 8 bits from its PNG file to the PNG files of its levels, ${rounds} rounds. Ours is the command line in a process of its own, its start, its hashes and its manifest included; sharp runs in a process that has started.`,
+    says: `Painted RGBA of 8 bits from its PNG file to the PNG files of its levels, ${roundsText(rounds)}. Ours is the command line in a process of its own, its start, its hashes and its manifest included; sharp runs in a process that has started.`,
     columns: ['', 'ms', 'low - high', 'ms/MP', 'times ours', 'bytes out'],
     rows: contenders.map(({ name }, index) => [
       name,

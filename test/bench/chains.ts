@@ -5,7 +5,7 @@ import type { Cases } from './cases.ts';
 import { type Character, characters, draw } from './characters.ts';
 import { checksum } from './checksum.ts';
 import { alternate, type Contender, least, median, most, ratio, type Times } from './clock.ts';
-import { digits, type Figure, type Findings, type Table } from './figure.ts';
+import { digits, type Figure, type Findings, roundsText, type Table } from './figure.ts';
 import { extentsBelow, megatexels, openEngine, ownChain } from './own.ts';
 import { openPeers, type Peer } from './peers.ts';
 
@@ -64,7 +64,7 @@ async function against(image: StraightRaster, engine: Engine, peers: readonly Pe
   const { width, height } = image.extent;
   const table: Table = {
     title: `The chain of ${width} x ${height}`,
-    says: `From codes in memory to the codes of all ${levels.length} levels below, painted RGBA of 8 bits; ${rounds} rounds, every contender once a round. Ours hands floats from level to level, measures luminance and counts clipped samples; the peers start each level from rounded bytes. One thread each.`,
+    says: `From codes in memory to the codes of all ${levels.length} levels below, painted RGBA of 8 bits; ${roundsText(rounds)}, every contender once a round. Ours hands floats from level to level, measures luminance and counts clipped samples; the peers start each level from rounded bytes. One thread each.`,
     columns: COLUMNS,
     rows,
   };
@@ -81,7 +81,7 @@ async function ofCharacters(engine: Engine, { side, rounds }: Cases['characters'
   const size = megatexels({ width: side, height: side });
   return {
     title: `Characters, ${side} x ${side}`,
-    says: `Each with the treatment that it would have; ${rounds} rounds.`,
+    says: `Each with the treatment that it would have; ${roundsText(rounds)}.`,
     columns: ['', 'treatment', ...COLUMNS.slice(1, 4), 'checksum'],
     rows: contenders.map(({ name, run }, index) => {
       const sum = checksum(run() as readonly Uint8Array[]);

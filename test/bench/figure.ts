@@ -24,3 +24,7 @@ export function digits(value: number): string {
   const places = value === 0 ? 0 : Math.max(0, 2 - Math.floor(Math.log10(Math.abs(value))));
   return value.toFixed(Math.min(places, 4));
 }
+
+export function roundsText(rounds: number): string {
+  return rounds === 1 ? 'one round' : `${rounds} rounds`;
+}

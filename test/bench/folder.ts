@@ -5,7 +5,7 @@ import type { Cases } from './cases.ts';
 import { characters, draw } from './characters.ts';
 import { alternate, least, median, most, ratio } from './clock.ts';
 import { inFolder, sizeproof } from './command.ts';
-import { digits, type Findings } from './figure.ts';
+import { digits, type Findings, roundsText } from './figure.ts';
 import { openSharp } from './peers.ts';
 import { buildBySharp, packingFor, packingWords } from './sharp-build.ts';
 import { plainSettings, writeSource } from './sources.ts';
@@ -69,7 +69,7 @@ export function benchFolder({ folder: { counts, rounds } }: Cases): Promise<Find
       tables: [
         {
           title: `A folder of ${files.length} textures`,
-          says: `${counts.map(([side, count]) => `${count} of ${side} x ${side}`).join(', ')}, of all characters in turn; PNG files to the PNG files of their levels, files written, ${rounds} rounds. Ours is the command line in a process of its own, with manifests and hashes.`,
+          says: `${counts.map(([side, count]) => `${count} of ${side} x ${side}`).join(', ')}, of all characters in turn; PNG files to the PNG files of their levels, files written, ${roundsText(rounds)}. Ours is the command line in a process of its own, with manifests and hashes.`,
           columns: ['', 's', 'low - high', 'ms/MP', 'times ours', 'bytes out'],
           rows: contenders.map(({ name, bytes: size }, index) => [
             name,

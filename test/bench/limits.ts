@@ -1,5 +1,5 @@
 import { alternate, least, median, most } from './clock.ts';
-import { digits, type Findings } from './figure.ts';
+import { digits, type Findings, roundsText } from './figure.ts';
 
 /** What the machine can do at best, whatever the program: how fast memory is copied, and how fast one thread multiplies and adds
  *  vectors of four floats. */
@@ -26,7 +26,7 @@ export async function benchLimits(rounds: number): Promise<Findings> {
     tables: [
       {
         title: 'Limits of the machine',
-        says: `Measured in the same run, ${rounds} rounds: ${COPIED / 2 ** 20} MiB copied within memory (read and written once each), and additions and multiplications of f32x4 that wait for nothing.`,
+        says: `Measured in the same run, ${roundsText(rounds)}: ${COPIED / 2 ** 20} MiB copied within memory (read and written once each), and additions and multiplications of f32x4 that wait for nothing.`,
         columns: ['', 'median', 'low - high'],
         rows: [row('copy', gigabytes, 'GB/s'), row('f32x4, one thread', vectors, 'G/s')],
       },

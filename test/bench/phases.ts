@@ -8,7 +8,7 @@ import type { Cases, PhaseCase } from './cases.ts';
 import { draw } from './characters.ts';
 import { checksum } from './checksum.ts';
 import { alternate, type Contender, least, median, most, ratio } from './clock.ts';
-import { digits, type Findings } from './figure.ts';
+import { digits, type Findings, roundsText } from './figure.ts';
 import { openEngine } from './own.ts';
 
 /** What any size costs against 2:1 of a power of two: float rows in, float rows out, neither decoded nor stored. */
@@ -40,7 +40,7 @@ export async function benchPhases({ phases: { side, rounds, cases } }: Cases): P
     tables: [
       {
         title: 'Any size, kernel and wrap',
-        says: `RGBA float rows through both passes of each level, ${rounds} rounds. A tap is one weight times one texel of four channels. Phases that are not symmetric have twice the weights and a third more arithmetic.`,
+        says: `RGBA float rows through both passes of each level, ${roundsText(rounds)}. A tap is one weight times one texel of four channels. Phases that are not symmetric have twice the weights and a third more arithmetic.`,
         columns: ['', 'kernel', 'from', 'ns/tap median', 'low - high', 'against its 2:1', 'checksum'],
         rows: contenders.map(({ name, run }, index) => [
           name,

@@ -4,7 +4,7 @@ import type { Cases } from './cases.ts';
 import { characters, draw } from './characters.ts';
 import { clock, least, median, most } from './clock.ts';
 import { inFolder, sizeproof } from './command.ts';
-import { digits, type Findings } from './figure.ts';
+import { digits, type Findings, roundsText } from './figure.ts';
 import { openSharp } from './peers.ts';
 import { writeSource } from './sources.ts';
 
@@ -45,7 +45,7 @@ export function benchProject({ project: { count, side, rounds } }: Cases): Promi
       tables: [
         {
           title: `A project of ${count} textures`,
-          says: `${side} x ${side} each, PNG and KTX2 written, the command line in a process of its own, ${rounds} rounds.`,
+          says: `${side} x ${side} each, PNG and KTX2 written, the command line in a process of its own, ${roundsText(rounds)}.`,
           columns: ['', 's', 'low - high'],
           rows: [row('first build, once', [first]), row('nothing changed', unchanged), row('one changed', changed)],
         },

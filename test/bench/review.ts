@@ -5,7 +5,7 @@ import type { Cases } from './cases.ts';
 import { characters, draw } from './characters.ts';
 import { clock, least, median, most } from './clock.ts';
 import { inFolder, sizeproof } from './command.ts';
-import { digits, type Findings } from './figure.ts';
+import { digits, type Findings, roundsText } from './figure.ts';
 import { openSharp } from './peers.ts';
 import { writeSource } from './sources.ts';
 
@@ -29,7 +29,7 @@ export function benchReview({ review: { count, side, rounds } }: Cases): Promise
       tables: [
         {
           title: `A review of ${count} changed textures`,
-          says: `One commit that repaints ${count} files of ${side} x ${side}, of all characters in turn; the command line in a process of its own, ${rounds} rounds. Every file is another object to Git.`,
+          says: `One commit that repaints ${count} files of ${side} x ${side}, of all characters in turn; the command line in a process of its own, ${roundsText(rounds)}. Every file is another object to Git.`,
           columns: ['', 's', 'low - high'],
           rows: [row('listed by ids and headers', headers), row('compared at every size, two workers', whole)],
         },
