@@ -1,5 +1,5 @@
 import { expect, test } from 'vitest';
-import { writePng } from '../fixtures/rawpng.ts';
+import { largePng } from '../fixtures/large.ts';
 import { newFolder } from '../node/folder.ts';
 import { settingsText } from '../node/project.ts';
 import { sizeproof } from './cli.ts';
@@ -14,13 +14,7 @@ const textures = ['a.png', 'b.png', 'c.png'];
 test.skipIf(process.platform !== 'linux')(
   'under a hard limit of memory a bounded build goes through, and an unbounded one does not',
   async () => {
-    const png = writePng({
-      width: side,
-      height: side,
-      bitDepth: 8,
-      colorType: 0,
-      sample: (x, y) => ((x >> 5) ^ (y >> 5)) & 255,
-    });
+    const png = largePng(side);
     const settings = settingsText({ defaults: { kernel: 'box', alpha: { use: 'none' }, outputs: ['ktx2'] } });
     const folder = newFolder({
       'sizeproof.json': settings,
@@ -29,7 +23,7 @@ test.skipIf(process.platform !== 'linux')(
     const before = ['/bin/sh', '-c', `ulimit -d ${LIMIT_KIB}; exec "$@"`, 'limited'];
     const build = (...options: string[]) =>
       sizeproof(['build', '.', '--jobs', '3', '--out', 'out', '--json', ...options], { folder, before });
-    const refused = await sizeproof(['build', 'a.png', '--memory', '1MiB', '--json'], { folder });
+    const refused = await sizeproof(['build', 'a.png', '--memory', '8MiB', '--json'], { folder });
     const { bytes } = JSON.parse(refused.stdout).problems[0].values;
     const unbounded = await build('--memory', '64GiB');
     expect(unbounded.code).not.toBe(0);

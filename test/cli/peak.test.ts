@@ -1,7 +1,6 @@
 import { readFileSync, writeFileSync } from 'node:fs';
-import { deflateSync } from 'node:zlib';
 import { expect, test } from 'vitest';
-import { chunk, ihdr, joinPng } from '../fixtures/rawpng.ts';
+import { largePng } from '../fixtures/large.ts';
 import { newFolder } from '../node/folder.ts';
 import { settingsText } from '../node/project.ts';
 import { sizeproof } from './cli.ts';
@@ -26,10 +25,7 @@ if (isMainThread) process.on('exit', () => writeFileSync('peak', /VmHWM:\\s+(\\d
 test.skipIf(process.platform !== 'linux')(
   'a build holds its file and its levels, and neither level 0 nor the inflated image; a container is not held whole',
   async () => {
-    const row = Uint8Array.from({ length: 1 + side * 4 }, (_, at) => (at === 0 ? 0 : at % 4 === 0 ? 255 : at >> 6));
-    const rows = Buffer.concat(Array.from({ length: side }, () => row));
-    const header = { width: side, height: side, bitDepth: 8, colorType: 6 };
-    const png = joinPng([ihdr(header), chunk('IDAT', deflateSync(rows, { level: 1 }))]);
+    const png = largePng(side);
     const levels = await peakOf(png, ['png']);
     const both = await peakOf(png, ['png', 'ktx2']);
     const bare = await peakOf(png, null);
