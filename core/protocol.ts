@@ -76,6 +76,13 @@ export type HostEvent =
     }
   /** Somebody asked for an export by a command: the page is to ask for it, since it knows what it shows. */
   | { readonly protocol: number; readonly kind: 'export'; readonly form: ExportOrder['form'] }
+  /** The extension's own settings changed. */
+  | {
+      readonly protocol: number;
+      readonly kind: 'preferences';
+      readonly revision: number;
+      readonly preferences: Preferences;
+    }
   /** The outputs or the manifest changed. */
   | { readonly protocol: number; readonly kind: 'built'; readonly revision: number; readonly state: BuiltState };
 

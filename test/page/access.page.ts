@@ -291,6 +291,25 @@ test('keys move the sight, the cursor, the zoom and the divider; what is kept is
   await context.close();
 });
 
+test('a typed size stands on the axis until it is removed; preferences are followed', async () => {
+  const { page, context } = await showPage(browser, recordDemo('foliage/alder-twig.png'));
+  await waitForPrints(page);
+  const size = page.getByRole('textbox', { name: 'Size', exact: true });
+  await size.fill('48');
+  await size.press('Enter');
+  const sight = page.getByRole('slider', { name: 'Sight on the size axis' });
+  await expect.poll(() => sight.getAttribute('aria-valuetext')).toContain('target 48x48');
+  await page.getByRole('button', { name: 'Remove 48x48' }).click();
+  await expect.poll(() => sight.getAttribute('aria-valuetext')).toMatch(/^level [23],/);
+  const typed = () => page.evaluate(() => (window as unknown as { kept: { typed: unknown[] } }).kept.typed);
+  await expect.poll(typed).toEqual([]);
+  const preferences = { backdrop: 'white', fovY: 45, screenHeight: 2160, swapDwell: 500 } as const;
+  const event: HostEvent = { protocol: PROTOCOL, kind: 'preferences', revision: 2, preferences };
+  await page.evaluate((each) => window.postMessage(each, '*'), event);
+  await expect.poll(() => page.getByRole('combobox', { name: 'Backdrop', exact: true }).inputValue()).toBe('white');
+  await context.close();
+});
+
 test('a switch on the settings’ print begins a print beside it, which can be adopted', async () => {
   const { page, context } = await showPage(browser, recordDemo('foliage/alder-twig.png'));
   await waitForPrints(page);

@@ -74,7 +74,7 @@ function isMessage(data: unknown): data is Response | HostEvent {
   return protocol === PROTOCOL && typeof kind === 'string' && KINDS.has(kind);
 }
 
-const KINDS: ReadonlySet<string> = new Set(['reply', 'source', 'settings', 'built', 'export'] satisfies (
+const KINDS: ReadonlySet<string> = new Set(['reply', 'source', 'settings', 'preferences', 'built', 'export'] satisfies (
   | Response['kind']
   | HostEvent['kind']
 )[]);

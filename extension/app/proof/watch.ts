@@ -3,6 +3,7 @@ import { type HostEvent, PROTOCOL } from '../../../core/protocol.ts';
 import type { BuildDesk } from '../build/desk.ts';
 import { isSettings } from '../files/place.ts';
 import type { Platform } from '../platform.ts';
+import { readConfiguration } from '../settings/configuration.ts';
 import { isThere } from '../settings/create.ts';
 import type { TextureCounts } from './counts.ts';
 import type { TextureFacts } from './facts.ts';
@@ -33,6 +34,9 @@ export function watchTexture(
   const typed = vscode.workspace.onDidChangeTextDocument((event) => {
     if (isSettings(event.document.uri) && event.contentChanges.length > 0) note('settings');
   });
+  const preferences = vscode.workspace.onDidChangeConfiguration((event) => {
+    if (event.affectsConfiguration('sizeproof', texture.uri)) note('preferences');
+  });
   const images = vscode.workspace.createFileSystemWatcher('**/*.{png,tga,PNG,TGA}');
   const imageChanged = (uri: vscode.Uri) => {
     if (texture.isRoughness(uri)) note('source');
@@ -46,6 +50,7 @@ export function watchTexture(
     outputs,
     settings,
     typed,
+    preferences,
     images,
     images.onDidChange(imageChanged),
     images.onDidCreate(imagesMoved),
@@ -84,6 +89,8 @@ export function watchTexture(
         return { protocol: PROTOCOL, kind, revision, present: await isThere(texture.uri) };
       case 'settings':
         return { protocol: PROTOCOL, kind, revision, settings: await texture.settingsReply() };
+      case 'preferences':
+        return { protocol: PROTOCOL, kind, revision, preferences: readConfiguration(texture.uri).preferences };
       case 'built':
         return { protocol: PROTOCOL, kind, revision, state: await texture.builtState() };
     }

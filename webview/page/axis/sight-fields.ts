@@ -61,6 +61,13 @@ export class SightFields extends LitElement {
           @change=${(event: Event) => this.#typeSize(model, event.target as HTMLInputElement)}
         />
       </label>
+      ${
+        seen.stop?.kind === 'typed'
+          ? html`<button class="plain" @click=${() => removeTyped(model, seen.stop!.label)}>
+              ${t('Remove {name}', { name: seen.stop.label })}
+            </button>`
+          : nothing
+      }
       <label>
         <span class="quiet">${t('Level')}</span>
         <input
@@ -160,6 +167,14 @@ export class SightFields extends LitElement {
 }
 
 customElements.define('sight-fields', SightFields);
+
+/** Takes a typed target off the axis; the sight goes to the nearest stop that stays. */
+function removeTyped(model: Model, name: string): void {
+  const lod = model.seen!.lod;
+  const stops = model.stops.filter((stop) => stop.kind !== 'typed' || stop.label !== name);
+  const nearest = stops.reduce((best, stop) => (Math.abs(stop.lod - lod) < Math.abs(best.lod - lod) ? stop : best));
+  model.set({ typed: model.state.typed.filter((target) => target.name !== name), sight: sightOf(nearest) });
+}
 
 function memoryOf(model: Model): number {
   const { width, height } = model.seen!.extent;

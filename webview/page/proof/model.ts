@@ -2,7 +2,7 @@ import type { Problem } from '../../../core/problem.ts';
 import { lastLevelOf, type Opening, openingLevel } from '../../../core/proof/opening.ts';
 import { type Sight, type Slot, treatmentOf } from '../../../core/proof/slot.ts';
 import type { HaloAnswer, LevelsAnswer, Print, PrintImage, Want } from '../../../core/proof/want.ts';
-import type { BuiltState, HostEvent, OpenReply, SettingsReply } from '../../../core/protocol.ts';
+import type { BuiltState, HostEvent, OpenReply, Preferences, SettingsReply } from '../../../core/protocol.ts';
 import type { Extent } from '../../../core/raster/raster.ts';
 import type { Target, Treatment } from '../../../core/treatment/treatment.ts';
 import type { Link } from '../../link/link.ts';
@@ -281,12 +281,25 @@ export class Model extends EventTarget {
       case 'export':
         void exportProof(this, event.form);
         return;
+      case 'preferences':
+        this.#prefer(event.preferences);
+        break;
       case 'built':
         this.built = event.state;
         this.#checks.forget();
         break;
     }
     this.#changed();
+  }
+
+  /** A backdrop that somebody chose here stays; one that was preferred follows. */
+  #prefer(preferences: Preferences): void {
+    const { open } = this;
+    if (open === null) return;
+    if (this.#state.backdrop === open.preferences.backdrop) {
+      this.#state = { ...this.#state, backdrop: preferences.backdrop };
+    }
+    this.open = { ...open, preferences };
   }
 
   #changed(): void {
