@@ -63,7 +63,7 @@ const HOST_TESTS = 'test/host/vitest.config.ts';
 /** Tests of the rooms, of the page alone in a browser, and of the whole in an editor. */
 const ALL_TESTS = ['test/vitest.config.ts', PAGE_TESTS, HOST_TESTS];
 
-const COMMANDS = { start, test, build, types, lint, mutate, paint, schema, kernels, pack, page, host, bench };
+const COMMANDS = { start, test, build, types, lint, mutate, paint, schema, kernels, pack, page, host, bench, desktop };
 
 const nodeVersion = process.versions.node;
 if (Number(nodeVersion.split('.')[0]) < OLDEST_NODE_MAJOR) {
@@ -216,6 +216,13 @@ async function bench(rest) {
   }
 }
 
+/** The extension tests in a desktop VS Code, which must be downloaded; no part of `npm test`. */
+async function desktop() {
+  await install('test');
+  await build();
+  return runSource('test/host/desktop.ts', []);
+}
+
 /** Runs sets of tests, one after another; the last line counts them all. */
 async function countTests(configs, rest) {
   const reports = [];
@@ -303,7 +310,8 @@ function bundleOne({ entry, file, head }) {
     platform: 'node',
     target: 'node20',
     format: isModule ? 'esm' : 'cjs',
-    external: isModule ? [] : ['vscode'],
+    // What only programs of the test room import, which run where it is installed.
+    external: isModule ? ['esbuild', 'typescript', '@vscode/test-electron'] : ['vscode'],
     minify: !isModule,
     // jsonc-parser's `main` hides its parts from a bundler; its `module` does not.
     mainFields: ['module', 'main'],

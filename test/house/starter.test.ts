@@ -38,7 +38,7 @@ test('an old Node is told so, in a sentence, before anything is installed', () =
 test('a command that does not exist is answered with those that do', () => {
   const { status, stderr } = start([], 'polish');
   expect(stderr).toBe(
-    'Expected one of start, test, build, types, lint, mutate, paint, schema, kernels, pack, page, host, bench, but there is no command "polish".\n',
+    'Expected one of start, test, build, types, lint, mutate, paint, schema, kernels, pack, page, host, bench, desktop, but there is no command "polish".\n',
   );
   expect(status).toBe(1);
 });
