@@ -196,7 +196,7 @@ export const faults = [
   },
   {
     law: 'luminance is weighed by alpha',
-    file: 'core/chain/coder.ts',
+    file: 'core/chain/light.ts',
     find: 'light += premultiplied ? y : y * share;',
     replace: 'light += y;',
     tests: 'test/laws/light.test.ts',
@@ -368,8 +368,8 @@ export const faults = [
   {
     law: 'minima bound from below',
     file: 'core/chain/bounds.ts',
-    find: "bound === 'min' ? Math.min : Math.max",
-    replace: "bound === 'min' ? Math.max : Math.min",
+    find: "if (bound === 'min' ? code < found : code > found)",
+    replace: "if (bound === 'min' ? code > found : code < found)",
     tests: 'test/laws/height.test.ts',
     name: 'bounds every source texel',
   },
