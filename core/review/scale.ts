@@ -1,5 +1,7 @@
 import { buildChain } from '../chain/chain.ts';
 import type { Ports } from '../port.ts';
+import type { Picture } from '../proof/want.ts';
+import { newCodes } from '../raster/raster.ts';
 import { comparePictures } from './difference.ts';
 import { type Subject, seenImage, seenSource } from './subject.ts';
 
@@ -9,6 +11,8 @@ export interface Scale {
   readonly factor: number;
   /** Mean distance, as `Difference` has it. */
   readonly mean: number;
+  /** The same against one texel everywhere, the mean of all: what any other picture of these colors would be apart. */
+  readonly spread: number;
 }
 
 /** Whether one picture is the other at another size: null where their sides are not in one ratio, up to a rounded texel. */
@@ -41,5 +45,18 @@ export function findScale(before: Subject, after: Subject, { engine }: Pick<Port
   if (made === undefined) throw new TypeError('Expected the target that was asked for');
   // Alpha is compared as it is: a test would turn small differences of filters into whole ones.
   const found = { ...seenImage(chain, made), passing: null };
-  return { factor, mean: comparePictures(found, { ...seenSource(smaller), passing: null }).mean };
+  const given = { ...seenSource(smaller), passing: null };
+  const flat = { picture: flatten(given.picture), passing: null };
+  return { factor, mean: comparePictures(found, given).mean, spread: comparePictures(flat, given).mean };
+}
+
+/** The picture with the mean of its codes in every texel. */
+function flatten(picture: Picture): Picture {
+  const { codes, channels, extent, depth } = picture;
+  const texels = extent.width * extent.height;
+  const sums = new Float64Array(channels);
+  for (let at = 0; at < codes.length; at++) sums[at % channels] += codes[at];
+  const flat = newCodes(depth, codes.length);
+  for (let at = 0; at < flat.length; at++) flat[at] = Math.round(sums[at % channels] / texels);
+  return { ...picture, codes: flat };
 }
