@@ -13,7 +13,7 @@ import {
 } from '../chain/plan.ts';
 import { cellTreatment } from '../chain/sheet.ts';
 import { encodeSrgb } from '../color/transfer.ts';
-import { expandIndexed, type IndexedRaster, maxCode, type StraightRaster } from '../raster/raster.ts';
+import { type Extent, expandIndexed, type IndexedRaster, maxCode, type StraightRaster } from '../raster/raster.ts';
 import { cutRegion } from '../raster/region.ts';
 import { floatChannels } from '../resample/decode.ts';
 import type { Engine, Step } from '../resample/engine.ts';
@@ -35,19 +35,24 @@ export interface Halo {
   readonly clipped: number;
 }
 
-/** Told of every visible texel that overshoots by more than half an 8-bit code, or of which clamping changes a channel:
- *  codes above and below the range (0 where within), and whether it is clipped. Images come as `Halo` names them. */
+/** Told of every visible texel that overshoots by more than half an 8-bit code, or of which clamping changes a channel.
+ *  Images come as `Halo` names them; of a sheet, places are in the whole of it. */
 export type HaloWatch = (
   image: number | string,
   x: number,
   y: number,
-  found: { readonly above: number; readonly below: number; readonly clips: boolean },
+  found: {
+    /** The channels that overshoot by more than half a code, a bit each: 1 is the first. */
+    readonly above: number;
+    readonly below: number;
+    readonly clips: boolean;
+  },
 ) => void;
 
 /** Measures every image of the chain that is made from weights; others do not overshoot. The local range is that of the
  *  visible source texels that the target's area touches, and one more on each side. Weights that are nowhere negative only
  *  average: what they bring from beyond that range is blur, and counts 0. Color that alpha weighs counts as far as it
- *  shows, times alpha: dividing by a small alpha makes any color large. Texels whose alpha rounds to 0 are not seen and do not count; normals are made unit and do not either. `watch` is not told of a sheet's texels. */
+ *  shows, times alpha: dividing by a small alpha makes any color large. Texels whose alpha rounds to 0 are not seen and do not count; normals are made unit and do not either. */
 export function measureHalo(
   source: StraightRaster | IndexedRaster,
   treatment: Treatment,
@@ -76,7 +81,9 @@ export function* haloSteps(
   const cells: Halo[][] = [];
   for (let top = sheet.gutter; top < raster.extent.height; top += pitch.height) {
     for (let left = sheet.gutter; left < raster.extent.width; left += pitch.width) {
-      cells.push([...(yield* measureChain(cutRegion(raster, left, top, sheet.cell), alone, { left, top }, engine))]);
+      cells.push([
+        ...(yield* measureChain(cutRegion(raster, left, top, sheet.cell), alone, { left, top }, engine, watch)),
+      ]);
     }
   }
   return cells[0].map((_, index) => worstOf(cells.map((cell) => cell[index])));
@@ -102,7 +109,9 @@ function* measureChain(
   const ranges = yield* rangesOf(plan, raster);
   const stride = floatChannels(pass.decoding);
   const probes = nodes.map((image, index) => {
-    const watched = hasLobes(pass.steps[index]) ? watch : undefined;
+    const whole = wholeOf(raster.extent, pictureExtent(image), place);
+    const watched: HaloWatch | undefined =
+      watch && hasLobes(pass.steps[index]) ? (name, x, y, found) => watch(name, ...whole(x, y), found) : undefined;
     return new Probe(plan.layout, stride, image, ranges.get(image)!, watched);
   });
   const run = engine.open(pass, (node, y, floats) => {
@@ -120,11 +129,20 @@ function* measureChain(
     if (!shipped(image)) return [];
     if (!hasLobes(pass.steps[index])) return [{ image: nameOf(image), worst: 0, x: 0, y: 0, share: 0, clipped: 0 }];
     const halo = probe.halo();
-    const { width, height } = pictureExtent(image);
-    const x = halo.x + (place.left * width) / raster.extent.width;
-    const y = halo.y + (place.top * height) / raster.extent.height;
+    const [x, y] = wholeOf(raster.extent, pictureExtent(image), place)(halo.x, halo.y);
     return [{ ...halo, x, y }];
   });
+}
+
+/** From texels of a cell's image to those of the whole image; levels stop where a cell would begin at no whole texel. */
+function wholeOf(
+  cell: Extent,
+  picture: Extent,
+  place: { readonly left: number; readonly top: number },
+): (x: number, y: number) => [number, number] {
+  const left = (place.left * picture.width) / cell.width;
+  const top = (place.top * picture.height) / cell.height;
+  return (x, y) => [x + left, y + top];
 }
 
 /** Source texels that are filtered and looked at in one piece. */
@@ -219,7 +237,7 @@ class Probe {
       if (alpha !== null && floats[at + alpha] * unit < 0.5) continue;
       this.#visible++;
       const texel = (y * pictureExtent(this.image).width + x) * channels;
-      let [over, under] = [0, 0];
+      let [most, overIn, underIn] = [0, 0, 0];
       let clips = false;
       for (let channel = 0; channel < channels; channel++) {
         const role = roles[channel];
@@ -229,14 +247,14 @@ class Probe {
         const code = codeOf(value, role, unit);
         const above = (code - this.#range.max.codes[texel + channel] * unit) * shown;
         const below = (this.#range.min.codes[texel + channel] * unit - code) * shown;
-        over = Math.max(over, above);
-        under = Math.max(under, below);
+        most = Math.max(most, above, below);
+        if (above > 0.5) overIn |= 1 << channel;
+        if (below > 0.5) underIn |= 1 << channel;
         if (code < -255 * CLIP_SLACK || code > 255 * (1 + CLIP_SLACK)) clips = true;
       }
-      const most = Math.max(over, under);
       if (most > 0.5) this.#over++;
       if (clips) this.#clipped++;
-      if (most > 0.5 || clips) this.#watch?.(nameOf(this.image), x, y, { above: over, below: under, clips });
+      if (most > 0.5 || clips) this.#watch?.(nameOf(this.image), x, y, { above: overIn, below: underIn, clips });
       if (most > this.#worst) {
         this.#worst = most;
         this.#x = x;

@@ -1,5 +1,6 @@
 import { buildChain, type Chain, type ChainOptions, ChainRun, headOf } from '../chain/chain.ts';
 import type { ChainImage } from '../chain/image.ts';
+import type { TargetPlace } from '../chain/levels.ts';
 import { decodeImage } from '../codec/decode.ts';
 import { openImage } from '../codec/open.ts';
 import { hashPixels } from '../codec/pixels.ts';
@@ -19,10 +20,8 @@ import { treatmentFor } from './variant.ts';
 import {
   type Answer,
   CUT_SIDE,
-  HALO_ABOVE,
-  HALO_BELOW,
-  HALO_CLIPPED,
   type HaloAnswer,
+  haloMark,
   type LevelsAnswer,
   type Picture,
   type Print,
@@ -178,7 +177,7 @@ const TEXELS_AT_ONCE = 1 << 18;
 
 interface HaloMaps {
   readonly halos: readonly Halo[];
-  readonly marks: ReadonlyMap<number | string, Uint8Array>;
+  readonly marks: ReadonlyMap<number | string, Uint16Array>;
   readonly bytes: number;
 }
 
@@ -187,21 +186,21 @@ function* measureMaps(
   treatment: Treatment,
   engine: Engine | undefined,
 ): Generator<undefined, HaloMaps> {
-  const marks = new Map<number | string, Uint8Array>();
+  const marks = new Map<number | string, Uint16Array>();
   const { plan } = new ChainRun(headOf(source), { ...treatment, grid: null });
-  const extents = new Map<number | string, Picture['extent']>();
-  for (const level of plan.levels) extents.set(level.level, level.extent);
-  for (const target of plan.targets) extents.set(target.target.name, target.place.picture);
-  const halos = yield* haloSteps(source, treatment, engine, (image, x, y, { above, below, clips }) => {
-    const { width, height } = extents.get(image)!;
+  const places = new Map<number | string, TargetPlace>();
+  for (const { level, extent } of plan.levels) places.set(level, { whole: extent, picture: extent, left: 0, top: 0 });
+  for (const { target, place } of plan.targets) places.set(target.name, place);
+  const halos = yield* haloSteps(source, treatment, engine, (image, x, y, found) => {
+    const { whole, left, top } = places.get(image)!;
     let map = marks.get(image);
     if (map === undefined) {
-      map = new Uint8Array(width * height);
+      map = new Uint16Array(whole.width * whole.height);
       marks.set(image, map);
     }
-    map[y * width + x] = (above > 0.5 ? HALO_ABOVE : 0) | (below > 0.5 ? HALO_BELOW : 0) | (clips ? HALO_CLIPPED : 0);
+    map[(y + top) * whole.width + x + left] = haloMark(found);
   });
-  const bytes = [...marks.values()].reduce((sum, map) => sum + map.length, 0);
+  const bytes = [...marks.values()].reduce((sum, map) => sum + map.byteLength, 0);
   return { halos, marks, bytes };
 }
 

@@ -110,8 +110,8 @@ export interface HaloAnswer {
     readonly share: number;
     readonly clipped: number;
   } | null;
-  /** A byte a texel of `HALO_ABOVE`, `HALO_BELOW` and `HALO_CLIPPED`; null where it was not made. */
-  readonly marks: Uint8Array | null;
+  /** A mark a texel, as `haloMark` makes it; null where nothing overshoots. */
+  readonly marks: Uint16Array | null;
 }
 
 /** Source texels along one axis with their weights, which sum to 1. */
@@ -137,10 +137,26 @@ export interface SectionAnswer {
 /** Longest side of a cut, in texels. */
 export const CUT_SIDE = 128;
 
-/** Overshoot by more than half an 8-bit code above or below the source's range around it; clamping changed a channel. */
+/** Overshoot by more than half an 8-bit code above or below the source's range around it; clamping changed a channel. Above
+ *  them stand four bits for the channels that are above, and four for those below. */
 export const HALO_ABOVE = 1;
 export const HALO_BELOW = 2;
 export const HALO_CLIPPED = 4;
+const ABOVE_SHIFT = 4;
+const BELOW_SHIFT = 8;
+
+/** `above` and `below` hold a bit for each channel. */
+export function haloMark(found: { readonly above: number; readonly below: number; readonly clips: boolean }): number {
+  const { above, below, clips } = found;
+  const sides = (above > 0 ? HALO_ABOVE : 0) | (below > 0 ? HALO_BELOW : 0) | (clips ? HALO_CLIPPED : 0);
+  return sides | (above << ABOVE_SHIFT) | (below << BELOW_SHIFT);
+}
+
+/** Which way a channel overshoots by its texel's mark: 1 above, -1 below, 0 not. */
+export function haloSide(mark: number, channel: number): 1 | 0 | -1 {
+  if (((mark >> (ABOVE_SHIFT + channel)) & 1) !== 0) return 1;
+  return ((mark >> (BELOW_SHIFT + channel)) & 1) !== 0 ? -1 : 0;
+}
 
 /** To the worker. Wants replace the ones before them: newest wins. */
 export type ToBench =

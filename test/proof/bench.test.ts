@@ -1,18 +1,20 @@
 import { expect, test } from 'vitest';
-import { buildChain } from '../../core/chain/chain.ts';
+import { buildChain, headOf } from '../../core/chain/chain.ts';
+import { planChain } from '../../core/chain/plan.ts';
 import { hashPixels } from '../../core/codec/pixels.ts';
 import { encodePng } from '../../core/codec/png/encode.ts';
 import { measureHalo } from '../../core/finding/halo.ts';
 import { Cancelled } from '../../core/port.ts';
 import { type BenchPorts, ProofBench } from '../../core/proof/bench.ts';
 import { treatmentFor, withKernel } from '../../core/proof/variant.ts';
-import type { Answers, HaloAnswer, Print, Want } from '../../core/proof/want.ts';
+import { type Answers, type HaloAnswer, haloSide, type Print, type Want } from '../../core/proof/want.ts';
 import { expandIndexed, type Raster } from '../../core/raster/raster.ts';
 import type { Treatment } from '../../core/treatment/treatment.ts';
 import { deflate } from '../../extension/node/deflate.ts';
 import { newHash } from '../../extension/node/hash.ts';
 import { inflate } from '../../extension/node/inflate.ts';
 import { noiseRaster, withAlpha } from '../fixtures/noise.ts';
+import { painted } from '../fixtures/picture.ts';
 import { both, kernel, treatment } from '../fixtures/treatment.ts';
 
 const ports: BenchPorts = { inflate, newHash, pause: async () => {} };
@@ -80,6 +82,64 @@ test('the marks of a halo are as many as its shares say', async () => {
   expect(texels).toBe(18 * 11);
   expect(found.marks!.filter((mark) => (mark & 3) !== 0).length / texels).toBe(halo.share);
   expect(found.marks!.filter((mark) => (mark & 4) !== 0).length / texels).toBe(halo.clipped);
+  const sides = found.marks!.map((mark) =>
+    [0, 1, 2].reduce((some, channel) => some | Math.abs(haloSide(mark, channel)), 0),
+  );
+  expect(sides.filter((any) => any !== 0).length / texels).toBe(halo.share);
+});
+
+test('kernels that only average carry no marks; alpha 0 carries none either', async () => {
+  // What a triangle brings from beyond the range is blur, no overshoot.
+  for (const name of ['box', 'triangle']) {
+    const bench = await benchOf(opaque);
+    const settings = treatment({ kernel: both(name) });
+    const found: HaloAnswer = await ask(bench, { kind: 'halo', treatment: settings, image: { level: 2 } });
+    expect(found).toMatchObject({ halo: { worst: 0 }, marks: null });
+  }
+  const image = { level: 1 };
+  const half = painted({ width: 32, height: 8 }, 4, 8, (x) => (x < 15 ? [9, 9, 9, 0] : [250, 20, 250, 255]));
+  const bench = await benchOf(half);
+  const settings = treatment({ kernel: both('lanczos3') });
+  const found: HaloAnswer = await ask(bench, { kind: 'halo', treatment: settings, image });
+  const print: Print = await ask(bench, { kind: 'print', treatment: settings, image });
+  const marked = [...found.marks!.keys()].filter((texel) => found.marks![texel] !== 0);
+  expect(marked.length).toBeGreaterThan(0);
+  expect(marked.filter((texel) => print.picture.codes[texel * 4 + 3] === 0)).toEqual([]);
+});
+
+test('marks stand where the picture stands: in its cell, and in the cells of a sheet', async () => {
+  const bench = await benchOf(opaque);
+  const settings = treatment({ kernel: both('lanczos3') });
+  const target = { name: 'cell', cell: [30, 30] as const };
+  const found: HaloAnswer = await ask(bench, { kind: 'halo', treatment: settings, image: { target } });
+  const { left, top, picture } = planChain(headOf(opaque), { ...settings, levels: 'none', targets: [target] })
+    .targets[0].place;
+  expect(found.marks).toHaveLength(900);
+  const outside = [...found.marks!.keys()].filter((texel) => {
+    const [x, y] = [(texel % 30) - left, Math.floor(texel / 30) - top];
+    return found.marks![texel] !== 0 && (x < 0 || y < 0 || x >= picture.width || y >= picture.height);
+  });
+  expect(outside).toEqual([]);
+  expect(top + left).toBeGreaterThan(0);
+
+  const cell = noiseRaster(5, { width: 16, height: 16 }, 3, 8, 'noise');
+  const beside = noiseRaster(6, { width: 16, height: 16 }, 3, 8, 'noise');
+  const sheet = painted({ width: 32, height: 16 }, 3, 8, (x, y) => {
+    const [from, at] = x < 16 ? [cell, x] : [beside, x - 16];
+    return [...from.codes.slice((y * 16 + at) * 3, (y * 16 + at) * 3 + 3)];
+  });
+  const levels = { ...settings, levels: { first: 0, last: 1 } };
+  const want = { kind: 'halo', treatment: levels, image: { level: 1 } } as const;
+  const whole: HaloAnswer = await ask(await benchOf(sheet), {
+    ...want,
+    treatment: { ...levels, grid: { cell: [16, 16], gutter: 0 } },
+  });
+  const alone: readonly HaloAnswer[] = [await ask(await benchOf(cell), want), await ask(await benchOf(beside), want)];
+  const expected = Array.from({ length: 16 * 8 }, (_, texel) => {
+    const [x, y] = [texel % 16, Math.floor(texel / 16)];
+    return alone[x < 8 ? 0 : 1].marks![y * 8 + (x % 8)];
+  });
+  expect([...whole.marks!]).toEqual(expected);
 });
 
 test.each([

@@ -1,13 +1,13 @@
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import { decodeSrgb, encodeSrgb } from '../../core/color/transfer.ts';
-import type { Meaning, Picture } from '../../core/proof/want.ts';
+import { haloMark, type Meaning, type Picture } from '../../core/proof/want.ts';
 import type { ChannelCount } from '../../core/raster/raster.ts';
 import { type Rgb, rampAt } from '../../webview/page/prints/backdrop.ts';
 import { fittingZoom, place, visibleSpan } from '../../webview/page/prints/frame.ts';
 import { codeOfLight, eightBits } from '../../webview/page/prints/texel.ts';
 import { colorDistance, lampDirection, shaderOf, type View } from '../../webview/page/prints/view.ts';
-import { overshootsOf, sectionCsv } from '../../webview/page/readings/section.ts';
+import { printTrack, sectionCsv } from '../../webview/page/readings/section.ts';
 
 const plain: Meaning = { transfer: 'srgb', color: true, alpha: null, premultiplied: false, normal: null };
 const view: View = {
@@ -142,12 +142,20 @@ describe('a frame', () => {
   });
 });
 
-test('overshoot is what leaves the source around it', () => {
-  const source = { name: 'source', values: [0, 0, 0, 0, 100, 100, 100, 100], selected: false };
-  const print = { name: 'lanczos3', values: [-6, 0, 100, 107], selected: true };
-  expect(overshootsOf(source, print)).toEqual([
-    { index: 0, beyond: -6 },
-    { index: 3, beyond: 7 },
-  ]);
+test('a section carries the marks of its channel alone, along its line', () => {
+  const picture = texels(3, [...[1, 2, 3], ...[4, 5, 6], ...[7, 8, 9], ...[10, 11, 12]]);
+  const marks = Uint16Array.of(0, haloMark({ above: 0b010, below: 0b100, clips: false }), 0, 0b110);
+  const track = (letter: 'r' | 'g' | 'b', v: number) => {
+    const print = { name: 'lanczos3', selected: true, picture: { ...picture, extent: { width: 2, height: 2 } }, marks };
+    return printTrack(print, { from: [0, v], to: [1, v] }, letter);
+  };
+  expect(track('g', 0.25)).toMatchObject({ values: [2, 5], overshoots: [{ index: 1, side: 1 }] });
+  expect(track('b', 0.25).overshoots).toEqual([{ index: 1, side: -1 }]);
+  for (const each of [track('r', 0.25), track('g', 0.75)]) expect(each.overshoots).toEqual([]);
+});
+
+test('a section as text has the source’s mean under each texel', () => {
+  const source = { name: 'source', values: [0, 0, 0, 0, 100, 100, 100, 100], selected: false, overshoots: [] };
+  const print = { name: 'lanczos3', values: [-6, 0, 100, 107], selected: true, overshoots: [] };
   expect(sectionCsv({ source, prints: [print] })).toBe('texel,source,lanczos3\n0,0,-6\n1,0,0\n2,100,100\n3,100,107');
 });

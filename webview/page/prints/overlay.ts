@@ -7,8 +7,8 @@ import { type Placement, visibleSpan } from './frame.ts';
 export interface Overlay {
   readonly extent: Extent;
   readonly placement: Placement;
-  /** A byte a texel, as the engine marks overshoot; null for none. */
-  readonly marks: Uint8Array | null;
+  /** A mark a texel, as the engine marks overshoot; null for none. */
+  readonly marks: Uint16Array | null;
   /** Texel under the cursor. */
   readonly cursor: { readonly x: number; readonly y: number } | null;
   /** Ends of the cross-section in shares of the extent. */
@@ -48,7 +48,7 @@ function drawGrid(context: CanvasRenderingContext2D, overlay: Overlay): void {
 }
 
 /** Above is hatched like /, below like \, both or clipped with both: shape, not color, tells them apart. */
-function drawMarks(context: CanvasRenderingContext2D, overlay: Overlay, marks: Uint8Array): void {
+function drawMarks(context: CanvasRenderingContext2D, overlay: Overlay, marks: Uint16Array): void {
   const { extent, placement, ratio } = overlay;
   const { zoom, left, top } = placement;
   const { columns, rows } = spans(context, overlay);

@@ -29,7 +29,7 @@ export interface Scene {
   readonly tiles: boolean;
   readonly zoom: number | null;
   readonly pan: { readonly x: number; readonly y: number };
-  readonly marks: Uint8Array | null;
+  readonly marks: Uint16Array | null;
   readonly cursor: { readonly x: number; readonly y: number } | null;
   readonly line: Line | null;
   /** Whether dragging draws the line of the cross-section in place of panning. */

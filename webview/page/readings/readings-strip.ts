@@ -164,7 +164,9 @@ export class ReadingsStrip extends LitElement {
     const prints = model.state.slots.flatMap((slot) => {
       const picture = pictureOf(model, slot);
       if (picture === null) return [];
-      return [printTrack(nameOf(slot, model), picture, line, this.letter, slot.id === model.state.selected)];
+      const marks = model.halo(model.treatmentOf(slot)!, model.seen!.image)?.marks ?? null;
+      const print = { name: nameOf(slot, model), selected: slot.id === model.state.selected, picture, marks };
+      return [printTrack(print, line, this.letter)];
     });
     return { source: sourceTrack(t('source'), answer, this.letter), prints };
   }

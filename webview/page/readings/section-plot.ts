@@ -3,7 +3,7 @@ import { controls } from '../form/controls.ts';
 import { textScale } from '../form/text-scale.ts';
 import { figure } from '../words/figures.ts';
 import { t } from '../words/t.ts';
-import { overshootsOf, type Section, sectionRows, type Track } from './section.ts';
+import { type Section, sectionRows, type Track } from './section.ts';
 
 const HEIGHT = 112;
 /** Room for the numbers at the left, at the usual size of text. */
@@ -143,9 +143,9 @@ export class SectionPlot extends LitElement {
         ${section.prints.map(
           (track, i) => svg`
             <polyline class=${track.selected ? 'chosen' : ''} stroke-dasharray=${DASHES[i % DASHES.length]} points=${stairs(track, x, y)}></polyline>
-            ${overshootsOf(section.source, track).map(({ index, beyond }) => {
+            ${track.overshoots.map(({ index, side }) => {
               const [cx, cy] = [x((index + 0.5) / track.values.length), y(track.values[index])];
-              return svg`<path class="mark" d=${beyond > 0 ? `M${cx - 3} ${cy - 2}h6l-3 -5z` : `M${cx - 3} ${cy + 2}h6l-3 5z`}></path>`;
+              return svg`<path class="mark" d=${side > 0 ? `M${cx - 3} ${cy - 2}h6l-3 -5z` : `M${cx - 3} ${cy + 2}h6l-3 5z`}></path>`;
             })}
           `,
         )}

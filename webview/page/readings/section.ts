@@ -1,4 +1,4 @@
-import type { Picture, SectionAnswer } from '../../../core/proof/want.ts';
+import { haloSide, type Picture, type SectionAnswer } from '../../../core/proof/want.ts';
 import { maxCode } from '../../../core/raster/raster.ts';
 import { channelAt } from '../prints/view.ts';
 import { type Line, texelsAlong } from './line.ts';
@@ -8,6 +8,8 @@ export interface Track {
   readonly name: string;
   readonly values: readonly number[];
   readonly selected: boolean;
+  /** Where the print leaves the range of the source's texels that make it: above and below, as the engine measures halos. */
+  readonly overshoots: readonly { readonly index: number; readonly side: 1 | -1 }[];
 }
 
 /** A cross-section: the source's track first, then one for each print. */
@@ -25,39 +27,26 @@ export function sourceTrack(name: string, answer: SectionAnswer, letter: Letter)
   const values = Array.from({ length: codes.length / channels }, (_, i) =>
     at === null ? 255 : codes[i * channels + at] * unit,
   );
-  return { name, values, selected: false };
+  return { name, values, selected: false, overshoots: [] };
 }
 
-export function printTrack(name: string, picture: Picture, line: Line, letter: Letter, selected: boolean): Track {
+/** `marks` are those of the print's halo. */
+export function printTrack(
+  print: Pick<Track, 'name' | 'selected'> & { readonly picture: Picture; readonly marks: Uint16Array | null },
+  line: Line,
+  letter: Letter,
+): Track {
+  const { name, selected, picture, marks } = print;
   const { channels, depth, codes, extent } = picture;
   const at = channelAt(channels, letter);
   const unit = 255 / maxCode(depth);
-  const values = texelsAlong(line, extent).map(({ x, y }) =>
-    at === null ? 255 : codes[(y * extent.width + x) * channels + at] * unit,
-  );
-  return { name, values, selected };
-}
-
-/** Where a print leaves the range of the source around it: the texels of the source that it covers, and one print texel more on
- *  each side. `beyond` is in 8-bit codes, negative below. Half a code is rounding. */
-export function overshootsOf(
-  source: Track,
-  print: Track,
-): readonly { readonly index: number; readonly beyond: number }[] {
-  const found: { index: number; beyond: number }[] = [];
-  const ratio = source.values.length / print.values.length;
-  print.values.forEach((value, index) => {
-    const first = Math.max(0, Math.floor((index - 1) * ratio));
-    const last = Math.min(source.values.length, Math.ceil((index + 2) * ratio));
-    let [low, high] = [255, 0];
-    for (let i = first; i < last; i++) {
-      low = Math.min(low, source.values[i]);
-      high = Math.max(high, source.values[i]);
-    }
-    if (value > high + 0.5) found.push({ index, beyond: value - high });
-    else if (value < low - 0.5) found.push({ index, beyond: value - low });
+  const texels = texelsAlong(line, extent).map(({ x, y }) => y * extent.width + x);
+  const values = texels.map((texel) => (at === null ? 255 : codes[texel * channels + at] * unit));
+  const overshoots = texels.flatMap((texel, index) => {
+    const side = marks === null || at === null ? 0 : haloSide(marks[texel], at);
+    return side === 0 ? [] : [{ index, side }];
   });
-  return found;
+  return { name, values, selected, overshoots };
 }
 
 /** The section as comma-separated values: a row for each print texel, the source's mean under it. */
