@@ -1,5 +1,6 @@
-// Every message between the extension host and a proof's page. Types and their checks only; no file in core imports this.
-// The page asks by HostCalls and gets a Reply; the host tells by HostEvent. Every message carries the protocol's version.
+// Every message between the extension host and a page. Types and their checks only; no file in core imports this. A proof's page
+// asks by HostCalls and gets a Reply, and is told by HostEvent; a review's asks by ReviewCalls (review/want.ts) and is told by
+// ReviewEvent. Every message carries the protocol's version.
 
 import type { SourceHeader } from './codec/source.ts';
 import type { Problem } from './problem.ts';
@@ -40,27 +41,51 @@ export interface HostCalls {
 
 export type HostCall = keyof HostCalls;
 
-/** The argument of a call; null for a call without one. */
-export type Question<K extends HostCall> = Parameters<HostCalls[K]> extends [infer Q] ? Q : null;
+/** The argument of a call of `Calls`; null for a call without one. */
+export type QuestionOf<Calls, K extends keyof Calls> = Calls[K] extends (...asked: infer Q) => unknown
+  ? Q extends [infer One]
+    ? One
+    : null
+  : never;
 
-export type Reply<K extends HostCall> = { readonly ok: ReturnType<HostCalls[K]> } | { readonly problem: Problem };
+/** What a call of `Calls` answers. */
+export type AnswerOf<Calls, K extends keyof Calls> = Calls[K] extends (...asked: never) => infer A ? A : never;
+
+export type ReplyOf<Calls, K extends keyof Calls> =
+  | { readonly ok: AnswerOf<Calls, K> }
+  | { readonly problem: Problem };
+
+export type Question<K extends HostCall> = QuestionOf<HostCalls, K>;
+
+export type Reply<K extends HostCall> = ReplyOf<HostCalls, K>;
 
 /** From the page: one question. `id` is the page's own and comes back with the reply. */
-export interface Request<K extends HostCall = HostCall> {
+export interface RequestOf<Calls, K extends keyof Calls = keyof Calls> {
   readonly protocol: number;
   readonly kind: 'ask';
   readonly id: number;
   readonly call: K;
-  readonly question: Question<K>;
+  readonly question: QuestionOf<Calls, K>;
 }
 
+export type Request<K extends HostCall = HostCall> = RequestOf<HostCalls, K>;
+
 /** To the page: one reply, with the revision of the source and settings that it speaks of. */
-export interface Response<K extends HostCall = HostCall> {
+export interface ResponseOf<Calls, K extends keyof Calls = keyof Calls> {
   readonly protocol: number;
   readonly kind: 'reply';
   readonly id: number;
   readonly revision: number;
-  readonly reply: Reply<K>;
+  readonly reply: ReplyOf<Calls, K>;
+}
+
+export type Response<K extends HostCall = HostCall> = ResponseOf<HostCalls, K>;
+
+/** To a review's page, unasked: another texture is at hand, or the list says something else of it. */
+export interface ReviewEvent {
+  readonly protocol: number;
+  readonly kind: 'texture';
+  readonly revision: number;
 }
 
 /** To the page, unasked. */

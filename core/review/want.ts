@@ -2,8 +2,10 @@ import type { Problem } from '../problem.ts';
 import type { Picture } from '../proof/want.ts';
 import type { Treatment } from '../treatment/treatment.ts';
 import type { Difference } from './difference.ts';
+import type { Impact } from './impact.ts';
 import type { Review } from './review.ts';
 import type { SizeFigures, SizeReview } from './sizes.ts';
+import type { Verdict } from './verdict.ts';
 
 // What a page asks of a pair of versions, and what it is told: plain data, so it can be posted to a worker. A bench answers
 // (bench.ts), with the same chains and the same comparison as the command line.
@@ -73,15 +75,19 @@ export interface ReviewCalls {
   open(): ReviewOpenReply;
   /** Both versions of the texture at hand. */
   sides(): { readonly before: PairSide; readonly after: PairSide };
-  /** The next or former texture of the list becomes the one at hand; the host answers with an event. */
-  step(way: { readonly by: 1 | -1 }): Record<string, never>;
+  /** Another texture of the list becomes the one at hand; the host answers with an event. */
+  go(place: { readonly index: number }): Record<string, never>;
   /** Sets or takes away the mark that this change was looked at. */
   look(mark: { readonly looked: 'yes' | 'no' }): Record<string, never>;
+  /** Opens the proof of the file as it is now. */
+  proof(): Record<string, never>;
   /** Puts text on the clipboard. */
   copy(text: { readonly text: string }): Record<string, never>;
 }
 
 export interface ReviewOpenReply {
+  /** Equal for the same texture with the same two contents. */
+  readonly key: string;
   /** From the top of the repository; the former path where it was renamed. */
   readonly path: string;
   readonly oldPath: string;
@@ -94,7 +100,31 @@ export interface ReviewOpenReply {
   readonly count: number;
   readonly lookedAt: number;
   readonly looked: 'yes' | 'no';
+  /** Null where there is no host that could do it, or no file. */
+  readonly abilities: { readonly look: true | null; readonly proof: true | null };
+  /** The whole list, most harmful first, where nothing else shows it: in an exported page. */
+  readonly rows: readonly ReviewRow[] | null;
+  readonly preferences: ReviewPreferences;
+  /** Translations of the page's own words, by English text; empty in English. */
+  readonly words: Readonly<Record<string, string>>;
+  /** What was left out of an exported page; null where nothing was. */
+  readonly remark: string | null;
   readonly manifest: 'none' | 'fresh' | 'stale';
   /** Of the settings, and limits that are passed. */
   readonly problems: readonly Problem[];
+}
+
+/** A texture of the list, as far as it is known. */
+export interface ReviewRow {
+  readonly path: string;
+  readonly status: string;
+  readonly verdict: Verdict;
+  readonly impact: Impact;
+}
+
+/** Settings of the door that a review's page follows. */
+export interface ReviewPreferences {
+  readonly backdrop: 'checker' | 'black' | 'white' | 'gray';
+  /** Least milliseconds between two swaps, 333 or more. */
+  readonly swapDwell: number;
 }

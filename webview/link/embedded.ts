@@ -1,19 +1,20 @@
 import { type CarriedProof, IMAGE_BLOCK, PROOF_BLOCK, ROUGHNESS_BLOCK } from '../../core/export/proof-page.ts';
 import type { Problem } from '../../core/problem.ts';
-import type { HostCall, OpenReply, Question, Reply } from '../../core/protocol.ts';
+import type { HostCall, HostCalls, OpenReply, Question, Reply } from '../../core/protocol.ts';
 import { carriedBytes, carriedJson } from './carried.ts';
-import type { Answered, Link } from './link.ts';
+import type { Answered } from './link.ts';
+import type { ProofLink } from './proof-link.ts';
 
 /** A link to the data that an exported page carries, which answers as a host would: what needs an editor is refused in words.
  *  Null where the document carries no proof. */
-export function openEmbeddedLink(source: Document): Link | null {
+export function openEmbeddedLink(source: Document): ProofLink | null {
   const proof = carriedJson(source, PROOF_BLOCK) as CarriedProof | null;
   if (proof === null) return null;
   let state = proof.state;
   let closed = false;
 
   return {
-    async ask<K extends HostCall>(call: K, question: Question<K>): Promise<Answered<K>> {
+    async ask<K extends HostCall>(call: K, question: Question<K>): Promise<Answered<HostCalls, K>> {
       if (closed) return { revision: 0, reply: { problem: unexpected('The page is closed') } };
       try {
         return { revision: 0, reply: (await answer(source, proof, { call, question })) as Reply<K> };

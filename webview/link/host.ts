@@ -1,12 +1,5 @@
 import type { Problem } from '../../core/problem.ts';
-import {
-  type HostCall,
-  type HostEvent,
-  PROTOCOL,
-  type Question,
-  type Request,
-  type Response,
-} from '../../core/protocol.ts';
+import { PROTOCOL, type QuestionOf, type RequestOf, type ResponseOf } from '../../core/protocol.ts';
 import type { Answered, Link } from './link.ts';
 
 /** What VS Code gives a webview; it may be asked for once. */
@@ -16,32 +9,38 @@ export interface VsCodeApi {
   setState(state: unknown): void;
 }
 
-/** A link to an extension host by VS Code's messages. `source` is where its messages arrive: the window. */
-export function openHostLink(api: VsCodeApi, source: EventTarget): Link {
-  const pending = new Map<number, (answered: Answered<HostCall>) => void>();
-  const listeners: ((event: HostEvent) => void)[] = [];
+/** A link to an extension host by VS Code's messages. `source` is where its messages arrive: the window. Events are those whose
+ *  kind is in `kinds`. */
+export function openHostLink<Calls, Told extends { readonly kind: string }>(
+  api: VsCodeApi,
+  source: EventTarget,
+  kinds: readonly Told['kind'][],
+): Link<Calls, Told> {
+  const pending = new Map<number, (answered: Answered<Calls, keyof Calls>) => void>();
+  const listeners: ((event: Told) => void)[] = [];
   let asked = 0;
   let closed = false;
 
   const take = (message: MessageEvent): void => {
     const data: unknown = message.data;
     if (!isMessage(data)) return;
-    if (data.kind !== 'reply') {
-      for (const listener of listeners) listener(data);
-      return;
+    if (data.kind === 'reply') {
+      const { id, revision, reply } = data as unknown as ResponseOf<Calls>;
+      pending.get(id)?.({ revision, reply });
+      pending.delete(id);
+    } else if (kinds.includes(data.kind)) {
+      for (const listener of listeners) listener(data as Told);
     }
-    pending.get(data.id)?.({ revision: data.revision, reply: data.reply });
-    pending.delete(data.id);
   };
   source.addEventListener('message', take as EventListener);
 
   return {
-    ask<K extends HostCall>(call: K, question: Question<K>): Promise<Answered<K>> {
+    ask<K extends keyof Calls>(call: K, question: QuestionOf<Calls, K>): Promise<Answered<Calls, K>> {
       if (closed) return Promise.resolve(refused('The page is closed'));
       const id = ++asked;
       return new Promise((resolve) => {
-        pending.set(id, resolve as (answered: Answered<HostCall>) => void);
-        const request: Request<K> = { protocol: PROTOCOL, kind: 'ask', id, call, question };
+        pending.set(id, resolve as (answered: Answered<Calls, keyof Calls>) => void);
+        const request: RequestOf<Calls, K> = { protocol: PROTOCOL, kind: 'ask', id, call, question };
         try {
           api.postMessage(request);
         } catch (error) {
@@ -62,19 +61,14 @@ export function openHostLink(api: VsCodeApi, source: EventTarget): Link {
   };
 }
 
-function refused<K extends HostCall>(reason: string): Answered<K> {
+function refused(reason: string): { readonly revision: number; readonly reply: { readonly problem: Problem } } {
   const problem: Problem = { code: 'unexpected', severity: 'error', values: { reason } };
   return { revision: 0, reply: { problem } };
 }
 
 /** Messages of another shape, or of a host with another protocol, are passed over. */
-function isMessage(data: unknown): data is Response | HostEvent {
+function isMessage(data: unknown): data is { readonly kind: string } {
   if (typeof data !== 'object' || data === null) return false;
   const { protocol, kind } = data as { readonly protocol?: unknown; readonly kind?: unknown };
-  return protocol === PROTOCOL && typeof kind === 'string' && KINDS.has(kind);
+  return protocol === PROTOCOL && typeof kind === 'string';
 }
-
-const KINDS: ReadonlySet<string> = new Set(['reply', 'source', 'settings', 'preferences', 'built', 'export'] satisfies (
-  | Response['kind']
-  | HostEvent['kind']
-)[]);

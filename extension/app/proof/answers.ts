@@ -1,6 +1,6 @@
 import * as vscode from 'vscode';
 import { Refusal } from '../../../core/problem.ts';
-import type { Abilities } from '../../../core/protocol.ts';
+import type { Abilities, HostCalls } from '../../../core/protocol.ts';
 import type { BuildDesk } from '../build/desk.ts';
 import { doorFor } from '../build/hindrance.ts';
 import { countBuild } from '../build/report.ts';
@@ -19,7 +19,7 @@ import { revealOutputs } from './outputs.ts';
 export function answersFor(
   { facts: texture, first }: ProofDocument,
   { platform, desk, pages }: ExportTools & { readonly desk: BuildDesk },
-): Answers {
+): Answers<HostCalls> {
   const { uri } = texture;
   return {
     async open() {

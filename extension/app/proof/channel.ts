@@ -1,25 +1,19 @@
 import type * as vscode from 'vscode';
 import { type Problem, Refusal } from '../../../core/problem.ts';
-import {
-  type HostCall,
-  type HostEvent,
-  PROTOCOL,
-  type Question,
-  type Reply,
-  type Response,
-} from '../../../core/protocol.ts';
-import { readRequest, requestId } from './question.ts';
+import { type AnswerOf, PROTOCOL, type QuestionOf, type ReplyOf, type ResponseOf } from '../../../core/protocol.ts';
+import { requestId } from './question.ts';
 
 /** Answers to every call. One that is refused throws Refusal. */
-export type Answers = {
-  readonly [K in HostCall]: (question: Question<K>) => Promise<(Reply<K> & { readonly ok: unknown })['ok']>;
+export type Answers<Calls> = {
+  readonly [K in keyof Calls]: (question: QuestionOf<Calls, K>) => Promise<AnswerOf<Calls, K>>;
 };
 
 /** One page's line to the host. Owns what the page waits for: every question gets one answer, whatever happens, and once it is
  *  disposed nothing more is posted. */
-export class Channel {
+export class Channel<Calls, Told> {
   readonly #webview: vscode.Webview;
-  readonly #answers: Answers;
+  readonly #answers: Answers<Calls>;
+  readonly #read: (message: unknown) => { readonly call: keyof Calls; readonly question: unknown };
   readonly #revision: () => number;
   readonly #report: (error: unknown) => void;
   readonly #listening: vscode.Disposable;
@@ -29,7 +23,9 @@ export class Channel {
   constructor(
     webview: vscode.Webview,
     options: {
-      readonly answers: Answers;
+      readonly answers: Answers<Calls>;
+      /** Reads a message of the page and trusts nothing in it. Throws Refusal. */
+      readonly read: (message: unknown) => { readonly call: keyof Calls; readonly question: unknown };
       /** Of source and settings, at the time of an answer. */
       readonly revision: () => number;
       /** Hears of what should not happen. */
@@ -38,6 +34,7 @@ export class Channel {
   ) {
     this.#webview = webview;
     this.#answers = options.answers;
+    this.#read = options.read;
     this.#revision = options.revision;
     this.#report = options.report;
     this.#listening = webview.onDidReceiveMessage((message: unknown) => void this.#take(message));
@@ -48,7 +45,7 @@ export class Channel {
     return this.#pending.size;
   }
 
-  tell(event: HostEvent): void {
+  tell(event: Told): void {
     this.#post(event);
   }
 
@@ -70,10 +67,10 @@ export class Channel {
     this.#post({ protocol: PROTOCOL, kind: 'reply', id, revision: this.#revision(), reply });
   }
 
-  async #answer(message: unknown): Promise<Reply<HostCall>> {
+  async #answer(message: unknown): Promise<ReplyOf<Calls, keyof Calls>> {
     try {
-      const { call, question } = readRequest(message);
-      const answer = this.#answers[call] as (question: unknown) => Promise<never>;
+      const { call, question } = this.#read(message);
+      const answer = this.#answers[call] as unknown as (question: unknown) => Promise<never>;
       return { ok: await answer(question) };
     } catch (error) {
       return { problem: this.#problemOf(error) };
@@ -87,7 +84,7 @@ export class Channel {
     return { code: 'unexpected', severity: 'error', values: { reason } };
   }
 
-  #post(message: Response | HostEvent): void {
+  #post(message: ResponseOf<Calls> | Told): void {
     // A hidden page drops messages; it asks `open` again when it is seen.
     if (!this.#disposed) void this.#webview.postMessage(message);
   }

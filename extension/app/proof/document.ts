@@ -1,14 +1,17 @@
 import * as vscode from 'vscode';
+import type { HostCalls, HostEvent } from '../../../core/protocol.ts';
 import type { Channel } from './channel.ts';
 import type { TextureFacts } from './facts.ts';
 import { FirstPrinter } from './first-print.ts';
 import { type WatchTools, watchTexture } from './watch.ts';
 
+export type ProofChannel = Channel<HostCalls, HostEvent>;
+
 /** One texture that is proofed, however many pages show it. It is watched as long as one does. */
 export class ProofDocument implements vscode.CustomDocument {
   readonly facts: TextureFacts;
   readonly first: FirstPrinter;
-  readonly #pages = new Set<Channel>();
+  readonly #pages = new Set<ProofChannel>();
   readonly #watching: vscode.Disposable;
   #revision = 0;
 
@@ -35,7 +38,7 @@ export class ProofDocument implements vscode.CustomDocument {
   }
 
   /** Tells a page what changes, until it is closed. */
-  addPage(page: Channel): vscode.Disposable {
+  addPage(page: ProofChannel): vscode.Disposable {
     this.#pages.add(page);
     return new vscode.Disposable(() => {
       this.#pages.delete(page);

@@ -4,10 +4,11 @@ import type { Platform } from '../platform.ts';
 import { answersFor } from './answers.ts';
 import { Channel } from './channel.ts';
 import { TextureCounts } from './counts.ts';
-import { ProofDocument } from './document.ts';
+import { type ProofChannel, ProofDocument } from './document.ts';
 import { TextureFacts } from './facts.ts';
 import { pageHtml } from './html.ts';
 import type { OpenPages } from './open-pages.ts';
+import { readRequest } from './question.ts';
 
 export const VIEW_TYPE = 'sizeproof.proof';
 
@@ -39,7 +40,8 @@ export function registerProofEditor(
       const { webview } = panel;
       webview.options = { enableScripts: true, localResourceRoots: [pages] };
       const answers = answersFor(document, { platform, desk, pages });
-      const channel = new Channel(webview, { answers, revision: () => document.revision, report });
+      const options = { answers, read: readRequest, revision: () => document.revision, report };
+      const channel: ProofChannel = new Channel(webview, options);
       const added = document.addPage(channel);
       const opened = open.add({ uri: document.uri, panel, channel });
       panel.onDidDispose(() => vscode.Disposable.from(added, opened).dispose());

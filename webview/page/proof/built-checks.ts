@@ -1,15 +1,15 @@
 import type { PrintImage } from '../../../core/proof/want.ts';
 import type { PrintHash } from '../../../core/protocol.ts';
-import type { Link } from '../../link/link.ts';
+import type { ProofLink } from '../../link/proof-link.ts';
 
 /** Whether prints of this page have the pixels that were built. The host is told the hash that the page found and answers yes or
  *  no; the build's own hash never comes here. */
 export class BuiltChecks {
-  readonly #link: Link;
+  readonly #link: ProofLink;
   readonly #changed: () => void;
   #answers = new Map<string, boolean | null>();
 
-  constructor(link: Link, changed: () => void) {
+  constructor(link: ProofLink, changed: () => void) {
     this.#link = link;
     this.#changed = changed;
   }

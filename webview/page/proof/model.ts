@@ -5,7 +5,7 @@ import type { HaloAnswer, LevelsAnswer, Print, PrintImage, Want } from '../../..
 import type { BuiltState, HostEvent, OpenReply, Preferences, SettingsReply } from '../../../core/protocol.ts';
 import type { Extent } from '../../../core/raster/raster.ts';
 import type { Target, Treatment } from '../../../core/treatment/treatment.ts';
-import type { Link } from '../../link/link.ts';
+import type { ProofLink } from '../../link/proof-link.ts';
 import type { Outlook } from '../axis/lod.ts';
 import { extentAt, type Stop, stopsOf } from '../axis/scale.ts';
 import { setWords } from '../words/t.ts';
@@ -17,7 +17,7 @@ import { Takeover } from './takeover.ts';
 
 /** All that the page knows, and the one way in which it changes. Fires `change` when something did. */
 export class Model extends EventTarget {
-  readonly link: Link;
+  readonly link: ProofLink;
   readonly #makeBench: (changed: () => void) => Promise<BenchLink>;
   #bench: BenchLink | null = null;
   #state: State;
@@ -41,7 +41,7 @@ export class Model extends EventTarget {
   note: { readonly text: string; readonly kind: 'said' | 'failed' } | null = null;
   #keeping: ReturnType<typeof setTimeout> | undefined;
 
-  constructor(link: Link, makeBench: (changed: () => void) => Promise<BenchLink>) {
+  constructor(link: ProofLink, makeBench: (changed: () => void) => Promise<BenchLink>) {
     super();
     this.link = link;
     this.#makeBench = makeBench;
