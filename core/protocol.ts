@@ -51,9 +51,7 @@ export type QuestionOf<Calls, K extends keyof Calls> = Calls[K] extends (...aske
 /** What a call of `Calls` answers. */
 export type AnswerOf<Calls, K extends keyof Calls> = Calls[K] extends (...asked: never) => infer A ? A : never;
 
-export type ReplyOf<Calls, K extends keyof Calls> =
-  | { readonly ok: AnswerOf<Calls, K> }
-  | { readonly problem: Problem };
+export type ReplyOf<Calls, K extends keyof Calls> = { readonly ok: AnswerOf<Calls, K> } | { readonly problem: Problem };
 
 export type Question<K extends HostCall> = QuestionOf<HostCalls, K>;
 

@@ -137,6 +137,13 @@ const usage = {
     'An output would be called "{name}", which no system may carry: {reason}. Rename the source, or use `name`.',
   'same-output': '{first} and {second} would both write {output}. Settle it in the settings, such as with {line}.',
   'output-twice': 'Two results would both be {output}. Give the target another `name`.',
+  'review-untrusted':
+    'This workspace is not trusted, and a review runs Git in it. Trust the workspace (Manage Workspace Trust) and review again.',
+  'review-no-git':
+    'A review compares what Git has, and this folder is not on a disk where Git can run. Open a local copy of it, or a remote workspace.',
+  'review-nothing': 'No changed texture is at hand. Begin a review, or refresh the one there is.',
+  'review-no-image': '{name} is no PNG or TGA image. Choose a texture.',
+  'review-two': 'Two textures are compared at a time, and {count} are selected. Select two.',
   untrusted:
     'This workspace is not trusted, so nothing is built, run or written in it. Trust it (Workspaces: Manage Workspace Trust) and try again.',
   'no-disk':

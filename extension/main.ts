@@ -5,6 +5,7 @@ import { activateApp } from './app/activate.ts';
 import { startBenchWorker } from './node/bench-worker.ts';
 import { openDoor } from './node/door.ts';
 import { nodePorts } from './node/ports.ts';
+import { openReviewDoor } from './node/review/door.ts';
 import { drawSheetInThread } from './node/sheet.ts';
 
 /** The extension on Node: on the desktop, or on the machine of a remote workspace. */
@@ -13,6 +14,7 @@ export function activate(context: vscode.ExtensionContext): void {
   activateApp(context, {
     ports: nodePorts,
     disk: openDoor(pathToFileURL(worker.fsPath)),
+    review: openReviewDoor(pathToFileURL(worker.fsPath)),
     startBench: () => startBenchWorker(pathToFileURL(worker.fsPath)),
     drawSheet: (order, cancel) => drawSheetInThread(order, pathToFileURL(worker.fsPath), cancel),
     newNonce: () => randomBytes(16).toString('base64'),

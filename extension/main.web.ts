@@ -10,6 +10,7 @@ export function activate(context: vscode.ExtensionContext): void {
   activateApp(context, {
     ports: webPorts,
     disk: null,
+    review: null,
     startBench: null,
     drawSheet,
     newNonce: () => randomText(16),

@@ -1,8 +1,9 @@
 import { type Cancel, Cancelled, type Ports } from '../port.ts';
+import { Refusal } from '../problem.ts';
 import { copyPicture } from '../proof/picture.ts';
 import { comparePictures } from './difference.ts';
 import { type Review, reviewTexture, type SideGiven } from './review.ts';
-import { pairSizes, type Shown, type SizeReview } from './sizes.ts';
+import { pairSizes, reviewSize, type Shown, type SizeReview } from './sizes.ts';
 import { checkPeak, makeSubject, openSide, type Subject } from './subject.ts';
 import {
   HIDDEN_MARK,
@@ -35,7 +36,7 @@ export class ReviewBench {
   async answer(want: ReviewWant, cancel: Cancel): Promise<ReviewAnswer> {
     switch (want.kind) {
       case 'review':
-        return { kind: 'review', review: await this.#reviewed(cancel) };
+        return { kind: 'review', review: await this.#whole(cancel) };
       case 'pair':
         return this.#pair(want.image, cancel);
     }
@@ -50,12 +51,29 @@ export class ReviewBench {
     return this.#review;
   }
 
-  async #pair(image: SizeReview['image'], cancel: Cancel): Promise<PairAnswer> {
+  /** With the sizes of a version that is alone, or of two that are equal: a page goes through them all the same. */
+  async #whole(cancel: Cancel): Promise<Review> {
+    const review = await this.#reviewed(cancel);
+    if (review.sizes.length > 0) return review;
+    const [before, after] = await this.#both(cancel);
+    const alone = before ?? after;
+    if (alone === null) return review;
+    const sizes = pairSizes(before ?? alone, after ?? alone).map((pair) =>
+      reviewSize({ ...pair, before: before && pair.before, after: after && pair.after }),
+    );
+    return { ...review, sizes };
+  }
+
+  #both(cancel: Cancel): Promise<readonly [Subject | null, Subject | null]> {
     this.#subjects ??= this.#open(cancel);
     this.#subjects.catch(() => {
       this.#subjects = null;
     });
-    const [before, after] = await this.#subjects;
+    return this.#subjects;
+  }
+
+  async #pair(image: SizeReview['image'], cancel: Cancel): Promise<PairAnswer> {
+    const [before, after] = await this.#both(cancel);
     if (cancel.cancelled) throw new Cancelled();
     const alone = before ?? after;
     if (alone === null) throw new RangeError('Expected a version but received none');
@@ -75,9 +93,15 @@ export class ReviewBench {
   async #open(cancel: Cancel): Promise<readonly [Subject | null, Subject | null]> {
     const make = async (given: SideGiven): Promise<Subject | null> => {
       if (given === null || 'problem' in given) return null;
-      const opened = openSide(given, this.#ports);
-      checkPeak(opened.peakBytes, this.#memoryBytes);
-      return makeSubject(opened, this.#ports, cancel);
+      try {
+        const opened = openSide(given, this.#ports);
+        checkPeak(opened.peakBytes, this.#memoryBytes);
+        return await makeSubject(opened, this.#ports, cancel);
+      } catch (error) {
+        // The review says what is wrong with it; the other side is looked at alone.
+        if (error instanceof Refusal) return null;
+        throw error;
+      }
     };
     return [await make(this.#before), await make(this.#after)];
   }

@@ -74,7 +74,7 @@ export const LEAST_TEXELS = 64;
 
 // Where harm begins. What is lost to rounding and to another cut of the same picture stays below; there is no published number,
 // these are common practice.
-const LEAST_COVERAGE_LOSS = 0.05;
+export const LEAST_COVERAGE_LOSS = 0.05;
 const LEAST_LENGTH_LOSS = 0.02;
 /** Half the width or height, or about seven tenths of both: a level of sharpness. */
 const MOST_TEXELS_LEFT = 0.5 + 1 / 64;

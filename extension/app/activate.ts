@@ -5,6 +5,7 @@ import { registerCommands } from './commands.ts';
 import type { Platform } from './platform.ts';
 import { pagesFolder, registerProofEditor } from './proof/editor.ts';
 import { OpenPages } from './proof/open-pages.ts';
+import { openReviews } from './review/register.ts';
 import { watchSettings } from './settings/diagnostics.ts';
 import { serveExplanations } from './settings/explain.ts';
 import { serveSchema } from './settings/schema.ts';
@@ -15,6 +16,7 @@ export function activateApp(context: vscode.ExtensionContext, platform: Platform
   const log = vscode.window.createOutputChannel('Sizeproof', { log: true });
   const desk = new BuildDesk(platform, log);
   const tools = { platform, desk, log, open: new OpenPages() };
+  const reviews = openReviews(context, platform, log);
   context.subscriptions.push(
     log,
     desk,
@@ -22,7 +24,8 @@ export function activateApp(context: vscode.ExtensionContext, platform: Platform
     serveSchema(),
     serveExplanations(platform),
     registerProofEditor(context.extensionUri, tools),
-    registerCommands(tools, pagesFolder(context.extensionUri)),
+    reviews,
+    registerCommands(tools, reviews, pagesFolder(context.extensionUri)),
     provideTasks(desk),
     buildOnSave(desk, platform),
   );

@@ -6,14 +6,22 @@ import { type EditorTools, VIEW_TYPE } from './proof/editor.ts';
 import { exportByCommand } from './proof/export-command.ts';
 import { TextureFacts } from './proof/facts.ts';
 import { reportOf, revealOutputs } from './proof/outputs.ts';
+import { type ReviewParts, reviewCommands } from './review/commands.ts';
 import { selectedResources, selectedTexture } from './selected.ts';
 import { createSettings, isThere } from './settings/create.ts';
 import { explain } from './settings/explain.ts';
 import { openSettings } from './settings/open.ts';
 import { sayProblem } from './words.ts';
 
+/** The host hands over what was clicked and all that is selected; source control's menus hand over what is selected. */
+type Command = (...given: readonly unknown[]) => unknown;
+
 /** Registers every command of the extension. The explorer hands over the item that was clicked and all that are selected. */
-export function registerCommands({ platform, desk, log, open }: EditorTools, pages: vscode.Uri): vscode.Disposable {
+export function registerCommands(
+  { platform, desk, log, open }: EditorTools,
+  reviews: ReviewParts,
+  pages: vscode.Uri,
+): vscode.Disposable {
   const aboutTexture = (act: (texture: vscode.Uri) => Promise<void>) => async (first: unknown, all: unknown) => {
     const texture = await selectedTexture(first, all);
     if (texture !== null) await act(texture);
@@ -23,7 +31,8 @@ export function registerCommands({ platform, desk, log, open }: EditorTools, pag
     const resources = await resourcesOrWorkspace(first, all);
     return resources.length === 0 ? null : desk.build(kind, resources, 'shown');
   };
-  const commands: Readonly<Record<string, (first: unknown, all: unknown) => unknown>> = {
+  const commands: Readonly<Record<string, Command>> = {
+    ...reviewCommands(reviews),
     openProof: async (first, all) => {
       const texture = await selectedTexture(first, all);
       const textures = first === undefined ? [] : selectedResources(first, all);
@@ -53,7 +62,7 @@ export function registerCommands({ platform, desk, log, open }: EditorTools, pag
     showLog: () => log.show(),
   };
   const registered = Object.entries(commands).map(([name, act]) =>
-    vscode.commands.registerCommand(`sizeproof.${name}`, (first: unknown, all: unknown) => saying(act, first, all)),
+    vscode.commands.registerCommand(`sizeproof.${name}`, (...given: readonly unknown[]) => saying(act, given)),
   );
   return vscode.Disposable.from(...registered);
 }
@@ -62,9 +71,9 @@ export function registerCommands({ platform, desk, log, open }: EditorTools, pag
 const SHOWN_MS = 4000;
 
 /** What is refused is said; anything else goes on to the host, which says that the command failed. */
-async function saying(act: (first: unknown, all: unknown) => unknown, first: unknown, all: unknown): Promise<unknown> {
+async function saying(act: Command, given: readonly unknown[]): Promise<unknown> {
   try {
-    return await act(first, all);
+    return await act(...given);
   } catch (error) {
     if (!(error instanceof Refusal)) throw error;
     void vscode.window.showErrorMessage(sayProblem(error.problem));

@@ -3,12 +3,18 @@ import type { Manifest } from '../../core/manifest/manifest.ts';
 import type { FileTree, Ports } from '../../core/port.ts';
 import type { Problem } from '../../core/problem.ts';
 import type { FromBench, ToBench } from '../../core/proof/want.ts';
+import type { Impact } from '../../core/review/impact.ts';
+import type { Review } from '../../core/review/review.ts';
+import type { Verdict } from '../../core/review/verdict.ts';
+import type { PairSide } from '../../core/review/want.ts';
 
 /** What the entry hands to the app: everything that depends on where the extension host runs. */
 export interface Platform {
   readonly ports: Ports;
   /** Where textures lie on a disk; null in a host that has none. */
   readonly disk: DiskDoor | null;
+  /** Where changes come from; null in a host that can run no Git. */
+  readonly review: ReviewDoor | null;
   /** Starts a worker that makes prints as a page's own does; null where the host has none. */
   readonly startBench: (() => BenchWorker) | null;
   /** A text that nobody can guess, for the page's policy. */
@@ -99,4 +105,96 @@ export interface Inspection {
   readonly reasons: readonly string[];
   /** Files that the manifest lists and that are there. */
   readonly outputs: readonly string[];
+}
+
+/** Reviews over Git's plumbing. Paths are absolute and "/"-separated. Everything throws Refusal where Git cannot tell. */
+export interface ReviewDoor {
+  /** The top of the repository that a folder lies in. */
+  repositoryOf(folder: string): Promise<string>;
+  /** Commits before HEAD, the last one first, at most `count`; of one file where a path is given. */
+  commits(folder: string, path: string | null, count: number): Promise<readonly CommitLine[]>;
+  /** Branches, here and of remotes, the one that moved last first. */
+  branches(folder: string): Promise<readonly BranchLine[]>;
+  /** Lists what a review is about; no picture is read. */
+  open(subject: ReviewSubject, cancel: CancelToken): Promise<ReviewSession>;
+}
+
+export interface CommitLine {
+  readonly id: string;
+  readonly subject: string;
+  readonly author: string;
+  /** Seconds since 1970. */
+  readonly time: number;
+}
+
+export interface BranchLine {
+  readonly name: string;
+  readonly current: 'yes' | 'no';
+  readonly time: number;
+}
+
+/** What is compared with what. */
+export type ReviewSubject =
+  | { readonly kind: 'range'; readonly folder: string; readonly range: ReviewRange }
+  | { readonly kind: 'files'; readonly before: string; readonly after: string };
+
+export type ReviewRange =
+  | { readonly kind: 'working' }
+  | { readonly kind: 'index' }
+  | { readonly kind: 'commit'; readonly commit: string }
+  | { readonly kind: 'branch'; readonly base: string; readonly tip: string };
+
+/** Changed textures, and what can be learned of them. It holds a Git until it is closed. */
+export interface ReviewSession {
+  /** The top of the repository. */
+  readonly folder: string;
+  /** How people call the two ends. */
+  readonly before: string;
+  readonly after: string;
+  readonly items: readonly ReviewItem[];
+  /** Changed images that are no textures: written by a build, or excluded. */
+  readonly outputs: number;
+  readonly excluded: number;
+  /** Of parts that could not be looked into. */
+  readonly problems: readonly Problem[];
+  /** Judges items by ids and headers, in their order, each as soon as it is known. Ends early when asked to stop. */
+  glance(cancel: CancelToken, done: (index: number, known: GlancedItem) => void): Promise<void>;
+  /** Compares the pixels of items at every size, in any order. Ends early when asked to stop. */
+  review(
+    indexes: readonly number[],
+    cancel: CancelToken,
+    done: (index: number, known: ReviewedItem) => void,
+  ): Promise<void>;
+  /** Both versions, for a page. */
+  sides(index: number): Promise<{ readonly before: PairSide; readonly after: PairSide }>;
+  close(): void;
+}
+
+export interface ReviewItem {
+  /** From the top of the repository. */
+  readonly path: string;
+  /** What it was called before; the same unless it was renamed. */
+  readonly oldPath: string;
+  readonly status: 'added' | 'removed' | 'changed' | 'renamed' | 'retyped' | 'unmerged' | 'treated';
+  readonly manifest: 'none' | 'fresh' | 'stale';
+  /** Of the settings that apply. */
+  readonly problems: readonly Problem[];
+}
+
+export interface GlancedItem {
+  readonly verdict: Verdict;
+  readonly impact: Impact;
+  /** Whether pixels could say more. */
+  readonly settled: boolean;
+  /** Equal for the same two contents. */
+  readonly content: string;
+}
+
+export interface ReviewedItem {
+  readonly verdict: Verdict;
+  readonly impact: Impact;
+  /** Null where it could not be done. */
+  readonly review: Review | null;
+  /** Limits that are passed, and what went wrong. */
+  readonly problems: readonly Problem[];
 }

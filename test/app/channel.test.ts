@@ -1,10 +1,11 @@
 import { describe, expect, test } from 'vitest';
 import { refuse } from '../../core/problem.ts';
-import { PROTOCOL, type Response } from '../../core/protocol.ts';
+import { type HostCalls, type HostEvent, PROTOCOL, type Response } from '../../core/protocol.ts';
 import { type Answers, Channel } from '../../extension/app/proof/channel.ts';
+import { readRequest } from '../../extension/app/proof/question.ts';
 
 /** A page's end of a line: what was posted to it, and a way to ask. */
-function openLine(answers: Partial<Answers>) {
+function openLine(answers: Partial<Answers<HostCalls>>) {
   const posted: unknown[] = [];
   const reported: unknown[] = [];
   let take: (message: unknown) => void = () => undefined;
@@ -23,8 +24,9 @@ function openLine(answers: Partial<Answers>) {
     },
   };
   let revision = 0;
-  const channel = new Channel(webview as never, {
-    answers: answers as Answers,
+  const channel = new Channel<HostCalls, HostEvent>(webview as never, {
+    read: readRequest,
+    answers: answers as Answers<HostCalls>,
     revision: () => revision,
     report: (error) => reported.push(error),
   });

@@ -32,13 +32,16 @@ describe('package.nls.json', () => {
   });
 });
 
-/** The first argument of each call of `l10n.t` or `t`; null where it is neither a literal nor a template of words.ts. */
+/** Texts of tables whose every template is in the bundle. */
+const TEMPLATES: readonly string[] = ['words[code]', 'verdicts[kind]', 'harmWords[name]'];
+
+/** The first argument of each call of `l10n.t` or `t`; null where it is neither a literal nor a template of a table. */
 function sayings(source: Source): { readonly place: string; readonly text: string | null }[] {
   const found: { place: string; text: string | null }[] = [];
   walkSyntax(source, (node) => {
     if (!ts.isCallExpression(node) || !/^(vscode\.l10n\.)?t$/.test(node.expression.getText())) return;
     const [first] = node.arguments;
-    if (first.getText() === 'words[code]') return;
+    if (TEMPLATES.includes(first.getText())) return;
     found.push({ place: placeOf(source, node), text: ts.isStringLiteralLike(first) ? first.text : null });
   });
   return found;

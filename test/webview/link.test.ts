@@ -1,5 +1,5 @@
 import { expect, test } from 'vitest';
-import { PROTOCOL } from '../../core/protocol.ts';
+import { type HostCalls, type HostEvent, PROTOCOL } from '../../core/protocol.ts';
 import { openHostLink, type VsCodeApi } from '../../webview/link/host.ts';
 
 function opened() {
@@ -13,7 +13,7 @@ function opened() {
     },
   };
   const window = new EventTarget();
-  const link = openHostLink(api, window);
+  const link = openHostLink<HostCalls, HostEvent>(api, window, ['source', 'settings', 'built']);
   const tell = (data: unknown) => window.dispatchEvent(new MessageEvent('message', { data }));
   return { link, posted, tell };
 }
@@ -40,7 +40,7 @@ test('a page that goes away leaves no question hanging', async () => {
 });
 
 test('a message that cannot be posted is a problem, not an exception', async () => {
-  const link = openHostLink(
+  const link = openHostLink<HostCalls, HostEvent>(
     {
       postMessage: () => {
         throw new Error('could not be cloned');
@@ -49,6 +49,7 @@ test('a message that cannot be posted is a problem, not an exception', async () 
       setState: () => {},
     },
     new EventTarget(),
+    [],
   );
   expect((await link.ask('open', null)).reply).toMatchObject({
     problem: { values: { reason: 'could not be cloned' } },

@@ -5,23 +5,35 @@ import {
   type AdoptChange,
   type ExportOrder,
   type HostCall,
+  type HostCalls,
   PROTOCOL,
   type PrintHash,
   type Question,
+  type QuestionOf,
   type Request,
+  type RequestOf,
 } from '../../../core/protocol.ts';
 
 /** Reads a message of a page, and trusts nothing in it. Throws Refusal: `bad-message`, or `page-outdated` for another version of
  *  the protocol. */
 export function readRequest(message: unknown): Request {
+  return readQuestion<HostCalls>(message, questions) as Request;
+}
+
+/** The same for the calls of any page, each with the shape of its question. */
+export function readQuestion<Calls>(
+  message: unknown,
+  shapes: { readonly [K in keyof Calls]: Shape<QuestionOf<Calls, K>> },
+): RequestOf<Calls> {
   const given = message as Readonly<Record<string, unknown>> | null;
   if (typeof given === 'object' && typeof given?.protocol === 'number' && given.protocol !== PROTOCOL) {
     refuse('page-outdated', { page: given.protocol, host: PROTOCOL });
   }
+  const calls = Object.keys(shapes) as (keyof Calls & string)[];
   try {
-    const { call, ...rest } = envelope(message, '');
-    const question = (questions[call] as Shape<Question<HostCall>>)(rest.question, 'question');
-    return { ...rest, call, question } as Request;
+    const { call, ...rest } = envelope(calls)(message, '');
+    const question = (shapes[call] as Shape<unknown>)(rest.question, 'question');
+    return { ...rest, call, question } as RequestOf<Calls>;
   } catch (error) {
     if (!(error instanceof Misfit)) throw error;
     return refuse('bad-message', { where: error.at || 'it', expected: error.expected });
@@ -36,26 +48,24 @@ export function requestId(message: unknown): number | null {
 
 const anything: Shape<unknown> = (value) => value;
 
-const envelope = object<Omit<Request, 'question'> & { readonly question: unknown }>({
-  protocol: integer(PROTOCOL, PROTOCOL),
-  kind: choice('ask'),
-  id: integer(0, Number.MAX_SAFE_INTEGER),
-  call: choice(
-    'open',
-    'firstPrint',
-    'bytes',
-    'build',
-    'isBuilt',
-    'adopt',
-    'showSettings',
-    'copy',
-    'save',
-    'reveal',
-    'export',
-  ),
-  // An `optional` of anything would let the key be left out.
-  question: anything as never,
-});
+interface Envelope<Call> {
+  readonly protocol: number;
+  readonly kind: 'ask';
+  readonly id: number;
+  readonly call: Call;
+  readonly question: unknown;
+}
+
+function envelope<Call extends string>(calls: readonly Call[]): Shape<Envelope<Call>> {
+  return object<Envelope<Call>>({
+    protocol: integer(PROTOCOL, PROTOCOL),
+    kind: choice('ask'),
+    id: integer(0, Number.MAX_SAFE_INTEGER),
+    call: choice(...calls) as never,
+    // An `optional` of anything would let the key be left out.
+    question: anything as never,
+  });
+}
 
 /** Characters of a dotted key; the longest has fewer than 40. */
 const key = text(/^[A-Za-z0-9.-]{1,200}$/, 'a dotted key');

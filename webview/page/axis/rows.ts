@@ -1,6 +1,6 @@
 import { svg } from 'lit';
 import type { Treatment } from '../../../core/treatment/treatment.ts';
-import type { Stop } from './scale.ts';
+import type { Placed, Stop } from './scale.ts';
 
 /** Height of the thumbs, in CSS pixels. */
 export const THUMB_HEIGHT = 74;
@@ -55,7 +55,7 @@ export function drawSight(x: number, rows: Rows) {
 }
 
 /** The longer side where there is little room, both where sides differ and there is more. */
-export function sizeText({ extent }: Stop, spacing: number, scale: number): string {
+export function sizeText({ extent }: Placed, spacing: number, scale: number): string {
   const { width, height } = extent;
   return width === height || spacing < 64 * scale ? String(Math.max(width, height)) : `${width}×${height}`;
 }
@@ -63,7 +63,7 @@ export function sizeText({ extent }: Stop, spacing: number, scale: number): stri
 /** Stops closer than this share a place: of one size but for rounding. */
 export const SAME_PLACE = 0.02;
 
-export function isFirstAt(stops: readonly Stop[], stop: Stop): boolean {
+export function isFirstAt(stops: readonly Placed[], stop: Placed): boolean {
   return (
     stops.find((each) => Math.abs(each.lod - stop.lod) <= SAME_PLACE && each.kind !== 'level') === stop ||
     stop.kind === 'level'
@@ -71,7 +71,7 @@ export function isFirstAt(stops: readonly Stop[], stop: Stop): boolean {
 }
 
 /** Names of all targets at one place. */
-export function labelsAt(stops: readonly Stop[], stop: Stop): string {
+export function labelsAt(stops: readonly Placed[], stop: Placed): string {
   const here = stops.filter((each) => each.kind !== 'level' && Math.abs(each.lod - stop.lod) <= SAME_PLACE);
   return here.map(({ label }) => label).join(' · ');
 }

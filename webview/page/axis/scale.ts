@@ -14,6 +14,9 @@ export interface Stop {
   readonly label: string;
 }
 
+/** What a stop is to the axis itself, whatever stands behind it. */
+export type Placed = Omit<Stop, 'image'>;
+
 /** Every stop of a texture from large to small. `lastLevel` is the last one that the texture has, or that a sheet allows. */
 export function stopsOf(
   base: Extent,
@@ -83,7 +86,7 @@ export interface AxisScale {
 }
 
 /** The axis over `width` pixels, with `margin` left free at both ends; at least two levels are spread out. */
-export function axisScale(stops: readonly Stop[], width: number, margin: number): AxisScale {
+export function axisScale(stops: readonly Placed[], width: number, margin: number): AxisScale {
   const first = Math.min(0, ...stops.map((stop) => stop.lod));
   const last = Math.max(first + 1, ...stops.map((stop) => stop.lod));
   const step = Math.max(1, width - 2 * margin) / (last - first);
@@ -96,8 +99,8 @@ export function axisScale(stops: readonly Stop[], width: number, margin: number)
 }
 
 /** The stop within `reach` of a place, the nearest one; null between stops. */
-export function stopNear(stops: readonly Stop[], lod: number, reach: number): Stop | null {
-  let best: Stop | null = null;
+export function stopNear<S extends Placed>(stops: readonly S[], lod: number, reach: number): S | null {
+  let best: S | null = null;
   for (const stop of stops) {
     const distance = Math.abs(stop.lod - lod);
     if (distance <= reach && (best === null || distance < Math.abs(best.lod - lod))) best = stop;

@@ -10,7 +10,7 @@ export function paintThumb(
   canvas: HTMLCanvasElement,
   picture: Picture,
   treatment: Treatment,
-  { backdrop }: State,
+  { backdrop }: Pick<State, 'backdrop'>,
   most: { readonly width: number; readonly height: number },
 ): void {
   const { width, height } = picture.extent;

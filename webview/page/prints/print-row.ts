@@ -1,4 +1,4 @@
-import { css, html, LitElement, nothing } from 'lit';
+import { html, LitElement, nothing } from 'lit';
 import { passingCode } from '../../../core/chain/coverage.ts';
 import { defaultParams, findKernel, kernels } from '../../../core/kernel/table.ts';
 import { say } from '../../../core/problem.ts';
@@ -16,6 +16,7 @@ import { light, percent } from '../words/figures.ts';
 import { t } from '../words/t.ts';
 import './print-card.ts';
 import type { CardAction, CardFacts, CardFigure } from './print-card.ts';
+import { rowStyles } from './print-row.styles.ts';
 import type { Scene, StageGesture } from './print-stage.ts';
 
 /** The row of prints: the settings' own first, then what is tried beside it, all at one place and one zoom. */
@@ -35,31 +36,7 @@ export class PrintRow extends LitElement {
   /** What each print last showed: it stands in, stretched, until the next is made. */
   readonly #shown = new Map<number, Picture>();
 
-  static override styles = [
-    controls,
-    css`
-      :host {
-        display: grid;
-        min-height: 0;
-        min-width: 0;
-      }
-      .row {
-        display: grid;
-        grid-template-rows: auto minmax(220px, 1fr) auto;
-        grid-auto-flow: column;
-        grid-auto-columns: minmax(min(20em, 100%), 1fr);
-        overflow-x: auto;
-      }
-      @media (max-width: 560px) {
-        .row {
-          grid-template-rows: none;
-          grid-auto-flow: row;
-          grid-auto-columns: auto;
-          grid-auto-rows: auto;
-        }
-      }
-    `,
-  ];
+  static override styles = [controls, rowStyles];
 
   constructor() {
     super();

@@ -1,0 +1,137 @@
+import { type Cancel, Cancelled } from '../../../core/port.ts';
+import { Refusal } from '../../../core/problem.ts';
+import type { PairSide } from '../../../core/review/want.ts';
+import { listBranches, listCommits } from '../git/log.ts';
+import type { Range } from '../git/range.ts';
+import { openRepository } from '../git/repository.ts';
+import { openVersions, type Versions } from '../git/versions.ts';
+import { defaultMemoryBytes } from '../memory.ts';
+import { nodeDisk } from '../node-disk.ts';
+import { parentOf } from '../path.ts';
+import { defaultWorkers, runInWorkers } from '../pool.ts';
+import { listFiles } from './files.ts';
+import { type GlancedEntry, glanceEntries } from './glance.ts';
+import { judgedReview } from './judge.ts';
+import { listReview, type ReviewList, type ReviewVersion } from './list.ts';
+import { reviewEntries } from './run.ts';
+
+interface CancelToken {
+  readonly isCancellationRequested: boolean;
+  onCancellationRequested(listener: () => void): { dispose(): void };
+}
+
+type Subject =
+  | { readonly kind: 'range'; readonly folder: string; readonly range: Range }
+  | { readonly kind: 'files'; readonly before: string; readonly after: string };
+
+/** Reviews as an editor asks for them, by the Git of this machine and in worker threads. `workerUrl` is the bundled
+ *  pool.worker.ts. */
+export function openReviewDoor(workerUrl: URL) {
+  return {
+    repositoryOf: async (folder: string) => (await openRepository(folder)).folder,
+    commits: listCommits,
+    branches: listBranches,
+    async open(subject: Subject, token: CancelToken) {
+      const versions = openVersions(nodeDisk);
+      try {
+        return sessionOf(await listOf(subject, versions, cancelOf(token)), versions, workerUrl);
+      } catch (error) {
+        versions.close();
+        throw error;
+      }
+    },
+  };
+}
+
+function listOf(subject: Subject, versions: Versions, cancel: Cancel): Promise<ReviewList> {
+  if (subject.kind === 'files') {
+    const { before, after } = subject;
+    return listFiles(nodeDisk, parentOf(after), [before, after]);
+  }
+  return listReview(subject.folder, subject.range, { disk: nodeDisk, versions }, cancel);
+}
+
+function sessionOf(list: ReviewList, versions: Versions, workerUrl: URL) {
+  const { entries } = list;
+  return {
+    folder: list.folder,
+    before: list.before,
+    after: list.after,
+    outputs: list.outputs,
+    excluded: list.excluded,
+    problems: list.problems,
+    items: entries.map(({ path, oldPath, status, manifest, problems }) => ({
+      path,
+      oldPath,
+      status,
+      manifest,
+      problems,
+    })),
+    async glance(token: CancelToken, done: (index: number, known: Known) => void): Promise<void> {
+      const told = (index: number, { glance, content }: GlancedEntry) => done(index, { ...glance, content });
+      await untilCancelled(glanceEntries(entries, { disk: nodeDisk, versions }, cancelOf(token), told));
+    },
+    async review(
+      indexes: readonly number[],
+      token: CancelToken,
+      done: (index: number, known: Reviewed) => void,
+    ): Promise<void> {
+      const flag = new SharedArrayBuffer(4);
+      const stop = () => Atomics.store(new Int32Array(flag), 0, 1);
+      if (token.isCancellationRequested) stop();
+      const listening = token.onCancellationRequested(stop);
+      const memoryBytes = defaultMemoryBytes();
+      const run = runInWorkers({ workerUrl, workers: defaultWorkers(), memoryBytes, cancel: flag });
+      try {
+        const asked = indexes.map((index) => entries[index]);
+        await reviewEntries(asked, { run, memoryBytes }, (at, reviewed) => {
+          const { verdict, impact, review, problems } = judgedReview(reviewed);
+          done(indexes[at], { verdict, impact, review, problems });
+        });
+      } finally {
+        listening.dispose();
+      }
+    },
+    async sides(index: number) {
+      const { before, after, path, oldPath } = entries[index];
+      return { before: await sideOf(before, oldPath, versions), after: await sideOf(after, path, versions) };
+    },
+    close: () => versions.close(),
+  };
+}
+
+type Known = GlancedEntry['glance'] & { readonly content: string };
+type Reviewed = Pick<ReturnType<typeof judgedReview>, 'verdict' | 'impact' | 'review' | 'problems'>;
+
+/** One version with its bytes in a buffer of their own, to be posted to a page. */
+export async function sideOf(version: ReviewVersion | null, path: string, versions: Versions): Promise<PairSide> {
+  if (version === null) return { kind: 'none' };
+  const { file, treatment } = version;
+  try {
+    if (treatment === null) throw new Refusal({ code: 'settings-broken', severity: 'error', values: {} });
+    const bytes = await versions.content(file, PAGE_BYTES);
+    return { kind: 'file', path, treatment, bytes: new Uint8Array(bytes).buffer };
+  } catch (error) {
+    if (error instanceof Refusal) return { kind: 'problem', problem: error.problem };
+    throw error;
+  }
+}
+
+/** A file that a page is given: moving more takes many seconds. */
+const PAGE_BYTES = 256 * 1024 * 1024;
+
+function cancelOf(token: CancelToken): Cancel {
+  return {
+    get cancelled() {
+      return token.isCancellationRequested;
+    },
+  };
+}
+
+async function untilCancelled(work: Promise<void>): Promise<void> {
+  try {
+    await work;
+  } catch (error) {
+    if (!(error instanceof Cancelled)) throw error;
+  }
+}
