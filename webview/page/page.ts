@@ -24,7 +24,15 @@ else if (proof !== null) showProof(proof);
 else if (document.body.dataset.about === 'review') {
   showReview(openHostLink<ReviewCalls, ReviewEvent>(acquireVsCodeApi(), window, ['texture']));
 } else {
-  showProof(openHostLink<HostCalls, HostEvent>(acquireVsCodeApi(), window, ['source', 'settings', 'preferences', 'built', 'export']));
+  showProof(
+    openHostLink<HostCalls, HostEvent>(acquireVsCodeApi(), window, [
+      'source',
+      'settings',
+      'preferences',
+      'built',
+      'export',
+    ]),
+  );
 }
 
 function showProof(link: ProofLink): void {

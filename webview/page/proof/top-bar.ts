@@ -183,7 +183,7 @@ export class TopBar extends LitElement {
     const { reply } = await model.link.ask(call, question);
     this.busy = null;
     if ('problem' in reply) model.say({ text: say(reply.problem), kind: 'failed' });
-    else model.say(call === 'showSettings' ? null : { text: doneWords(reply.ok), kind: 'said' });
+    else model.say(call === 'showSettings' ? null : { text: doneWords(reply.ok as object), kind: 'said' });
   }
 }
 
