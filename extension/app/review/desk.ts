@@ -17,6 +17,9 @@ export class ReviewDesk implements vscode.Disposable {
   #rows: readonly ReviewRow[] = [];
   #cancel: vscode.CancellationTokenSource | null = null;
   #timer: { dispose(): void } | null = null;
+  #moved: { dispose(): void } | null = null;
+  /** Paths and contents as they were read. */
+  #contents = '';
   subject: ReviewSubject | null = null;
   only: Only = null;
   /** What is being done; null where nothing is. */
@@ -126,19 +129,42 @@ export class ReviewDesk implements vscode.Disposable {
     this.#to(null);
   }
 
-  /** The repository moved. */
+  /** The repository moved: whether that changes anything here is looked up once it is quiet. */
   outdate(): void {
     const kind = this.subject?.kind === 'range' ? this.subject.range.kind : 'files';
-    if (kind === 'commit' || this.outdated === 'yes' || this.#session === null) return;
-    this.outdated = 'yes';
-    this.#changed.fire();
+    if (kind === 'commit' || kind === 'files') return;
+    this.#moved?.dispose();
+    this.#moved = this.#platform.after(MOVED_MS, () => void this.#lookAgain());
   }
 
   dispose(): void {
     this.stop();
     this.#timer?.dispose();
+    this.#moved?.dispose();
     this.#session?.close();
     this.#changed.dispose();
+  }
+
+  /** Lists the same once more, and says where it is otherwise. What cannot be listed, a refresh will say. */
+  async #lookAgain(): Promise<void> {
+    const { subject, stage, outdated } = this;
+    const session = this.#session;
+    const { review } = this.#platform;
+    if (review === null || session === null || subject === null || stage !== null || outdated === 'yes') return;
+    const cancel = new vscode.CancellationTokenSource();
+    try {
+      const now = await review.open(subject, cancel.token);
+      const contents: string[] = [];
+      await now.glance(cancel.token, (index, { content }) => contents.push(`${now.items[index].path} ${content}`));
+      now.close();
+      if (session !== this.#session || contents.sort().join('\n') === this.#contents) return;
+      this.outdated = 'yes';
+      this.#changed.fire();
+    } catch (error) {
+      if (!(error instanceof Refusal)) this.#log.error(error instanceof Error ? error : String(error));
+    } finally {
+      cancel.dispose();
+    }
   }
 
   async #glance(session: ReviewSession, token: vscode.CancellationToken): Promise<void> {
@@ -152,6 +178,8 @@ export class ReviewDesk implements vscode.Disposable {
       this.#glanced(found);
     });
     this.#glanced(found);
+    const contents = [...found].map(([index, { content }]) => `${session.items[index].path} ${content}`);
+    this.#contents = contents.sort().join('\n');
   }
 
   #glanced(found: ReadonlyMap<number, GlancedItem>): void {
@@ -198,6 +226,9 @@ export class ReviewDesk implements vscode.Disposable {
 const QUIET_MS = 150;
 
 const GLANCES_AT_ONCE = 64;
+
+/** A repository moves in steps: a checkout, a build. */
+const MOVED_MS = 1500;
 
 /** So many are compared without being asked: some seconds of work. */
 const AT_ONCE = 64;

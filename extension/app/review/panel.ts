@@ -100,6 +100,10 @@ export class ReviewPanel implements vscode.Disposable {
   #row(): ReviewRow {
     const row = this.#desk.rowAt(this.#path) ?? this.#desk.rows[0];
     if (row === undefined) return refuse('review-nothing', {});
+    if (row.item.path !== this.#path) {
+      this.#path = row.item.path;
+      this.#title();
+    }
     return row;
   }
 
