@@ -8,14 +8,14 @@ import { OKLAB_SCALE } from '../prints/view.ts';
  *  which are hatched. */
 export interface DifferencePicture {
   readonly picture: Picture;
-  /** A byte a texel, as overlays take marks; null where there is none. */
-  readonly hidden: Uint8Array | null;
+  /** A number a texel, as overlays take marks; null where there is none. */
+  readonly hidden: Uint16Array | null;
 }
 
 /** The picture of the marks that core made: a byte a texel. */
 export function differencePicture(marks: Uint8Array, extent: Extent): DifferencePicture {
   const codes = new Uint8Array(marks.length * 3);
-  const hidden = new Uint8Array(marks.length);
+  const hidden = new Uint16Array(marks.length);
   let isHidden = false;
   for (let texel = 0; texel < marks.length; texel++) {
     const mark = marks[texel];
