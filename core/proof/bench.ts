@@ -11,7 +11,9 @@ import { type Cancel, Cancelled, type Ports } from '../port.ts';
 import type { IndexedRaster, StraightRaster } from '../raster/raster.ts';
 import type { Engine } from '../resample/engine.ts';
 import type { Treatment } from '../treatment/treatment.ts';
+import { evennessOf } from './evenness.ts';
 import { footprintOf } from './footprint.ts';
+import { offPaletteOf, paletteOf } from './palette.ts';
 import { copyPicture, cutMiddle, pictureOf } from './picture.ts';
 import { seenPicture } from './sample.ts';
 import { sectionOf } from './section.ts';
@@ -19,6 +21,7 @@ import { Shelf } from './shelf.ts';
 import { treatmentFor } from './variant.ts';
 import {
   type Answer,
+  type ArtAnswer,
   CUT_SIDE,
   type HaloAnswer,
   haloMark,
@@ -43,6 +46,7 @@ export class ProofBench {
   readonly #source: StraightRaster | IndexedRaster;
   readonly #ports: BenchPorts;
   readonly #chains = new Shelf<Chain>(CHAIN_BYTES, chainSize);
+  #palette: { readonly colors: ReadonlySet<number> | null } | null = null;
   readonly #halos = new Shelf<HaloMaps>(CHAIN_BYTES, (maps) => maps.bytes);
 
   private constructor(header: SourceHeader, source: StraightRaster | IndexedRaster, ports: BenchPorts) {
@@ -66,6 +70,8 @@ export class ProofBench {
         return this.#levels(want.treatment, cancel);
       case 'halo':
         return this.#halo(want.treatment, want.image, cancel);
+      case 'art':
+        return this.#art(want.treatment, want.image, cancel);
       case 'footprint': {
         const treatment = treatmentFor(want.treatment, want.image);
         return footprintOf(headOf(this.#source), treatment, want.image, want.x, want.y);
@@ -119,6 +125,17 @@ export class ProofBench {
     const name = 'level' in image ? image.level : image.target.name;
     const halo = maps.halos.find((each) => each.image === name) ?? null;
     return { kind: 'halo', halo, marks: maps.marks.get(name)?.slice() ?? null };
+  }
+
+  async #art(treatment: Treatment, image: PrintImage, cancel: Cancel): Promise<ArtAnswer> {
+    if ('lod' in image) return { kind: 'art', off: null, even: null };
+    this.#palette ??= { colors: paletteOf(this.#source) };
+    const fitting = treatmentFor(treatment, image);
+    const even = evennessOf(headOf(this.#source), fitting, image);
+    if (this.#palette.colors === null) return { kind: 'art', off: null, even };
+    const chain = await this.#chain(fitting, cancel);
+    const picture = pictureOf(chain.plan, imageOf(chain, image).raster);
+    return { kind: 'art', off: offPaletteOf(picture, this.#palette.colors), even };
   }
 
   async #measure(treatment: Treatment, cancel: Cancel): Promise<HaloMaps> {

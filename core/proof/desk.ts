@@ -73,6 +73,8 @@ function buffersOf(answer: Answer): ArrayBuffer[] {
       return answer.levels.map(({ cut }) => bufferOf(cut.codes));
     case 'halo':
       return answer.marks === null ? [] : [bufferOf(answer.marks)];
+    case 'art':
+      return answer.off === null ? [] : [bufferOf(answer.off.marks)];
     case 'section':
       return [bufferOf(answer.codes)];
     case 'footprint':

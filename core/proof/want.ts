@@ -19,6 +19,8 @@ export type Want =
   | { readonly kind: 'levels'; readonly treatment: Treatment }
   /** Overshoot of one image before clamping. */
   | { readonly kind: 'halo'; readonly treatment: Treatment; readonly image: PrintImage }
+  /** What of pixel art an image loses: colors of the palette, and even pixels. */
+  | { readonly kind: 'art'; readonly treatment: Treatment; readonly image: PrintImage }
   /** Source texels that make one texel of an image. */
   | {
       readonly kind: 'footprint';
@@ -36,6 +38,7 @@ export interface Answers {
   readonly print: Print;
   readonly levels: LevelsAnswer;
   readonly halo: HaloAnswer;
+  readonly art: ArtAnswer;
   readonly footprint: FootprintAnswer;
   readonly section: SectionAnswer;
 }
@@ -112,6 +115,41 @@ export interface HaloAnswer {
   } | null;
   /** A mark a texel, as `haloMark` makes it; null where nothing overshoots. */
   readonly marks: Uint16Array | null;
+}
+
+export interface ArtAnswer {
+  readonly kind: 'art';
+  /** Null where the source has no palette and not few colors, or codes cannot be compared. */
+  readonly off: OffPalette | null;
+  /** Null where the kernel does not move codes. */
+  readonly even: Evenness | null;
+}
+
+export interface OffPalette {
+  /** How many colors the source has. */
+  readonly palette: number;
+  /** Share of visible texels whose color is none of them. */
+  readonly share: number;
+  /** How many other colors there are. */
+  readonly colors: number;
+  /** 1 for each such texel. */
+  readonly marks: Uint8Array;
+}
+
+export interface Evenness {
+  readonly x: AxisEvenness;
+  readonly y: AxisEvenness;
+}
+
+/** How often the texels of a source stand along one axis of an image. */
+export interface AxisEvenness {
+  /** Texels of the image that the narrowest and the widest one takes. */
+  readonly least: number;
+  readonly most: number;
+  /** How many are left out. */
+  readonly left: number;
+  /** Texels of the image, from the first, that are of a wider one than others, or stand behind a wider gap than others. */
+  readonly uneven: readonly number[];
 }
 
 /** Source texels along one axis with their weights, which sum to 1. */

@@ -138,6 +138,21 @@ const states: readonly State[] = [
     marker: /palette of/,
     prints: 2,
   },
+  {
+    name: 'pixel art',
+    recording: () =>
+      recordDemo(
+        'sprites/wick.png',
+        {},
+        {
+          ...kept({ typed: [{ name: '0.75x', scale: 0.75 }], sight: { kind: 'target', name: '0.75x' }, show: 'art' }),
+          slots: [two[0], { id: 1, kernel: { name: 'nearest', params: {} }, change: {} }],
+        },
+      ),
+    marker: /left out/,
+    prints: 2,
+    field: ['View', 'art'],
+  },
   { name: 'difference', recording: () => cobbles({ show: 'difference' }), marker: /0\.10/, prints: 2 },
   { name: 'overshoot', recording: () => cobbles({ show: 'overshoot' }), marker: /clipped/, prints: 2 },
   { name: 'the divider', recording: () => cobbles({ compare: 'divider' }), marker: /with/, prints: 2 },

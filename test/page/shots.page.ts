@@ -85,6 +85,14 @@ const shots: readonly Shot[] = [
     shows: /clipped 22\.9 %/,
   },
   {
+    name: 'art-light',
+    texture: 'sprites/wick.png',
+    theme: 'light',
+    state: { ...target('0.75x'), typed: [{ name: '0.75x', scale: 0.75 }], show: 'art' },
+    beside: ['nearest', 'mitchell'],
+    shows: /columns and rows \d+ left out/,
+  },
+  {
     name: 'between-contrast-light',
     texture: 'ground/cobbles.png',
     theme: 'contrast-light',

@@ -1,5 +1,6 @@
-import { HALO_ABOVE, HALO_BELOW, HALO_CLIPPED } from '../../../core/proof/want.ts';
+import { type ArtAnswer, HALO_ABOVE, HALO_BELOW, HALO_CLIPPED } from '../../../core/proof/want.ts';
 import type { Extent } from '../../../core/raster/raster.ts';
+import { drawArtMarks } from './art-marks.ts';
 import { GRID_LINE, MARK_DARK, MARK_LIGHT } from './backdrop.ts';
 import { type Placement, visibleSpan } from './frame.ts';
 
@@ -9,6 +10,8 @@ export interface Overlay {
   readonly placement: Placement;
   /** A mark a texel, as the engine marks overshoot; null for none. */
   readonly marks: Uint16Array | null;
+  /** What of pixel art is lost; null for none. */
+  readonly art: ArtAnswer | null;
   /** Texel under the cursor. */
   readonly cursor: { readonly x: number; readonly y: number } | null;
   /** Ends of the cross-section in shares of the extent. */
@@ -26,6 +29,7 @@ export function drawOverlay(canvas: HTMLCanvasElement, overlay: Overlay): void {
   context.clearRect(0, 0, canvas.width, canvas.height);
   if (overlay.placement.zoom >= GRID_ZOOM) drawGrid(context, overlay);
   if (overlay.marks !== null) drawMarks(context, overlay, overlay.marks);
+  if (overlay.art !== null) drawArtMarks(context, overlay, overlay.art);
   if (overlay.line !== null) drawLine(context, overlay, overlay.line);
   if (overlay.cursor !== null) drawCursor(context, overlay, overlay.cursor);
 }

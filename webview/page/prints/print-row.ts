@@ -14,6 +14,7 @@ import { changeWords } from '../treatment/change-words.ts';
 import { unfitFor } from '../treatment/fit.ts';
 import { light, percent } from '../words/figures.ts';
 import { t } from '../words/t.ts';
+import { artFigures } from './art-figures.ts';
 import './print-card.ts';
 import type { CardAction, CardFacts, CardFigure } from './print-card.ts';
 import { rowStyles } from './print-row.styles.ts';
@@ -129,6 +130,7 @@ export class PrintRow extends LitElement {
       zoom: state.zoom,
       pan: state.pan,
       marks: state.show === 'overshoot' && print !== null ? (model.halo(treatment, seen.image)?.marks ?? null) : null,
+      art: state.show === 'art' && print !== null ? model.told({ kind: 'art', treatment, image: seen.image }) : null,
       cursor: picture === null || !this.pointing ? null : cursorTexel(state.cursor, seen.extent),
       line: state.line === 'drawn' ? lineOf(state, seen.extent) : null,
       draws: state.line === 'drawn',
@@ -200,6 +202,7 @@ function figuresOf(model: Model, treatment: Treatment, print: Print): readonly C
     add(t('halo'), halo.worst.toFixed(1), limits.halo !== null && halo.worst > limits.halo);
     if (halo.clipped > 0) add(t('clipped'), percent(halo.clipped));
   }
+  for (const each of artFigures(model.told({ kind: 'art', treatment, image }))) figures.push(each);
   if (coverage !== null) {
     const loss = base?.coverage ? 1 - coverage / base.coverage : 0;
     add(t('coverage'), percent(coverage), limits.thinning !== null && loss > limits.thinning);

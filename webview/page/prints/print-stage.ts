@@ -1,5 +1,5 @@
 import { html, LitElement, type PropertyValues } from 'lit';
-import type { Picture } from '../../../core/proof/want.ts';
+import type { ArtAnswer, Picture } from '../../../core/proof/want.ts';
 import type { Extent } from '../../../core/raster/raster.ts';
 import type { Wrap } from '../../../core/treatment/treatment.ts';
 import { controls } from '../form/controls.ts';
@@ -30,6 +30,8 @@ export interface Scene {
   readonly zoom: number | null;
   readonly pan: { readonly x: number; readonly y: number };
   readonly marks: Uint16Array | null;
+  /** Marks of pixel art; null for none. */
+  readonly art: ArtAnswer | null;
   readonly cursor: { readonly x: number; readonly y: number } | null;
   readonly line: Line | null;
   /** Whether dragging draws the line of the cross-section in place of panning. */
@@ -166,11 +168,11 @@ export class PrintStage extends LitElement {
       this.#painted = inputs;
       this.#paintPrint(scene, placement, ratio);
     }
-    const { extent, marks, cursor, line } = scene;
-    const over = [...inputs.slice(4), marks, cursor?.x, cursor?.y, line];
+    const { extent, marks, art, cursor, line } = scene;
+    const over = [...inputs.slice(4), marks, art, cursor?.x, cursor?.y, line];
     if (over.some((each, i) => each !== this.#overlaid[i])) {
       this.#overlaid = over;
-      drawOverlay(this.#canvas('.over'), { extent, placement, ratio, marks, cursor, line });
+      drawOverlay(this.#canvas('.over'), { extent, placement, ratio, marks, art, cursor, line });
     }
     this.dataset.zoom = String(placement.zoom);
     this.dataset.left = String(placement.left);

@@ -47,6 +47,7 @@ export function shaderOf(view: View, picture: Picture, reference: Picture | null
     case 'difference':
       return reference === null ? opaque(picture) : difference(view, picture, reference);
     case 'overshoot':
+    case 'art':
       return dimmed(picture);
   }
 }

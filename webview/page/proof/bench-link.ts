@@ -108,6 +108,8 @@ function sizeOf(answer: Answer | { readonly problem: Problem }): number {
       return answer.levels.reduce((sum, { cut }) => sum + cut.codes.byteLength, 0);
     case 'halo':
       return answer.marks?.byteLength ?? 0;
+    case 'art':
+      return answer.off?.marks.byteLength ?? 64;
     case 'section':
       return answer.codes.byteLength;
     case 'footprint':

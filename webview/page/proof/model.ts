@@ -196,7 +196,7 @@ export class Model extends EventTarget {
   }
 
   /** An answer to any other want, null until there is one. */
-  told<K extends 'footprint' | 'section'>(want: Want & { readonly kind: K }) {
+  told<K extends 'art' | 'footprint' | 'section'>(want: Want & { readonly kind: K }) {
     const told = this.#bench?.told<K>(want);
     return told === undefined || isProblem(told) ? null : told;
   }

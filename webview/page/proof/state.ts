@@ -2,7 +2,7 @@ import { type Sight, type Slot, STATE_VERSION } from '../../../core/proof/slot.t
 import type { Preferences } from '../../../core/protocol.ts';
 import type { Target } from '../../../core/treatment/treatment.ts';
 
-export type Show = 'color' | 'r' | 'g' | 'b' | 'a' | 'bare' | 'mask' | 'lit' | 'difference' | 'overshoot';
+export type Show = 'color' | 'r' | 'g' | 'b' | 'a' | 'bare' | 'mask' | 'lit' | 'difference' | 'overshoot' | 'art';
 
 /** What differences are taken from: the area mean of the source, or the first print. */
 export type Against = 'source' | 'settings';

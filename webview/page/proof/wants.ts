@@ -24,7 +24,10 @@ export function wantsOf(model: Model): readonly Want[] {
   wants.push({ kind: 'footprint', treatment: own, image, ...cursorTexel(state.cursor, seen.extent) });
   wants.push({ kind: 'section', ...lineOf(state, seen.extent) });
   wants.push({ kind: 'levels', treatment });
-  if (!('lod' in image)) for (const each of treatments) wants.push({ kind: 'halo', treatment: each, image });
+  if (!('lod' in image)) {
+    for (const each of treatments) wants.push({ kind: 'art', treatment: each, image });
+    for (const each of treatments) wants.push({ kind: 'halo', treatment: each, image });
+  }
   for (const stop of model.stops) {
     if (stop.kind !== 'level' && Math.max(stop.extent.width, stop.extent.height) <= THUMB_SIDE) {
       wants.push({ kind: 'print', treatment, image: stop.image });

@@ -54,6 +54,7 @@ export class ViewBar extends LitElement {
           : nothing
       }
       ${state.show === 'overshoot' ? html`<span class="quiet">${t('/ above, \\ below, × clipped')}</span>` : nothing}
+      ${state.show === 'art' ? html`<span class="quiet">${t('· off the palette, ▬ wider, or behind one left out')}</span>` : nothing}
       ${
         showsBackdropChoice(model)
           ? choice(t('Backdrop'), state.backdrop, backdropNames(), (backdrop) => model.set({ backdrop }))
@@ -131,8 +132,21 @@ function viewsOf({ header, treatment }: Model): readonly (readonly [Show, string
       mask: treatment?.alpha.use === 'mask' ? 'yes' : 'no',
     }),
     ['overshoot', t('overshoot')],
+    ...(marksArt(model) ? ([['art', t('off palette, uneven')]] as const) : []),
     ['difference', t('difference')],
   ];
+}
+
+/** Whether a print can lose what pixel art has: a palette, or even pixels. */
+function marksArt(model: Model): boolean {
+  const { state, seen } = model;
+  if (state.show === 'art') return true;
+  return state.slots.some((slot) => {
+    const art = model.told({ kind: 'art', treatment: model.treatmentOf(slot)!, image: seen!.image });
+    return (
+      art !== null && (art.off !== null || (art.even?.x.uneven.length ?? 0) + (art.even?.y.uneven.length ?? 0) > 0)
+    );
+  });
 }
 
 function showsBackdropChoice(model: Model): boolean {
