@@ -164,6 +164,7 @@ export class ReviewPrints extends LitElement {
       zoom: state.zoom,
       pan: state.pan,
       marks: null,
+      art: null,
       cursor: picture === null || !this.pointing ? null : cursorOf(model),
       line: null,
       draws: false,

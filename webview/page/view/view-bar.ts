@@ -122,7 +122,8 @@ const againstNames = () =>
     ['settings', t('settings’ print')],
   ] as const;
 
-function viewsOf({ header, treatment }: Model): readonly (readonly [Show, string])[] {
+function viewsOf(model: Model): readonly (readonly [Show, string])[] {
+  const { header, treatment } = model;
   const normal = treatment?.content === 'normal' || Object.values(treatment?.channels ?? {}).includes('normal');
   return [
     ...pictureViews({
