@@ -35,6 +35,8 @@ export interface HostCalls {
   save(file: { readonly name: string; readonly bytes: ArrayBuffer }): { readonly path: string | null };
   /** Shows the outputs of this texture in the explorer. */
   reveal(): Record<string, never>;
+  /** Puts this texture's report, its treatment and what was measured, on the clipboard. */
+  report(): Record<string, never>;
   /** Makes a file of this proof, with what the page keeps, and asks where to. `path` is null where the user thought better of it. */
   export(order: ExportOrder): { readonly path: string | null };
 }

@@ -342,6 +342,28 @@ test('a switch on the settings’ print begins a print beside it, which can be a
   await context.close();
 });
 
+test('outputs, settings and report are asked of the host, by keyboard too', async () => {
+  const { page, context } = await showPage(browser, recordDemo('ui/lantern.png', { state: { kind: 'built' } }));
+  await waitForPrints(page);
+  for (const name of ['Reveal outputs', 'Open settings', 'Copy report']) {
+    const button = page.getByRole('button', { name, exact: true });
+    await expect.poll(() => button.isEnabled()).toBe(true);
+    await button.focus();
+    await page.keyboard.press('Enter');
+  }
+  await page.getByText('The report is on the clipboard.').waitFor();
+  const asked = await page.evaluate(
+    () => (window as unknown as { asked: { call: string; question: unknown }[] }).asked,
+  );
+  const own = asked.filter(({ call }) => ['reveal', 'showSettings', 'report'].includes(call));
+  expect(own).toEqual([
+    { call: 'reveal', question: null },
+    { call: 'showSettings', question: { key: null } },
+    { call: 'report', question: null },
+  ]);
+  await context.close();
+});
+
 /** Twice the size: by the text's own size, and as an editor's zoom makes it, which leaves half the room. The narrowest is as an
  *  editor among others. */
 test.each([

@@ -63,6 +63,7 @@ async function answer(
     case 'adopt':
     case 'showSettings':
     case 'reveal':
+    case 'report':
     case 'export':
       return { problem: { code: 'exported-page', severity: 'error', values: {} } };
   }

@@ -13,7 +13,7 @@ import { adopt } from './adopt.ts';
 import type { Answers } from './channel.ts';
 import type { ProofDocument } from './document.ts';
 import { type ExportTools, exportProof } from './export.ts';
-import { revealOutputs } from './outputs.ts';
+import { reportOf, revealOutputs } from './outputs.ts';
 
 /** What the host answers to a proof's page. */
 export function answersFor(
@@ -69,6 +69,10 @@ export function answersFor(
     },
     async reveal() {
       await revealOutputs(texture);
+      return {};
+    },
+    async report() {
+      await vscode.env.clipboard.writeText(await reportOf(texture));
       return {};
     },
     async export(order) {

@@ -97,6 +97,7 @@ const questions: { readonly [K in HostCall]: Shape<Question<K>> } = {
     bytes: fileBytes,
   }),
   reveal: nothing,
+  report: nothing,
   export: object<ExportOrder>({ form: choice('sheet', 'page'), state: plainState }),
 };
 

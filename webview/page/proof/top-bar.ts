@@ -79,7 +79,7 @@ export class TopBar extends LitElement {
       <span class="gap"></span>
       <span class=${note?.kind === 'failed' ? 'failed' : 'quiet'} role="status">${note?.text ?? ''}</span>
       <span class="group">
-        ${this.#adopt(model)} ${this.#export(model)} ${this.#build(model)}
+        ${this.#about(model)} ${this.#adopt(model)} ${this.#export(model)} ${this.#build(model)}
       </span>
       ${typeof open.abilities.build === 'string' ? html`<span class="quiet why">${open.abilities.build}</span>` : nothing}
     `;
@@ -126,6 +126,39 @@ export class TopBar extends LitElement {
     >
       ${this.busy === 'build' ? t('Building …') : t('Build')}
     </button>`;
+  }
+
+  /** What is known of the texture elsewhere: its outputs, its settings, its report. */
+  #about(model: Model) {
+    const { reveal, settings } = model.open!.abilities;
+    if (settings === null) return nothing;
+    const idle = this.busy === null;
+    return html`
+      <button
+        class="plain"
+        ?disabled=${!idle || reveal !== true || model.built.kind === 'not-built'}
+        title=${typeof reveal === 'string' ? reveal : t('Show what was built of this texture in the explorer')}
+        @click=${() => this.#do(model, 'reveal', null)}
+      >
+        ${t('Reveal outputs')}
+      </button>
+      <button
+        class="plain"
+        ?disabled=${!idle}
+        title=${t('Show the settings that apply to this texture')}
+        @click=${() => this.#do(model, 'showSettings', { key: null })}
+      >
+        ${t('Open settings')}
+      </button>
+      <button
+        class="plain"
+        ?disabled=${!idle}
+        title=${t('Its treatment, and what the build measured, as text')}
+        @click=${() => this.#do(model, 'report', null)}
+      >
+        ${t('Copy report')}
+      </button>
+    `;
   }
 
   #export(model: Model) {
@@ -178,12 +211,18 @@ export class TopBar extends LitElement {
     this.busy = null;
   }
 
-  async #do<K extends 'build' | 'adopt' | 'showSettings'>(model: Model, call: K, question: Question<K>): Promise<void> {
+  async #do<K extends 'build' | 'adopt' | 'showSettings' | 'reveal' | 'report'>(
+    model: Model,
+    call: K,
+    question: Question<K>,
+  ): Promise<void> {
     this.busy = call;
     const { reply } = await model.link.ask(call, question);
     this.busy = null;
     if ('problem' in reply) model.say({ text: say(reply.problem), kind: 'failed' });
-    else model.say(call === 'showSettings' ? null : { text: doneWords(reply.ok as object), kind: 'said' });
+    else if (call === 'report') model.say({ text: t('The report is on the clipboard.'), kind: 'said' });
+    else if (call === 'showSettings' || call === 'reveal') model.say(null);
+    else model.say({ text: doneWords(reply.ok as object), kind: 'said' });
   }
 }
 
