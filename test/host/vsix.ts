@@ -14,20 +14,30 @@ export async function packVsix(folder: string): Promise<string> {
 
 /** Packs an extension that gives the editor a file system in memory, which holds what a folder holds, and answers the file. */
 export async function packMemlab(seed: string, folder: string): Promise<string> {
-  const made = join(folder, 'memlab');
-  cpSync(seed, join(made, 'seed'), { recursive: true });
-  cpSync(join(import.meta.dirname, 'memlab', 'package.json'), join(made, 'package.json'));
+  cpSync(seed, join(folder, 'memlab', 'seed'), { recursive: true });
+  return packHelper('memlab', folder);
+}
+
+/** Packs an extension that answers what the extension host takes, and answers the file. */
+export function packProbe(folder: string): Promise<string> {
+  return packHelper('probe', folder);
+}
+
+async function packHelper(name: string, folder: string): Promise<string> {
+  const made = join(folder, name);
+  mkdirSync(made, { recursive: true });
+  cpSync(join(import.meta.dirname, name, 'package.json'), join(made, 'package.json'));
   writeFileSync(join(made, 'LICENSE'), 'MIT\n');
   writeFileSync(join(made, 'README.md'), 'For tests.\n');
   await build({
-    entryPoints: [join(import.meta.dirname, 'memlab', 'main.ts')],
+    entryPoints: [join(import.meta.dirname, name, 'main.ts')],
     outfile: join(made, 'main.js'),
     bundle: true,
     platform: 'node',
     format: 'cjs',
     external: ['vscode'],
   });
-  const file = join(folder, 'memlab.vsix');
+  const file = join(folder, `${name}.vsix`);
   await pack(made, file);
   return file;
 }
