@@ -39,6 +39,7 @@ const BENCH_ENTRIES = [
   'test/bench/main.ts',
   'test/bench/cold-start.ts',
   'test/bench/peak.ts',
+  'test/bench/page-speed.ts',
 ];
 
 /** Rooms with a tsconfig of their own. */
@@ -210,6 +211,7 @@ async function bench(rest) {
       });
     }
     copyFileSync(KERNELS, `${folder}/engine.wasm`);
+    for (const { entry, file } of PAGE_BUNDLES) await bundleForPage({ entry, file: file.replace('dist', folder) });
     return await run([`${folder}/main.js`, ...rest]);
   } finally {
     rmSync(folder, { recursive: true, force: true });

@@ -23,6 +23,8 @@ export interface Cases {
   readonly accuracy: { readonly side: number };
   /** Side of the first chain of a new process, and how many processes. */
   readonly cold: { readonly side: number; readonly rounds: number };
+  /** Side of the texture that a page opens, and rounds. */
+  readonly page: { readonly side: number; readonly rounds: number };
 }
 
 export interface PhaseCase {
@@ -75,6 +77,7 @@ export const fullCases: Cases = {
   memory: { side: 4096 },
   accuracy: { side: 1024 },
   cold: { side: 1024, rounds: 11 },
+  page: { side: 2048, rounds: 5 },
 };
 
 /** Each once and small: what CI runs to see that all of it still runs. */
@@ -95,4 +98,5 @@ export const smokeCases: Cases = {
   memory: { side: 64 },
   accuracy: { side: 32 },
   cold: { side: 64, rounds: 1 },
+  page: { side: 256, rounds: 1 },
 };

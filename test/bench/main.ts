@@ -12,11 +12,11 @@ import type { Figure, Findings, Table } from './figure.ts';
 import { benchFolder } from './folder.ts';
 import { benchLimits } from './limits.ts';
 import { benchMemory } from './memory.ts';
+import { benchPage } from './page.ts';
 import { benchPhases } from './phases.ts';
 import { benchProject } from './project.ts';
 import { writeReport } from './report.ts';
 import { benchReview } from './review.ts';
-import { benchLater } from './slots.ts';
 
 // Run by `npm run bench`, bundled, from the top of the tree.
 
@@ -31,7 +31,7 @@ const benches: Readonly<Record<string, (cases: Cases) => Promise<Findings>>> = {
   memory: benchMemory,
   accuracy: benchAccuracy,
   cold: benchCold,
-  later: benchLater,
+  page: benchPage,
 };
 
 const { values } = parseArgs({

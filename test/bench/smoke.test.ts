@@ -2,6 +2,7 @@ import { spawnSync } from 'node:child_process';
 import { readFileSync } from 'node:fs';
 import { join } from 'node:path';
 import { expect, it } from 'vitest';
+import { isLeftOut } from '../host/skip.ts';
 import { top } from '../house/tree.ts';
 import { folderOfTests } from '../node/bundle.ts';
 import { targets } from './targets.ts';
@@ -40,4 +41,5 @@ const TITLES = [
   'Memory of a build of',
   'Accuracy',
   'Cold start',
+  ...(isLeftOut ? [] : ['The page']),
 ];

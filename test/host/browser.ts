@@ -1,11 +1,16 @@
 import { chmodSync, createReadStream, createWriteStream, existsSync, mkdirSync, rmSync } from 'node:fs';
+import { createRequire } from 'node:module';
 import { delimiter, join } from 'node:path';
 import { pipeline } from 'node:stream/promises';
 import { createBrotliDecompress } from 'node:zlib';
-import { type Browser, chromium } from 'playwright-core';
+import type Playwright from 'playwright-core';
+import type { Browser } from 'playwright-core';
 import { cached } from './cache.ts';
 import { type Pinned, unpackPackage } from './package.ts';
 import { run } from './process.ts';
+
+// A bundle of this lies in dist; what only tests need is installed in the room of the tests.
+const require = createRequire(join(process.cwd(), 'test/package.json'));
 
 /** A Chromium that comes as a package, for machines without one. */
 const CHROMIUM: Pinned = {
@@ -18,6 +23,7 @@ const CHROMIUM: Pinned = {
  *  machine alone. `more` are arguments for Chromium. */
 export async function launchBrowser(more: readonly string[] = []): Promise<Browser> {
   const { executablePath, env } = await findBrowser();
+  const { chromium }: typeof Playwright = require('playwright-core');
   return chromium.launch({
     executablePath,
     env: { ...(process.env as Record<string, string>), ...env },

@@ -12,6 +12,8 @@ export const ORIGIN = 'http://page.localhost';
 export interface Showing {
   /** In place of the policy that the host's page has. */
   readonly policy?: string;
+  /** Folder of the built page, in place of the one that ships. */
+  readonly pages?: string;
   /** `own` takes the browser's window as it is. */
   readonly window?: 'own';
   readonly width?: number;
@@ -27,7 +29,7 @@ export async function showPage(
   recording: Recording,
   showing: Showing = {},
 ): Promise<{ readonly page: Page; readonly context: BrowserContext }> {
-  const { width = 1280, height = 900, theme = 'dark' } = showing;
+  const { width = 1280, height = 900, theme = 'dark', pages = join(top, 'dist/page') } = showing;
   const context = await browser.newContext({
     // A browser of another device scale has a window of its own; emulating the scale would not snap boxes as it does.
     viewport: showing.window === 'own' ? null : { width, height },
@@ -50,7 +52,7 @@ export async function showPage(
     }
     const asked = themes[path.slice(1, -'.css'.length) as ThemeName];
     if (asked !== undefined) return route.fulfill({ contentType: 'text/css', body: asked.css });
-    const file = join(top, 'dist/page', path.slice(1));
+    const file = join(pages, path.slice(1));
     if (!existsSync(file)) return route.fulfill({ status: 404, body: '' });
     const contentType = path.endsWith('.css') ? 'text/css' : 'text/javascript';
     return route.fulfill({ contentType, body: readFileSync(file) });

@@ -2,7 +2,7 @@ import type { Browser, Page } from 'playwright-core';
 import { encodePng } from '../../core/codec/png/encode.ts';
 import { deflate } from '../../extension/node/deflate.ts';
 import { noiseRaster } from '../fixtures/noise.ts';
-import { showPage, waitForPrints } from './browser.ts';
+import { type Showing, showPage, waitForPrints } from './browser.ts';
 import { firstPrintOf, type Recording, record } from './recorded.ts';
 import { troubleOf } from './stage.ts';
 
@@ -21,9 +21,9 @@ export interface PageSpeed {
 /** Kernels that are chosen one after another. */
 const KERNELS = ['mitchell', 'lanczos3', 'box', 'catmull-rom', 'triangle', 'lanczos4', 'b-spline', 'gaussian'];
 
-/** A 2048x2048 RGB picture with the host's first print of a level. */
-export async function speedRecording(level: number): Promise<Recording> {
-  const file = await encodePng(noiseRaster(5, { width: 2048, height: 2048 }, 3, 8, 'noise'), deflate);
+/** A square RGB picture with the host's first print of a level. */
+export async function speedRecording(side: number, level: number): Promise<Recording> {
+  const file = await encodePng(noiseRaster(5, { width: side, height: side }, 3, 8, 'noise'), deflate);
   const slots = [
     { id: 0, kernel: null, change: {} },
     { id: 1, kernel: { name: 'hermite', params: {} }, change: {} },
@@ -33,8 +33,8 @@ export async function speedRecording(level: number): Promise<Recording> {
 }
 
 /** Opens a recording and changes kernels on it, in a browser that does nothing else. */
-export async function measurePage(browser: Browser, recording: Recording): Promise<PageSpeed> {
-  const { page, context } = await showPage(browser, recording);
+export async function measurePage(browser: Browser, recording: Recording, showing: Showing = {}): Promise<PageSpeed> {
+  const { page, context } = await showPage(browser, recording, showing);
   try {
     const [first, own] = await Promise.all([
       timeOf(page, '[data-painted]'),
