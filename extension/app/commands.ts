@@ -6,6 +6,7 @@ import { type EditorTools, VIEW_TYPE } from './proof/editor.ts';
 import { exportByCommand } from './proof/export-command.ts';
 import { TextureFacts } from './proof/facts.ts';
 import { reportOf, revealOutputs } from './proof/outputs.ts';
+import { closePreviewOf } from './proof/preview-tab.ts';
 import { type ReviewParts, reviewCommands } from './review/commands.ts';
 import { selectedResources, selectedTexture } from './selected.ts';
 import { createSettings, isThere } from './settings/create.ts';
@@ -38,6 +39,7 @@ export function registerCommands(
       const textures = first === undefined ? [] : selectedResources(first, all);
       for (const each of textures.length > 1 ? textures : texture === null ? [] : [texture]) {
         await vscode.commands.executeCommand('vscode.openWith', each, VIEW_TYPE);
+        await closePreviewOf(each);
       }
     },
     exportProof: aboutTexture((texture) => exportByCommand(factsOf(texture), open, { platform, pages })),

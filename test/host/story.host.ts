@@ -7,10 +7,22 @@ import { top } from '../house/tree.ts';
 import { launchBrowser } from './browser.ts';
 import { type Host, startHost } from './server.ts';
 import { packVsix } from './vsix.ts';
-import { explorerRow, newPage, openWorkbench, runCommand, webviewOf } from './workbench.ts';
+import { choice, explorerRow, newPage, openWorkbench, runCommand, webviewOf } from './workbench.ts';
 import { makeWorkspace } from './workspace.ts';
 
 const SHOTS = join(top, 'dist', 'test', 'host');
+
+/** What stands beside a walkthrough's step: how wide its picture is, or text. */
+async function mediaOf(page: Page): Promise<string> {
+  const media = page.locator('.gettingStartedContainer .getting-started-media');
+  const picture = media.locator('img');
+  const text = media.locator('iframe.webview.ready');
+  await picture.or(text).first().waitFor();
+  if ((await text.count()) > 0) return 'text';
+  const width = () => picture.evaluate((image) => (image as HTMLImageElement).naturalWidth);
+  await expect.poll(width).toBeGreaterThan(0);
+  return `${await width()} wide`;
+}
 
 describe('as an artist would', () => {
   let host: Host;
@@ -62,12 +74,19 @@ describe('as an artist would', () => {
     expect(createHash('sha256').update(bytes).digest('hex')).toBe(target.file.sha256);
   });
 
-  test('the walkthrough opens', async () => {
+  test('the walkthrough opens, and each step shows what it speaks of', async () => {
     await runCommand(page, 'Welcome: Open Walkthrough');
-    await page.keyboard.type('Sizeproof');
-    await page.keyboard.press('Enter');
-    await page.locator('.gettingStartedContainer .step-list-container .step-title').first().waitFor();
-    await page.screenshot({ path: join(SHOTS, 'walkthrough.png') });
+    await choice(page, 'Textures at the sizes').click();
+    const steps = page.locator('.gettingStartedContainer .step-list-container .step-title');
+    await steps.first().waitFor();
+    const shown = [];
+    for (let i = 0; i < (await steps.count()); i++) {
+      if (i > 0) await steps.nth(i).click();
+      shown.push(await mediaOf(page));
+      await page.screenshot({ path: join(SHOTS, `walkthrough-${i}.png`) });
+    }
+    // The editor takes pictures to be drawn for 1.5 device pixels a CSS pixel.
+    expect(shown).toEqual([`${Math.round(896 / 1.5)} wide`, 'text', 'text', `${Math.round(1064 / 1.5)} wide`]);
   });
 
   async function open(name: string): Promise<FrameLocator> {
