@@ -10,7 +10,7 @@ import { noiseRaster } from '../fixtures/noise.ts';
 import { launchBrowser } from '../host/browser.ts';
 import { changeTheme, type Showing, showPage, waitForPrints } from './browser.ts';
 import { firstPrintOf, type Recording, record, recordDemo, stale } from './recorded.ts';
-import { troubleOf } from './stage.ts';
+import { boxOfPrint, troubleOf } from './stage.ts';
 import type { ThemeName } from './themes.ts';
 
 const axe = readFileSync(createRequire(import.meta.url).resolve('axe-core/axe.min.js'), 'utf8');
@@ -363,6 +363,27 @@ test('outputs, settings and report are asked of the host, by keyboard too', asyn
   ]);
   await context.close();
 });
+
+test.each([
+  ['sprites/wick.png', '3x'],
+  ['ui/lantern.png', 'badge'],
+])(
+  'in an editor’s part of a window of 1280 by 800 the first look holds the whole print of %s and its figures',
+  async (path, name) => {
+    const recording = recordDemo(path, {}, kept({ sight: { kind: 'target', name } }));
+    const { page, context } = await showPage(browser, recording, { width: 980, height: 700 });
+    await waitForPrints(page, 2);
+    const footer = page.locator('print-card footer').first();
+    await footer.getByText('luminance').waitFor();
+    const { y, height } = (await footer.boundingBox())!;
+    expect(y + height).toBeLessThanOrEqual(700);
+    const stage = (await page.locator('print-stage').first().boundingBox())!;
+    const print = await boxOfPrint(page);
+    expect(print.y).toBeGreaterThanOrEqual(stage.y);
+    expect(print.y + print.height).toBeLessThanOrEqual(stage.y + stage.height);
+    await context.close();
+  },
+);
 
 /** Twice the size: by the text's own size, and as an editor's zoom makes it, which leaves half the room. The narrowest is as an
  *  editor among others. */

@@ -40,7 +40,7 @@ export class ProofPage extends LitElement {
       :host {
         display: grid;
         grid-template-columns: minmax(0, 1fr);
-        grid-template-rows: auto auto auto auto auto minmax(340px, 1fr) auto auto;
+        grid-template-rows: auto auto auto auto auto minmax(round(17em, 1px), 1fr) auto auto;
         min-height: 100vh;
       }
       .axis {
