@@ -74,12 +74,10 @@ export function reviewPage(
   const limit = page.limitBytes ?? REVIEW_BYTES;
   const blocks: CarriedBlock[] = [];
   let bytes = 0;
-  let left = 0;
   const textures = order.textures.map(({ before, after, ...texture }, index) => {
     const size = sizeOf(before) + sizeOf(after);
     const fits = bytes + size <= limit;
     if (fits) bytes += size;
-    else left++;
     const carry = (side: PairSide, which: 'before' | 'after'): CarriedSide => {
       if (side.kind !== 'file') return side;
       if (!fits) {
@@ -93,6 +91,7 @@ export function reviewPage(
     };
     return { ...texture, before: carry(before, 'before'), after: carry(after, 'after') };
   });
+  const left = textures.filter(({ before, after }) => [before, after].some(isLeftOut)).length;
   const carried: CarriedReview = {
     format: FORMAT,
     beforeLabel: order.beforeLabel,
@@ -112,6 +111,10 @@ export function reviewPage(
     },
     newHash,
   );
+}
+
+function isLeftOut(side: CarriedSide): boolean {
+  return side.kind === 'problem' && side.problem.code === 'side-too-large';
 }
 
 function sizeOf(side: PairSide): number {

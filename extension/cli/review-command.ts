@@ -1,25 +1,23 @@
+import { REVIEW_BYTES, reviewPage } from '../../core/export/review-page.ts';
 import { type Problem, Refusal, say } from '../../core/problem.ts';
-import { reportHtml } from '../../core/review/html.ts';
 import { reportMarkdown } from '../../core/review/markdown.ts';
-import type { ReviewPictures } from '../../core/review/pictures.ts';
 import { type ReportRow, reportRow, sortByImpact } from '../../core/review/report.ts';
 import { sayVerdict } from '../../core/review/verdict.ts';
 import { seenAt } from '../../core/review/visible.ts';
 import { resolvePath } from '../../core/treatment/path.ts';
 import { type Range, readRange } from '../node/git/range.ts';
-import { openVersions } from '../node/git/versions.ts';
-import { orRefuse } from '../node/laydown.ts';
+import { openVersions, type Versions } from '../node/git/versions.ts';
 import { defaultMemoryBytes } from '../node/memory.ts';
 import { nodeDisk, slashed } from '../node/node-disk.ts';
-import { parentOf } from '../node/path.ts';
+import { readPageCode } from '../node/page-code.ts';
 import { nodePorts } from '../node/ports.ts';
 import { listFiles } from '../node/review/files.ts';
 import { glanceEntries } from '../node/review/glance.ts';
 import { type Judged, judgedGlance, judgedReview } from '../node/review/judge.ts';
 import { listReview, type ReviewList } from '../node/review/list.ts';
-import { picturesOf } from '../node/review/pictures.ts';
 import { reviewEntries } from '../node/review/run.ts';
-import { temporaryFor } from '../node/temporary.ts';
+import { sidesWithin } from '../node/review/sides.ts';
+import { writeWhole } from '../node/whole-file.ts';
 import type { Arguments } from './arguments.ts';
 import { problemJson } from './print.ts';
 import { openProgress } from './progress.ts';
@@ -59,8 +57,8 @@ export async function runReview(args: Arguments, shell: Shell): Promise<Result> 
       progress.clear();
     }
     const sorted = sortByImpact(judged.filter((each) => each !== undefined));
-    const pictures = args.proof.html === null ? [] : await picturesOf(sorted, { versions, memoryBytes, cancel });
-    return await conclude(args, shell, list, sorted, pictures);
+    const page = args.proof.html === null || cancel.cancelled ? null : await pageOf(list, sorted, versions);
+    return await conclude(args, shell, list, sorted, page);
   } catch (error) {
     if (error instanceof Refusal) return onlyProblems([error.problem]);
     if (shell.isCancelled()) return { ...onlyProblems([]), cancelled: true };
@@ -79,7 +77,7 @@ async function conclude(
   shell: Shell,
   list: ReviewList,
   sorted: readonly Judged[],
-  pictures: readonly (ReviewPictures | null)[],
+  page: string | null,
 ): Promise<Result> {
   const rows = sorted.map(reportRow);
   const summary = summaryOf(list, sorted, shell.isCancelled());
@@ -89,14 +87,8 @@ async function conclude(
     const text = reportMarkdown({ ...list, rows, summary, problems: list.problems.map(say) });
     problems.push(...(await writeReport(resolvePath(shell.folder, slashed(args.markdown)), text)));
   }
-  if (args.proof.html !== null) {
-    const entries = sorted.map(({ review }, index) => ({
-      row: rows[index],
-      review,
-      pictures: pictures[index] ?? null,
-    }));
-    const text = reportHtml({ ...list, entries, summary, problems: list.problems.map(say) }, nodePorts.newHash);
-    problems.push(...(await writeReport(resolvePath(shell.folder, slashed(args.proof.html)), text)));
+  if (args.proof.html !== null && page !== null) {
+    problems.push(...(await writeReport(resolvePath(shell.folder, slashed(args.proof.html)), page)));
   }
   const nameOf = (path: string): string => path;
   return {
@@ -175,16 +167,31 @@ function jsonOf(judged: Judged, nameOf: (path: string) => string): object {
   };
 }
 
+/** The review as the editor's panel shows it, in one file. */
+async function pageOf(list: ReviewList, sorted: readonly Judged[], versions: Versions): Promise<string> {
+  const { before: beforeLabel, after: afterLabel } = list;
+  const entries = sorted.map(({ entry }) => entry);
+  const sides = await sidesWithin(entries, versions, REVIEW_BYTES);
+  const textures = sorted.map(({ path, oldPath, status, verdict, impact, manifest, problems }, index) => ({
+    ...{ path, oldPath, status, verdict, impact, manifest, problems },
+    ...sides[index],
+  }));
+  const page = {
+    title: `Texture changes, ${beforeLabel} to ${afterLabel}`,
+    code: readPageCode(new URL('./page/', import.meta.url)),
+    language: 'en',
+    words: {},
+  };
+  return reviewPage({ beforeLabel, afterLabel, textures, preferences: PREFERENCES }, page, nodePorts.newHash);
+}
+
+/** What the page starts with; 333 ms between two swaps is the least. */
+const PREFERENCES = { backdrop: 'checker', swapDwell: 333 } as const;
+
 /** Writes a report whole, or says why not. */
 async function writeReport(path: string, text: string): Promise<Problem[]> {
-  const bytes = new TextEncoder().encode(text);
-  const temporary = temporaryFor(path);
   try {
-    await orRefuse(path, bytes.length, async () => {
-      await nodeDisk.makeFolder(parentOf(path));
-      await nodeDisk.write(temporary, bytes);
-      await nodeDisk.rename(temporary, path);
-    });
+    await writeWhole(nodeDisk, path, new TextEncoder().encode(text));
     return [];
   } catch (error) {
     if (error instanceof Refusal) return [error.problem];

@@ -1,6 +1,4 @@
 import { type Cancel, Cancelled } from '../../../core/port.ts';
-import { Refusal } from '../../../core/problem.ts';
-import type { PairSide } from '../../../core/review/want.ts';
 import { listBranches, listCommits } from '../git/log.ts';
 import type { Range } from '../git/range.ts';
 import { openRepository } from '../git/repository.ts';
@@ -12,8 +10,9 @@ import { defaultWorkers, runInWorkers } from '../pool.ts';
 import { listFiles } from './files.ts';
 import { type GlancedEntry, glanceEntries } from './glance.ts';
 import { judgedReview } from './judge.ts';
-import { listReview, type ReviewList, type ReviewVersion } from './list.ts';
+import { listReview, type ReviewList } from './list.ts';
 import { reviewEntries } from './run.ts';
+import { sidesOf } from './sides.ts';
 
 interface CancelToken {
   readonly isCancellationRequested: boolean;
@@ -93,8 +92,7 @@ function sessionOf(list: ReviewList, versions: Versions, workerUrl: URL) {
       }
     },
     async sides(index: number) {
-      const { before, after, path, oldPath } = entries[index];
-      return { before: await sideOf(before, oldPath, versions), after: await sideOf(after, path, versions) };
+      return sidesOf(entries[index], versions);
     },
     close: () => versions.close(),
   };
@@ -102,23 +100,6 @@ function sessionOf(list: ReviewList, versions: Versions, workerUrl: URL) {
 
 type Known = GlancedEntry['glance'] & { readonly content: string };
 type Reviewed = Pick<ReturnType<typeof judgedReview>, 'verdict' | 'impact' | 'review' | 'problems'>;
-
-/** One version with its bytes in a buffer of their own, to be posted to a page. */
-export async function sideOf(version: ReviewVersion | null, path: string, versions: Versions): Promise<PairSide> {
-  if (version === null) return { kind: 'none' };
-  const { file, treatment } = version;
-  try {
-    if (treatment === null) throw new Refusal({ code: 'settings-broken', severity: 'error', values: {} });
-    const bytes = await versions.content(file, PAGE_BYTES);
-    return { kind: 'file', path, treatment, bytes: new Uint8Array(bytes).buffer };
-  } catch (error) {
-    if (error instanceof Refusal) return { kind: 'problem', problem: error.problem };
-    throw error;
-  }
-}
-
-/** A file that a page is given: moving more takes many seconds. */
-const PAGE_BYTES = 256 * 1024 * 1024;
 
 function cancelOf(token: CancelToken): Cancel {
   return {
