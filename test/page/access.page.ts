@@ -8,7 +8,7 @@ import { type HostEvent, PROTOCOL } from '../../core/protocol.ts';
 import { deflate } from '../../extension/node/deflate.ts';
 import { noiseRaster } from '../fixtures/noise.ts';
 import { launchBrowser } from '../host/browser.ts';
-import { changeTheme, type Showing, showPage, waitForPrints } from './browser.ts';
+import { changeTheme, type Showing, showPage, waitForNumbers, waitForPrints } from './browser.ts';
 import { firstPrintOf, type Recording, record, recordDemo, stale } from './recorded.ts';
 import { boxOfPrint, troubleOf } from './stage.ts';
 import type { ThemeName } from './themes.ts';
@@ -442,6 +442,7 @@ test.each([
 test.each(['reduce', 'no-preference'] as const)('nothing moves by itself: %s', async (reducedMotion) => {
   const { page, context } = await showPage(browser, await cobbles({ compare: 'swap' }), { reducedMotion });
   await waitForPrints(page, 2);
+  await waitForNumbers(page);
   const before = await page.locator('print-row').screenshot();
   const moving = await page.evaluate(() => {
     const found: string[] = [];

@@ -87,3 +87,17 @@ export async function waitForPrints(page: Page, count = 1): Promise<void> {
     return stages.length >= wanted && stages.every((stage) => stage?.hasAttribute('data-painted'));
   }, count);
 }
+
+/** Waits until no more numbers come: those of a print follow its picture. Answers the text of all. */
+export async function waitForNumbers(page: Page): Promise<string> {
+  const read = async () => (await page.locator('print-card footer').allTextContents()).join(' ').replace(/\s+/g, ' ');
+  let numbers = await read();
+  for (let before = ''; before !== numbers; numbers = await read()) {
+    before = numbers;
+    await page.waitForTimeout(SETTLED_MS);
+  }
+  return numbers;
+}
+
+/** Longer than any one print of the demo's textures is measured. */
+const SETTLED_MS = 800;

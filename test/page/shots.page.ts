@@ -4,7 +4,7 @@ import type { Browser } from 'playwright-core';
 import { afterAll, beforeAll, expect, test } from 'vitest';
 import { launchBrowser } from '../host/browser.ts';
 import { top } from '../house/tree.ts';
-import { showPage, waitForPrints } from './browser.ts';
+import { showPage, waitForNumbers, waitForPrints } from './browser.ts';
 import { recordDemo } from './recorded.ts';
 import { troubleOf } from './stage.ts';
 import type { ThemeName } from './themes.ts';
@@ -139,9 +139,6 @@ const shots: readonly Shot[] = [
   },
 ];
 
-/** Longer than any one print of these textures is measured. */
-const SETTLED_MS = 800;
-
 test.each(shots)('$name', async ({ name, texture, theme, state, beside, shows, width, height }) => {
   const slots = beside.map((each, i) =>
     typeof each === 'string'
@@ -158,11 +155,8 @@ test.each(shots)('$name', async ({ name, texture, theme, state, beside, shows, w
   };
   await expect.poll(figures, { timeout: 20_000 }).toMatch(shows);
   await page.locator('section-plot polyline').first().waitFor({ state: 'attached' });
-  // Numbers of the other prints come after the first: the picture is taken when no more come.
-  for (let before = ''; before !== (await figures()); ) {
-    before = await figures();
-    await page.waitForTimeout(SETTLED_MS);
-  }
+  // Numbers of the other prints come after the first.
+  await waitForNumbers(page);
   await page.screenshot({ path: join(folder, `${name}.png`) });
   expect((await troubleOf(page)).violations).toEqual([]);
   await context.close();

@@ -2,12 +2,16 @@ import type { Page } from 'playwright-core';
 
 /** What stands on a print's canvas, read from the page: codes of its texels at one texel a device pixel. */
 export async function readPrint(page: Page, index = 0): Promise<{ readonly pixels: string; readonly rgb: Uint8Array }> {
-  const read = await page.evaluate((at) => {
+  const read = await page.evaluate(async (at) => {
     const row = document.querySelector('proof-page')?.shadowRoot?.querySelector('print-row')?.shadowRoot;
     const card = row?.querySelectorAll('print-card')[at];
     const stage = card?.shadowRoot?.querySelector<HTMLElement>('print-stage');
     const canvas = stage?.shadowRoot?.querySelector<HTMLCanvasElement>('canvas.print');
     if (stage == null || canvas == null) throw new Error('There is no print');
+    // A canvas whose box has just changed is empty until it is painted again.
+    for (let whole = 0; whole < 3; whole = stage.hasAttribute('data-painted') ? whole + 1 : 0) {
+      await new Promise(requestAnimationFrame);
+    }
     const { extent } = (stage as unknown as { scene: { extent: { width: number; height: number } } }).scene;
     const { zoom, left, top } = stage.dataset;
     if (zoom !== '1') throw new Error(`The print is shown at ${zoom}:1`);

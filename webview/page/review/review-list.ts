@@ -26,7 +26,7 @@ export class ReviewList extends LitElement {
       th,
       td {
         text-align: left;
-        vertical-align: top;
+        vertical-align: baseline;
         font-weight: 400;
         padding: 2px 10px;
       }
