@@ -27,11 +27,11 @@ const benches: Readonly<Record<string, (cases: Cases) => Promise<Findings>>> = {
   builds: benchBuilds,
   folder: benchFolder,
   project: benchProject,
-  review: benchReview,
   memory: benchMemory,
   accuracy: benchAccuracy,
   cold: benchCold,
   page: benchPage,
+  review: benchReview,
 };
 
 const { values } = parseArgs({
@@ -56,20 +56,22 @@ if (unknown.length > 0) {
 const whole = !values.smoke && values.only === undefined;
 const out = values.out ?? (whole ? 'test/bench/RESULTS.md' : 'dist/bench/RESULTS.md');
 const [before] = loadavg();
+const note =
+  values.note ?? (values.smoke ? 'A smoke run: images are tiny, and no number below says anything about speed.' : null);
+mkdirSync(dirname(out), { recursive: true });
 const tables: Table[] = [];
 const figures: Figure[] = [];
+let report = '';
 for (const name of asked) {
   const start = performance.now();
   const found = await benches[name](values.smoke ? smokeCases : fullCases);
   tables.push(...found.tables);
   figures.push(...found.figures);
+  // After each, so that a run that is ended early leaves what it measured.
+  report = writeReport(readEnvironment(before, note), figures, tables);
+  writeFileSync(out, report);
   console.error(`${name}: ${((performance.now() - start) / 1000).toFixed(1)} s`);
 }
-const note =
-  values.note ?? (values.smoke ? 'A smoke run: images are tiny, and no number below says anything about speed.' : null);
-const report = writeReport(readEnvironment(before, note), figures, tables);
-mkdirSync(dirname(out), { recursive: true });
-writeFileSync(out, report);
 console.log(`${report}\nWritten to ${out}.`);
 // Some peers leave threads behind that would keep the process.
 process.exit(0);
