@@ -1,8 +1,8 @@
 import { oklabDistance, oklabOfLight } from '../color/oklab.ts';
 import { decodeTable } from '../color/transfer.ts';
+import { figure, light } from '../figures.ts';
 import type { Picture } from '../proof/want.ts';
 import { maxCode } from '../raster/raster.ts';
-import { figure, light } from './figures.ts';
 import type { Measured } from './measured.ts';
 
 /** How far a print is from another of its extent: for color the mean and the largest OKLab distance, where what shows less by its

@@ -1,6 +1,6 @@
 import type { SourceHeader } from '../codec/source.ts';
+import { byteText, extentText, figure } from '../figures.ts';
 import type { KernelChoice, Target, Treatment } from '../treatment/treatment.ts';
-import { byteText, extentText, figure } from './figures.ts';
 import { paramWords } from './kernels.ts';
 import type { ProofOrder } from './order.ts';
 

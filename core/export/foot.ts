@@ -1,9 +1,9 @@
 import type { SourceHeader } from '../codec/source.ts';
+import { figure } from '../figures.ts';
 import { ALGORITHM } from '../manifest/manifest.ts';
 import { type Block, CONTENT_WIDTH, MARGIN } from './block.ts';
 import { COLOR_DIFFERENCE } from './difference.ts';
 import type { SheetView } from './draw-picture.ts';
-import { figure } from './figures.ts';
 import type { ProofOrder } from './order.ts';
 import { BACKDROP_WORDS, LINE, SOFT } from './palette.ts';
 import type { SheetPrint } from './prints.ts';

@@ -1,12 +1,12 @@
 import { decodeImage } from '../codec/decode.ts';
 import { openImage } from '../codec/open.ts';
 import { encodePng } from '../codec/png/encode.ts';
+import { extentText } from '../figures.ts';
 import type { Inflate } from '../port.ts';
 import type { IndexedRaster, StraightRaster } from '../raster/raster.ts';
 import type { Treatment } from '../treatment/treatment.ts';
 import type { Box } from './canvas.ts';
 import { sameDeflate } from './deflate.ts';
-import { extentText } from './figures.ts';
 import { type ProofOrder, SOURCE_LIMIT } from './order.ts';
 
 /** Bytes of source that an order carries. */

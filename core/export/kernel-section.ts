@@ -1,10 +1,10 @@
+import { extentText } from '../figures.ts';
 import { type Slot, treatmentOf } from '../proof/slot.ts';
 import type { Extent } from '../raster/raster.ts';
 import type { KernelChoice, Origin, Treatment } from '../treatment/treatment.ts';
 import { type Block, CONTENT_WIDTH, headingBlock, MARGIN, type Place } from './block.ts';
 import type { Canvas } from './canvas.ts';
 import { drawPicture, type SheetView } from './draw-picture.ts';
-import { extentText } from './figures.ts';
 import { changeWords, paramWords } from './kernels.ts';
 import { HEADING, LABEL, PLAIN, RAIL, SOFT, WARNING } from './palette.ts';
 import type { SheetPrint } from './prints.ts';

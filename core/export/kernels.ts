@@ -1,8 +1,8 @@
+import { figure } from '../figures.ts';
 import { defaultParams, findKernel } from '../kernel/table.ts';
 import { type Change, OWN_SLOT, type Slot } from '../proof/slot.ts';
 import type { Extent } from '../raster/raster.ts';
 import type { KernelChoice, Treatment } from '../treatment/treatment.ts';
-import { figure } from './figures.ts';
 
 /** Prints to compare: the page's, or where it has none beside the settings' own a few kernels of different kinds that can make
  *  this image. */

@@ -1,6 +1,6 @@
+import { figure, light, percent } from '../figures.ts';
 import type { HaloAnswer, PrintStats } from '../proof/want.ts';
 import type { Treatment } from '../treatment/treatment.ts';
-import { figure, light, percent } from './figures.ts';
 
 /** One number of a print in words. */
 export interface Measured {

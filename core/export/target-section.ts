@@ -1,8 +1,8 @@
+import { byteText, extentText } from '../figures.ts';
 import type { Extent } from '../raster/raster.ts';
 import { type Block, CONTENT_WIDTH, headingBlock, MARGIN, type Place } from './block.ts';
 import type { Canvas } from './canvas.ts';
 import { drawPicture, type SheetView } from './draw-picture.ts';
-import { byteText, extentText } from './figures.ts';
 import { drawSightMark, SIGHT_ROWS } from './head.ts';
 import { HEADING, LABEL, PLAIN, RAIL, SOFT, WARNING } from './palette.ts';
 import type { SheetPrint } from './prints.ts';

@@ -1,9 +1,9 @@
 import { openImage } from '../../core/codec/open.ts';
 import { stateAt } from '../../core/export/at.ts';
-import { byteText } from '../../core/export/figures.ts';
 import { isLarge, keepMiddle, sourceBytes } from '../../core/export/keep.ts';
 import { type ProofOrder, SOURCE_LIMIT, startPreferences } from '../../core/export/order.ts';
 import { proofPage } from '../../core/export/proof-page.ts';
+import { byteText } from '../../core/figures.ts';
 import { Cancelled } from '../../core/port.ts';
 import { type Problem, placed, Refusal, refuse } from '../../core/problem.ts';
 import { baseName, resolvePath } from '../../core/treatment/path.ts';

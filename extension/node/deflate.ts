@@ -1,6 +1,7 @@
 import { pipeline, Readable } from 'node:stream';
 import { promisify } from 'node:util';
 import { constants, createDeflate, deflateRaw } from 'node:zlib';
+import { Adler } from '../../core/codec/adler.ts';
 import type { Deflate, DeflateHints } from '../../core/port.ts';
 
 /** zlib on Node's thread pool: the caller makes the next rows while the former ones are deflated, and where only runs are looked
@@ -80,28 +81,4 @@ function* batches(pieces: Iterable<Uint8Array>, byteCount: number): Iterable<Uin
     }
   }
   if (filled > 0) yield batch.subarray(0, filled);
-}
-
-/** Adler-32 of what went by.  [RFC1950, 8.2] */
-class Adler {
-  #low = 1;
-  #high = 0;
-
-  add(bytes: Uint8Array): void {
-    let [low, high] = [this.#low, this.#high];
-    for (let at = 0; at < bytes.length; ) {
-      // 5552 is the most bytes whose sums stay below 2^32; these stay below 2^31, where numbers are quicker.
-      for (const end = Math.min(bytes.length, at + 3800); at < end; at++) {
-        low += bytes[at];
-        high += low;
-      }
-      low %= 65521;
-      high %= 65521;
-    }
-    [this.#low, this.#high] = [low, high];
-  }
-
-  bytes(): Uint8Array {
-    return Uint8Array.of(this.#high >> 8, this.#high & 255, this.#low >> 8, this.#low & 255);
-  }
 }

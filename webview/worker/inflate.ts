@@ -1,3 +1,4 @@
+import { Adler } from '../../core/codec/adler.ts';
 import { type Inflate, InflateError } from '../../core/port.ts';
 
 /** Inflates with the platform's stream. It tells no fault from another, so the end of the data is looked at: zlib ends a stream
@@ -74,28 +75,4 @@ function joined(one: Uint8Array, other: Uint8Array): Uint8Array<ArrayBuffer> {
   both.set(one);
   both.set(other, one.length);
   return both;
-}
-
-/** Adler-32 of what went by.  [RFC1950, 8.2] */
-class Adler {
-  #low = 1;
-  #high = 0;
-
-  add(bytes: Uint8Array): void {
-    let [low, high] = [this.#low, this.#high];
-    for (let at = 0; at < bytes.length; ) {
-      // 5552 is the most bytes whose sums stay below 2^32.
-      for (const end = Math.min(bytes.length, at + 5552); at < end; at++) {
-        low += bytes[at];
-        high += low;
-      }
-      low %= 65521;
-      high %= 65521;
-    }
-    [this.#low, this.#high] = [low, high];
-  }
-
-  bytes(): Uint8Array {
-    return Uint8Array.of(this.#high >> 8, this.#high & 255, this.#low >> 8, this.#low & 255);
-  }
 }

@@ -1,7 +1,8 @@
 import { css, html, LitElement, nothing } from 'lit';
+import { byteText, figure } from '../../../core/figures.ts';
 import { controls } from '../form/controls.ts';
 import type { Model } from '../proof/model.ts';
-import { bytes, figure, meters } from '../words/figures.ts';
+import { meters } from '../words/meters.ts';
 import { t } from '../words/t.ts';
 import { distanceOf, lodAt } from './lod.ts';
 import { readSize } from './scale.ts';
@@ -99,7 +100,7 @@ export class SightFields extends LitElement {
       ${
         seen.stop === null
           ? nothing
-          : html`<span class="quiet number" title=${t('Codes of this image, without a file around them')}>${bytes(memoryOf(model))}</span>`
+          : html`<span class="quiet number" title=${t('Codes of this image, without a file around them')}>${byteText(memoryOf(model))}</span>`
       }
     `;
   }

@@ -1,6 +1,6 @@
+import { figure } from '../../../core/figures.ts';
 import type { Sight } from '../../../core/proof/slot.ts';
 import type { Model } from '../proof/model.ts';
-import { figure } from '../words/figures.ts';
 import { t } from '../words/t.ts';
 import type { Stop } from './scale.ts';
 

@@ -1,10 +1,11 @@
 import { html, LitElement, nothing, svg } from 'lit';
+import { figure } from '../../../core/figures.ts';
 import type { Picture } from '../../../core/proof/want.ts';
 import { controls } from '../form/controls.ts';
 import { textScale } from '../form/text-scale.ts';
 import { isProblem } from '../proof/bench-link.ts';
 import type { Model } from '../proof/model.ts';
-import { figure, meters } from '../words/figures.ts';
+import { meters } from '../words/meters.ts';
 import { t } from '../words/t.ts';
 import { type Curve, drawCurve, isBeyond } from './curve.ts';
 import { curvesOf } from './curves.ts';

@@ -1,5 +1,5 @@
+import { percent } from '../../../core/figures.ts';
 import type { ArtAnswer, AxisEvenness } from '../../../core/proof/want.ts';
-import { percent } from '../words/figures.ts';
 import { t } from '../words/t.ts';
 import type { CardFigure } from './print-card.ts';
 

@@ -1,9 +1,9 @@
 import { html, LitElement, nothing } from 'lit';
+import { figure } from '../../../core/figures.ts';
 import { defaultParams, findKernel, type KernelParam, kernels } from '../../../core/kernel/table.ts';
 import type { Slot } from '../../../core/proof/slot.ts';
 import type { KernelChoice } from '../../../core/treatment/treatment.ts';
 import { controls } from '../form/controls.ts';
-import { figure } from '../words/figures.ts';
 import { t } from '../words/t.ts';
 import './print-stage.ts';
 import { cardStyles } from './print-card.styles.ts';

@@ -1,5 +1,6 @@
 import { html, LitElement, nothing } from 'lit';
 import { passingCode } from '../../../core/chain/coverage.ts';
+import { light, percent } from '../../../core/figures.ts';
 import { defaultParams, findKernel, kernels } from '../../../core/kernel/table.ts';
 import { say } from '../../../core/problem.ts';
 import type { Slot } from '../../../core/proof/slot.ts';
@@ -12,7 +13,6 @@ import type { State } from '../proof/state.ts';
 import { cursorTexel, lineOf } from '../readings/line.ts';
 import { changeWords } from '../treatment/change-words.ts';
 import { unfitFor } from '../treatment/fit.ts';
-import { light, percent } from '../words/figures.ts';
 import { t } from '../words/t.ts';
 import { artFigures } from './art-figures.ts';
 import './print-card.ts';

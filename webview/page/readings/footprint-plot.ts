@@ -1,8 +1,8 @@
 import { css, html, LitElement } from 'lit';
+import { percent } from '../../../core/figures.ts';
 import type { AxisFootprint, FootprintAnswer } from '../../../core/proof/want.ts';
 import { controls } from '../form/controls.ts';
 import { WEIGHT_MINUS, WEIGHT_PLUS } from '../prints/backdrop.ts';
-import { percent } from '../words/figures.ts';
 import { t } from '../words/t.ts';
 
 const SIDE = 96;

@@ -1,4 +1,5 @@
 import { css, html, LitElement, nothing } from 'lit';
+import { light } from '../../../core/figures.ts';
 import type { Slot } from '../../../core/proof/slot.ts';
 import type { Picture } from '../../../core/proof/want.ts';
 import { controls } from '../form/controls.ts';
@@ -7,7 +8,6 @@ import { isProblem } from '../proof/bench-link.ts';
 import type { Model } from '../proof/model.ts';
 import type { State } from '../proof/state.ts';
 import { changeWords } from '../treatment/change-words.ts';
-import { light } from '../words/figures.ts';
 import { t } from '../words/t.ts';
 import './footprint-plot.ts';
 import { cursorTexel, lineOf } from './line.ts';

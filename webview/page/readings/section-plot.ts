@@ -1,7 +1,7 @@
 import { css, html, LitElement, nothing, svg } from 'lit';
+import { figure } from '../../../core/figures.ts';
 import { controls } from '../form/controls.ts';
 import { textScale } from '../form/text-scale.ts';
-import { figure } from '../words/figures.ts';
 import { t } from '../words/t.ts';
 import { type Section, sectionRows, type Track } from './section.ts';
 

@@ -1,8 +1,8 @@
 import { decodeTable } from '../../../core/color/transfer.ts';
+import { light } from '../../../core/figures.ts';
 import { isCoded } from '../../../core/proof/sample.ts';
 import type { Picture } from '../../../core/proof/want.ts';
 import { maxCode } from '../../../core/raster/raster.ts';
-import { light } from '../words/figures.ts';
 
 /** One texel of a print as numbers. */
 export interface TexelReading {

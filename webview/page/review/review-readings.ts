@@ -1,10 +1,10 @@
 import { css, html, LitElement, nothing } from 'lit';
+import { light, percent } from '../../../core/figures.ts';
 import type { Picture } from '../../../core/proof/want.ts';
 import { JUST_SEEN } from '../../../core/review/lab.ts';
 import type { PairAnswer } from '../../../core/review/want.ts';
 import { HIDDEN_MARK, MARK_SCALE } from '../../../core/review/want.ts';
 import { controls } from '../form/controls.ts';
-import { light, percent } from '../words/figures.ts';
 import { t } from '../words/t.ts';
 import type { ReviewModel } from './model.ts';
 import { cursorOf } from './review-row.ts';

@@ -1,5 +1,6 @@
 import { html, LitElement, nothing } from 'lit';
 import { passingCode } from '../../../core/chain/coverage.ts';
+import { light, percent } from '../../../core/figures.ts';
 import { say } from '../../../core/problem.ts';
 import type { Picture } from '../../../core/proof/want.ts';
 import { JUST_SEEN } from '../../../core/review/lab.ts';
@@ -8,7 +9,6 @@ import type { PairAnswer } from '../../../core/review/want.ts';
 import { controls } from '../form/controls.ts';
 import { rowStyles } from '../prints/print-row.styles.ts';
 import type { Scene, StageGesture } from '../prints/print-stage.ts';
-import { light, percent } from '../words/figures.ts';
 import { t } from '../words/t.ts';
 import { type DifferencePicture, differencePicture } from './difference-picture.ts';
 import type { ReviewModel } from './model.ts';

@@ -1,10 +1,10 @@
+import { percent } from '../../../core/figures.ts';
 import { LEAST_COVERAGE_LOSS, LEAST_TEXELS } from '../../../core/review/impact.ts';
 import { JUST_SEEN } from '../../../core/review/lab.ts';
 import type { Review } from '../../../core/review/review.ts';
 import type { SizeReview } from '../../../core/review/sizes.ts';
 import type { Curve } from '../axis/curve.ts';
 import { lodOfExtent, type Placed } from '../axis/scale.ts';
-import { percent } from '../words/figures.ts';
 import { t } from '../words/t.ts';
 import type { ReviewSight } from './state.ts';
 

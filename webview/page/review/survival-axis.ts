@@ -1,4 +1,5 @@
 import { html, LitElement, nothing, svg } from 'lit';
+import { figure } from '../../../core/figures.ts';
 import type { Picture } from '../../../core/proof/want.ts';
 import { type Curve, drawCurve, isBeyond } from '../axis/curve.ts';
 import { drawSight, isFirstAt, labelsAt, type Rows, rowsOf, SAME_PLACE, sizeText, THUMB_HEIGHT } from '../axis/rows.ts';
@@ -7,7 +8,6 @@ import { axisStyles } from '../axis/size-axis.styles.ts';
 import { paintThumb } from '../axis/thumb.ts';
 import { controls } from '../form/controls.ts';
 import { textScale } from '../form/text-scale.ts';
-import { figure } from '../words/figures.ts';
 import { t } from '../words/t.ts';
 import type { ReviewModel } from './model.ts';
 import { curvesOf, distance, type SizeStop, sightOf } from './sizes.ts';

@@ -1,3 +1,5 @@
+// Numbers as the proof's page and its sheet print them.
+
 /** A share of 1 as percent with one decimal, two below 1 %. */
 export function percent(share: number): string {
   const hundred = share * 100;
@@ -15,14 +17,12 @@ export function figure(value: number, digits = 2): string {
 }
 
 /** Bytes in the largest unit of 1024 that leaves a number of 1 or more. */
-export function bytes(count: number): string {
+export function byteText(count: number): string {
   if (count < 1024) return `${count} B`;
   if (count < 1024 * 1024) return `${figure(count / 1024, 1)} KiB`;
   return `${figure(count / 1024 / 1024, 1)} MiB`;
 }
 
-/** Meters, to three digits. */
-export function meters(distance: number): string {
-  if (!Number.isFinite(distance)) return '';
-  return distance >= 100 ? distance.toFixed(0) : distance >= 10 ? distance.toFixed(1) : distance.toFixed(2);
+export function extentText({ width, height }: { readonly width: number; readonly height: number }): string {
+  return `${width}×${height}`;
 }
