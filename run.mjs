@@ -107,6 +107,8 @@ Now a folder of your own:
   node dist/cli.js init FOLDER               writes a sizeproof.json to start from
   node dist/cli.js build PATH --out DIR      builds every texture below PATH into DIR
   node dist/cli.js check PATH --out DIR      says whether what is in DIR is still what PATH asks for
+  node dist/cli.js proof FILE --html F.html  shows one texture at every size and by other kernels
+  node dist/cli.js review                    says what changed in textures since the last commit
   node dist/cli.js --help                    the rest`);
   }
   return code;

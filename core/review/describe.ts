@@ -8,11 +8,3 @@ export function describeFile({ extent, channels, depth, palette }: FileForm): st
 }
 
 export type FileForm = Pick<SideFigures, 'extent' | 'channels' | 'depth' | 'palette'>;
-
-/** `812 bytes`, `1.2 KiB`, `3.4 MiB`. */
-export function sayBytes(bytes: number): string {
-  if (Math.abs(bytes) < 1024) return `${bytes} bytes`;
-  const isSmall = Math.abs(bytes) < 1024 * 1024;
-  const unit = isSmall ? 1024 : 1024 * 1024;
-  return `${Math.round((bytes / unit) * 10) / 10} ${isSmall ? 'KiB' : 'MiB'}`;
-}

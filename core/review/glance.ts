@@ -1,9 +1,10 @@
 import { peekImage } from '../codec/peek.ts';
 import { readHeadStructure } from '../codec/png/structure.ts';
 import type { ColorChunk } from '../codec/source.ts';
+import { byteText } from '../figures.ts';
 import { type Problem, Refusal, say } from '../problem.ts';
 import type { Treatment } from '../treatment/treatment.ts';
-import { describeFile, sayBytes } from './describe.ts';
+import { describeFile } from './describe.ts';
 import { type Harm, harmsOfFacts, type Impact, impactOf } from './impact.ts';
 import { describeTreatments } from './treatments.ts';
 import type { Verdict } from './verdict.ts';
@@ -113,5 +114,5 @@ function problemOf(
 }
 
 function sizeOf(side: GlanceSide | null): string {
-  return side?.fileBytes == null ? 'unknown size' : sayBytes(side.fileBytes);
+  return side?.fileBytes == null ? 'unknown size' : byteText(side.fileBytes);
 }

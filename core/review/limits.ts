@@ -1,6 +1,6 @@
+import { byteText } from '../figures.ts';
 import { finding, type Problem } from '../problem.ts';
 import type { ReviewLimits } from '../treatment/treatment.ts';
-import { sayBytes } from './describe.ts';
 import { sayHarm } from './harms.ts';
 import { LEAST_TEXELS } from './impact.ts';
 import type { Review } from './review.ts';
@@ -46,8 +46,8 @@ export function overReviewLimits(review: Review, limits: ReviewLimits): Problem[
   if (limits.fileGrowth !== null && file > limits.fileGrowth) {
     problems.push(
       finding('review-file', {
-        before: sayBytes(before.fileBytes),
-        after: sayBytes(after.fileBytes),
+        before: byteText(before.fileBytes),
+        after: byteText(after.fileBytes),
         limit: percent(limits.fileGrowth),
       }),
     );

@@ -1,4 +1,4 @@
-import { sayBytes } from './describe.ts';
+import { byteText } from '../figures.ts';
 import { sayHarm } from './harms.ts';
 import type { Impact } from './impact.ts';
 import type { Review, SideFigures } from './review.ts';
@@ -95,5 +95,5 @@ function moved(
 
 function bytes(name: string, before: SideFigures, after: SideFigures, of: (side: SideFigures) => number): string[] {
   const [was, is] = [of(before), of(after)];
-  return was === is ? [] : [`${name} ${sayBytes(was)} to ${sayBytes(is)}`];
+  return was === is ? [] : [`${name} ${byteText(was)} to ${byteText(is)}`];
 }

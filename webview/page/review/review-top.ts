@@ -1,6 +1,7 @@
 import { css, html, LitElement, nothing } from 'lit';
+import { byteText } from '../../../core/figures.ts';
 import { say } from '../../../core/problem.ts';
-import { describeFile, sayBytes } from '../../../core/review/describe.ts';
+import { describeFile } from '../../../core/review/describe.ts';
 import type { Review } from '../../../core/review/review.ts';
 import { seenAt } from '../../../core/review/visible.ts';
 import { controls } from '../form/controls.ts';
@@ -114,7 +115,7 @@ export class ReviewTop extends LitElement {
     const harms = impact.harms.filter(({ name }) => name !== 'unreadable').map(harmText);
     const where = seenAt(sizes);
     const files = [before, after].flatMap((each) =>
-      each === null ? [] : [`${describeFile(each)}, ${sayBytes(each.fileBytes)}`],
+      each === null ? [] : [`${describeFile(each)}, ${byteText(each.fileBytes)}`],
     );
     return html`
       ${harms.length === 0 ? nothing : html`<p class="harm">${t('Harm: {harms}.', { harms: harms.join('; ') })}</p>`}
