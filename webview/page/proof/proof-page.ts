@@ -1,8 +1,7 @@
-import { css, html, LitElement, nothing } from 'lit';
+import { css, html, nothing } from 'lit';
 import { say } from '../../../core/problem.ts';
 import '../axis/sight-fields.ts';
 import '../axis/size-axis.ts';
-import { controls } from '../form/controls.ts';
 import type { PrintCard } from '../prints/print-card.ts';
 import '../prints/print-row.ts';
 import type { PrintRow } from '../prints/print-row.ts';
@@ -13,54 +12,20 @@ import '../view/view-bar.ts';
 import { t } from '../words/t.ts';
 import type { Model } from './model.ts';
 import { disagreementNote, goneNote, loadingNote, type Note, noteOf, settingsNote } from './note.ts';
-import { SwapHold } from './swap-hold.ts';
 import './top-bar.ts';
 import { wantsOf } from './wants.ts';
+import { pageStyles, WholePage } from './whole-page.ts';
 
 /** The whole page: one axis, one row of prints, one strip of readings. */
-export class ProofPage extends LitElement {
-  static override properties = {
-    model: { attribute: false },
-    tick: { state: true },
-    zoom: { state: true },
-    swapped: { state: true },
-  };
-  declare model: Model | null;
-  declare tick: number;
-  declare zoom: number;
-  declare swapped: boolean;
-  #hold: SwapHold | null = null;
-  readonly #changed = (): void => {
-    this.tick++;
-  };
-
+export class ProofPage extends WholePage<Model> {
   static override styles = [
-    controls,
+    pageStyles,
     css`
       :host {
-        display: grid;
-        grid-template-columns: minmax(0, 1fr);
         grid-template-rows: auto auto auto auto auto minmax(round(17em, 1px), 1fr) auto auto;
-        min-height: 100vh;
-      }
-      .axis {
-        border-bottom: 1px solid var(--proof-line);
-        padding-top: 4px;
       }
       .note {
         grid-row: 2 / -1;
-        display: grid;
-        place-content: center;
-        justify-items: start;
-        gap: 12px;
-        padding: 24px;
-        max-width: 64ch;
-        margin: 0 auto;
-      }
-      .note p {
-        margin: 0;
-        font-size: 1.05em;
-        line-height: 1.5;
       }
       .banner {
         display: flex;
@@ -70,50 +35,8 @@ export class ProofPage extends LitElement {
         border-bottom: 1px solid var(--proof-line);
         color: var(--proof-warning);
       }
-      .foot {
-        padding: 3px 10px 5px;
-        border-top: 1px solid var(--proof-line);
-        color: var(--proof-quiet);
-        font-size: 0.92em;
-        display: flex;
-        flex-wrap: wrap;
-        gap: 0 18px;
-      }
-      main {
-        display: grid;
-        min-height: 0;
-        min-width: 0;
-      }
-      main.note {
-        min-height: 50vh;
-      }
     `,
   ];
-
-  constructor() {
-    super();
-    this.model = null;
-    this.tick = 0;
-    this.zoom = 1;
-    this.swapped = false;
-  }
-
-  override connectedCallback(): void {
-    super.connectedCallback();
-    this.model?.addEventListener('change', this.#changed);
-    window.addEventListener('keydown', this.#keys);
-    window.addEventListener('keyup', this.#keys);
-    window.addEventListener('blur', this.#letGo);
-  }
-
-  override disconnectedCallback(): void {
-    super.disconnectedCallback();
-    this.model?.removeEventListener('change', this.#changed);
-    window.removeEventListener('keydown', this.#keys);
-    window.removeEventListener('keyup', this.#keys);
-    window.removeEventListener('blur', this.#letGo);
-    this.#hold?.stop();
-  }
 
   override render() {
     const { model, tick } = this;
@@ -177,7 +100,7 @@ export class ProofPage extends LitElement {
         .zoom=${this.zoom}
         role="region"
         aria-label=${t('View')}
-        @swap-hold=${(event: CustomEvent<'down' | 'up'>) => this.#swap(event.detail)}
+        @swap-hold=${(event: CustomEvent<'down' | 'up'>) => this.swap(event.detail)}
       ></view-bar>
       <main aria-label=${t('Prints')}>
         <print-row .model=${model} .tick=${tick} .swapped=${this.swapped}></print-row>
@@ -202,34 +125,14 @@ export class ProofPage extends LitElement {
     return words;
   }
 
-  override updated(): void {
-    const { model } = this;
-    if (model === null) return;
+  protected override want(model: Model): void {
     model.want(wantsOf(model));
-    // Stages know their own size only after they are laid out.
-    requestAnimationFrame(() => {
-      const row = this.renderRoot.querySelector<PrintRow>('print-row');
-      const stage = row?.renderRoot
-        .querySelector<PrintCard>('print-card')
-        ?.renderRoot.querySelector<PrintStage>('print-stage');
-      if (stage != null) this.zoom = stage.zoom;
-    });
   }
 
-  readonly #keys = (event: KeyboardEvent): void => {
-    if (event.key.toLowerCase() !== 'x' || event.repeat || event.ctrlKey || event.metaKey || event.altKey) return;
-    const [target] = event.composedPath();
-    if (target instanceof HTMLInputElement || target instanceof HTMLSelectElement) return;
-    if (this.model?.state.compare === 'swap') this.#swap(event.type === 'keydown' ? 'down' : 'up');
-  };
-
-  readonly #letGo = (): void => this.#swap('up');
-
-  #swap(which: 'down' | 'up'): void {
-    this.#hold ??= new SwapHold((swapped) => {
-      this.swapped = swapped;
-    });
-    this.#hold.press(which, this.model?.open?.preferences.swapDwell ?? 0);
+  protected override stage(): PrintStage | null {
+    const row = this.renderRoot.querySelector<PrintRow>('print-row');
+    const card = row?.renderRoot.querySelector<PrintCard>('print-card');
+    return card?.renderRoot.querySelector<PrintStage>('print-stage') ?? null;
   }
 }
 
