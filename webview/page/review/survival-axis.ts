@@ -27,7 +27,7 @@ export class SurvivalAxis extends WholeAxis<SizeStop> {
       lod: seen.lod,
       here: seen,
       words: valueText(seen),
-      thumbs: t('true size, after'),
+      thumbs: model.missing('after') === null ? t('true size, after') : t('true size, before'),
       distance: null,
       treatment: model.treatment('after') ?? model.treatment('before'),
       backdrop: model.state.backdrop,
