@@ -50,15 +50,34 @@ function countTexels(plane: AlphaPlane, passing: number): number {
 }
 
 /** Samples at (i + 1/2) / 4 of each texel, so -3/8, -1/8, 1/8, 3/8 from its center: weights are eighths, sums integers over
- *  64, and a sample passes from passing - 1/2 on. */
+ *  64, and a sample passes from passing - 1/2 on. A mean of codes that all pass is no less than the passing code, and one of codes
+ *  that all fail no more than the code before it: only texels along an edge of the mask are sampled, the rest is known. */
 function countSamples(plane: AlphaPlane, passing: number, wrap: WrapPair): number {
   const { width, height } = plane.extent;
   const threshold = 64 * passing - 32;
-  let count = 0;
   const columns = neighbors(width, wrap.x);
   const rows = neighbors(height, wrap.y);
+  const passes = passingTexels(plane, passing);
+  const beyond = passing <= 0 ? 1 : 0;
+  // Of each column from -1 to width, how many of its texels in the row, the one above and the one below pass.
+  const stacks = new Uint8Array(width + 2);
+  let count = 0;
   for (let y = 0; y < height; y++) {
+    stacks.fill(0);
+    for (let dy = 0; dy < 3; dy++) {
+      const row = rows[y + dy];
+      for (let x = 0; x < width + 2; x++) {
+        const column = columns[x];
+        stacks[x] += column < 0 || row < 0 ? beyond : passes[row * width + column];
+      }
+    }
     for (let x = 0; x < width; x++) {
+      const nine = stacks[x] + stacks[x + 1] + stacks[x + 2];
+      if (nine === 0) continue;
+      if (nine === 9) {
+        count += 16;
+        continue;
+      }
       const at = (dx: number, dy: number): number => {
         const column = columns[x + dx + 1];
         const row = rows[y + dy + 1];
@@ -71,6 +90,13 @@ function countSamples(plane: AlphaPlane, passing: number, wrap: WrapPair): numbe
     }
   }
   return count;
+}
+
+/** 1 for each texel that passes. */
+function passingTexels({ extent, codes, start, stride }: AlphaPlane, passing: number): Uint8Array {
+  const passes = new Uint8Array(extent.width * extent.height);
+  for (let i = 0, at = start; i < passes.length; i++, at += stride) if (codes[at] >= passing) passes[i] = 1;
+  return passes;
 }
 
 /** The four samples of a texel that lie toward one diagonal neighbor: 1/8 or 3/8 of the way on each axis. */
@@ -143,22 +169,26 @@ export function scaledCode(value: number, scale: number, depth: Depth): number {
   return roundedCode(Math.min(1, (scale * value) / 65535) * max, max);
 }
 
-/** Counts passing samples for a scale; large levels are counted from a histogram, made once. */
+/** Counts passing samples for a scale. What each of the distinct alphas is stored as is found once a scale; large levels are counted
+ *  from a histogram of them. */
 function scaledCounter(alpha: UnscaledAlpha, depth: Depth, passing: number, wrap: WrapPair): (scale: number) => number {
   const { extent, values } = alpha;
+  const histogram = new Uint32Array(65536);
+  for (const value of values) histogram[value]++;
+  const distinct = Uint16Array.from({ length: 65536 }, (_, value) => value).filter((value) => histogram[value] > 0);
   if (values.length > SAMPLED_TEXELS) {
-    const histogram = new Uint32Array(65536);
-    for (const value of values) histogram[value]++;
     return (scale) => {
       let count = 0;
-      for (let value = 65535; value >= 0 && scaledCode(value, scale, depth) >= passing; value--)
-        count += histogram[value];
+      for (let i = distinct.length - 1; i >= 0 && scaledCode(distinct[i], scale, depth) >= passing; i--)
+        count += histogram[distinct[i]];
       return count;
     };
   }
   const codes = depth === 8 ? new Uint8Array(values.length) : new Uint16Array(values.length);
+  const stored = new Uint16Array(65536);
   return (scale) => {
-    for (let i = 0; i < values.length; i++) codes[i] = scaledCode(values[i], scale, depth);
+    for (const value of distinct) stored[value] = scaledCode(value, scale, depth);
+    for (let i = 0; i < values.length; i++) codes[i] = stored[values[i]];
     return countPassing({ extent, depth, codes, stride: 1, start: 0 }, passing, wrap);
   };
 }

@@ -1,6 +1,7 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import { buildChain } from '../../core/chain/chain.ts';
+import { measureCoverage } from '../../core/chain/coverage.ts';
 import { maxCode } from '../../core/raster/raster.ts';
 import { depths, kernels, LINEAR, oneOf, seeds, smallExtents, wraps } from '../fixtures/arbitrary.ts';
 import { noiseRaster, numbers, withAlpha } from '../fixtures/noise.ts';
@@ -168,6 +169,25 @@ describe('the engine', () => {
     const plane = { ...lone(image, 1), wrap: one.wrap };
     expect(base.coverage).toBe(countedCoverage(plane, 128));
     expect(level.coverage).toBe(sampledCoverage({ ...lone(straight(level.raster), 1), wrap: one.wrap }, 128));
+  });
+
+  it('samples along edges what the reference samples everywhere', () => {
+    // Patches of codes about the passing one, as masks are made of: most texels have only neighbors that decide alike.
+    holds(
+      fc.tuple(seeds, smallExtents, wraps, fc.integer({ min: 0, max: 255 })),
+      200,
+      ([seed, extent, wrap, passing]) => {
+        const next = numbers(seed);
+        const near = [0, Math.max(0, passing - 1), passing, Math.min(255, passing + 1), 255];
+        const patches = Array.from({ length: 16 }, () => near[next() % near.length]);
+        const codes = Uint8Array.from({ length: extent.width * extent.height }, (_, i) => {
+          const [x, y] = [i % extent.width, Math.floor(i / extent.width)];
+          return patches[((x >> 2) + (y >> 2) * 5) % patches.length];
+        });
+        const plane = { extent, depth: 8, codes, stride: 1, start: 0 } as const;
+        expect(measureCoverage(plane, passing, wrap)).toBe(sampledCoverage({ extent, codes, wrap }, passing));
+      },
+    );
   });
 
   it('reads outside an image as its wrap says', () => {
