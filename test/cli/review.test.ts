@@ -4,6 +4,7 @@ import { expect, test } from 'vitest';
 import { encodePng } from '../demo/paint/png.ts';
 import { blades, grain, HARMFUL, halved, makeMixedBranch } from '../fixtures/branch.ts';
 import { commit, newRepository, testGitEnvironment } from '../fixtures/repository.ts';
+import { top } from '../house/tree.ts';
 import { newFolder, putFiles } from '../node/folder.ts';
 import { type Ran, sizeproof } from './cli.ts';
 
@@ -24,6 +25,14 @@ test('a branch of ten changes: the harmful ones first, in the table, the documen
   expect(textures.slice(0, 2)).toEqual(HARMFUL);
   expect(stdout).toMatch(/harm: 100 % of the coverage is lost at level \d/);
   expect(stdout).toMatch(/10 textures changed, 2 with harm, 0 over a limit or unreadable\.\n$/);
+
+  // README's example, but for the sizes of files, which another zlib writes otherwise.
+  const [, ...lines] = stdout.split('\n');
+  const example = lines
+    .slice(0, 5)
+    .join('\n')
+    .replace(/; file .*$/, '');
+  expect(readFileSync(join(top, 'README.md'), 'utf8')).toContain(`\`\`\`\n${example}\n\`\`\``);
 
   const json = JSON.parse((await run(folder, 'main...', '--json')).stdout);
   expect(json.textures.map((each: { path: string }) => each.path).slice(0, 2)).toEqual(HARMFUL);
