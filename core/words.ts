@@ -262,6 +262,9 @@ export type Code = keyof typeof words;
 /** The values that a code's template names. */
 export type Values<C extends Code> = { readonly [Name in Placeholder<(typeof words)[C]>]: string | number };
 
+/** A problem's code with the values that its template names: a problem without its place. */
+export type Fault = { readonly [C in Code]: { readonly code: C; readonly values: Values<C> } }[Code];
+
 type Placeholder<Text extends string> = Text extends `${string}{${infer Name}}${infer Rest}`
   ? Name | Placeholder<Rest>
   : never;

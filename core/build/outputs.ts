@@ -4,7 +4,7 @@ import { type Ktx2Layout, layoutKtx2 } from '../codec/ktx2/format.ts';
 import type { PlannedFile } from '../job.ts';
 import type { ImageUse } from '../manifest/manifest.ts';
 import type { ChannelCount, Depth, Extent } from '../raster/raster.ts';
-import { outputPath } from '../treatment/names.ts';
+import { outputPath } from '../treatment/find/names.ts';
 import type { Content, Transfer, Treatment } from '../treatment/treatment.ts';
 
 /** One image that is shipped: what it is, and the PNG that holds it alone, if any. */

@@ -5,7 +5,7 @@ import type { ManifestSource } from '../manifest/manifest.ts';
 import type { Cancel, Ports } from '../port.ts';
 import { placed, Refusal, refuse } from '../problem.ts';
 import { newCodes, type StraightRaster } from '../raster/raster.ts';
-import { sourcePath } from '../treatment/names.ts';
+import { sourcePath } from '../treatment/find/names.ts';
 import type { Roughness, Treatment } from '../treatment/treatment.ts';
 import type { TexturePlan } from './plan.ts';
 import { openSource, readSource } from './source.ts';

@@ -15,7 +15,7 @@ import { type Cancel, Cancelled, type Ports } from '../port.ts';
 import { refuse } from '../problem.ts';
 import { expandIndexed, type Raster } from '../raster/raster.ts';
 import { plainEngine } from '../resample/plain.ts';
-import { manifestPath } from '../treatment/names.ts';
+import { manifestPath } from '../treatment/find/names.ts';
 import { type BuiltChains, buildChains } from './chains.ts';
 import { describeImage } from './describe.ts';
 import { containerLayout, type PlannedContainer, type PlannedImage } from './outputs.ts';

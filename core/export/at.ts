@@ -1,7 +1,7 @@
 import { refuse } from '../problem.ts';
 import { OWN_SLOT, type Sight, type Slot, STATE_VERSION } from '../proof/slot.ts';
-import { extentText, scaleText } from '../treatment/grammar.ts';
-import { resolveTarget } from '../treatment/target.ts';
+import { extentText, scaleText } from '../treatment/text/grammar.ts';
+import { resolveTarget } from '../treatment/text/target.ts';
 import type { KernelChoice, Target, Treatment } from '../treatment/treatment.ts';
 
 /** The state of a page that stands at a target and compares kernels; null where neither is asked for. `at` is a level, the name

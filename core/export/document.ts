@@ -1,5 +1,5 @@
 import type { Hash } from '../port.ts';
-import { encodeUtf8 } from '../treatment/utf8.ts';
+import { encodeUtf8 } from '../treatment/paths/utf8.ts';
 import { base64, base64OfHex } from './base64.ts';
 
 /** What `npm run build` made of a page, as text; the doors read it from dist/page. */

@@ -1,5 +1,5 @@
 import type { Hash } from '../port.ts';
-import { baseName } from '../treatment/path.ts';
+import { baseName } from '../treatment/paths/path.ts';
 import type { Origin } from '../treatment/treatment.ts';
 import { documentOf, type PageCode } from './document.ts';
 import type { ProofOrder } from './order.ts';

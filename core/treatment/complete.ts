@@ -2,7 +2,7 @@ import * as defaults from './defaults.ts';
 import { kernelFor } from './kernel-direction.ts';
 import { standard } from './keys.ts';
 import type { Patch } from './merge.ts';
-import { resolveTarget, type TargetSetting } from './target.ts';
+import { resolveTarget, type TargetSetting } from './text/target.ts';
 import type { Limits, Origin, ReviewLimits, Roughness, Texture, Treatment } from './treatment.ts';
 
 /** The treatment that merged rules make, built-in defaults filled in, and where each leaf is from, in the order of keys.ts.

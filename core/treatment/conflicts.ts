@@ -1,8 +1,8 @@
+import type { Fault } from '../words.ts';
 import { defaultKernel } from './defaults.ts';
-import type { Fault } from './grammar.ts';
 import { asksFor, can, type Direction, unreachableScale } from './kernel-direction.ts';
 import type { Patch } from './merge.ts';
-import { placeholders } from './pattern.ts';
+import { placeholders } from './paths/pattern.ts';
 import type { KernelChoice, Treatment } from './treatment.ts';
 
 /** A rule between keys. */

@@ -1,6 +1,6 @@
 import { findKernel, type Kernel } from '../kernel/table.ts';
 import { defaultKernel } from './defaults.ts';
-import type { Entry } from './entry.ts';
+import type { Entry } from './text/entry.ts';
 import type { Content, KernelChoice, Target, Treatment } from './treatment.ts';
 
 export type Direction = 'minify' | 'magnify';

@@ -13,7 +13,7 @@ import {
   spread,
   text,
   whole,
-} from './shape.ts';
+} from './text/shape.ts';
 
 // Every key of the settings file: type, unit, range, default and one sentence each.
 

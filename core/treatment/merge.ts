@@ -1,5 +1,5 @@
-import type { Entry } from './entry.ts';
 import type { Rule, Settings } from './settings.ts';
+import type { Entry } from './text/entry.ts';
 
 /** A leaf, or a null, with the rule that set it. */
 export interface Merged extends Entry {

@@ -1,14 +1,14 @@
 import type { Node } from 'jsonc-parser';
 import type { Problem } from '../problem.ts';
 import { settledConflicts } from './conflict-check.ts';
-import { describeNode } from './describe.ts';
-import { type Entry, readGroup } from './entry.ts';
-import { globMatcher } from './glob.ts';
 import { fileKeys, ruleKeys, treatmentKeys } from './keys.ts';
-import { type Spot, spotFinder } from './place.ts';
-import { type Field, type Reading, readFields, report } from './reading.ts';
-import { parseText } from './syntax.ts';
-import { readValue } from './value.ts';
+import { globMatcher } from './paths/glob.ts';
+import { describeNode } from './text/describe.ts';
+import { type Entry, readGroup } from './text/entry.ts';
+import { type Spot, spotFinder } from './text/place.ts';
+import { type Field, type Reading, readFields, report } from './text/reading.ts';
+import { parseText } from './text/syntax.ts';
+import { readValue } from './text/value.ts';
 
 /** A settings file, checked. */
 export interface Settings {

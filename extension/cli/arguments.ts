@@ -1,6 +1,6 @@
 import { defaultParams, findKernel, kernels } from '../../core/kernel/table.ts';
 import { type Problem, Refusal, refuse } from '../../core/problem.ts';
-import { nearest } from '../../core/treatment/nearest.ts';
+import { nearest } from '../../core/treatment/text/nearest.ts';
 import type { KernelChoice } from '../../core/treatment/treatment.ts';
 import { type CommandName, commands, type OptionEntry, type OptionName, options } from './commands.ts';
 

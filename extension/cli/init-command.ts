@@ -1,7 +1,7 @@
 import { type Problem, Refusal } from '../../core/problem.ts';
-import { joinPath, resolvePath } from '../../core/treatment/path.ts';
-import { SETTINGS_NAME } from '../../core/treatment/root.ts';
-import { settingsTemplate } from '../../core/treatment/template.ts';
+import { settingsTemplate } from '../../core/treatment/edit/template.ts';
+import { SETTINGS_NAME } from '../../core/treatment/find/root.ts';
+import { joinPath, resolvePath } from '../../core/treatment/paths/path.ts';
 import { orRefuse } from '../node/laydown.ts';
 import { nodeDisk, slashed } from '../node/node-disk.ts';
 import { temporaryFor } from '../node/temporary.ts';

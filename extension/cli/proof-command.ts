@@ -6,7 +6,7 @@ import { proofPage } from '../../core/export/proof-page.ts';
 import { byteText } from '../../core/figures.ts';
 import { Cancelled } from '../../core/port.ts';
 import { type Problem, placed, Refusal, refuse } from '../../core/problem.ts';
-import { baseName, resolvePath } from '../../core/treatment/path.ts';
+import { baseName, resolvePath } from '../../core/treatment/paths/path.ts';
 import { newHash } from '../node/hash.ts';
 import { inflate } from '../node/inflate.ts';
 import { readKernels } from '../node/kernels.ts';

@@ -1,4 +1,4 @@
-import type { Query } from '../../core/treatment/select.ts';
+import type { Query } from '../../core/treatment/find/select.ts';
 import { slashed } from '../node/node-disk.ts';
 import type { Arguments } from './arguments.ts';
 import type { Shell } from './shell.ts';

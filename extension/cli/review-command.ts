@@ -4,7 +4,7 @@ import { reportMarkdown } from '../../core/review/markdown.ts';
 import { type ReportRow, reportRow, sortByImpact } from '../../core/review/report.ts';
 import { sayVerdict } from '../../core/review/verdict.ts';
 import { seenAt } from '../../core/review/visible.ts';
-import { resolvePath } from '../../core/treatment/path.ts';
+import { resolvePath } from '../../core/treatment/paths/path.ts';
 import { type Range, readRange } from '../node/git/range.ts';
 import { openVersions, type Versions } from '../node/git/versions.ts';
 import { defaultMemoryBytes } from '../node/memory.ts';

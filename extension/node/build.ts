@@ -1,7 +1,7 @@
 import type { BuildPlan } from '../../core/job.ts';
 import { type Problem, placed, Refusal } from '../../core/problem.ts';
-import { resolvePath } from '../../core/treatment/path.ts';
-import type { Query } from '../../core/treatment/select.ts';
+import type { Query } from '../../core/treatment/find/select.ts';
+import { resolvePath } from '../../core/treatment/paths/path.ts';
 import { collisionsOf } from './collisions.ts';
 import type { Disk } from './disk.ts';
 import { filesOf } from './laydown.ts';

@@ -1,8 +1,8 @@
 import { type Problem, Refusal } from '../../core/problem.ts';
-import { findCollisions, findOverwrites, foldCase, type TextureOutputs } from '../../core/treatment/collisions.ts';
-import { manifestPath } from '../../core/treatment/names.ts';
-import { pathBelow, resolvePath } from '../../core/treatment/path.ts';
-import { walkSources } from '../../core/treatment/walk.ts';
+import { findCollisions, findOverwrites, foldCase, type TextureOutputs } from '../../core/treatment/find/collisions.ts';
+import { manifestPath } from '../../core/treatment/find/names.ts';
+import { walkSources } from '../../core/treatment/find/walk.ts';
+import { pathBelow, resolvePath } from '../../core/treatment/paths/path.ts';
 import type { Disk } from './disk.ts';
 import { parentOf } from './path.ts';
 import { absolute, type ProjectRoot, type ProjectTexture } from './project.ts';

@@ -6,7 +6,7 @@ import type { Manifest } from '../../core/manifest/manifest.ts';
 import { readManifest } from '../../core/manifest/read.ts';
 import { writeManifest } from '../../core/manifest/write.ts';
 import { type Problem, Refusal, refuse, warning } from '../../core/problem.ts';
-import { pathBelow, resolvePath } from '../../core/treatment/path.ts';
+import { pathBelow, resolvePath } from '../../core/treatment/paths/path.ts';
 import { type Disk, DiskError, type FileStat } from './disk.ts';
 import { parentOf } from './path.ts';
 import { nextOf, temporaryFor } from './temporary.ts';

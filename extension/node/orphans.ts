@@ -1,9 +1,9 @@
 import type { Manifest } from '../../core/manifest/manifest.ts';
 import { movedTo, type Orphan, sourcesByHash } from '../../core/manifest/orphan.ts';
 import type { Problem } from '../../core/problem.ts';
-import { pathBelow, resolvePath } from '../../core/treatment/path.ts';
-import { findRoot } from '../../core/treatment/root.ts';
-import type { Query } from '../../core/treatment/select.ts';
+import { findRoot } from '../../core/treatment/find/root.ts';
+import type { Query } from '../../core/treatment/find/select.ts';
+import { pathBelow, resolvePath } from '../../core/treatment/paths/path.ts';
 import type { Disk } from './disk.ts';
 import { filesOf, orRefuse, removeUnedited } from './laydown.ts';
 import { parentOf } from './path.ts';

@@ -1,4 +1,4 @@
-import { parentPath } from '../../core/treatment/path.ts';
+import { parentPath } from '../../core/treatment/paths/path.ts';
 
 // Absolute paths with "/" between the parts (`/a/b`, `C:/a/b`), as text: nothing here looks at a disk.
 

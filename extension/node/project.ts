@@ -1,9 +1,14 @@
 import { type Problem, Refusal } from '../../core/problem.ts';
-import { manifestPath, sourcePath } from '../../core/treatment/names.ts';
-import { baseName, pathBelow, resolvePath } from '../../core/treatment/path.ts';
-import { findRoot } from '../../core/treatment/root.ts';
-import { loadRoot } from '../../core/treatment/root-settings.ts';
-import { type Query, type RootSelection, type SelectedTexture, selectSources } from '../../core/treatment/select.ts';
+import { manifestPath, sourcePath } from '../../core/treatment/find/names.ts';
+import { findRoot } from '../../core/treatment/find/root.ts';
+import { loadRoot } from '../../core/treatment/find/root-settings.ts';
+import {
+  type Query,
+  type RootSelection,
+  type SelectedTexture,
+  selectSources,
+} from '../../core/treatment/find/select.ts';
+import { baseName, pathBelow, resolvePath } from '../../core/treatment/paths/path.ts';
 import type { Treatment } from '../../core/treatment/treatment.ts';
 import type { Disk } from './disk.ts';
 import { parentOf, relative } from './path.ts';

@@ -1,7 +1,7 @@
 import { ALGORITHM, type Manifest, type ManifestSource } from '../../core/manifest/manifest.ts';
 import { type Problem, placed, Refusal, refuse } from '../../core/problem.ts';
-import { MANIFEST_ENDING, manifestPath, outputPath } from '../../core/treatment/names.ts';
-import { baseName, joinPath, resolvePath } from '../../core/treatment/path.ts';
+import { MANIFEST_ENDING, manifestPath, outputPath } from '../../core/treatment/find/names.ts';
+import { baseName, joinPath, resolvePath } from '../../core/treatment/paths/path.ts';
 import type { BuildReport, BuildTools, Reporter, TextureReport } from './build.ts';
 import type { Disk } from './disk.ts';
 import { filesOf } from './laydown.ts';

@@ -5,7 +5,7 @@ import type { BuiltFile } from '../../core/job.ts';
 import type { Manifest, ManifestImage } from '../../core/manifest/manifest.ts';
 import { type Cancel, Cancelled, type Ports } from '../../core/port.ts';
 import { Refusal } from '../../core/problem.ts';
-import { resolvePath } from '../../core/treatment/path.ts';
+import { resolvePath } from '../../core/treatment/paths/path.ts';
 import type { Disk } from './disk.ts';
 import { parentOf } from './path.ts';
 import type { JobFile, TextureJob } from './texture-job.ts';

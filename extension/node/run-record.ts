@@ -1,5 +1,5 @@
 import { ALGORITHM } from '../../core/manifest/manifest.ts';
-import { joinPath, pathBelow } from '../../core/treatment/path.ts';
+import { joinPath, pathBelow } from '../../core/treatment/paths/path.ts';
 import type { Treatment } from '../../core/treatment/treatment.ts';
 import { type Disk, statNumbers } from './disk.ts';
 import { parentOf, relative } from './path.ts';

@@ -1,5 +1,5 @@
 import { createHash } from 'node:crypto';
-import { joinPath } from '../../core/treatment/path.ts';
+import { joinPath } from '../../core/treatment/paths/path.ts';
 import { type Disk, DiskError, type FileStat } from './disk.ts';
 import { parentOf } from './path.ts';
 import { temporaryFor } from './temporary.ts';

@@ -1,4 +1,4 @@
-import { joinPath } from '../../core/treatment/path.ts';
+import { joinPath } from '../../core/treatment/paths/path.ts';
 import { type Disk, DiskError } from './disk.ts';
 import { manifestOfNext, temporaryOwner } from './temporary.ts';
 

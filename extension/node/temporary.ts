@@ -1,5 +1,5 @@
 import { randomBytes } from 'node:crypto';
-import { baseName, joinPath } from '../../core/treatment/path.ts';
+import { baseName, joinPath } from '../../core/treatment/paths/path.ts';
 import { parentOf } from './path.ts';
 
 // Temporary files stand beside what they will replace: `.<name>.<process>-<random>.tmp`. The process id tells a sweeper whether

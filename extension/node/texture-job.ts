@@ -4,7 +4,7 @@ import type { Manifest } from '../../core/manifest/manifest.ts';
 import type { Cancel, Ports } from '../../core/port.ts';
 import { type Problem, placed, Refusal, refuse } from '../../core/problem.ts';
 import type { Review } from '../../core/review/review.ts';
-import { joinPath } from '../../core/treatment/path.ts';
+import { joinPath } from '../../core/treatment/paths/path.ts';
 import type { Treatment } from '../../core/treatment/treatment.ts';
 import type { Disk } from './disk.ts';
 import type { Versions } from './git/versions.ts';

@@ -1,7 +1,7 @@
 import * as fs from 'node:fs';
 import { expect, test } from 'vitest';
+import { settingsTemplate } from '../../core/treatment/edit/template.ts';
 import { parseSettings } from '../../core/treatment/settings.ts';
-import { settingsTemplate } from '../../core/treatment/template.ts';
 import { openProgress } from '../../extension/cli/progress.ts';
 import { version } from '../../package.json';
 import { writePng } from '../fixtures/rawpng.ts';

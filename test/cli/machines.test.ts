@@ -3,7 +3,7 @@ import { cpSync, existsSync } from 'node:fs';
 import { join } from 'node:path';
 import { describe, expect, test } from 'vitest';
 import { readManifest } from '../../core/manifest/read.ts';
-import { MANIFEST_ENDING } from '../../core/treatment/names.ts';
+import { MANIFEST_ENDING } from '../../core/treatment/find/names.ts';
 import { filesBelow, newFolder } from '../node/folder.ts';
 import { sizeproof } from './cli.ts';
 

@@ -3,7 +3,7 @@ import { join } from 'node:path';
 import { expect, test } from 'vitest';
 
 import { say } from '../../core/problem.ts';
-import { globMatcher } from '../../core/treatment/glob.ts';
+import { globMatcher } from '../../core/treatment/paths/glob.ts';
 import { resolveTreatment, unusedTreatments } from '../../core/treatment/resolve.ts';
 import { parseSettings } from '../../core/treatment/settings.ts';
 import { gallery } from './paint/gallery.ts';

@@ -1,4 +1,4 @@
-import { settingsTable } from '../../core/treatment/settings-table.ts';
+import { settingsTable } from '../../core/treatment/schema/settings-table.ts';
 
 const BETWEEN = /(<!-- settings: [^>]*-->\n)[\s\S]*?(<!-- \/settings -->)/;
 

@@ -1,5 +1,5 @@
 import { expect, test } from 'vitest';
-import { resolvePath } from '../../core/treatment/path.ts';
+import { resolvePath } from '../../core/treatment/paths/path.ts';
 import { parentOf, relative } from '../../extension/node/path.ts';
 
 test.each([

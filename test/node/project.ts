@@ -1,6 +1,6 @@
 import { buildTexture } from '../../core/build/texture.ts';
 import type { Inflate } from '../../core/port.ts';
-import type { Query } from '../../core/treatment/select.ts';
+import type { Query } from '../../core/treatment/find/select.ts';
 import { type BuildOptions, type BuildReport, buildProject, type Reporter } from '../../extension/node/build.ts';
 import { type CheckReport, checkProject } from '../../extension/node/check.ts';
 import type { Disk } from '../../extension/node/disk.ts';

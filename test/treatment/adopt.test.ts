@@ -1,12 +1,12 @@
 import fc from 'fast-check';
 import { parse } from 'jsonc-parser';
 import { describe, expect, test } from 'vitest';
-import { type Adopter, adoptSettings } from '../../core/treatment/adopt.ts';
-import { exactGlob } from '../../core/treatment/exact-glob.ts';
-import { globFault, globMatcher } from '../../core/treatment/glob.ts';
+import { type Adopter, adoptSettings } from '../../core/treatment/edit/adopt.ts';
+import { settingsTemplate } from '../../core/treatment/edit/template.ts';
+import { exactGlob } from '../../core/treatment/paths/exact-glob.ts';
+import { globFault, globMatcher } from '../../core/treatment/paths/glob.ts';
 import { resolveTreatment } from '../../core/treatment/resolve.ts';
 import { parseSettings } from '../../core/treatment/settings.ts';
-import { settingsTemplate } from '../../core/treatment/template.ts';
 import { problemOf } from '../fixtures/refusal.ts';
 
 const leaf: Adopter = { texture: 'foliage/leaf[1].png' };

@@ -1,5 +1,5 @@
 import { describe, expect, test } from 'vitest';
-import { globFault, globMatcher } from '../../core/treatment/glob.ts';
+import { globFault, globMatcher } from '../../core/treatment/paths/glob.ts';
 
 describe('what a glob matches', () => {
   test.each<readonly [glob: string, hits: readonly string[], misses: readonly string[]]>([

@@ -1,7 +1,7 @@
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
-import { findCollisions, findOverwrites, foldCase } from '../../core/treatment/collisions.ts';
-import { manifestPath, type OutputRequest, outputPath, sourcePath } from '../../core/treatment/names.ts';
+import { findCollisions, findOverwrites, foldCase } from '../../core/treatment/find/collisions.ts';
+import { manifestPath, type OutputRequest, outputPath, sourcePath } from '../../core/treatment/find/names.ts';
 import { problemOf } from '../fixtures/refusal.ts';
 
 const png = { use: 'image', extension: 'png', extent: { width: 64, height: 32 } } as const;

@@ -1,5 +1,5 @@
 import { expect, test } from 'vitest';
-import { repairOf, tokenLength } from '../../core/treatment/repair.ts';
+import { repairOf, tokenLength } from '../../core/treatment/edit/repair.ts';
 import { parseSettings } from '../../core/treatment/settings.ts';
 
 /** The text after each problem that has a repair is repaired where it points. */

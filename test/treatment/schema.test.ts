@@ -3,15 +3,15 @@ import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import { kernels } from '../../core/kernel/table.ts';
 import { fileKeys, ruleKeys, standard, treatmentKeys, walkKeys } from '../../core/treatment/keys.ts';
-import { openSchema } from '../../core/treatment/open-schema.ts';
 import { resolveTreatment } from '../../core/treatment/resolve.ts';
-import { jsonSchema, schemaText } from '../../core/treatment/schema.ts';
+import { openSchema } from '../../core/treatment/schema/open-schema.ts';
+import { jsonSchema, schemaText } from '../../core/treatment/schema/schema.ts';
+import { settingsTable } from '../../core/treatment/schema/settings-table.ts';
 import { parseSettings } from '../../core/treatment/settings.ts';
-import { settingsTable } from '../../core/treatment/settings-table.ts';
 import { accepts } from '../fixtures/json-schema.ts';
 
 test('the committed schema is the one that the keys make; `npm run schema` writes it', () => {
-  const committed = readFileSync(new URL('../../core/treatment/sizeproof.schema.json', import.meta.url), 'utf8');
+  const committed = readFileSync(new URL('../../core/treatment/schema/sizeproof.schema.json', import.meta.url), 'utf8');
   expect(committed.replaceAll('\r\n', '\n')).toBe(schemaText());
 });
 

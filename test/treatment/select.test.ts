@@ -1,6 +1,6 @@
 import { describe, expect, test } from 'vitest';
-import { findRoot } from '../../core/treatment/root.ts';
-import { type Query, selectSources } from '../../core/treatment/select.ts';
+import { findRoot } from '../../core/treatment/find/root.ts';
+import { type Query, selectSources } from '../../core/treatment/find/select.ts';
 import { type Item, memoryTree } from '../fixtures/memory-tree.ts';
 
 const image = 'not read here';

@@ -1,9 +1,9 @@
 import fc from 'fast-check';
 import { expect, test } from 'vitest';
-import { editDistance, nearest } from '../../core/treatment/nearest.ts';
-import { parentPath, pathBelow, resolvePath } from '../../core/treatment/path.ts';
-import { spotFinder } from '../../core/treatment/place.ts';
-import { decodeUtf8, utf8Length } from '../../core/treatment/utf8.ts';
+import { parentPath, pathBelow, resolvePath } from '../../core/treatment/paths/path.ts';
+import { decodeUtf8, utf8Length } from '../../core/treatment/paths/utf8.ts';
+import { editDistance, nearest } from '../../core/treatment/text/nearest.ts';
+import { spotFinder } from '../../core/treatment/text/place.ts';
 
 test.each([
   ['', 'abc', 3],

@@ -1,6 +1,6 @@
 import * as vscode from 'vscode';
 import type { Problem } from '../../../core/problem.ts';
-import { pathBelow } from '../../../core/treatment/path.ts';
+import { pathBelow } from '../../../core/treatment/paths/path.ts';
 import { isSettings, pathOf } from '../files/place.ts';
 import { severityOf } from '../settings/diagnostics.ts';
 import { sayProblem } from '../words.ts';

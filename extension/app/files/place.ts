@@ -1,7 +1,7 @@
 import * as vscode from 'vscode';
 import type { FileEntry, FileTree } from '../../../core/port.ts';
-import { joinPath } from '../../../core/treatment/path.ts';
-import { SETTINGS_NAME } from '../../../core/treatment/root.ts';
+import { SETTINGS_NAME } from '../../../core/treatment/find/root.ts';
+import { joinPath } from '../../../core/treatment/paths/path.ts';
 import type { Platform } from '../platform.ts';
 
 /** A file system as the house's paths see it: `/a/b` or `C:/a/b` within one scheme and authority. */

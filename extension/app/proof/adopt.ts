@@ -1,9 +1,9 @@
 import * as vscode from 'vscode';
 import { Refusal, refuse } from '../../../core/problem.ts';
 import type { AdoptChange } from '../../../core/protocol.ts';
-import { adoptSettings } from '../../../core/treatment/adopt.ts';
-import { pathBelow } from '../../../core/treatment/path.ts';
-import { SETTINGS_NAME } from '../../../core/treatment/root.ts';
+import { adoptSettings } from '../../../core/treatment/edit/adopt.ts';
+import { SETTINGS_NAME } from '../../../core/treatment/find/root.ts';
+import { pathBelow } from '../../../core/treatment/paths/path.ts';
 import { pathOf } from '../files/place.ts';
 import type { Platform } from '../platform.ts';
 import { hindranceToWriting } from '../settings/create.ts';

@@ -1,5 +1,5 @@
-import type { LoadedRoot } from '../../../core/treatment/root-settings.ts';
-import { selectSources } from '../../../core/treatment/select.ts';
+import type { LoadedRoot } from '../../../core/treatment/find/root-settings.ts';
+import { selectSources } from '../../../core/treatment/find/select.ts';
 import type { FilePlace } from '../files/place.ts';
 
 /** How many textures of a root globs match. A root is walked once, until its files may have changed. */

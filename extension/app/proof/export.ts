@@ -6,7 +6,7 @@ import { proofPage } from '../../../core/export/proof-page.ts';
 import { Cancelled } from '../../../core/port.ts';
 import { Refusal, refuse } from '../../../core/problem.ts';
 import type { ExportOrder } from '../../../core/protocol.ts';
-import { baseName } from '../../../core/treatment/path.ts';
+import { baseName } from '../../../core/treatment/paths/path.ts';
 import type { Platform } from '../platform.ts';
 import { readConfiguration } from '../settings/configuration.ts';
 import { isThere } from '../settings/create.ts';

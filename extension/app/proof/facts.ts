@@ -1,8 +1,8 @@
 import * as vscode from 'vscode';
 import { type Problem, Refusal } from '../../../core/problem.ts';
 import type { BuiltState, PrintHash, SettingsReply } from '../../../core/protocol.ts';
-import { sourcePath } from '../../../core/treatment/names.ts';
-import { resolvePath } from '../../../core/treatment/path.ts';
+import { sourcePath } from '../../../core/treatment/find/names.ts';
+import { resolvePath } from '../../../core/treatment/paths/path.ts';
 import { isOnDisk, unsavedSettings } from '../files/place.ts';
 import type { Inspection, Platform } from '../platform.ts';
 import { matchingRule } from '../settings/open.ts';

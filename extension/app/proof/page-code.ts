@@ -1,6 +1,6 @@
 import * as vscode from 'vscode';
 import type { PageCode } from '../../../core/export/document.ts';
-import { decodeUtf8 } from '../../../core/treatment/utf8.ts';
+import { decodeUtf8 } from '../../../core/treatment/paths/utf8.ts';
 
 /** The built page's code, for pages that stand alone. */
 export async function readPageCode(pages: vscode.Uri): Promise<PageCode> {

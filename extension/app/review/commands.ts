@@ -1,7 +1,7 @@
 import * as vscode from 'vscode';
 import { imageExtension } from '../../../core/codec/open.ts';
 import { refuse } from '../../../core/problem.ts';
-import { pathBelow } from '../../../core/treatment/path.ts';
+import { pathBelow } from '../../../core/treatment/paths/path.ts';
 import type { Platform, ReviewDoor, ReviewSubject } from '../platform.ts';
 import { activeResource } from '../selected.ts';
 import { readAsked } from './asked.ts';

@@ -2,7 +2,7 @@ import * as vscode from 'vscode';
 import { refuse } from '../../../core/problem.ts';
 import { PROTOCOL, type ReviewEvent } from '../../../core/protocol.ts';
 import type { ReviewCalls } from '../../../core/review/want.ts';
-import { joinPath } from '../../../core/treatment/path.ts';
+import { joinPath } from '../../../core/treatment/paths/path.ts';
 import type { Platform } from '../platform.ts';
 import { type Answers, Channel } from '../proof/channel.ts';
 import { VIEW_TYPE } from '../proof/editor.ts';

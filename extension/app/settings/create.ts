@@ -1,7 +1,7 @@
 import * as vscode from 'vscode';
 import type { Problem } from '../../../core/problem.ts';
-import { SETTINGS_NAME } from '../../../core/treatment/root.ts';
-import { settingsTemplate } from '../../../core/treatment/template.ts';
+import { settingsTemplate } from '../../../core/treatment/edit/template.ts';
+import { SETTINGS_NAME } from '../../../core/treatment/find/root.ts';
 import type { Platform } from '../platform.ts';
 import { sayProblem } from '../words.ts';
 

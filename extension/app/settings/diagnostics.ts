@@ -1,6 +1,6 @@
 import * as vscode from 'vscode';
 import type { Problem } from '../../../core/problem.ts';
-import { repairOf, tokenLength } from '../../../core/treatment/repair.ts';
+import { repairOf, tokenLength } from '../../../core/treatment/edit/repair.ts';
 import { parseSettings } from '../../../core/treatment/settings.ts';
 import { isSettings } from '../files/place.ts';
 import { sayProblem } from '../words.ts';

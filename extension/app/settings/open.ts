@@ -1,5 +1,5 @@
 import * as vscode from 'vscode';
-import type { Spot } from '../../../core/treatment/place.ts';
+import type { Spot } from '../../../core/treatment/text/place.ts';
 import type { Platform } from '../platform.ts';
 import { createSettings, isThere } from './create.ts';
 import { settingsOf, type TextureSettings } from './texture.ts';

@@ -1,5 +1,5 @@
 import * as vscode from 'vscode';
-import { openSchema } from '../../../core/treatment/open-schema.ts';
+import { openSchema } from '../../../core/treatment/schema/open-schema.ts';
 
 /** Named in package.json, under `jsonValidation`, and as what wakes the extension: the editor asks for the schema as soon as a
  *  settings file is opened, and at no other time. To wait for the file's language would wake it for every file of that language,

@@ -1,10 +1,10 @@
 import type * as vscode from 'vscode';
 import type { Problem } from '../../../core/problem.ts';
 import { Refusal } from '../../../core/problem.ts';
-import { parentPath, pathBelow } from '../../../core/treatment/path.ts';
+import { findRoot } from '../../../core/treatment/find/root.ts';
+import { type LoadedRoot, loadRoot } from '../../../core/treatment/find/root-settings.ts';
+import { parentPath, pathBelow } from '../../../core/treatment/paths/path.ts';
 import { resolveTreatment } from '../../../core/treatment/resolve.ts';
-import { findRoot } from '../../../core/treatment/root.ts';
-import { type LoadedRoot, loadRoot } from '../../../core/treatment/root-settings.ts';
 import type { Texture } from '../../../core/treatment/treatment.ts';
 import { type FilePlace, placeOf } from '../files/place.ts';
 import type { Platform } from '../platform.ts';

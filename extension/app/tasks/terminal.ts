@@ -1,6 +1,6 @@
 import * as vscode from 'vscode';
 import { exitCode, type Problem } from '../../../core/problem.ts';
-import { pathBelow } from '../../../core/treatment/path.ts';
+import { pathBelow } from '../../../core/treatment/paths/path.ts';
 import { type BuildDesk, runBuild } from '../build/desk.ts';
 import { buildEnding, checkEnding, type Ending } from '../build/report.ts';
 import { pathOf } from '../files/place.ts';

@@ -1,6 +1,6 @@
 import { lstatSync } from 'node:fs';
 import { type Problem, Refusal, refuse } from '../../../core/problem.ts';
-import { joinPath } from '../../../core/treatment/path.ts';
+import { joinPath } from '../../../core/treatment/paths/path.ts';
 import { type Ends, type Range, resolveRange } from './range.ts';
 import { findCommit, openRepository, type Repository } from './repository.ts';
 import { runGit, tryGit } from './run.ts';

@@ -1,7 +1,7 @@
 import { createHash } from 'node:crypto';
 import { type LfsPointer, readPointer } from '../../../core/codec/pointer.ts';
 import { refuse } from '../../../core/problem.ts';
-import { joinPath } from '../../../core/treatment/path.ts';
+import { joinPath } from '../../../core/treatment/paths/path.ts';
 import type { Disk } from '../disk.ts';
 
 /** The file that a Git LFS pointer stands for, from the store beside the repository; its SHA-256 is checked, and nothing is

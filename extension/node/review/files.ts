@@ -1,4 +1,4 @@
-import { baseName, resolvePath } from '../../../core/treatment/path.ts';
+import { baseName, resolvePath } from '../../../core/treatment/paths/path.ts';
 import type { Disk } from '../disk.ts';
 import type { FileRef } from '../git/changes.ts';
 import { parentOf } from '../path.ts';

@@ -1,10 +1,10 @@
 import { type Problem, Refusal } from '../../../core/problem.ts';
-import { globMatcher } from '../../../core/treatment/glob.ts';
-import { manifestPath } from '../../../core/treatment/names.ts';
-import { joinPath, pathBelow } from '../../../core/treatment/path.ts';
+import { manifestPath } from '../../../core/treatment/find/names.ts';
+import { findRoot } from '../../../core/treatment/find/root.ts';
+import { type LoadedRoot, loadRoot } from '../../../core/treatment/find/root-settings.ts';
+import { globMatcher } from '../../../core/treatment/paths/glob.ts';
+import { joinPath, pathBelow } from '../../../core/treatment/paths/path.ts';
 import { resolveTreatment } from '../../../core/treatment/resolve.ts';
-import { findRoot } from '../../../core/treatment/root.ts';
-import { type LoadedRoot, loadRoot } from '../../../core/treatment/root-settings.ts';
 import type { ReviewLimits, Treatment } from '../../../core/treatment/treatment.ts';
 import type { EndTree } from '../git/tree.ts';
 import { parentOf } from '../path.ts';

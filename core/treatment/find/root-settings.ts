@@ -1,8 +1,8 @@
-import type { FileTree } from '../port.ts';
-import type { Problem } from '../problem.ts';
-import { joinPath } from './path.ts';
-import { DEFAULT_OUT_DIR, type ParsedSettings, parseSettings, type Settings } from './settings.ts';
-import { decodeUtf8 } from './utf8.ts';
+import type { FileTree } from '../../port.ts';
+import type { Problem } from '../../problem.ts';
+import { joinPath } from '../paths/path.ts';
+import { decodeUtf8 } from '../paths/utf8.ts';
+import { DEFAULT_OUT_DIR, type ParsedSettings, parseSettings, type Settings } from '../settings.ts';
 
 /** A root with its settings read. */
 export interface LoadedRoot {

@@ -1,4 +1,4 @@
-import type { Problem } from '../problem.ts';
+import type { Problem } from '../../problem.ts';
 import { DEFAULT_NAME, MANIFEST_ENDING } from './names.ts';
 
 /** A texture of a root with every file that its build would write, the manifest included, relative to the output folder. */

@@ -1,5 +1,5 @@
+import type { Target } from '../treatment.ts';
 import { extentText, scaleText } from './grammar.ts';
-import type { Target } from './treatment.ts';
 
 /** A target as the settings file has it, checked. */
 export type TargetSetting =

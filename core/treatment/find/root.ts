@@ -1,5 +1,5 @@
-import type { FileTree } from '../port.ts';
-import { joinPath, parentPath } from './path.ts';
+import type { FileTree } from '../../port.ts';
+import { joinPath, parentPath } from '../paths/path.ts';
 
 export const SETTINGS_NAME = 'sizeproof.json';
 

@@ -1,8 +1,8 @@
 import type { Node } from 'jsonc-parser';
+import type { ChannelContent } from '../treatment.ts';
 import { readChoice } from './choice.ts';
 import { describeNode } from './describe.ts';
 import { type Reading, report } from './reading.ts';
-import type { ChannelContent } from './treatment.ts';
 
 /** Letters of a group: each at most once, in the file's order. */
 export const groupLetters = /^(?=.)r?g?b?a?$/;

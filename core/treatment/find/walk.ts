@@ -1,10 +1,10 @@
-import { imageExtension } from '../codec/open.ts';
-import type { FileEntry, FileTree } from '../port.ts';
-import type { Problem } from '../problem.ts';
-import { globMatcher } from './glob.ts';
+import { imageExtension } from '../../codec/open.ts';
+import type { FileEntry, FileTree } from '../../port.ts';
+import type { Problem } from '../../problem.ts';
+import { globMatcher } from '../paths/glob.ts';
+import { joinPath, pathBelow } from '../paths/path.ts';
 import { listedOutputs } from './listed.ts';
 import type { Start } from './locate.ts';
-import { joinPath, pathBelow } from './path.ts';
 import { SETTINGS_NAME } from './root.ts';
 import type { LoadedRoot } from './root-settings.ts';
 

@@ -1,4 +1,4 @@
-import type { Key } from './shape.ts';
+import type { Key } from '../text/shape.ts';
 
 /** A key's default in words; empty for a group, whose keys have their own. */
 export function describeDefault(key: Key): string {

@@ -1,5 +1,5 @@
 import picomatch from 'picomatch/posix.js';
-import type { Fault } from './grammar.ts';
+import type { Fault } from '../../words.ts';
 
 /** Whether a root-relative path matches one of the globs. Case-sensitive; `*` and `**` pass over names that start with a
  *  dot; the path is compared in NFC. The globs must have been checked. */

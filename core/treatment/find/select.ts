@@ -1,12 +1,12 @@
-import type { FileTree } from '../port.ts';
-import { type Problem, Refusal } from '../problem.ts';
-import { distinctProblems } from './conflict-check.ts';
+import type { FileTree } from '../../port.ts';
+import { type Problem, Refusal } from '../../problem.ts';
+import { distinctProblems } from '../conflict-check.ts';
+import { parentPath, pathBelow, resolvePath } from '../paths/path.ts';
+import { resolveTreatment } from '../resolve.ts';
+import type { Texture } from '../treatment.ts';
 import { locate } from './locate.ts';
-import { parentPath, pathBelow, resolvePath } from './path.ts';
-import { resolveTreatment } from './resolve.ts';
 import { findRoot } from './root.ts';
 import { type LoadedRoot, loadRoot } from './root-settings.ts';
-import type { Texture } from './treatment.ts';
 import { type FoundSource, walkSources } from './walk.ts';
 
 export interface Query {

@@ -1,10 +1,9 @@
-import { kernels } from '../kernel/table.ts';
-
-import { describe, orList } from './describe.ts';
+import { kernels } from '../../kernel/table.ts';
+import { fileKeys, ruleKeys, walkKeys } from '../keys.ts';
+import { describe, orList } from '../text/describe.ts';
+import { paramRange } from '../text/kernel-choice.ts';
+import { type Key, optionsOf } from '../text/shape.ts';
 import { describeDefault } from './describe-default.ts';
-import { paramRange } from './kernel-choice.ts';
-import { fileKeys, ruleKeys, walkKeys } from './keys.ts';
-import { type Key, optionsOf } from './shape.ts';
 
 /** Every setting as Markdown tables: keys of the file, keys of a treatment, kernels. */
 export function settingsTable(): string {

@@ -1,11 +1,8 @@
-import type { Code, Values } from '../words.ts';
-import { fileNameFault } from './file-name.ts';
-import { globFault } from './glob.ts';
-import { placeholders } from './pattern.ts';
+import type { Fault } from '../../words.ts';
+import { fileNameFault } from '../paths/file-name.ts';
+import { globFault } from '../paths/glob.ts';
+import { placeholders } from '../paths/pattern.ts';
 import type { Grammar } from './shape.ts';
-
-/** A problem's code with the values that its template names. */
-export type Fault = { readonly [C in Code]: { readonly code: C; readonly values: Values<C> } }[Code];
 
 /** What is wrong with a text of the settings file; null where nothing is. */
 export function textFault(text: string, grammar: Grammar): Fault | null {

@@ -1,9 +1,9 @@
 import type { Node } from 'jsonc-parser';
-import { allows, defaultParams, findKernel, type Kernel, type KernelParam, kernels } from '../kernel/table.ts';
+import { allows, defaultParams, findKernel, type Kernel, type KernelParam, kernels } from '../../kernel/table.ts';
+import type { KernelChoice } from '../treatment.ts';
 import { figure } from './describe.ts';
 import { nearest } from './nearest.ts';
 import { type Reading, report } from './reading.ts';
-import type { KernelChoice } from './treatment.ts';
 
 /** Reads a kernel's name, or an object of its name and parameters; left-out parameters take their defaults. Undefined where
  *  there is a problem, which is reported. */

@@ -1,8 +1,8 @@
 import { findNodeAtLocation, type JSONPath, type Node, parseTree } from 'jsonc-parser';
-import { Refusal } from '../problem.ts';
-import { exactGlob } from './exact-glob.ts';
+import { Refusal } from '../../problem.ts';
+import { exactGlob } from '../paths/exact-glob.ts';
+import { parseSettings, type Rule } from '../settings.ts';
 import { appendItem, oneLineJson } from './json-edit.ts';
-import { parseSettings, type Rule } from './settings.ts';
 
 /** Whom settings are adopted for: one texture, which gets a last treatment of its own, or the treatment of an index. */
 export type Adopter = { readonly texture: string } | { readonly treatment: number };

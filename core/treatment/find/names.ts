@@ -1,9 +1,9 @@
-import type { ImageUse } from '../manifest/manifest.ts';
-import { refuse } from '../problem.ts';
-import type { Extent } from '../raster/raster.ts';
-import { fileNameFault, MAX_NAME_BYTES } from './file-name.ts';
-import { fillPattern, placeholders } from './pattern.ts';
-import type { Treatment } from './treatment.ts';
+import type { ImageUse } from '../../manifest/manifest.ts';
+import { refuse } from '../../problem.ts';
+import type { Extent } from '../../raster/raster.ts';
+import { fileNameFault, MAX_NAME_BYTES } from '../paths/file-name.ts';
+import { fillPattern, placeholders } from '../paths/pattern.ts';
+import type { Treatment } from '../treatment.ts';
 
 /** One output of a texture. A container has neither level nor target. */
 export interface OutputRequest {

@@ -1,7 +1,6 @@
 import type { Node } from 'jsonc-parser';
-import type { Problem } from '../problem.ts';
-import type { Code, Values } from '../words.ts';
-import type { Fault } from './grammar.ts';
+import type { Problem } from '../../problem.ts';
+import type { Code, Fault, Values } from '../../words.ts';
 import { nearest } from './nearest.ts';
 import type { Spot } from './place.ts';
 import type { Key } from './shape.ts';

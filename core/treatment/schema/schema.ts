@@ -1,9 +1,9 @@
-import { type Kernel, kernels } from '../kernel/table.ts';
-import { channelContents } from './channels.ts';
+import { type Kernel, kernels } from '../../kernel/table.ts';
+import { fileKeys } from '../keys.ts';
+import { channelContents } from '../text/channels.ts';
+import { extentText, scaleText } from '../text/grammar.ts';
+import type { Grammar, Key, Shape } from '../text/shape.ts';
 import { describeDefault } from './describe-default.ts';
-import { extentText, scaleText } from './grammar.ts';
-import { fileKeys } from './keys.ts';
-import type { Grammar, Key, Shape } from './shape.ts';
 
 export interface JsonSchema {
   readonly [keyword: string]: unknown;

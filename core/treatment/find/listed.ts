@@ -1,8 +1,8 @@
 import { parse } from 'jsonc-parser';
-import type { FileEntry, FileTree } from '../port.ts';
+import type { FileEntry, FileTree } from '../../port.ts';
+import { joinPath } from '../paths/path.ts';
+import { decodeUtf8 } from '../paths/utf8.ts';
 import { MANIFEST_ENDING } from './names.ts';
-import { joinPath } from './path.ts';
-import { decodeUtf8 } from './utf8.ts';
 
 /** Names, in NFC, of files in a folder that manifests of this folder list as outputs. */
 export async function listedOutputs(

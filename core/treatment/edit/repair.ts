@@ -1,5 +1,5 @@
 import { createScanner } from 'jsonc-parser';
-import type { Problem } from '../problem.ts';
+import type { Problem } from '../../problem.ts';
 
 /** What an editor may put in the place of the token that a problem points at; null where there is no one answer. */
 export function repairOf({ code, values }: Problem): string | null {

@@ -1,7 +1,7 @@
-import type { FileTree } from '../port.ts';
-import type { Problem } from '../problem.ts';
-import { globFault, globMatcher, isGlob } from './glob.ts';
-import { baseName, joinPath, parentPath, pathBelow, resolvePath } from './path.ts';
+import type { FileTree } from '../../port.ts';
+import type { Problem } from '../../problem.ts';
+import { globFault, globMatcher, isGlob } from '../paths/glob.ts';
+import { baseName, joinPath, parentPath, pathBelow, resolvePath } from '../paths/path.ts';
 
 /** Where a PATH leads: the folder to begin in (its real path), whether to go below it, and which files are meant. */
 export interface Start {
