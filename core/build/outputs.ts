@@ -1,11 +1,12 @@
 import { frontChannels, holdsColor } from '../chain/layout.ts';
 import type { ChainPlan } from '../chain/plan.ts';
 import { type Ktx2Layout, layoutKtx2 } from '../codec/ktx2/format.ts';
+import type { Transfer } from '../color/transfer.ts';
 import type { PlannedFile } from '../job.ts';
 import type { ImageUse } from '../manifest/manifest.ts';
 import type { ChannelCount, Depth, Extent } from '../raster/raster.ts';
 import { outputPath } from '../treatment/find/names.ts';
-import type { Content, Transfer, Treatment } from '../treatment/treatment.ts';
+import type { Content, Treatment } from '../treatment/treatment.ts';
 
 /** One image that is shipped: what it is, and the PNG that holds it alone, if any. */
 export interface PlannedImage {

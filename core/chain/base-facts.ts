@@ -1,5 +1,5 @@
 import type { Extent } from '../raster/raster.ts';
-import { type Clipped, newClipped } from './clip.ts';
+import { type Clipped, newClipped } from '../resample/clip.ts';
 import { sumsLight } from './finish.ts';
 import { holdsColor } from './layout.ts';
 import type { LightSum } from './light.ts';

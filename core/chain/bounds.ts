@@ -1,6 +1,5 @@
-import { wrapIndex } from '../kernel/wrap.ts';
+import { type Wrap, wrapIndex } from '../kernel/wrap.ts';
 import { type Codes, type Extent, newCodes, type StraightRaster } from '../raster/raster.ts';
-import type { Wrap } from '../treatment/treatment.ts';
 import type { WrapPair } from './coverage.ts';
 
 export type Bound = 'min' | 'max';

@@ -1,6 +1,7 @@
 import { type Codes, maxCode } from '../raster/raster.ts';
+import type { Encoding } from '../resample/encoding.ts';
 import type { RowCoder } from '../resample/engine.ts';
-import { type Encoding, encodeRow } from './encode.ts';
+import { encodeRow } from './encode.ts';
 import { isLightInFloats, lightOfCodes, sumHeld } from './light.ts';
 
 /** Stores and measures rows whatever their encoding. The readable reference for engines with a coder of their own. */

@@ -1,7 +1,7 @@
 import { roundedCode } from '../color/encoder.ts';
-import { wrapIndex } from '../kernel/wrap.ts';
+import { type Wrap, wrapIndex } from '../kernel/wrap.ts';
 import { type Codes, type Depth, type Extent, maxCode } from '../raster/raster.ts';
-import type { AlphaTreatment, Wrap } from '../treatment/treatment.ts';
+import type { AlphaTreatment } from '../treatment/treatment.ts';
 
 // Coverage is the share of samples whose alpha passes the test, measured on stored codes as a sampler sees them: a mask is
 // magnified with bilinear filtering before it is tested, so counting texels alone overstates thin shapes.  [Castano10]

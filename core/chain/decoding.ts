@@ -2,8 +2,8 @@ import { srgbEncoder } from '../color/encoder.ts';
 import { power } from '../color/portable.ts';
 import { decodeTable, encodeSrgb } from '../color/transfer.ts';
 import { type Codes, type Depth, maxCode, newCodes } from '../raster/raster.ts';
+import type { Layout, Role } from '../resample/encoding.ts';
 import type { Decoding } from '../resample/engine.ts';
-import type { Layout, Role } from './layout.ts';
 
 /** The tables that turn a layout's codes into kernel light: color 0..1 (or code units where it is not transfer-coded),
  *  alpha and numbers in code units, normals -1..1, roughness as alpha^2 = r^4. */

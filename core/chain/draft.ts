@@ -1,12 +1,12 @@
+import type { Transfer } from '../color/transfer.ts';
 import type { IndexedRaster, Raster, StraightRaster } from '../raster/raster.ts';
 import { detail } from '../resample/detail.ts';
+import type { Layout } from '../resample/encoding.ts';
 import { epx } from '../resample/epx.ts';
 import { majority } from '../resample/majority.ts';
 import { moveCodes } from '../resample/nearest.ts';
-import type { Transfer } from '../treatment/treatment.ts';
 import { decodingOf } from './decoding.ts';
 import { ImageInWork } from './image.ts';
-import type { Layout } from './layout.ts';
 import { magnifySlopes } from './magnify.ts';
 import { type Method, movesCodes } from './method.ts';
 import { type ChainPlan, type PlannedLevel, type PlannedTarget, pictureExtent } from './plan.ts';

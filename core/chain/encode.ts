@@ -1,20 +1,10 @@
 import { type Encoder, roundedCode, srgbEncoder } from '../color/encoder.ts';
 import { decodeSrgb } from '../color/transfer.ts';
-import { type Codes, type Depth, maxCode } from '../raster/raster.ts';
+import { type Codes, maxCode } from '../raster/raster.ts';
+import { CLIP_SLACK, type Clipped } from '../resample/clip.ts';
 import { SHORTEST } from '../resample/decode.ts';
+import type { Encoding, Layout, Role } from '../resample/encoding.ts';
 import type { NormalGroup } from '../resample/engine.ts';
-import { CLIP_SLACK, type Clipped } from './clip.ts';
-import type { Layout, Role } from './layout.ts';
-
-/** How float rows of a layout become stored codes. Nothing is clamped before this. */
-export interface Encoding {
-  readonly layout: Layout;
-  readonly floatChannels: number;
-  readonly depth: Depth;
-  readonly store: 'straight' | 'premultiplied';
-  /** How color is stored: transfer-coded, or as linear light in code units. */
-  readonly light: 'coded' | 'linear';
-}
 
 /** Encodes one row into `codes` from sample `offset` on. `lengths` holds the mean length of the normals over each texel,
  *  0..1, for layouts with roughness. */

@@ -1,8 +1,8 @@
 import { expandIndexed, maxCode, type Raster, type StraightRaster } from '../raster/raster.ts';
+import { type Clipped, newClipped } from '../resample/clip.ts';
 import type { RowsRun } from '../resample/engine.ts';
 import { boundCodes } from './bounds.ts';
 import { placeInCell } from './cell.ts';
-import { type Clipped, newClipped } from './clip.ts';
 import type { CoverageScale } from './coverage.ts';
 import type { Draft } from './draft.ts';
 import { fillFrom, fillWith } from './fill.ts';

@@ -1,10 +1,10 @@
 import type { ImageUse } from '../manifest/manifest.ts';
 import { type Codes, type Extent, newCodes, type Raster, type StraightRaster } from '../raster/raster.ts';
+import { type Clipped, newClipped } from '../resample/clip.ts';
+import type { Encoding } from '../resample/encoding.ts';
 import type { RowCoder } from '../resample/engine.ts';
-import { type Clipped, newClipped } from './clip.ts';
 import { plainCoder } from './coder.ts';
 import type { CoverageScale, UnscaledAlpha } from './coverage.ts';
-import type { Encoding } from './encode.ts';
 import { holdsColor } from './layout.ts';
 import { type LightSum, lightOf, SUMS_A_ROW } from './light.ts';
 

@@ -1,7 +1,9 @@
+import type { Transfer } from '../color/transfer.ts';
 import { refuse } from '../problem.ts';
 import type { ChannelCount, Depth, Extent } from '../raster/raster.ts';
+import type { Layout, Role } from '../resample/encoding.ts';
 import type { NormalGroup } from '../resample/engine.ts';
-import type { ChannelContent, Transfer, Treatment } from '../treatment/treatment.ts';
+import type { ChannelContent, Treatment } from '../treatment/treatment.ts';
 
 /** What a chain is built from, known before its rows are. */
 export interface ChainHead {
@@ -12,36 +14,6 @@ export interface ChainHead {
   /** Exponent that the file's own tag says its colors were encoded with, where it is obeyed: light = code^(1/gamma). Left
    *  out where colors are sRGB. */
   readonly gamma?: number;
-}
-
-/** What one channel of the source holds and how its kernel light is reached. */
-export type Role =
-  /** Light; `transfer` is the one that filtering undoes, `stored` the one that codes stand for. They differ where codes are
-   *  filtered as they are. */
-  | { readonly kind: 'color'; readonly transfer: Transfer; readonly stored: Transfer }
-  /** Numbers that are filtered as they are. */
-  | { readonly kind: 'plain' }
-  /** Alpha used as opacity or mask. */
-  | { readonly kind: 'opacity' }
-  /** Alpha that nobody reads: stored as its largest code. */
-  | { readonly kind: 'unused' }
-  | { readonly kind: 'normal' }
-  | { readonly kind: 'roughness' };
-
-/** The channels of a source in the light of its treatment. */
-export interface Layout {
-  readonly channels: ChannelCount;
-  readonly depth: Depth;
-  readonly roles: readonly Role[];
-  /** Index of the channel whose role is `opacity`. */
-  readonly alpha: number | null;
-  /** Channels multiplied by alpha while filtering. */
-  readonly weighted: readonly number[];
-  readonly normals: readonly NormalGroup[];
-  /** As in the head; null where colors are what their roles say. */
-  readonly gamma: number | null;
-  /** Index of the roughness channel that takes up the spread of this file's normals. */
-  readonly roughness: number | null;
 }
 
 export function planLayout(head: ChainHead, treatment: Treatment): Layout {

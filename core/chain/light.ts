@@ -1,9 +1,9 @@
 import { luminance } from '../color/luminance.ts';
 import { decodeTable } from '../color/transfer.ts';
 import { type Codes, maxCode } from '../raster/raster.ts';
+import type { Encoding, Layout } from '../resample/encoding.ts';
 import { sumByFours } from '../resample/fours.ts';
-import type { Encoding } from './encode.ts';
-import { frontChannels, holdsColor, type Layout } from './layout.ts';
+import { frontChannels, holdsColor } from './layout.ts';
 
 /** Sums of luminance times alpha, and of alpha, over texels; the mean is their quotient. */
 export interface LightSum {

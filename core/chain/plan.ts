@@ -1,10 +1,11 @@
 import { findKernel } from '../kernel/table.ts';
 import { buildTaps } from '../kernel/taps.ts';
 import type { Depth, Extent } from '../raster/raster.ts';
+import type { Layout } from '../resample/encoding.ts';
 import type { Pass } from '../resample/engine.ts';
 import type { Target, Treatment } from '../treatment/treatment.ts';
 import { decodingOf } from './decoding.ts';
-import { type ChainHead, type Layout, planLayout } from './layout.ts';
+import { type ChainHead, planLayout } from './layout.ts';
 import { levelCount, levelExtent, type TargetPlace, targetPlace } from './levels.ts';
 import { type Method, methodOf, movesCodes } from './method.ts';
 import { encodingOf } from './store.ts';

@@ -1,9 +1,9 @@
 import { wrapIndex } from '../kernel/wrap.ts';
 import { type Extent, expandIndexed, type IndexedRaster, type Raster, type StraightRaster } from '../raster/raster.ts';
 import { blankLike, cutRegion, pasteRegion } from '../raster/region.ts';
+import { addClipped, newClipped } from '../resample/clip.ts';
 import type { Treatment } from '../treatment/treatment.ts';
 import { buildChain, type Chain, type ChainOptions, headOf } from './chain.ts';
-import { addClipped, newClipped } from './clip.ts';
 import type { WrapPair } from './coverage.ts';
 import { planSheet, type SheetPlan, sheetExtent, sheetNotes, targetExtent } from './grid.ts';
 import type { ChainImage } from './image.ts';

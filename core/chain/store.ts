@@ -1,9 +1,9 @@
 import { type Codes, type Depth, newCodes, type Raster, type StraightRaster } from '../raster/raster.ts';
+import { newClipped } from '../resample/clip.ts';
 import { decodeRow, floatChannels } from '../resample/decode.ts';
-import { newClipped } from './clip.ts';
+import type { Encoding, Layout } from '../resample/encoding.ts';
 import { decodingOf, recodeTable } from './decoding.ts';
-import { type Encoding, encodeRow } from './encode.ts';
-import type { Layout } from './layout.ts';
+import { encodeRow } from './encode.ts';
 import type { ChainPlan } from './plan.ts';
 
 /** How the plan's images are stored. */

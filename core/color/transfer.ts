@@ -1,6 +1,8 @@
 import { type Depth, maxCode } from '../raster/raster.ts';
-import type { Transfer } from '../treatment/treatment.ts';
 import { cubeRoot, fifthRoot } from './portable.ts';
+
+/** How codes stand for light. */
+export type Transfer = 'srgb' | 'linear';
 
 // The sRGB transfer function, exact and piecewise, with the standard's own rounded constants. They leave a step of 8e-9 at
 // the joint; the constants that would close it belong to no standard.  [IEC61966, as quoted in KDFS14, sRGB transfer functions]

@@ -1,4 +1,5 @@
 import { allows, findKernel } from '../kernel/table.ts';
+import type { Wrap } from '../kernel/wrap.ts';
 import {
   choice,
   dictionary,
@@ -16,7 +17,7 @@ import {
   text,
 } from '../manifest/shape.ts';
 import { type Change, OWN_SLOT, type Sight, type Slot } from '../proof/slot.ts';
-import type { KernelChoice, Target, Wrap } from '../treatment/treatment.ts';
+import type { KernelChoice, Target } from '../treatment/treatment.ts';
 import type { ProofPreferences } from './order.ts';
 
 /** What a sheet takes from the state of a page. */

@@ -1,8 +1,6 @@
 import { boundCodes } from '../chain/bounds.ts';
 import { headOf } from '../chain/chain.ts';
-import { CLIP_SLACK } from '../chain/clip.ts';
 import { planSheet } from '../chain/grid.ts';
-import type { Layout, Role } from '../chain/layout.ts';
 import {
   type ChainPlan,
   type PlannedLevel,
@@ -15,7 +13,9 @@ import { cellTreatment } from '../chain/sheet.ts';
 import { encodeSrgb } from '../color/transfer.ts';
 import { type Extent, expandIndexed, type IndexedRaster, maxCode, type StraightRaster } from '../raster/raster.ts';
 import { cutRegion } from '../raster/region.ts';
+import { CLIP_SLACK } from '../resample/clip.ts';
 import { floatChannels } from '../resample/decode.ts';
+import type { Layout, Role } from '../resample/encoding.ts';
 import type { Engine, Step } from '../resample/engine.ts';
 import { plainEngine } from '../resample/plain.ts';
 import type { Treatment } from '../treatment/treatment.ts';

@@ -1,4 +1,5 @@
-import type { Wrap } from '../treatment/treatment.ts';
+/** What a kernel reads beyond the edge of an axis.  [Vulkan, Wrapping Operation] */
+export type Wrap = 'clamp-to-edge' | 'repeat' | 'mirror-repeat' | 'clamp-to-border';
 
 /** The texel 0..count-1 that is read at index `i`, any distance outside; -1 where the border is read instead.
  *  `mirror-repeat` repeats the edge texel.  [Vulkan, Wrapping Operation] */

@@ -1,4 +1,6 @@
+import type { Transfer } from '../color/transfer.ts';
 import { allows, findKernel } from '../kernel/table.ts';
+import type { Wrap } from '../kernel/wrap.ts';
 import type {
   AlphaTreatment,
   ChannelContent,
@@ -6,9 +8,7 @@ import type {
   Limits,
   Roughness,
   Target,
-  Transfer,
   Treatment,
-  Wrap,
 } from '../treatment/treatment.ts';
 import {
   choice,

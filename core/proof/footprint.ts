@@ -1,8 +1,8 @@
 import type { ChainHead } from '../chain/layout.ts';
 import { type ChainPlan, type PlannedLevel, type PlannedTarget, planChain } from '../chain/plan.ts';
 import type { Taps } from '../kernel/taps.ts';
-import { wrapIndex } from '../kernel/wrap.ts';
-import type { Treatment, Wrap } from '../treatment/treatment.ts';
+import { type Wrap, wrapIndex } from '../kernel/wrap.ts';
+import type { Treatment } from '../treatment/treatment.ts';
 import type { AxisFootprint, FootprintAnswer, PrintImage } from './want.ts';
 
 /** The source texels, with their weights, that make texel (x, y) of an image. Where a level is made from the one before it, its

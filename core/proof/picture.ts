@@ -1,6 +1,7 @@
-import { holdsColor, type Layout } from '../chain/layout.ts';
+import { holdsColor } from '../chain/layout.ts';
 import type { ChainPlan } from '../chain/plan.ts';
 import { expandIndexed, type Raster } from '../raster/raster.ts';
+import type { Layout } from '../resample/encoding.ts';
 import type { Meaning, Picture } from './want.ts';
 
 /** A raster of a chain as a proof shows it. The codes are the raster's own where it has no palette. */

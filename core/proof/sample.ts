@@ -1,7 +1,6 @@
 import { decodeTable, encodeSrgb } from '../color/transfer.ts';
-import { wrapIndex } from '../kernel/wrap.ts';
+import { type Wrap, wrapIndex } from '../kernel/wrap.ts';
 import { type Extent, maxCode, newCodes } from '../raster/raster.ts';
-import type { Wrap } from '../treatment/treatment.ts';
 import type { Picture } from './want.ts';
 
 type WrapPair = { readonly x: Wrap; readonly y: Wrap };

@@ -1,4 +1,5 @@
-import type { KernelChoice, Origin, Treatment, Wrap } from '../treatment/treatment.ts';
+import type { Wrap } from '../kernel/wrap.ts';
+import type { KernelChoice, Origin, Treatment } from '../treatment/treatment.ts';
 import { withKernel } from './variant.ts';
 
 /** Where the sight stands: at a level, at a target, or between levels. */

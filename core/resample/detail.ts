@@ -1,7 +1,6 @@
 import { roundedCode, srgbEncoder } from '../color/encoder.ts';
-import { decodeTable, encodeSrgb } from '../color/transfer.ts';
+import { decodeTable, encodeSrgb, type Transfer } from '../color/transfer.ts';
 import { type Extent, maxCode, newCodes, type StraightRaster } from '../raster/raster.ts';
-import type { Transfer } from '../treatment/treatment.ts';
 import { buildFootprints, checkSmaller, type Footprints } from './footprint.ts';
 
 export interface DetailOptions {

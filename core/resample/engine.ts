@@ -1,8 +1,8 @@
-import type { Clipped } from '../chain/clip.ts';
-import type { Encoding } from '../chain/encode.ts';
 import type { Taps } from '../kernel/taps.ts';
+import type { Wrap } from '../kernel/wrap.ts';
 import type { Codes, Depth, Extent } from '../raster/raster.ts';
-import type { Wrap } from '../treatment/treatment.ts';
+import type { Clipped } from './clip.ts';
+import type { Encoding } from './encoding.ts';
 
 // The rows phase: source rows go in once, finished rows of every level and target come out. One interface for every
 // engine; an engine is right when its float rows equal those of plain.ts bit for bit.

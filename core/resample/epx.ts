@@ -1,6 +1,5 @@
-import { wrapIndex } from '../kernel/wrap.ts';
+import { type Wrap, wrapIndex } from '../kernel/wrap.ts';
 import { type Extent, expandIndexed, type IndexedRaster, type StraightRaster } from '../raster/raster.ts';
-import type { Wrap } from '../treatment/treatment.ts';
 import { BORDER, holdsBorder, pickTexels } from './pick.ts';
 
 /** Pixel art magnified by `factor`, a product of twos and threes: twos first, each by EPX (which equals Scale2x), then

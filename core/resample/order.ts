@@ -1,6 +1,5 @@
 import type { Taps } from '../kernel/taps.ts';
-import { wrapIndex } from '../kernel/wrap.ts';
-import type { Wrap } from '../treatment/treatment.ts';
+import { type Wrap, wrapIndex } from '../kernel/wrap.ts';
 
 /** In which order rows of a result can be made while rows of its source arrive once, and how many of them must be kept.
  *

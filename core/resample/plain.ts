@@ -1,7 +1,6 @@
 import { tapBytes } from '../kernel/taps.ts';
-import { wrapIndex } from '../kernel/wrap.ts';
+import { type Wrap, wrapIndex } from '../kernel/wrap.ts';
 import type { Codes } from '../raster/raster.ts';
-import type { Wrap } from '../treatment/treatment.ts';
 import { decodeRow, floatChannels } from './decode.ts';
 import type { Engine, Pass, RowSink, RowsRun, Step } from './engine.ts';
 import { type Filter, filterAcross, filterAlong, makeFilter, tapSpan } from './filter.ts';

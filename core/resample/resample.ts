@@ -1,6 +1,6 @@
 import type { Taps } from '../kernel/taps.ts';
+import type { Wrap } from '../kernel/wrap.ts';
 import type { Extent } from '../raster/raster.ts';
-import type { Wrap } from '../treatment/treatment.ts';
 import type { Engine } from './engine.ts';
 import { plainEngine } from './plain.ts';
 

@@ -1,9 +1,9 @@
-import type { Clipped } from '../chain/clip.ts';
 import { measureRow } from '../chain/coder.ts';
-import type { Encoding } from '../chain/encode.ts';
 import { isLightInFloats, wholeOf } from '../chain/light.ts';
 import { type Codes, maxCode } from '../raster/raster.ts';
+import type { Clipped } from '../resample/clip.ts';
 import { SHORTEST } from '../resample/decode.ts';
+import type { Encoding } from '../resample/encoding.ts';
 import type { RowCoder } from '../resample/engine.ts';
 import { ABOVE, BELOW, curveBytes, hasCurves, writeCurves } from './curves.ts';
 import { aligned, type Machine } from './machine.ts';

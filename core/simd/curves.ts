@@ -1,8 +1,7 @@
-import { CLIP_SLACK } from '../chain/clip.ts';
-import type { Encoding } from '../chain/encode.ts';
-import type { Role } from '../chain/layout.ts';
 import { type Encoder, srgbEncoder } from '../color/encoder.ts';
 import { type Depth, maxCode } from '../raster/raster.ts';
+import { CLIP_SLACK } from '../resample/clip.ts';
+import type { Encoding, Role } from '../resample/encoding.ts';
 import { aligned, type Machine } from './machine.ts';
 
 /** Whether the curves of kernels/encode.ts can store what the encoding asks for. Color that is multiplied by alpha as it is stored,

@@ -1,10 +1,9 @@
-import { wrapIndex } from '../kernel/wrap.ts';
+import { type Wrap, wrapIndex } from '../kernel/wrap.ts';
 import type { Codes, Extent } from '../raster/raster.ts';
 import { floatChannels } from '../resample/decode.ts';
 import type { Pass, RowSink, RowsRun } from '../resample/engine.ts';
 import { tapSpan } from '../resample/filter.ts';
 import { planRows } from '../resample/order.ts';
-import type { Wrap } from '../treatment/treatment.ts';
 import { coderBytes, SimdCoder, takesEncoding } from './coder.ts';
 import { Decoder, decoderBytes } from './decoder.ts';
 import { aligned, type Machine } from './machine.ts';

@@ -1,8 +1,8 @@
 import { maxTaps, type Taps } from '../kernel/taps.ts';
+import type { Wrap } from '../kernel/wrap.ts';
 import type { Step } from '../resample/engine.ts';
 import { type Filter, makeFilter } from '../resample/filter.ts';
 import { planRows, type RowOrder } from '../resample/order.ts';
-import type { Wrap } from '../treatment/treatment.ts';
 import { aligned, type Machine } from './machine.ts';
 
 /** The rows, filtered along x, that rows of a result are made from; the same as the plain engine's. */

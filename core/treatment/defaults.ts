@@ -1,5 +1,6 @@
+import type { Transfer } from '../color/transfer.ts';
 import { defaultParams, findKernel } from '../kernel/table.ts';
-import type { AlphaUse, ChannelContent, Content, KernelChoice, Transfer, Treatment } from './treatment.ts';
+import type { AlphaUse, ChannelContent, Content, KernelChoice, Treatment } from './treatment.ts';
 
 // Built-in values that depend on other keys. The constant ones stand in keys.ts.
 

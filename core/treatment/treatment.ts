@@ -1,3 +1,5 @@
+import type { Transfer } from '../color/transfer.ts';
+import type { Wrap } from '../kernel/wrap.ts';
 import type { Depth, Extent } from '../raster/raster.ts';
 
 // The resolved form: every setting explicit, defaults filled in. What a user may leave out is in schema.ts.
@@ -6,10 +8,6 @@ export type Content = 'color' | 'normal' | 'height' | 'data';
 
 /** What one channel group of a packed file means. `roughness` is data that takes up the spread of the same file's normals. */
 export type ChannelContent = Content | 'roughness';
-
-export type Transfer = 'srgb' | 'linear';
-
-export type Wrap = 'clamp-to-edge' | 'repeat' | 'mirror-repeat' | 'clamp-to-border';
 
 export type AlphaUse = 'opacity' | 'mask' | 'data' | 'none';
 

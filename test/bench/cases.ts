@@ -1,5 +1,5 @@
+import type { Wrap } from '../../core/kernel/wrap.ts';
 import type { Extent } from '../../core/raster/raster.ts';
-import type { Wrap } from '../../core/treatment/treatment.ts';
 
 /** Everything that is measured, as data. */
 export interface Cases {

@@ -1,7 +1,6 @@
 import fc from 'fast-check';
 import { expect, test } from 'vitest';
-import { wrapIndex } from '../../core/kernel/wrap.ts';
-import type { Wrap } from '../../core/treatment/treatment.ts';
+import { type Wrap, wrapIndex } from '../../core/kernel/wrap.ts';
 
 // Written out by hand for three texels a b c, indices -7..9; "." is the border. Vulkan specification, "Wrapping Operation".
 test.each<[Wrap, string]>([

@@ -1,5 +1,6 @@
+import type { Wrap } from '../../core/kernel/wrap.ts';
 import type { Extent } from '../../core/raster/raster.ts';
-import type { AlphaTreatment, Wrap } from '../../core/treatment/treatment.ts';
+import type { AlphaTreatment } from '../../core/treatment/treatment.ts';
 import { wrapIndex } from './wrap.ts';
 
 /** Levels up to this many texels are sampled; larger ones are counted. */

@@ -1,4 +1,4 @@
-import type { Wrap } from '../../core/treatment/treatment.ts';
+import type { Wrap } from '../../core/kernel/wrap.ts';
 import { areaTaps } from './axis.ts';
 import { type Doubles, doubles } from './doubles.ts';
 import { wrapIndex } from './wrap.ts';

@@ -1,4 +1,5 @@
-import type { ChannelContent, Transfer, Treatment } from '../../core/treatment/treatment.ts';
+import type { Transfer } from '../../core/color/transfer.ts';
+import type { ChannelContent, Treatment } from '../../core/treatment/treatment.ts';
 
 /** What the channels of a file are, read off its treatment. */
 export interface Meaning {

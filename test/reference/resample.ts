@@ -1,5 +1,6 @@
+import type { Wrap } from '../../core/kernel/wrap.ts';
 import type { Extent } from '../../core/raster/raster.ts';
-import type { KernelChoice, Wrap } from '../../core/treatment/treatment.ts';
+import type { KernelChoice } from '../../core/treatment/treatment.ts';
 import { weighAxis } from './axis.ts';
 import { type Doubles, doubles, transposed } from './doubles.ts';
 import { slopeRow } from './monotone.ts';

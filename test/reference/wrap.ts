@@ -1,4 +1,4 @@
-import type { Wrap } from '../../core/treatment/treatment.ts';
+import type { Wrap } from '../../core/kernel/wrap.ts';
 
 /** The texel that index `i` of an axis of `n` texels reads, null outside a border. Vulkan, "Wrapping Operation". */
 export function wrapIndex(i: number, n: number, wrap: Wrap): number | null {

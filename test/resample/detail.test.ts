@@ -1,8 +1,8 @@
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
+import type { Transfer } from '../../core/color/transfer.ts';
 import { type Extent, maxCode, type StraightRaster } from '../../core/raster/raster.ts';
 import { type DetailOptions, detail, detailBytes } from '../../core/resample/detail.ts';
-import type { Transfer } from '../../core/treatment/treatment.ts';
 import { areaTaps } from '../reference/axis.ts';
 import { decodeSrgb, encodeSrgb } from '../reference/transfer.ts';
 import { mirrored, pictures, straight, transposed } from './rasters.ts';

@@ -1,7 +1,7 @@
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
+import type { Wrap } from '../../core/kernel/wrap.ts';
 import { epx, epxBytes } from '../../core/resample/epx.ts';
-import type { Wrap } from '../../core/treatment/treatment.ts';
 import { scale2x } from '../reference/epx.ts';
 import { cut, indexed, mirrored, pictures, straight, tiled, transposed, turned, words } from './rasters.ts';
 

@@ -1,11 +1,11 @@
 import { expect, it } from 'vitest';
 import { headOf } from '../../core/chain/chain.ts';
-import { CLIP_SLACK, newClipped } from '../../core/chain/clip.ts';
 import { plainCoder } from '../../core/chain/coder.ts';
 import { SUMS_A_ROW } from '../../core/chain/light.ts';
 import { type ChainPlan, passOf, planChain } from '../../core/chain/plan.ts';
 import { encodeThresholds } from '../../core/color/encoder.ts';
 import { type ChannelCount, type Depth, maxCode, newCodes } from '../../core/raster/raster.ts';
+import { CLIP_SLACK, newClipped } from '../../core/resample/clip.ts';
 import type { RowCoder } from '../../core/resample/engine.ts';
 import { noiseRaster, numbers } from '../fixtures/noise.ts';
 import { simdEngine } from '../fixtures/simd.ts';

@@ -1,9 +1,10 @@
 import { createHash } from 'node:crypto';
 import fc from 'fast-check';
 import { methodOf } from '../../core/chain/method.ts';
+import type { Wrap } from '../../core/kernel/wrap.ts';
 import { type Codes, type Depth, type Extent, maxCode, newCodes } from '../../core/raster/raster.ts';
 import type { Decoding, Engine, NormalGroup, Pass, RowsRun, Step } from '../../core/resample/engine.ts';
-import type { KernelChoice, Wrap } from '../../core/treatment/treatment.ts';
+import type { KernelChoice } from '../../core/treatment/treatment.ts';
 import { depths, kernels, LINEAR, oneOf, seeds } from '../fixtures/arbitrary.ts';
 import { numbers } from '../fixtures/noise.ts';
 import { treatment } from '../fixtures/treatment.ts';

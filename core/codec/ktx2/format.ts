@@ -1,5 +1,6 @@
+import type { Transfer } from '../../color/transfer.ts';
 import type { ChannelCount, Depth } from '../../raster/raster.ts';
-import type { AlphaUse, Content, Transfer } from '../../treatment/treatment.ts';
+import type { AlphaUse, Content } from '../../treatment/treatment.ts';
 
 /** A texel format of a KTX2 file. */
 export interface Ktx2Format {

@@ -1,7 +1,7 @@
+import type { Wrap } from '../../../core/kernel/wrap.ts';
 import { bilinearSampler, isCoded } from '../../../core/proof/sample.ts';
 import type { Picture } from '../../../core/proof/want.ts';
 import { type Extent, newCodes } from '../../../core/raster/raster.ts';
-import type { Wrap } from '../../../core/treatment/treatment.ts';
 import type { Backdrop } from '../proof/state.ts';
 import { BACKDROPS, CHECKER_SIDE, type Rgb } from './backdrop.ts';
 import { type Placement, type Span, visibleSpan } from './frame.ts';

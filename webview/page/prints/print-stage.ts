@@ -1,7 +1,7 @@
 import { html, LitElement, type PropertyValues } from 'lit';
+import type { Wrap } from '../../../core/kernel/wrap.ts';
 import type { ArtAnswer, Picture } from '../../../core/proof/want.ts';
 import type { Extent } from '../../../core/raster/raster.ts';
-import type { Wrap } from '../../../core/treatment/treatment.ts';
 import { controls } from '../form/controls.ts';
 import type { Backdrop } from '../proof/state.ts';
 import type { Line } from '../readings/line.ts';

@@ -1,6 +1,7 @@
 import { css, html, LitElement, nothing } from 'lit';
+import type { Wrap } from '../../../core/kernel/wrap.ts';
 import type { Change } from '../../../core/proof/slot.ts';
-import type { Treatment, Wrap } from '../../../core/treatment/treatment.ts';
+import type { Treatment } from '../../../core/treatment/treatment.ts';
 import { controls } from '../form/controls.ts';
 import type { Model } from '../proof/model.ts';
 import { t } from '../words/t.ts';
