@@ -153,6 +153,18 @@ const states: readonly State[] = [
     prints: 2,
     field: ['View', 'art'],
   },
+  {
+    name: 'pinned texels',
+    recording: () =>
+      cobbles({
+        pins: [
+          { image: { level: 4 }, x: 3, y: 4 },
+          { image: { level: 2 }, x: 30, y: 40 },
+        ],
+      }),
+    marker: /from cursor/,
+    prints: 2,
+  },
   { name: 'difference', recording: () => cobbles({ show: 'difference' }), marker: /0\.10/, prints: 2 },
   { name: 'overshoot', recording: () => cobbles({ show: 'overshoot' }), marker: /clipped/, prints: 2 },
   { name: 'the divider', recording: () => cobbles({ compare: 'divider' }), marker: /with/, prints: 2 },
@@ -270,6 +282,7 @@ test('everything is reached by Tab, named, and shows that it has the focus', asy
     /Print by kaiser/,
     /Print by lanczos3/,
     /Copy CSV/,
+    /Pin/,
     /\+ kernel|Add a print/,
   ]) {
     expect(names).toMatch(name);

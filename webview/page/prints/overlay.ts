@@ -4,6 +4,13 @@ import { drawArtMarks } from './art-marks.ts';
 import { GRID_LINE, MARK_DARK, MARK_LIGHT } from './backdrop.ts';
 import { type Placement, visibleSpan } from './frame.ts';
 
+/** A texel whose readings are pinned, and the number that they stand under. */
+export interface PinMark {
+  readonly x: number;
+  readonly y: number;
+  readonly number: number;
+}
+
 /** What lies over a print and is no part of it. */
 export interface Overlay {
   readonly extent: Extent;
@@ -14,6 +21,7 @@ export interface Overlay {
   readonly art: ArtAnswer | null;
   /** Texel under the cursor. */
   readonly cursor: { readonly x: number; readonly y: number } | null;
+  readonly pins: readonly PinMark[];
   /** Ends of the cross-section in shares of the extent. */
   readonly line: { readonly from: readonly [number, number]; readonly to: readonly [number, number] } | null;
   /** Device pixels a CSS pixel. */
@@ -31,6 +39,7 @@ export function drawOverlay(canvas: HTMLCanvasElement, overlay: Overlay): void {
   if (overlay.marks !== null) drawMarks(context, overlay, overlay.marks);
   if (overlay.art !== null) drawArtMarks(context, overlay, overlay.art);
   if (overlay.line !== null) drawLine(context, overlay, overlay.line);
+  for (const pin of overlay.pins) drawPin(context, overlay, pin);
   if (overlay.cursor !== null) drawCursor(context, overlay, overlay.cursor);
 }
 
@@ -123,6 +132,30 @@ function drawLine(
   }
   context.setLineDash([]);
 }
+
+/** The frame of a cursor, and the pin's number on a tag at its corner: above, or below where there is no room. */
+function drawPin(context: CanvasRenderingContext2D, overlay: Overlay, pin: PinMark): void {
+  drawCursor(context, overlay, pin);
+  const { placement, ratio } = overlay;
+  const { zoom, left, top } = placement;
+  const line = Math.max(1, Math.round(ratio));
+  const side = Math.round(TAG * ratio);
+  const [x, y] = [left + (pin.x + 1) * zoom + line, top + pin.y * zoom - line - side];
+  const tagX = Math.min(x, context.canvas.width - side);
+  const tagY = y >= 0 ? y : top + (pin.y + 1) * zoom + line;
+  context.fillStyle = MARK_LIGHT;
+  context.fillRect(tagX - line, tagY - line, side + 2 * line, side + 2 * line);
+  context.fillStyle = MARK_DARK;
+  context.fillRect(tagX, tagY, side, side);
+  context.fillStyle = MARK_LIGHT;
+  context.font = `bold ${Math.round(TAG * 0.8 * ratio)}px sans-serif`;
+  context.textAlign = 'center';
+  context.textBaseline = 'middle';
+  context.fillText(String(pin.number), tagX + side / 2, tagY + side / 2 + line / 2);
+}
+
+/** Side of a pin's tag in CSS pixels. */
+const TAG = 13;
 
 /** A light frame in a dark one just outside the texel, which itself stays free. */
 function drawCursor(

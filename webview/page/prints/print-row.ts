@@ -11,10 +11,12 @@ import { isProblem } from '../proof/bench-link.ts';
 import type { Model } from '../proof/model.ts';
 import type { State } from '../proof/state.ts';
 import { cursorTexel, lineOf } from '../readings/line.ts';
+import { pinsHere, togglePin } from '../readings/pin.ts';
 import { changeWords } from '../treatment/change-words.ts';
 import { unfitFor } from '../treatment/fit.ts';
 import { t } from '../words/t.ts';
 import { artFigures } from './art-figures.ts';
+import { afterGesture } from './gesture.ts';
 import './print-card.ts';
 import type { CardAction, CardFacts, CardFigure } from './print-card.ts';
 import { rowStyles } from './print-row.styles.ts';
@@ -67,7 +69,7 @@ export class PrintRow extends LitElement {
           ?chosen=${facts.selected && model.state.slots.length > 1}
           .facts=${facts}
           @card=${(event: CustomEvent<CardAction>) => this.#act(model, slot, event.detail)}
-          @gesture=${(event: CustomEvent<StageGesture>) => model.set(afterGesture(event.detail))}
+          @gesture=${(event: CustomEvent<StageGesture>) => this.#gesture(model, event.detail)}
           @focusin=${() => model.state.selected !== slot.id && model.set({ selected: slot.id })}
           @pointerdown=${() => model.state.selected !== slot.id && model.set({ selected: slot.id })}
         ></print-card>`;
@@ -132,9 +134,10 @@ export class PrintRow extends LitElement {
       marks: state.show === 'overshoot' && print !== null ? (model.halo(treatment, seen.image)?.marks ?? null) : null,
       art: state.show === 'art' && print !== null ? model.told({ kind: 'art', treatment, image: seen.image }) : null,
       cursor: picture === null || !this.pointing ? null : cursorTexel(state.cursor, seen.extent),
+      pins: pinsHere(model).map(({ x, y, number }) => ({ x, y, number })),
       line: state.line === 'drawn' ? lineOf(state, seen.extent) : null,
       draws: state.line === 'drawn',
-      label: t('Print by {kernel}, {width} by {height} texels. Arrow keys move the cursor.', {
+      label: t('Print by {kernel}, {width} by {height} texels. Arrow keys move the cursor, P pins its texel.', {
         kernel: slot.kernel?.name ?? treatment.kernel.minify.name,
         ...seen.extent,
       }),
@@ -143,6 +146,11 @@ export class PrintRow extends LitElement {
 
   #point(which: 'on' | 'off'): void {
     this.pointing = which === 'on';
+  }
+
+  #gesture(model: Model, gesture: StageGesture): void {
+    if (gesture.kind === 'pin') togglePin(model, { u: gesture.u, v: gesture.v });
+    else model.set(gesture.kind === 'draw' ? { drawn: gesture.line } : (afterGesture(gesture) ?? {}));
   }
 
   #act(model: Model, slot: Slot, action: CardAction): void {
@@ -171,21 +179,6 @@ function afterAction({ slots }: State, slot: Slot, action: CardAction): Partial<
       const changed = { ...slot, kernel: action.kernel };
       return { slots: slots.map((each) => (each.id === slot.id ? changed : each)), selected: slot.id };
     }
-  }
-}
-
-function afterGesture(gesture: StageGesture): Partial<State> {
-  switch (gesture.kind) {
-    case 'point':
-      return { cursor: { u: gesture.u, v: gesture.v } };
-    case 'pan':
-      return { pan: { x: gesture.x, y: gesture.y } };
-    case 'zoom':
-      return { zoom: gesture.zoom };
-    case 'divide':
-      return { divider: gesture.share };
-    case 'draw':
-      return { drawn: gesture.line };
   }
 }
 

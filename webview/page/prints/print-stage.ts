@@ -7,7 +7,7 @@ import type { Backdrop } from '../proof/state.ts';
 import type { Line } from '../readings/line.ts';
 import { t } from '../words/t.ts';
 import { fittingZoom, type Placement, place, ZOOMS } from './frame.ts';
-import { drawOverlay } from './overlay.ts';
+import { drawOverlay, type PinMark } from './overlay.ts';
 import { type Layer, Painter } from './painter.ts';
 import { stageStyles } from './print-stage.styles.ts';
 import type { View } from './view.ts';
@@ -33,6 +33,8 @@ export interface Scene {
   /** Marks of pixel art; null for none. */
   readonly art: ArtAnswer | null;
   readonly cursor: { readonly x: number; readonly y: number } | null;
+  /** Texels whose readings are pinned. */
+  readonly pins: readonly PinMark[];
   readonly line: Line | null;
   /** Whether dragging draws the line of the cross-section in place of panning. */
   readonly draws: boolean;
@@ -42,6 +44,7 @@ export interface Scene {
 /** What the hand did on a stage; shares are of the picture's width and height. */
 export type StageGesture =
   | { readonly kind: 'point'; readonly u: number; readonly v: number }
+  | { readonly kind: 'pin'; readonly u: number; readonly v: number }
   | { readonly kind: 'pan'; readonly x: number; readonly y: number }
   | { readonly kind: 'zoom'; readonly zoom: number | null }
   | { readonly kind: 'divide'; readonly share: number }
@@ -82,6 +85,7 @@ export class PrintStage extends LitElement {
         @pointerdown=${this.#press}
         @pointerup=${this.#release}
         @pointercancel=${this.#release}
+        @dblclick=${this.#pin}
         @wheel=${this.#wheel}
         @keydown=${this.#key}
       >
@@ -168,11 +172,11 @@ export class PrintStage extends LitElement {
       this.#painted = inputs;
       this.#paintPrint(scene, placement, ratio);
     }
-    const { extent, marks, art, cursor, line } = scene;
-    const over = [...inputs.slice(4), marks, art, cursor?.x, cursor?.y, line];
+    const { extent, marks, art, cursor, pins, line } = scene;
+    const over = [...inputs.slice(4), marks, art, cursor?.x, cursor?.y, JSON.stringify(pins), line];
     if (over.some((each, i) => each !== this.#overlaid[i])) {
       this.#overlaid = over;
-      drawOverlay(this.#canvas('.over'), { extent, placement, ratio, marks, art, cursor, line });
+      drawOverlay(this.#canvas('.over'), { extent, placement, ratio, marks, art, cursor, pins, line });
     }
     this.dataset.zoom = String(placement.zoom);
     this.dataset.left = String(placement.left);
@@ -251,6 +255,12 @@ export class PrintStage extends LitElement {
     this.#drag = null;
   }
 
+  #pin(event: MouseEvent): void {
+    if (this.scene === null) return;
+    const [u, v] = this.#shareAt(event);
+    if (u >= 0 && u < 1 && v >= 0 && v < 1) this.#tell({ kind: 'pin', u, v });
+  }
+
   #wheel(event: WheelEvent): void {
     if (!(event.ctrlKey || event.metaKey)) return;
     event.preventDefault();
@@ -287,6 +297,9 @@ export class PrintStage extends LitElement {
       const [u, v] = [(x + 0.5) / width, (y + 0.5) / height];
       this.#tell({ kind: 'point', u, v });
       if (!this.#inFrame(x, y)) this.#tell({ kind: 'pan', x: u, y: v });
+    } else if (event.key.toLowerCase() === 'p') {
+      const { width, height } = scene.extent;
+      this.#tell({ kind: 'pin', u: (scene.cursor.x + 0.5) / width, v: (scene.cursor.y + 0.5) / height });
     } else if (event.key === '+' || event.key === '=') this.#step(1);
     else if (event.key === '-') this.#step(-1);
     else if (event.key === '0') this.#tell({ kind: 'zoom', zoom: null });

@@ -142,14 +142,14 @@ function difference(view: View, picture: Picture, reference: Picture): Shader {
   return (texel, _, out) => put(out, rampAt(DIFFERENCE_RAMP, measure(texel) / OKLAB_SCALE));
 }
 
-/** OKLab distance of two pictures of one extent, texel by texel. Colors are compared over mid gray by their alpha, so that what
- *  nobody sees does not count. */
-export function colorDistance(picture: Picture, reference: Picture): (texel: number) => number {
+/** OKLab distance of a texel of one picture from one of another, the same one unless it is given. Colors are compared over mid
+ *  gray by their alpha, so that what nobody sees does not count. */
+export function colorDistance(picture: Picture, reference: Picture): (texel: number, from?: number) => number {
   const [one, other] = [picture, reference].map((each) => seenLight(each));
   const [first, second] = [new Float64Array(3), new Float64Array(3)];
-  return (texel) => {
+  return (texel, from = texel) => {
     one(texel, first);
-    other(texel, second);
+    other(from, second);
     if (first[0] === second[0] && first[1] === second[1] && first[2] === second[2]) return 0;
     return oklabDistance(oklabOfLight(first[0], first[1], first[2]), oklabOfLight(second[0], second[1], second[2]));
   };

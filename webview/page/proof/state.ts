@@ -1,6 +1,7 @@
 import { type Sight, type Slot, STATE_VERSION } from '../../../core/proof/slot.ts';
 import type { Preferences } from '../../../core/protocol.ts';
 import type { Target } from '../../../core/treatment/treatment.ts';
+import type { Pin } from '../readings/pin.ts';
 
 export type Show = 'color' | 'r' | 'g' | 'b' | 'a' | 'bare' | 'mask' | 'lit' | 'difference' | 'overshoot' | 'art';
 
@@ -34,6 +35,7 @@ export interface State {
   readonly lamp: { readonly x: number; readonly y: number };
   /** The point that is read, in shares of width and height. */
   readonly cursor: { readonly u: number; readonly v: number };
+  readonly pins: readonly Pin[];
   readonly line: 'row' | 'column' | 'drawn';
   /** Ends of a drawn line, in shares. */
   readonly drawn: { readonly from: readonly [number, number]; readonly to: readonly [number, number] };
@@ -61,6 +63,7 @@ export const startState: State = {
   pan: { x: 0.5, y: 0.5 },
   lamp: { x: -0.5, y: 0.6 },
   cursor: { u: 0.5, v: 0.5 },
+  pins: [],
   line: 'row',
   drawn: { from: [0.25, 0.25], to: [0.75, 0.75] },
   texelsPerMeter: null,

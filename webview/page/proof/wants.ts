@@ -2,6 +2,7 @@ import { levelExtent } from '../../../core/chain/levels.ts';
 import type { Want } from '../../../core/proof/want.ts';
 import type { Treatment } from '../../../core/treatment/treatment.ts';
 import { cursorTexel, lineOf } from '../readings/line.ts';
+import { pinsOf } from '../readings/pin.ts';
 import type { Model } from './model.ts';
 
 /** What the page needs to show its state, most urgent first: the selected print, the others, the axis, then measurements. */
@@ -27,6 +28,9 @@ export function wantsOf(model: Model): readonly Want[] {
   if (!('lod' in image)) {
     for (const each of treatments) wants.push({ kind: 'art', treatment: each, image });
     for (const each of treatments) wants.push({ kind: 'halo', treatment: each, image });
+  }
+  for (const pin of pinsOf(model)) {
+    for (const each of treatments) wants.push({ kind: 'print', treatment: each, image: pin.image });
   }
   for (const stop of model.stops) {
     if (stop.kind !== 'level' && Math.max(stop.extent.width, stop.extent.height) <= THUMB_SIDE) {

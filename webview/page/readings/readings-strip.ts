@@ -1,19 +1,15 @@
 import { css, html, LitElement, nothing } from 'lit';
-import { light } from '../../../core/figures.ts';
-import type { Slot } from '../../../core/proof/slot.ts';
-import type { Picture } from '../../../core/proof/want.ts';
 import { controls } from '../form/controls.ts';
-import { colorDistance } from '../prints/view.ts';
-import { isProblem } from '../proof/bench-link.ts';
 import type { Model } from '../proof/model.ts';
 import type { State } from '../proof/state.ts';
-import { changeWords } from '../treatment/change-words.ts';
 import { t } from '../words/t.ts';
+import { copy } from './copy.ts';
 import './footprint-plot.ts';
 import { cursorTexel, lineOf } from './line.ts';
 import { type Letter, printTrack, type Section, sectionCsv, sourceTrack } from './section.ts';
 import './section-plot.ts';
-import { readTexel, type TexelReading, texelText } from './texel.ts';
+import { slotKernel, slotName, slotPicture } from './slot-picture.ts';
+import './texel-readings.ts';
 
 /** What is under the cursor, as numbers: the texel, where it comes from, and a cut through source and prints. */
 export class ReadingsStrip extends LitElement {
@@ -33,12 +29,13 @@ export class ReadingsStrip extends LitElement {
         border-top: 1px solid var(--proof-line);
         background: var(--proof-line);
       }
-      section {
+      section,
+      texel-readings {
         padding: 6px 10px 8px;
         min-width: min(100%, 12em);
         background: var(--proof-ground);
       }
-      .texel {
+      texel-readings {
         flex: 115 1 25em;
       }
       .footprint {
@@ -58,30 +55,6 @@ export class ReadingsStrip extends LitElement {
       .gap {
         flex: 1;
       }
-      table {
-        border-collapse: collapse;
-        width: 100%;
-      }
-      th,
-      td {
-        text-align: left;
-        font-weight: 400;
-        padding: 1px 10px 1px 0;
-        white-space: nowrap;
-      }
-      thead th {
-        color: var(--proof-quiet);
-      }
-      tbody th {
-        white-space: normal;
-        min-width: 6.8em;
-      }
-      tr.chosen th {
-        font-weight: 600;
-      }
-      .wide {
-        overflow-x: auto;
-      }
     `,
   ];
 
@@ -97,45 +70,13 @@ export class ReadingsStrip extends LitElement {
     if (model === null || model.seen === null || model.treatment === null) return nothing;
     const { extent, image } = model.seen;
     const texel = cursorTexel(model.state.cursor, extent);
-    const readings = readingsOf(model, texel.y * extent.width + texel.x);
-    const place = t('texel {x}, {y} of {width}×{height}', { ...texel, ...extent });
     const own = model.treatmentOf(model.slot)!;
     const footprint = model.told({ kind: 'footprint', treatment: own, image, ...texel });
     const section = this.#section(model);
     return html`
-      <section class="texel" aria-label=${t('Texel')}>
-        <header>
-          <span class="heading">${t('Texel')}</span>
-          <span class="number">${texel.x}, ${texel.y}</span>
-          <span class="gap"></span>
-          <button class="plain" @click=${() => copy(model, texelText(place, readings))}>${t('Copy')}</button>
-        </header>
-        <div class="wide" tabindex="0" role="region" aria-label=${t('Codes of the texel by print')}>
-          <table>
-            <thead>
-              <tr>
-                <th scope="col">${t('print')}</th>
-                <th scope="col">${t('code')}</th>
-                <th scope="col">${model.treatment.content === 'color' ? t('linear light') : t('share')}</th>
-                <th scope="col">${t('ΔOK')}</th>
-              </tr>
-            </thead>
-            <tbody>
-              ${readings.map(
-                ({ name, codes, linear, distance, selected }) => html`<tr class=${selected ? 'chosen' : ''}>
-                  <th scope="row">${name}</th>
-                  <td class="number" data-codes=${codes.join(' ')}>${codes.join(' ')}</td>
-                  <td class="number">${linear.map(light).join(' ')}</td>
-                  <td class="number">${distance === null ? '' : distance.toFixed(3)}</td>
-                </tr>`,
-              )}
-            </tbody>
-          </table>
-        </div>
-        <p class="unseen" aria-live="polite">${place}: ${readings[0]?.codes.join(' ') ?? ''}</p>
-      </section>
+      <texel-readings .model=${model} .tick=${this.tick}></texel-readings>
       <section class="footprint" aria-label=${t('Footprint')}>
-        <header><span class="heading">${t('Footprint')}</span><span class="quiet">${kernelName(model.slot, model)}</span></header>
+        <header><span class="heading">${t('Footprint')}</span><span class="quiet">${slotKernel(model, model.slot)}</span></header>
         <footprint-plot .footprint=${footprint} .why=${whyNoWeights(model)}></footprint-plot>
       </section>
       <section class="cut" aria-label=${t('Cross-section')}>
@@ -162,10 +103,10 @@ export class ReadingsStrip extends LitElement {
     const answer = model.told({ kind: 'section', ...line });
     if (answer === null) return null;
     const prints = model.state.slots.flatMap((slot) => {
-      const picture = pictureOf(model, slot);
+      const picture = slotPicture(model, slot, model.seen!.image);
       if (picture === null) return [];
       const marks = model.halo(model.treatmentOf(slot)!, model.seen!.image)?.marks ?? null;
-      const print = { name: nameOf(slot, model), selected: slot.id === model.state.selected, picture, marks };
+      const print = { name: slotName(model, slot), selected: slot.id === model.state.selected, picture, marks };
       return [printTrack(print, line, this.letter)];
     });
     return { source: sourceTrack(t('source'), answer, this.letter), prints };
@@ -204,39 +145,11 @@ export class ReadingsStrip extends LitElement {
 
 customElements.define('readings-strip', ReadingsStrip);
 
-function readingsOf(model: Model, texel: number): readonly TexelReading[] {
-  const [first] = model.state.slots;
-  const base = pictureOf(model, first);
-  return model.state.slots.flatMap((slot) => {
-    const picture = pictureOf(model, slot);
-    if (picture === null) return [];
-    const distance = slot === first || base === null ? null : colorDistance(picture, base)(texel);
-    return [
-      { name: nameOf(slot, model), selected: slot.id === model.state.selected, distance, ...readTexel(picture, texel) },
-    ];
-  });
-}
-
-function pictureOf(model: Model, slot: Slot): Picture | null {
-  const told = model.print(model.treatmentOf(slot)!, model.seen!.image);
-  return told === undefined || isProblem(told) ? null : told.picture;
-}
-
 function whyNoWeights(model: Model): string {
   if (model.seen!.stop === null)
     return t('Between levels a sampler blends two of them. Each level has weights of its own.');
   if (model.treatment!.grid !== null) return t('Cells of a sheet are made one by one; weights are not shown for them.');
   return t('This print has no fixed weights: its texels are chosen by their codes.');
-}
-
-/** A print's name in a table: its kernel, and what it changes. */
-export function nameOf(slot: Slot, model: Model): string {
-  return [kernelName(slot, model), ...changeWords(slot.change)].join(', ');
-}
-
-function kernelName(slot: Slot, model: Model): string {
-  const { kernel } = model.treatmentOf(slot)!;
-  return (slot.kernel ?? (model.seen!.lod < 0 ? kernel.magnify : kernel.minify)).name;
 }
 
 function cursorShare({ line, cursor }: State): number {
@@ -247,13 +160,4 @@ function channelName(letter: Letter, channels: number): string {
   if (letter === 'a') return t('alpha');
   if (channels < 3) return t('gray');
   return { r: t('red'), g: t('green'), b: t('blue') }[letter];
-}
-
-async function copy(model: Model, text: string): Promise<void> {
-  const { reply } = await model.link.ask('copy', { text });
-  model.say(
-    'problem' in reply
-      ? { text: t('The text could not be copied.'), kind: 'failed' }
-      : { text: t('Copied.'), kind: 'said' },
-  );
 }

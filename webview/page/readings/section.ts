@@ -1,6 +1,7 @@
 import { haloSide, type Picture, type SectionAnswer } from '../../../core/proof/want.ts';
 import { maxCode } from '../../../core/raster/raster.ts';
 import { channelAt } from '../prints/view.ts';
+import { csvText } from './csv.ts';
 import { type Line, texelsAlong } from './line.ts';
 
 /** Values of one channel along a line, in 8-bit codes; 16-bit codes are divided by 257. */
@@ -51,10 +52,8 @@ export function printTrack(
 
 /** The section as comma-separated values: a row for each print texel, the source's mean under it. */
 export function sectionCsv(section: Section): string {
-  const rows = sectionRows(section);
-  const quoted = (text: string): string => (/[",\n]/.test(text) ? `"${text.replaceAll('"', '""')}"` : text);
-  const head = ['texel', section.source.name, ...section.prints.map(({ name }) => name)].map(quoted).join(',');
-  return [head, ...rows.map((row) => row.map((value) => String(Number(value.toFixed(3)))).join(','))].join('\n');
+  const head = ['texel', section.source.name, ...section.prints.map(({ name }) => name)];
+  return csvText([head, ...sectionRows(section).map((row) => row.map((value) => Number(value.toFixed(3))))]);
 }
 
 /** Number of the texel along the line, mean of the source over it, and each print's value. */

@@ -7,6 +7,7 @@ import { JUST_SEEN } from '../../../core/review/lab.ts';
 import type { SizeFigures } from '../../../core/review/sizes.ts';
 import type { PairAnswer } from '../../../core/review/want.ts';
 import { controls } from '../form/controls.ts';
+import { afterGesture } from '../prints/gesture.ts';
 import { rowStyles } from '../prints/print-row.styles.ts';
 import type { Scene, StageGesture } from '../prints/print-stage.ts';
 import { t } from '../words/t.ts';
@@ -15,7 +16,6 @@ import type { ReviewModel } from './model.ts';
 import './side-card.ts';
 import type { SideFacts } from './side-card.ts';
 import { distance } from './sizes.ts';
-import type { ReviewState } from './state.ts';
 import { sizeName } from './survival-axis.ts';
 
 /** Before, after and difference at the sight's size, at one place and one zoom. */
@@ -67,7 +67,7 @@ export class ReviewPrints extends LitElement {
           role="listitem"
           aria-label=${facts.name}
           .facts=${facts}
-          @gesture=${(event: CustomEvent<StageGesture>) => model.set(afterGesture(event.detail))}
+          @gesture=${(event: CustomEvent<StageGesture>) => model.set(afterGesture(event.detail) ?? {})}
         ></side-card>`,
       )}
     </div>`;
@@ -166,6 +166,7 @@ export class ReviewPrints extends LitElement {
       marks: null,
       art: null,
       cursor: picture === null || !this.pointing ? null : cursorOf(model),
+      pins: [],
       line: null,
       draws: false,
       label: t('{name} at {size}, {width} by {height} texels. Arrow keys move the cursor.', {
@@ -190,21 +191,6 @@ export function cursorOf(model: ReviewModel): { readonly x: number; readonly y: 
   if (cursor === null) return size.difference?.at ?? { x: 0, y: 0 };
   const at = (share: number, count: number): number => Math.min(count - 1, Math.max(0, Math.floor(share * count)));
   return { x: at(cursor.u, extent.width), y: at(cursor.v, extent.height) };
-}
-
-function afterGesture(gesture: StageGesture): Partial<ReviewState> {
-  switch (gesture.kind) {
-    case 'point':
-      return { cursor: { u: gesture.u, v: gesture.v } };
-    case 'pan':
-      return { pan: { x: gesture.x, y: gesture.y } };
-    case 'zoom':
-      return { zoom: gesture.zoom };
-    case 'divide':
-      return { divider: gesture.share };
-    case 'draw':
-      return {};
-  }
 }
 
 function figuresOf(own: SizeFigures, before: SizeFigures | null, side: 'before' | 'after'): SideFacts['figures'] {
