@@ -132,12 +132,14 @@ export class ChainRun {
     const run = engine.open(pass, (node, y, floats) => {
       if (node === 0) return;
       const image = nodes[node - 1];
-      const work = this.#works.get(image)!;
+      const work = this.#works.get(image);
+      if (work === undefined) return;
       const given = outer?.(image);
       const { width } = work.extent;
       work.take(y, floats, given?.subarray(y * width, (y + 1) * width) ?? lengthsOf(image, y));
     });
     for (const image of nodes) {
+      if (!isStored(plan, image)) continue;
       this.#works.set(image, new ImageInWork(pictureExtent(image), encoding, { alpha }, run.coder));
     }
     return run;
@@ -164,4 +166,12 @@ export class ChainRun {
     for (const row of this.#base.rows(this.#palette)) run.push(row);
     return run;
   }
+}
+
+/** Levels finer than the first that ships are only gone through where nothing takes up their codes or lengths: to store them is much of a
+ *  chain's work. */
+function isStored({ treatment, layout, targets, fill }: ChainPlan, image: PlannedLevel | PlannedTarget): boolean {
+  const { levels, height } = treatment;
+  if (!('level' in image) || levels === 'none' || image.shipped || image.level > levels.first) return true;
+  return layout.normals.length > 0 || height.minmax || (fill !== 'none' && targets.length > 0);
 }

@@ -40,6 +40,11 @@ export function draftImages(
       levels.push(source === null ? null : { ...baseDraft(plan, source), planned: level });
       continue;
     }
+    if (level.method.kind === 'rows' && !works.has(level)) {
+      levels.push(null);
+      finer = null;
+      continue;
+    }
     const made = makeDraft(plan, level, level.method, plan.treatment.derive === 'previous' ? finer : source, works);
     levels.push(made.draft);
     finer = made.codes;

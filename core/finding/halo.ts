@@ -1,4 +1,4 @@
-import { boundCodes } from '../chain/bounds.ts';
+import { boundSteps } from '../chain/bounds.ts';
 import { headOf } from '../chain/chain.ts';
 import { planSheet } from '../chain/grid.ts';
 import {
@@ -10,7 +10,7 @@ import {
   planChain,
 } from '../chain/plan.ts';
 import { cellTreatment } from '../chain/sheet.ts';
-import { encodeSrgb } from '../color/transfer.ts';
+import { decodeTable, encodeSrgb } from '../color/transfer.ts';
 import { type Extent, expandIndexed, type IndexedRaster, maxCode, type StraightRaster } from '../raster/raster.ts';
 import { cutRegion } from '../raster/region.ts';
 import { CLIP_SLACK } from '../resample/clip.ts';
@@ -66,15 +66,17 @@ export function measureHalo(
   }
 }
 
-/** The same in pieces of some milliseconds, so that others can work between them, or it can be left. */
+/** The same in pieces of some milliseconds, so that others can work between them, or it can be left. `known` keeps ranges of this very
+ *  source from one treatment to the next. */
 export function* haloSteps(
   source: StraightRaster | IndexedRaster,
   treatment: Treatment,
   engine: Engine = plainEngine,
   watch?: HaloWatch,
+  known?: KnownRanges,
 ): Generator<undefined, readonly Halo[]> {
   const raster = source.kind === 'indexed' ? expandIndexed(source) : source;
-  if (treatment.grid === null) return yield* measureChain(raster, treatment, { left: 0, top: 0 }, engine, watch);
+  if (treatment.grid === null) return yield* measureChain(raster, treatment, { left: 0, top: 0 }, engine, watch, known);
   const sheet = planSheet(raster.extent, treatment.grid);
   const alone = cellTreatment(treatment, sheet);
   const pitch = { width: sheet.cell.width + 2 * sheet.gutter, height: sheet.cell.height + 2 * sheet.gutter };
@@ -103,10 +105,13 @@ function* measureChain(
   place: { readonly left: number; readonly top: number },
   engine: Engine,
   watch?: HaloWatch,
+  known?: KnownRanges,
 ): Generator<undefined, readonly Halo[]> {
   const plan = planChain(headOf(raster), treatment);
   const { pass, nodes } = passOf(plan);
-  const ranges = yield* rangesOf(plan, raster);
+  const shipped = (image: PlannedLevel | PlannedTarget): boolean => !('level' in image) || image.shipped;
+  if (!pass.steps.some(hasLobes)) return nodes.filter(shipped).map(noHalo);
+  const ranges = yield* rangesOf(plan, raster, known);
   const stride = floatChannels(pass.decoding);
   const probes = nodes.map((image, index) => {
     const whole = wholeOf(raster.extent, pictureExtent(image), place);
@@ -123,11 +128,10 @@ function* measureChain(
     run.push(raster.codes.subarray(y * length, (y + 1) * length));
     if (y % rowsAtOnce === rowsAtOnce - 1) yield;
   }
-  const shipped = (image: PlannedLevel | PlannedTarget): boolean => !('level' in image) || image.shipped;
   return probes.flatMap((probe, index) => {
     const { image } = probe;
     if (!shipped(image)) return [];
-    if (!hasLobes(pass.steps[index])) return [{ image: nameOf(image), worst: 0, x: 0, y: 0, share: 0, clipped: 0 }];
+    if (!hasLobes(pass.steps[index])) return [noHalo(image)];
     const halo = probe.halo();
     const [x, y] = wholeOf(raster.extent, pictureExtent(image), place)(halo.x, halo.y);
     return [{ ...halo, x, y }];
@@ -153,40 +157,63 @@ function hasLobes({ x, y }: Step): boolean {
   return [x, y].some(({ weights }) => weights.some((weight) => weight < 0));
 }
 
+function noHalo(image: PlannedLevel | PlannedTarget): Halo {
+  return { image: nameOf(image), worst: 0, x: 0, y: 0, share: 0, clipped: 0 };
+}
+
 function nameOf(image: PlannedLevel | PlannedTarget): number | string {
   return 'level' in image ? image.level : image.target.name;
 }
 
-interface Range {
+/** Where ranges are kept: they hang on the source, on extents and on wrap, but on no kernel. */
+export interface KnownRanges {
+  get(key: string): readonly Range[] | undefined;
+  put(key: string, ranges: readonly Range[]): void;
+}
+
+/** Bounds of the visible codes for every texel of an image. */
+export interface Range {
   readonly min: StraightRaster;
   readonly max: StraightRaster;
 }
 
-/** Bounds of the visible codes for every image: levels from the level before, targets from level 0. */
+/** For every image of a plan: levels from the level before, targets from level 0. */
 function* rangesOf(
   plan: ChainPlan,
   raster: StraightRaster,
-): Generator<undefined, Map<PlannedLevel | PlannedTarget, Range>> {
+  known?: KnownRanges,
+): Generator<undefined, ReadonlyMap<PlannedLevel | PlannedTarget, Range>> {
+  const { wrap } = plan.treatment;
+  const levels = plan.levels.slice(1);
+  const images = [...levels, ...plan.targets];
+  const { alpha, weighted } = plan.layout;
+  const hidingAlpha = weighted.length > 0 ? alpha : null;
+  const key = JSON.stringify([images.map(pictureExtent), levels.length, wrap, hidingAlpha]);
+  let ranges = known?.get(key);
+  if (ranges === undefined) {
+    ranges = yield* measureRanges(plan, raster);
+    known?.put(key, ranges);
+  }
+  return new Map(images.map((image, index) => [image, ranges[index]]));
+}
+
+function* measureRanges(plan: ChainPlan, raster: StraightRaster): Generator<undefined, readonly Range[]> {
   const { wrap } = plan.treatment;
   const base: Range = {
     min: hiddenAs(raster, plan.layout, maxCode(raster.depth)),
     max: hiddenAs(raster, plan.layout, 0),
   };
-  const bound = (range: Range, image: PlannedLevel | PlannedTarget): Range => ({
-    min: boundCodes(range.min, pictureExtent(image), wrap, 'min'),
-    max: boundCodes(range.max, pictureExtent(image), wrap, 'max'),
-  });
-  const ranges = new Map<PlannedLevel | PlannedTarget, Range>();
+  const bound = function* (range: Range, image: PlannedLevel | PlannedTarget): Generator<undefined, Range> {
+    const min = yield* boundSteps(range.min, pictureExtent(image), wrap, 'min');
+    return { min, max: yield* boundSteps(range.max, pictureExtent(image), wrap, 'max') };
+  };
+  const ranges: Range[] = [];
   let finer = base;
   for (const level of plan.levels.slice(1)) {
-    finer = bound(finer, level);
-    ranges.set(level, finer);
-    yield;
+    finer = yield* bound(finer, level);
+    ranges.push(finer);
   }
-  for (const target of plan.targets) {
-    ranges.set(target, bound(base, target));
-    yield;
-  }
+  for (const target of plan.targets) ranges.push(yield* bound(base, target));
   return ranges;
 }
 
@@ -209,6 +236,8 @@ class Probe {
   readonly #stride: number;
   readonly #range: Range;
   readonly #watch: HaloWatch | undefined;
+  /** By channel, what each code was decoded to; null for channels that do not count. */
+  readonly #decoded: readonly (Float32Array | null)[];
   #worst = 0;
   #x = 0;
   #y = 0;
@@ -228,10 +257,15 @@ class Probe {
     this.#stride = stride;
     this.#range = range;
     this.#watch = watch;
+    this.#decoded = layout.roles.map((role) => {
+      if (role.kind === 'normal' || role.kind === 'unused' || role.kind === 'roughness') return null;
+      return decodeTable(layout.depth, role.kind === 'color' ? role.transfer : 'linear');
+    });
   }
 
   take(y: number, floats: Float32Array): void {
     const { channels, alpha, depth, roles, weighted } = this.#layout;
+    const { min, max } = this.#range;
     const unit = 255 / maxCode(depth);
     for (let x = 0, at = 0; at < floats.length; x++, at += this.#stride) {
       if (alpha !== null && floats[at + alpha] * unit < 0.5) continue;
@@ -240,13 +274,15 @@ class Probe {
       let [most, overIn, underIn] = [0, 0, 0];
       let clips = false;
       for (let channel = 0; channel < channels; channel++) {
-        const role = roles[channel];
-        if (role.kind === 'normal' || role.kind === 'unused' || role.kind === 'roughness') continue;
-        const shown = weighted.includes(channel) ? Math.min(1, (floats[at + alpha!] * unit) / 255) : 1;
+        const decoded = this.#decoded[channel];
+        if (decoded === null) continue;
         const value = weighted.includes(channel) ? floats[at + channel] / floats[at + alpha!] : floats[at + channel];
-        const code = codeOf(value, role, unit);
-        const above = (code - this.#range.max.codes[texel + channel] * unit) * shown;
-        const below = (this.#range.min.codes[texel + channel] * unit - code) * shown;
+        // Most texels lie within: that is seen without the curve.
+        if (value >= decoded[min.codes[texel + channel]] && value <= decoded[max.codes[texel + channel]]) continue;
+        const shown = weighted.includes(channel) ? Math.min(1, (floats[at + alpha!] * unit) / 255) : 1;
+        const code = codeOf(value, roles[channel], unit);
+        const above = (code - max.codes[texel + channel] * unit) * shown;
+        const below = (min.codes[texel + channel] * unit - code) * shown;
         most = Math.max(most, above, below);
         if (above > 0.5) overIn |= 1 << channel;
         if (below > 0.5) underIn |= 1 << channel;

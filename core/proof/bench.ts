@@ -6,7 +6,7 @@ import { openImage } from '../codec/open.ts';
 import { hashPixels } from '../codec/pixels.ts';
 import type { SourceHeader } from '../codec/source.ts';
 import { obeyedGamma } from '../codec/tag.ts';
-import { type Halo, haloSteps } from '../finding/halo.ts';
+import { type Halo, haloSteps, type KnownRanges, type Range } from '../finding/halo.ts';
 import { type Cancel, Cancelled, type Ports } from '../port.ts';
 import type { IndexedRaster, StraightRaster } from '../raster/raster.ts';
 import type { Engine } from '../resample/engine.ts';
@@ -46,6 +46,8 @@ export class ProofBench {
   readonly #source: StraightRaster | IndexedRaster;
   readonly #ports: BenchPorts;
   readonly #chains = new Shelf<Chain>(CHAIN_BYTES, chainSize);
+  /** The same for every kernel. */
+  readonly #ranges = new Shelf<readonly Range[]>(RANGE_BYTES, rangeSize);
   #palette: { readonly colors: ReadonlySet<number> | null } | null = null;
   readonly #halos = new Shelf<HaloMaps>(CHAIN_BYTES, (maps) => maps.bytes);
 
@@ -82,7 +84,7 @@ export class ProofBench {
   }
 
   async #print(treatment: Treatment, image: PrintImage, cancel: Cancel): Promise<Print> {
-    const chain = await this.#chain(treatmentFor(treatment, image), cancel);
+    const chain = await this.#chain(treatmentFor(treatment, image), firstLevelOf(image), cancel);
     if ('lod' in image) {
       const picture = this.#seen(chain, treatment, image.lod, image.extent);
       const stats = statsOf(imageOf(chain, { level: Math.min(Math.round(image.lod), lastLevel(chain)) }));
@@ -103,7 +105,7 @@ export class ProofBench {
 
   async #levels(treatment: Treatment, cancel: Cancel): Promise<LevelsAnswer> {
     const whole = treatmentFor(treatment, { level: 0 });
-    const chain = await this.#chain(whole, cancel);
+    const chain = await this.#chain(whole, 0, cancel);
     const { halos } = await this.#measure(whole, cancel);
     return {
       kind: 'levels',
@@ -133,7 +135,7 @@ export class ProofBench {
     const fitting = treatmentFor(treatment, image);
     const even = evennessOf(headOf(this.#source), fitting, image);
     if (this.#palette.colors === null) return { kind: 'art', off: null, even };
-    const chain = await this.#chain(fitting, cancel);
+    const chain = await this.#chain(fitting, firstLevelOf(image), cancel);
     const picture = pictureOf(chain.plan, imageOf(chain, image).raster);
     return { kind: 'art', off: offPaletteOf(picture, this.#palette.colors), even };
   }
@@ -142,7 +144,7 @@ export class ProofBench {
     const key = JSON.stringify(treatment);
     const known = this.#halos.get(key);
     if (known !== undefined) return known;
-    const steps = measureMaps(this.#source, treatment, this.#ports.engine);
+    const steps = measureMaps(this.#source, treatment, this.#ports.engine, this.#ranges);
     let step = steps.next();
     while (step.done !== true) {
       await this.#ports.pause();
@@ -154,10 +156,12 @@ export class ProofBench {
     return maps;
   }
 
-  async #chain(treatment: Treatment, cancel: Cancel): Promise<Chain> {
-    const key = JSON.stringify(treatment);
+  /** The chain from a level on: what is finer than a print takes most of the time, and nobody looks at it. */
+  async #chain(whole: Treatment, first: number, cancel: Cancel): Promise<Chain> {
+    const key = JSON.stringify(whole);
     const known = this.#chains.get(key);
-    if (known !== undefined) return known;
+    if (known !== undefined && firstLevel(known) <= first) return known;
+    const treatment = whole.levels === 'none' ? whole : { ...whole, levels: { first, last: null } };
     const gamma = treatment.colorChunks === 'obey' ? obeyedGamma(this.header.colorChunks) : null;
     const { engine } = this.#ports;
     const options = { ...(engine !== undefined && { engine }), ...(gamma !== null && { gamma }) };
@@ -189,6 +193,9 @@ export class ProofBench {
 /** Bytes of chains that are kept for when they are asked for again: three of a 4096x4096 RGBA chain. */
 const CHAIN_BYTES = 256 * 1024 * 1024;
 
+/** Bytes of the ranges that overshoot is measured against, kept from one kernel to the next: those of a 4096x4096 RGBA source take 43 MB. */
+const RANGE_BYTES = 64 * 1024 * 1024;
+
 /** Source texels between two pauses: some 4 ms of filtering by the SIMD engine, 40 ms by the plain one. */
 const TEXELS_AT_ONCE = 1 << 18;
 
@@ -202,21 +209,28 @@ function* measureMaps(
   source: StraightRaster | IndexedRaster,
   treatment: Treatment,
   engine: Engine | undefined,
+  known: KnownRanges,
 ): Generator<undefined, HaloMaps> {
   const marks = new Map<number | string, Uint16Array>();
   const { plan } = new ChainRun(headOf(source), { ...treatment, grid: null });
   const places = new Map<number | string, TargetPlace>();
   for (const { level, extent } of plan.levels) places.set(level, { whole: extent, picture: extent, left: 0, top: 0 });
   for (const { target, place } of plan.targets) places.set(target.name, place);
-  const halos = yield* haloSteps(source, treatment, engine, (image, x, y, found) => {
-    const { whole, left, top } = places.get(image)!;
-    let map = marks.get(image);
-    if (map === undefined) {
-      map = new Uint16Array(whole.width * whole.height);
-      marks.set(image, map);
-    }
-    map[(y + top) * whole.width + x + left] = haloMark(found);
-  });
+  const halos = yield* haloSteps(
+    source,
+    treatment,
+    engine,
+    (image, x, y, found) => {
+      const { whole, left, top } = places.get(image)!;
+      let map = marks.get(image);
+      if (map === undefined) {
+        map = new Uint16Array(whole.width * whole.height);
+        marks.set(image, map);
+      }
+      map[(y + top) * whole.width + x + left] = haloMark(found);
+    },
+    known,
+  );
   const bytes = [...marks.values()].reduce((sum, map) => sum + map.byteLength, 0);
   return { halos, marks, bytes };
 }
@@ -229,6 +243,15 @@ function imageOf(chain: Chain, image: PrintImage): ChainImage {
   );
   if (found === undefined) throw new RangeError(`Expected an image of the chain but received ${JSON.stringify(image)}`);
   return found;
+}
+
+function firstLevelOf(image: PrintImage): number {
+  if ('level' in image) return image.level;
+  return 'lod' in image ? Math.floor(Math.max(0, image.lod)) : 0;
+}
+
+function firstLevel({ plan: { treatment } }: Chain): number {
+  return treatment.levels === 'none' ? 0 : treatment.levels.first;
 }
 
 function lastLevel(chain: Chain): number {
@@ -245,6 +268,10 @@ function statsOf(image: ChainImage): PrintStats {
     normalLength: normalLength ?? null,
     clipped: all.reduce((sum, count) => sum + count, 0),
   };
+}
+
+function rangeSize(ranges: readonly Range[]): number {
+  return ranges.reduce((sum, { min, max }) => sum + min.codes.byteLength + max.codes.byteLength, 0);
 }
 
 function chainSize(chain: Chain): number {
