@@ -9,8 +9,16 @@ import { queryOf } from './query.ts';
 import type { Result, Shell, Summary } from './shell.ts';
 import { toolsOf } from './tools.ts';
 
-/** `build`, once. Answers the roots that decide what is built, to watch them. */
-export async function runBuild(args: Arguments, shell: Shell): Promise<Result & { readonly roots: readonly string[] }> {
+/** `build`, once. */
+export async function runBuild(args: Arguments, shell: Shell): Promise<Result> {
+  return (await runWatched(args, shell)).result;
+}
+
+/** The same, with the roots that decide what is built, to watch them. */
+export async function runWatched(
+  args: Arguments,
+  shell: Shell,
+): Promise<{ readonly result: Result; readonly roots: readonly string[] }> {
   const memoryBytes = args.memoryBytes ?? defaultMemoryBytes();
   const report = await withProgress(shell, (progress) =>
     buildProject(
@@ -25,7 +33,7 @@ export async function runBuild(args: Arguments, shell: Shell): Promise<Result & 
       progress,
     ),
   );
-  return { ...resultOf(report, shell, args.flags.has('plan') ? 'would be ' : ''), roots: report.roots };
+  return { result: resultOf(report, shell, args.flags.has('plan') ? 'would be ' : ''), roots: report.roots };
 }
 
 /** `rebuild`. */

@@ -1,7 +1,7 @@
 import { problemLine } from '../../core/line.ts';
 import { exitCode } from '../../core/problem.ts';
 import { type Arguments, readArguments } from './arguments.ts';
-import { runBuild, runRebuild } from './build-command.ts';
+import { runBuild, runRebuild, runWatched } from './build-command.ts';
 import { runCheck } from './check-command.ts';
 import type { CommandName } from './commands.ts';
 import { runExplain } from './explain-command.ts';
@@ -47,13 +47,13 @@ async function watchBuild(args: Arguments, shell: Shell, voice: Voice): Promise<
   let said: string | null = null;
   await buildOnChange(
     async () => {
-      const result = await runBuild(args, shell);
+      const { result, roots } = await runWatched(args, shell);
       // The build after a build has nothing new to say.
       const saying = JSON.stringify(result.problems);
       const isNews = result.summary.built > 0 || saying !== said;
       if (isNews && !result.cancelled) code = conclude(shell, 'build', result, voice);
       said = saying;
-      return result.roots;
+      return roots;
     },
     shell.stopped,
     (problem) => {

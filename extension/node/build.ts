@@ -4,6 +4,7 @@ import type { Query } from '../../core/treatment/find/select.ts';
 import { resolvePath } from '../../core/treatment/paths/path.ts';
 import { collisionsOf } from './collisions.ts';
 import type { Disk } from './disk.ts';
+import { type FolderRecord, openFolderRecord } from './folder-record.ts';
 import { filesOf } from './laydown.ts';
 import { type FoundOrphan, findOrphans, orphansCanBeTold, prune, withoutAnswered } from './orphans.ts';
 import { parentOf } from './path.ts';
@@ -117,7 +118,7 @@ interface RootBuild {
   readonly root: ProjectRoot;
   readonly index: StatIndex;
   readonly record: RunRecord;
-  readonly traces: Traces;
+  readonly folderRecord: FolderRecord;
   readonly works: readonly Work[];
   readonly problems: readonly Problem[];
 }
@@ -144,7 +145,9 @@ async function judgeRoot(root: ProjectRoot, options: BuildOptions, tools: BuildT
   const record = openRunRecord(disk, options.cacheFolder, root.selection.folder);
   const whole = root.selection.extent === 'whole' || options.orphans === 'prune';
   const folders = new Set(root.textures.map((texture) => parentOf(texture.manifestPath)));
-  const traces = await findTraces(disk, whole ? [root.outFolder] : folders, whole ? 'below' : 'folder');
+  const folderRecord = await openFolderRecord(disk, options.cacheFolder, root.selection.folder);
+  const places = whole ? [root.outFolder] : folders;
+  const traces = await findTraces(disk, places, whole ? 'below' : 'folder', folderRecord.look);
   const works: Work[] = [];
   for (const texture of root.textures) {
     if (tools.isCancelled()) break;
@@ -166,7 +169,7 @@ async function judgeRoot(root: ProjectRoot, options: BuildOptions, tools: BuildT
   } else if (options.mode === 'build') {
     await sweep(disk, traces.temporaries);
   }
-  return { root, index, record, traces, works, problems };
+  return { root, index, record, folderRecord, works, problems };
 }
 
 /** A texture of which every file is as the last run that looked into it left it. */
@@ -193,13 +196,14 @@ function learn({ state, index }: Work, { manifest, files }: Outcome & { readonly
 }
 
 /** Keeps what this run learned about a root, for the next. */
-async function remember({ index, record, works }: RootBuild): Promise<void> {
+async function remember({ index, record, folderRecord, works }: RootBuild): Promise<void> {
   await index.settle();
   for (const { texture, action, state, outputs } of works) {
     const wasLookedInto = action === 'built' || (action === 'unchanged' && state.manifest !== null);
     if (wasLookedInto) await record.keep(texture, outputs, index);
   }
   await record.save();
+  await folderRecord.save();
   await index.save();
 }
 

@@ -15,6 +15,15 @@ export function statNumbers({ size, mtimeMs, inode }: FileStat): [number, number
   return [size, mtimeMs, inode];
 }
 
+/** What tells a folder in which an entry came, went or was renamed from one in which none did. */
+export interface FolderStamp {
+  /** Milliseconds since 1970, as of a file. */
+  readonly modifiedMs: number;
+  /** When anything about the folder changed; unlike `modifiedMs`, no program sets it. */
+  readonly changedMs: number;
+  readonly inode: number;
+}
+
 /** `busy`: open elsewhere, worth trying again. `full`: no space or quota left. `denied`: permissions, a read-only system, or
  *  something else of that name. `missing`: a folder on the way is gone. */
 export type DiskFault = 'busy' | 'full' | 'denied' | 'missing' | 'other';
@@ -39,8 +48,10 @@ export class DiskError extends Error {
 export interface Disk extends FileTree {
   /** `null` for what is not a file. Links are followed. */
   stat(path: string): Promise<FileStat | null>;
+  /** `null` for what is no folder, and where the system does not tell. */
+  folderStamp(path: string): Promise<FolderStamp | null>;
   /** Whether all of these are files whose stats are the numbers that `statNumbers` gives, three a file in order. */
-  areStill(paths: readonly string[], numbers: readonly number[]): Promise<boolean>;
+  areStill(paths: readonly string[], numbers: ArrayLike<number>): Promise<boolean>;
   /** Makes a new file of these bytes and flushes it; answers its stat, which it keeps when it is renamed. An existing file is
    *  refused, and a failed one leaves nothing behind. */
   write(path: string, bytes: Uint8Array): Promise<FileStat>;

@@ -7,6 +7,11 @@ export function parentOf(path: string): string {
   return parentPath(path) ?? path;
 }
 
+/** What the paths of a folder's entries begin with. */
+export function startOf(folder: string): string {
+  return folder.endsWith('/') ? folder : `${folder}/`;
+}
+
 /** The way from `folder` to `path`, or `null` where they have no start in common (two drives). `.` for the folder itself. */
 export function relative(folder: string, path: string): string | null {
   const from = partsOf(folder);

@@ -1,22 +1,26 @@
 import { ALGORITHM } from '../../core/manifest/manifest.ts';
-import { joinPath, pathBelow } from '../../core/treatment/paths/path.ts';
+import { MANIFEST_ENDING } from '../../core/treatment/find/names.ts';
+import { pathBelow, resolvePath } from '../../core/treatment/paths/path.ts';
 import type { Treatment } from '../../core/treatment/treatment.ts';
 import { type Disk, statNumbers } from './disk.ts';
-import { parentOf, relative } from './path.ts';
+import { parentOf, relative, startOf } from './path.ts';
 import type { ProjectTexture } from './project.ts';
 import { cacheFile, replaceFile, type StatIndex, sha256Of } from './stat-index.ts';
 import type { PresentSource } from './state.ts';
 
-// Which textures a build found as their manifests say, so that the next one stats their files and reads none of them. One JSON
-// document for each folder of manifests, beside the stat index. It is a hint like that: a damaged one is ignored, a missing one
-// is made. That file and settings are what was compared, down to the last bit, is what makes it true:
+// Which textures a build found as their manifests say, so that the next one stats their files and reads none of them. One file
+// for each folder of manifests, beside the stat index: a line of JSON, then numbers of 64 bits in this machine's order. It is a
+// hint like that: a damaged one is ignored, a missing one is made. That file and settings are what was compared, down to the
+// last bit, is what makes it true:
 //
 //   form, algorithm   as this version writes them
 //   treatments        SHA-256 of each treatment's canonical JSON
-//   textures          by the manifest's name: [index of the treatment, sources, outputs, stats]
-//     sources         [path, SHA-256], image first; the path from the manifest's folder
-//     outputs         paths from the manifest's folder
-//     stats           size, mtime in ms and inode of the sources, the manifest and the outputs, one after the other
+//   shapes            lists of outputs that textures share: "*.1.png" stands for the texture's name and ".1.png", "/a/b.png" for
+//                     a way from the manifests' folder
+//   names             of the manifests, without their ending
+//   of                two numbers a manifest: which treatment, which shape
+//   sources           a list a manifest: reference, SHA-256, reference, SHA-256 and so on, image first
+//   numbers           size, mtime in ms and inode of the sources, the manifest and the outputs of each manifest, in this order
 
 export interface RunRecord {
   /** The files of a texture, if it was as its manifest says, all settings are the same since and no file's stat has moved. */
@@ -29,21 +33,23 @@ export interface RunRecord {
   save(): Promise<void>;
 }
 
-type Entry = readonly [
-  treatment: number,
-  sources: readonly (readonly [path: string, sha256: string])[],
-  outputs: readonly string[],
-  stats: readonly number[],
-];
+interface Entry {
+  readonly treatment: number;
+  readonly shape: number;
+  readonly sources: readonly string[];
+  readonly stats: ArrayLike<number>;
+}
 
 interface Page {
   readonly file: string | null;
   readonly treatments: string[];
-  readonly textures: Record<string, Entry>;
+  readonly shapes: (readonly string[])[];
+  /** By the manifest's name without its ending. */
+  readonly textures: Map<string, Entry>;
   changed: boolean;
 }
 
-const FORM = 'sizeproof run record 1';
+const FORM = 'sizeproof run record 2';
 
 /** Opens the record of one root, kept in `cacheFolder`; `null` keeps none. */
 export function openRunRecord(disk: Disk, cacheFolder: string | null, root: string): RunRecord {
@@ -54,59 +60,49 @@ export function openRunRecord(disk: Disk, cacheFolder: string | null, root: stri
   async function find(texture: ProjectTexture) {
     const { manifestPath, selected } = texture;
     const folder = parentOf(manifestPath);
-    const page = await pageOf(folder);
-    const entry = page.textures[nameOf(manifestPath)];
-    if (entry === undefined || page.treatments[entry[0]] !== keyOf(selected.treatment)) return null;
-    const [, sources, names, stats] = entry;
-    if (!asksFor(texture, folder, sources)) return null;
-    const outputs = names.map((name) => placeOf(folder, name));
+    const page = pages.get(folder) ?? (await openPage(folder));
+    const name = nameOf(manifestPath);
+    const entry = page.textures.get(name);
+    if (entry === undefined || page.treatments[entry.treatment] !== keyOf(selected.treatment)) return null;
+    if (!asksFor(texture, entry.sources)) return null;
+    const start = startOf(folder);
+    const outputs = page.shapes[entry.shape].map((shaped) => placeOf(start, name, shaped));
     const paths = [...texture.sources.map(({ path }) => path), manifestPath, ...outputs];
-    if (stats.length !== 3 * paths.length || !(await disk.areStill(paths, stats))) return null;
-    return { sources: texture.sources.map(({ use, path }, at) => ({ use, path, sha256: sources[at][1] })), outputs };
+    if (entry.stats.length !== 3 * paths.length || !(await disk.areStill(paths, entry.stats))) return null;
+    const sources = texture.sources.map(({ use, path }, at) => ({ use, path, sha256: entry.sources[2 * at + 1] }));
+    return { sources, outputs };
   }
 
   async function keep(texture: ProjectTexture, outputs: readonly string[], index: StatIndex): Promise<void> {
     const { manifestPath, selected } = texture;
     const folder = parentOf(manifestPath);
-    const page = await pageOf(folder);
+    const page = pages.get(folder) ?? (await openPage(folder));
     const paths = [...texture.sources.map(({ path }) => path), manifestPath, ...outputs];
     const known = paths.flatMap((path) => index.trusted(path) ?? []);
-    const names = outputs.map((path) => nameFrom(folder, path));
-    const ways = texture.sources.map(({ path }) => nameFrom(folder, path));
-    if (known.length < paths.length || [...names, ...ways].includes(null)) return;
-    const sources = ways.map((way, at) => [way as string, known[at].sha256] as const);
-    const entry: Entry = [
-      treatmentOf(page, selected.treatment),
-      sources,
-      names as string[],
-      known.flatMap(statNumbers),
-    ];
-    page.textures[nameOf(manifestPath)] = entry;
+    const name = nameOf(manifestPath);
+    const shape = outputs.map((path) => shapeFrom(folder, name, path));
+    if (known.length < paths.length || shape.includes(null) || texture.base !== null) return;
+    page.textures.set(name, {
+      treatment: positionOf(page.treatments, keyOf(selected.treatment), (key) => key),
+      shape: positionOf(page.shapes, shape as string[], (each) => each.join('\n')),
+      sources: texture.sources.flatMap(({ reference }, at) => [reference, known[at].sha256]),
+      stats: known.flatMap(statNumbers),
+    });
     page.changed = true;
   }
 
   async function save(): Promise<void> {
-    for (const { file, treatments, textures, changed } of pages.values()) {
-      if (file === null || !changed) continue;
-      const text = JSON.stringify({ form: FORM, algorithm: ALGORITHM, treatments, textures });
-      await replaceFile(disk, file, new TextEncoder().encode(text));
+    for (const page of pages.values()) {
+      if (page.file !== null && page.changed) await replaceFile(disk, page.file, print(page));
     }
   }
 
-  async function pageOf(folder: string): Promise<Page> {
-    const known = pages.get(folder);
-    if (known !== undefined) return known;
-    const file = cacheFile(cacheFolder, root, pathBelow(root, folder) ?? folder, 'json');
+  async function openPage(folder: string): Promise<Page> {
+    const file = cacheFile(cacheFolder, root, pathBelow(root, folder) ?? folder, 'run');
     const bytes = file === null ? null : await disk.read(file);
-    const page = { file, ...(bytes === null ? emptyPage() : parse(Buffer.from(bytes).toString())), changed: false };
+    const page = { file, ...((bytes === null ? null : parse(bytes)) ?? emptyPage()), changed: false };
     pages.set(folder, page);
     return page;
-  }
-
-  function treatmentOf(page: Page, treatment: Treatment): number {
-    const key = keyOf(treatment);
-    const at = page.treatments.indexOf(key);
-    return at < 0 ? page.treatments.push(key) - 1 : at;
   }
 
   function keyOf(treatment: Treatment): string {
@@ -116,49 +112,91 @@ export function openRunRecord(disk: Disk, cacheFolder: string | null, root: stri
   }
 }
 
-function emptyPage(): Pick<Page, 'treatments' | 'textures'> {
-  return { treatments: [], textures: Object.create(null) };
+type Content = Pick<Page, 'treatments' | 'shapes' | 'textures'>;
+
+function emptyPage(): Content {
+  return { treatments: [], shapes: [], textures: new Map() };
 }
 
-/** What another version wrote, or a damaged text, is no page. */
-function parse(text: string): Pick<Page, 'treatments' | 'textures'> {
+function print({ treatments, shapes, textures }: Content): Uint8Array {
+  const entries = [...textures.values()];
+  const line = {
+    form: FORM,
+    algorithm: ALGORITHM,
+    treatments,
+    shapes,
+    names: [...textures.keys()],
+    of: entries.flatMap(({ treatment, shape }) => [treatment, shape]),
+    sources: entries.map((each) => each.sources),
+  };
+  const numbers = Float64Array.from(entries.flatMap((each) => Array.from(each.stats)));
+  return Buffer.concat([Buffer.from(`${JSON.stringify(line)}\n`), Buffer.from(numbers.buffer)]);
+}
+
+/** `null` for what another version wrote, and for what is damaged. */
+function parse(bytes: Uint8Array): Content | null {
+  const end = bytes.indexOf(LINE_FEED);
+  const line = parseLine(Buffer.from(bytes.buffer, bytes.byteOffset, Math.max(0, end)).toString());
+  if (line === null || (bytes.length - end - 1) % 8 !== 0) return null;
+  // Such numbers begin at a multiple of eight bytes.
+  const numbers = new Float64Array(new Uint8Array(bytes.subarray(end + 1)).buffer);
+  const { treatments, shapes, names, of, sources } = line;
+  const textures = new Map<string, Entry>();
+  let at = 0;
+  for (const [index, name] of names.entries()) {
+    const [treatment, shape] = [of[2 * index], of[2 * index + 1]];
+    if (!Array.isArray(sources[index]) || !Array.isArray(shapes[shape])) return null;
+    const next = at + 3 * (sources[index].length / 2 + 1 + shapes[shape].length);
+    textures.set(name, { treatment, shape, sources: sources[index], stats: numbers.subarray(at, next) });
+    at = next;
+  }
+  return at === numbers.length ? { treatments, shapes, textures } : null;
+}
+
+const LINE_FEED = 0x0a;
+
+interface Line {
+  readonly treatments: string[];
+  readonly shapes: (readonly string[])[];
+  readonly names: readonly string[];
+  readonly of: readonly number[];
+  readonly sources: readonly (readonly string[])[];
+}
+
+function parseLine(text: string): Line | null {
   try {
-    const page = JSON.parse(text);
-    if (page?.form !== FORM || page.algorithm !== ALGORITHM || !Array.isArray(page.treatments)) return emptyPage();
-    const textures = Object.entries(page.textures as object).filter(([, entry]) => isEntry(entry));
-    return { treatments: page.treatments, textures: Object.assign(Object.create(null), Object.fromEntries(textures)) };
+    const line = JSON.parse(text);
+    if (line?.form !== FORM || line.algorithm !== ALGORITHM) return null;
+    return [line.treatments, line.shapes, line.names, line.of, line.sources].every(Array.isArray) ? line : null;
   } catch {
-    return emptyPage();
+    return null;
   }
 }
 
-function isEntry(value: unknown): value is Entry {
-  if (!Array.isArray(value) || value.length !== 4) return false;
-  const [treatment, sources, outputs, stats] = value;
-  return (
-    Number.isInteger(treatment) &&
-    [sources, outputs, stats].every(Array.isArray) &&
-    sources.every((each: unknown) => Array.isArray(each) && each.length === 2) &&
-    outputs.every((each: unknown) => typeof each === 'string')
-  );
+/** Where a value stands in a list, which it is put into if need be; values of one key are the same. */
+function positionOf<T>(list: T[], value: T, keyOf: (each: T) => string): number {
+  const key = keyOf(value);
+  const at = list.findIndex((each) => keyOf(each) === key);
+  return at < 0 ? list.push(value) - 1 : at;
 }
 
 /** Whether the sources are those that the settings ask for now. */
-function asksFor({ sources }: ProjectTexture, folder: string, recorded: Entry[1]): boolean {
-  return (
-    sources.length === recorded.length && sources.every(({ path }, at) => nameFrom(folder, path) === recorded[at][0])
-  );
+function asksFor({ sources }: ProjectTexture, recorded: readonly string[]): boolean {
+  return 2 * sources.length === recorded.length && sources.every(({ reference }, at) => reference === recorded[2 * at]);
 }
 
 function nameOf(manifestPath: string): string {
-  return manifestPath.slice(manifestPath.lastIndexOf('/') + 1);
+  return manifestPath.slice(manifestPath.lastIndexOf('/') + 1, -MANIFEST_ENDING.length);
 }
 
-/** A file of the folder by its name, others by the way there; `null` where there is none. */
-function nameFrom(folder: string, path: string): string | null {
-  return pathBelow(folder, path) ?? relative(folder, path);
+/** How an output is called in a shape; `null` where there is no way from the folder to it. */
+function shapeFrom(folder: string, name: string, path: string): string | null {
+  const way = pathBelow(folder, path) ?? relative(folder, path);
+  if (way === null) return null;
+  return way.startsWith(name) ? `*${way.slice(name.length)}` : `/${way}`;
 }
 
-function placeOf(folder: string, name: string): string {
-  return name.startsWith('../') ? placeOf(parentOf(folder), name.slice(3)) : joinPath(folder, name);
+function placeOf(start: string, name: string, shaped: string): string {
+  if (shaped.startsWith('*')) return start + name + shaped.slice(1);
+  return shaped.startsWith('/../') ? resolvePath(start, shaped.slice(1)) : start + shaped.slice(1);
 }

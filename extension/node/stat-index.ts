@@ -40,7 +40,7 @@ interface Entry extends FileStat {
 }
 
 /** A file changed within this time of being hashed may change again under the same time stamp: FAT keeps 2 s. */
-const FRESH_MS = 2000;
+export const FRESH_MS = 2000;
 
 /** Entries of files that nobody asked for may outnumber the others so far, before they are dropped. */
 const SPARE_ENTRIES = 10_000;

@@ -1,5 +1,7 @@
-import { joinPath } from '../../core/treatment/paths/path.ts';
+import { MANIFEST_ENDING } from '../../core/treatment/find/names.ts';
+import { baseName, joinPath } from '../../core/treatment/paths/path.ts';
 import { type Disk, DiskError } from './disk.ts';
+import { startOf } from './path.ts';
 import { manifestOfNext, temporaryOwner } from './temporary.ts';
 
 /** What builds left in some folders. Paths are absolute. */
@@ -14,20 +16,51 @@ export interface Traces {
 /** Never looked into: version control, packages. */
 const skipped = new Set(['.git', 'node_modules']);
 
-/** Looks through folders, and with `below` through those in them too. Folder links are not followed. */
-export async function findTraces(disk: Disk, folders: Iterable<string>, reach: 'folder' | 'below'): Promise<Traces> {
+/** What builds left in one folder, by name. */
+export interface FolderTraces {
+  readonly manifests: readonly string[];
+  /** Manifests of which a `.next` lies there. */
+  readonly interrupted: readonly string[];
+  readonly temporaries: readonly string[];
+  /** Folders to look into, too. */
+  readonly folders: readonly string[];
+}
+
+/** Looks through folders, and with `below` through those in them too. Folder links are not followed. `look` tells of one. */
+export async function findTraces(
+  disk: Disk,
+  folders: Iterable<string>,
+  reach: 'folder' | 'below',
+  look = (folder: string) => tracesIn(disk, folder),
+): Promise<Traces> {
   const found = { manifests: new Set<string>(), interrupted: new Set<string>(), temporaries: new Set<string>() };
   const open = [...folders];
   for (let folder = open.pop(); folder !== undefined; folder = open.pop()) {
-    for (const { name, kind } of (await disk.list(folder)) ?? []) {
-      if (kind === 'folder' && reach === 'below' && !skipped.has(name)) open.push(joinPath(folder, name));
-      if (kind !== 'file') continue;
-      const path = joinPath(folder, name);
-      const manifest = manifestOfNext(path);
-      if (manifest !== null) found.interrupted.add(manifest);
-      else if (temporaryOwner(name) !== null) found.temporaries.add(path);
-      else if (name.endsWith('.mips.json')) found.manifests.add(path);
-    }
+    const start = startOf(folder);
+    const traces = await look(folder);
+    for (const name of traces.manifests) found.manifests.add(start + name);
+    for (const name of traces.interrupted) found.interrupted.add(start + name);
+    for (const name of traces.temporaries) found.temporaries.add(start + name);
+    if (reach === 'below') for (const name of traces.folders) open.push(start + name);
+  }
+  return found;
+}
+
+/** Lists one folder. */
+export async function tracesIn(disk: Disk, folder: string): Promise<FolderTraces> {
+  const found = {
+    manifests: [] as string[],
+    interrupted: [] as string[],
+    temporaries: [] as string[],
+    folders: [] as string[],
+  };
+  for (const { name, kind } of (await disk.list(folder)) ?? []) {
+    if (kind === 'folder' && !skipped.has(name)) found.folders.push(name);
+    if (kind !== 'file') continue;
+    const next = name.startsWith('.') ? manifestOfNext(joinPath(folder, name)) : null;
+    if (next !== null) found.interrupted.push(baseName(next));
+    else if (name.endsWith(MANIFEST_ENDING)) found.manifests.push(name);
+    else if (temporaryOwner(name) !== null) found.temporaries.push(name);
   }
   return found;
 }

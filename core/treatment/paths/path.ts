@@ -29,6 +29,7 @@ export function resolvePath(folder: string, path: string): string {
   const whole = topOf(path) === null ? joinPath(folder, path) : path;
   const top = topOf(whole);
   if (top === null) throw new RangeError(`Expected an absolute path for folder but received ${folder}`);
+  if (!oddName.test(whole)) return whole;
   const names: string[] = [];
   for (const name of whole.slice(top.length).split('/')) {
     if (name === '..') names.pop();
@@ -37,6 +38,13 @@ export function resolvePath(folder: string, path: string): string {
   return joinPath(top, names.join('/'));
 }
 
+/** An empty name, `.` or `..` somewhere, or a `/` at the end; the top has one, too. */
+const oddName = /\/(?:\.{0,2}\/|\.{0,2}$)/;
+
 function topOf(path: string): string | null {
+  if (plainTop.test(path)) return '/';
   return /^(?:\/\/[^/]+\/[^/]+|[A-Za-z]:\/|\/)/.exec(path)?.[0] ?? null;
 }
+
+/** Nearly every path: begins with one `/`. */
+const plainTop = /^\/(?!\/)/;
