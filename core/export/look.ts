@@ -68,7 +68,7 @@ const sight: Shape<Sight> = (value, at) => {
   return object<Sight & { kind: 'lod' }>({ kind: choice('lod'), lod: number(0, 14) })(value, at);
 };
 
-const targetName = text(/^[\p{L}\p{N}._ -]{1,80}$/u, 'a name');
+const targetName = text(/^[\p{L}\p{N}._ /-]{1,80}$/u, 'a name');
 
 const sides = pair(integer(1, 16384));
 

@@ -14,7 +14,18 @@ export function evennessOf(head: ChainHead, treatment: Treatment, image: PrintIm
   if (planned?.method?.kind !== 'codes') return null;
   const place = 'place' in planned ? planned.place : { left: 0, top: 0 };
   const { x, y } = planned.method;
-  return { x: axisEvenness(x, place.left), y: axisEvenness(y, place.top) };
+  const axes = { x: axisEvenness(x, place.left), y: axisEvenness(y, place.top) };
+  const leaves = axes.x.left > 0 || axes.y.left > 0;
+  return { ...axes, parts: leaves ? evenParts(x, y) : null };
+}
+
+/** One texel of n stands evenly where n divides both sides. */
+function evenParts(x: Taps, y: Taps): NonNullable<Evenness['parts']> {
+  const ratio = Math.max(x.from / x.to, y.from / y.to);
+  const most = Math.min(x.from, y.from);
+  const parts = Array.from({ length: most }, (_, i) => i + 1).filter((n) => x.from % n === 0 && y.from % n === 0);
+  const smaller = parts.find((n) => n > ratio) ?? null;
+  return { smaller, larger: parts.filter((n) => n < ratio).pop() ?? 1 };
 }
 
 /** `start` is where the picture begins in its image. */

@@ -139,6 +139,9 @@ export interface OffPalette {
 export interface Evenness {
   readonly x: AxisEvenness;
   readonly y: AxisEvenness;
+  /** The nearest scales 1/n below 1 at which every n-th column and row of the source stands, and none else: that of the next
+   *  smaller image, null where there is none, and of the next larger. Null for images that leave nothing out. */
+  readonly parts: { readonly smaller: number | null; readonly larger: number } | null;
 }
 
 /** How often the texels of a source stand along one axis of an image. */

@@ -149,7 +149,7 @@ const states: readonly State[] = [
           slots: [two[0], { id: 1, kernel: { name: 'nearest', params: {} }, change: {} }],
         },
       ),
-    marker: /left out/,
+    marker: /1\/2x and 1x/,
     prints: 2,
     field: ['View', 'art'],
   },
@@ -404,13 +404,16 @@ test.each([
   { name: 'text of twice the size', width: 1280, fontSize: 26 },
   { name: 'zoomed to twice the size', width: 640, fontSize: 13 },
   { name: '400 pixels wide', width: 400, fontSize: 13 },
+  { name: '320 pixels wide', width: 320, fontSize: 13 },
+  { name: '400 pixels wide, text of twice the size', width: 400, fontSize: 26 },
   { name: '400 pixels wide in forced colors', width: 400, fontSize: 13, forcedColors: 'active' },
 ] as const)('nothing is cut off or overlaps: $name', async ({ width, fontSize, ...showing }) => {
   const recording = recordDemo('foliage/alder-twig.png', {}, kept({ sight: { kind: 'level', level: 3 } }));
   const { page, context } = await showPage(browser, recording, { width, height: 900, ...showing });
   await page.evaluate((px) => document.documentElement.style.setProperty('--vscode-font-size', `${px}px`), fontSize);
   await waitForPrints(page, 2);
-  await page.locator('size-axis .curve').first().waitFor({ state: 'attached' });
+  // Three curves, drawn: coverage, luminance and halo.
+  await page.locator('size-axis .curve[points*=","]').nth(2).waitFor({ state: 'attached' });
   const found = await page.evaluate(() => {
     const all: Element[] = [];
     const visit = (root: Document | ShadowRoot): void => {
@@ -445,10 +448,28 @@ test.each([
         return apart ? [] : [`${name(element)} and ${name(other.element)}`];
       }),
     );
+    // Names of curves against every line that is drawn on the axis.
+    const lines = all.filter((element): element is SVGGeometryElement =>
+      element.matches('.curve, .limit, .sight line'),
+    );
+    const across = lines.flatMap((line) => {
+      const matrix = line.getScreenCTM()!;
+      const points = Array.from({ length: 401 }, (_, i) =>
+        line.getPointAtLength((line.getTotalLength() * i) / 400).matrixTransform(matrix),
+      );
+      return texts
+        .filter(({ element, box }) => {
+          const inside = points.some(
+            ({ x, y }) => x > box.left && x < box.right && y > box.top + 2 && y < box.bottom - 2,
+          );
+          return element.matches('.name') && inside;
+        })
+        .map(({ element }) => `${name(line)} across ${name(element)}`);
+    });
     const { scrollWidth, clientWidth } = document.documentElement;
-    return { cut: cut.map(name), beyond: beyond.map(name), over, wide: scrollWidth - clientWidth };
+    return { across, cut: cut.map(name), beyond: beyond.map(name), over, wide: scrollWidth - clientWidth };
   });
-  expect(found).toEqual({ cut: [], beyond: [], over: [], wide: 0 });
+  expect(found).toEqual({ across: [], cut: [], beyond: [], over: [], wide: 0 });
   await context.close();
 });
 

@@ -45,6 +45,14 @@ const shots: readonly Shot[] = [
     shows: /halo 48\.4/,
   },
   {
+    name: 'painted-contrast-light',
+    texture: 'ground/cobbles.png',
+    theme: 'contrast-light',
+    state: level(3),
+    beside: ['mitchell', 'lanczos3', 'box'],
+    shows: /halo 62\.6/,
+  },
+  {
     name: 'sprite-light',
     texture: 'sprites/wick.png',
     theme: 'light',

@@ -80,7 +80,7 @@ test.each([
   [0.75, { least: 0, most: 1, left: 2, uneven: [1, 4] }],
   [0.5, { least: 0, most: 1, left: 4, uneven: [] }],
 ] as const)('at %fx nearest gives columns as even as this', (scale, expected) => {
-  expect(even(scale)).toEqual({ x: expected, y: expected });
+  expect(even(scale)).toMatchObject({ x: expected, y: expected });
 });
 
 test('a cell’s columns are counted from the cell’s edge; kernels that weigh have none', () => {
@@ -91,4 +91,46 @@ test('a cell’s columns are counted from the cell’s edge; kernels that weigh 
   expect(even(1.5, 'mitchell')).toBeNull();
   // Magnified, box is nearest.
   expect(even(1.5, 'box')?.x.most).toBe(2);
+});
+
+/** Columns that nearest takes, by the rule itself: floor((j + 1/2) n / m).  [Vulkan, Texel Filtering] */
+const taken = (from: number, to: number) => Array.from({ length: to }, (_, j) => Math.floor(((j + 0.5) * from) / to));
+const isEven = (from: number, to: number) => {
+  const columns = taken(from, to);
+  return new Set(columns.map((column, j) => column - (columns[j - 1] ?? column - from / to))).size === 1;
+};
+
+test.each([
+  [8, 8, 0.75, { smaller: 2, larger: 1 }],
+  [12, 18, 0.4, { smaller: 3, larger: 2 }],
+  [24, 16, 0.3, { smaller: 4, larger: 2 }],
+  [31, 17, 0.5, { smaller: null, larger: 1 }],
+] as const)(
+  '%i by %i texels at %fx say the nearest scales at which no column is cut out of step',
+  (width, height, scale, parts) => {
+    const source = headOf(painted({ width, height }, 3, 8, () => [0, 0, 0]));
+    const at = (target: { readonly name: string; readonly scale: number }) => {
+      const settings = treatment({ kernel: both('nearest'), derive: 'base' });
+      return evennessOf(source, treatmentFor(settings, { target }), { target })!;
+    };
+    expect(at({ name: 'one', scale }).parts).toEqual(parts);
+    for (const part of [parts.smaller, parts.larger]) {
+      if (part === null) continue;
+      expect([isEven(width, width / part), isEven(height, height / part)]).toEqual([true, true]);
+      const { x, y } = at({ name: 'part', scale: 1 / part });
+      expect([x.uneven, y.uneven]).toEqual([[], []]);
+    }
+    // Nothing between them is: of whole texels on both sides, in proportion.
+    for (let to = width; to >= 1; to--) {
+      const [small, large] = [width / (parts.smaller ?? width + 1), width / parts.larger];
+      const down = (to * height) / width;
+      if (to <= small || to >= large || !Number.isInteger(down)) continue;
+      expect([to, isEven(width, to) && isEven(height, down)]).toEqual([to, false]);
+    }
+  },
+);
+
+test('nothing is said of even scales where nothing is left out', () => {
+  expect(even(1.5)?.parts).toBeNull();
+  expect(even(2)?.parts).toBeNull();
 });

@@ -83,6 +83,8 @@ describe('stops', () => {
 test.each([
   ['2x', { name: '2x', scale: 2 }],
   ['.75X', { name: '0.75x', scale: 0.75 }],
+  ['1/3x', { name: '1/3x', scale: 1 / 3 }],
+  ['1/0x', null],
   ['64', { name: '64x32', extent: [64, 32] }],
   ['64x32', { name: '64x32', extent: [64, 32] }],
   ['48 x 48', { name: '48x48', cell: [48, 48] }],

@@ -16,14 +16,20 @@ export interface Rows {
   /** 0 where there are no distances. */
   readonly meters: number;
   readonly curves: number;
-  /** Height of one curve. */
+  /** Height of one curve, and how far below its top it is drawn: its name stands above it where there is no room beside it. */
   readonly curve: number;
+  readonly curveTop: number;
   readonly height: number;
 }
 
 /** `scale` is that of the text. */
 export function rowsOf(
-  has: { readonly curves: number; readonly targets: boolean; readonly distances: boolean },
+  has: {
+    readonly curves: number;
+    readonly targets: boolean;
+    readonly distances: boolean;
+    readonly names: 'beside' | 'above';
+  },
   scale: number,
 ): Rows {
   const line = 16 * scale;
@@ -32,11 +38,13 @@ export function rowsOf(
   const targets = level + line + 2;
   const below = targets + (has.targets ? line : 0);
   const curves = below + (has.distances ? line : 0) + (has.curves > 0 ? 4 : 0);
-  const curve = 22 * scale;
+  const curveTop = has.names === 'above' ? line : 0;
+  const curve = 22 * scale + curveTop;
   return {
     baseline: 12 * scale,
     thumbs,
     curve,
+    curveTop,
     level,
     targets: has.targets ? targets : 0,
     meters: has.distances ? below : 0,
@@ -45,11 +53,12 @@ export function rowsOf(
   };
 }
 
-/** A pointer on the rail and a line through the curves; thumbs and numbers stay free of it. */
-export function drawSight(x: number, rows: Rows) {
+/** A pointer on the rail and a line through each curve; thumbs, numbers and names stay free of it. */
+export function drawSight(x: number, rows: Rows, curves: number) {
   const rail = rows.level - 4;
+  const tops = Array.from({ length: curves }, (_, i) => rows.curves + i * rows.curve + rows.curveTop);
   return svg`<g class="sight">
-    <line x1=${x} x2=${x} y1=${rows.curves - 2} y2=${rows.height}></line>
+    ${tops.map((top) => svg`<line x1=${x} x2=${x} y1=${top - 1} y2=${top + rows.curve - rows.curveTop}></line>`)}
     <path d=${`M${x - 6} ${rail - 10}h12l-6 9z`}></path>
   </g>`;
 }

@@ -50,13 +50,15 @@ export function extentAt(base: Extent, lod: number): Extent {
   return { width: of(base.width), height: of(base.height) };
 }
 
-/** What a typed size means for a texture: `2x` a scale, `64` the longer side, `64x48` an extent where it has the texture's
+/** What a typed size means for a texture: `2x` or `1/3x` a scale, `64` the longer side, `64x48` an extent where it has the texture's
  *  proportions and a cell where it has not. Null for anything else. */
 export function readSize(text: string, base: Extent): Target | null {
-  const scale = /^\s*(\d*\.?\d+)\s*x\s*$/i.exec(text);
+  const scale = /^\s*(\d*\.?\d+)(?:\s*\/\s*(\d+))?\s*x\s*$/i.exec(text);
   if (scale !== null) {
-    const factor = Number(scale[1]);
-    return factor >= 1 / 1024 && factor <= 64 ? { name: `${factor}x`, scale: factor } : null;
+    const [, over, under] = scale;
+    const factor = Number(over) / Number(under ?? 1);
+    const name = under === undefined ? `${factor}x` : `${Number(over)}/${Number(under)}x`;
+    return factor >= 1 / 1024 && factor <= 64 ? { name, scale: factor } : null;
   }
   const sides = /^\s*(\d+)\s*(?:[x×,\s]\s*(\d+))?\s*$/i.exec(text);
   if (sides === null) return null;

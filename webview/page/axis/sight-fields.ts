@@ -57,7 +57,7 @@ export class SightFields extends LitElement {
         <input
           class="size"
           type="text"
-          title=${t('A side such as 48, an extent or cell such as 48x48, or a scale such as 1.5x')}
+          title=${t('A side such as 48, an extent or cell such as 48x48, or a scale such as 1.5x or 1/3x')}
           .value=${`${width}x${height}`}
           @change=${(event: Event) => this.#typeSize(model, event.target as HTMLInputElement)}
         />

@@ -105,15 +105,18 @@ export abstract class WholeAxis<S extends Placed> extends LitElement {
     const { stops, curves, lod } = facts;
     const scale = this.#scale(stops);
     const targets = stops.some(({ kind }) => kind !== 'level');
-    const rows = rowsOf({ curves: curves.length, targets, distances: facts.distance !== null }, this.textScale);
+    const names = this.#gutter === 0 ? 'above' : 'beside';
+    const rows = rowsOf({ curves: curves.length, targets, distances: facts.distance !== null, names }, this.textScale);
+    const top = (index: number): number => rows.curves + index * rows.curve + rows.curveTop;
+    const room = rows.curve - rows.curveTop;
     return html`
       <div class="plot" data-height=${rows.height} data-thumbs=${rows.thumbs}>
         ${stops.map((stop) => html`<canvas class="thumb" aria-hidden="true" data-stop=${stop.label}></canvas>`)}
         <svg aria-hidden="true">
           <g transform=${`translate(${this.#gutter} 0)`}>
             ${this.#sizes(facts, scale, rows)}
-            ${curves.map((curve, i) => drawCurve(curve, scale, rows.curves + i * rows.curve, rows.curve))}
-            ${drawSight(scale.x(lod), rows)}
+            ${curves.map((curve, i) => drawCurve(curve, scale, top(i), room))}
+            ${drawSight(scale.x(lod), rows, curves.length)}
           </g>
           ${this.#names(facts, rows)}
         </svg>
@@ -130,7 +133,7 @@ export abstract class WholeAxis<S extends Placed> extends LitElement {
           @pointermove=${this.#drag}
           @keydown=${this.#key}
         ></div>
-        ${curves.flatMap((curve, i) => this.#beyond(curve, scale, rows.curves + (i + 0.5) * rows.curve))}
+        ${curves.flatMap((curve, i) => this.#beyond(curve, scale, top(i) + room / 2))}
       </div>
     `;
   }
@@ -148,9 +151,12 @@ export abstract class WholeAxis<S extends Placed> extends LitElement {
           return svg`<path class=${stop.kind} d=${`M${x} ${rail - 4.5}l4.5 4.5l-4.5 4.5l-4.5 -4.5z`}></path>
             ${isFirstAt(stops, stop) ? svg`<text x=${x} y=${rows.targets + rows.baseline} class=${look}>${labelsAt(stops, stop)}</text>` : nothing}`;
         }
-        const crowded = spacing < 34 * this.textScale && stop.lod % 2 === 1;
+        const odd = stop.lod % 2 === 1;
+        const crowded = odd && spacing < 34 * this.textScale;
+        const label = ships ? stop.label : `(${stop.label})`;
+        const named = stop === here || !odd || spacing >= (label.length + 1) * DIGIT * this.textScale;
         return svg`<line class="tick" x1=${x} x2=${x} y1=${rail - 4} y2=${rail + 4}></line>
-          <text class=${look} x=${x} y=${rows.level + rows.baseline + 1}>${ships ? stop.label : `(${stop.label})`}</text>
+          ${named ? svg`<text class=${look} x=${x} y=${rows.level + rows.baseline + 1}>${label}</text>` : nothing}
           ${crowded ? nothing : svg`<text class=${look} x=${x} y=${rows.baseline}>${sizeText(stop, spacing, this.textScale)}</text>`}
           ${
             distance === null || crowded
@@ -163,20 +169,22 @@ export abstract class WholeAxis<S extends Placed> extends LitElement {
 
   #names({ curves, thumbs, lod, here }: AxisFacts<S>, rows: Rows) {
     const name = (text: string, y: number) => svg`<text class="name" x="10" y=${y}>${text}</text>`;
-    if (this.#gutter === 0) return curves.map((curve, i) => name(curve.name, rows.curves + i * rows.curve + 9));
+    // Between stops the nearest level speaks; a stop speaks for itself alone.
+    const place = here === null ? Math.round(lod) : here.lod;
+    const curveName = (curve: Curve): string => {
+      const at = curve.points.find((point) => point.lod === place);
+      return at === undefined ? curve.name : `${curve.name} ${curve.format(at.value)}`;
+    };
+    if (this.#gutter === 0) {
+      return curves.map((curve, i) => name(curveName(curve), rows.curves + i * rows.curve + rows.baseline));
+    }
     return svg`
       ${name(t('size'), rows.baseline)}
       ${name(thumbs, rows.thumbs + rows.baseline)}
       ${name(t('level'), rows.level + rows.baseline + 1)}
       ${rows.targets > 0 ? name(t('target'), rows.targets + rows.baseline) : nothing}
       ${rows.meters > 0 ? name(t('meters'), rows.meters + rows.baseline) : nothing}
-      ${curves.map((curve, i) => {
-        // Between stops the nearest level speaks; a stop speaks for itself alone.
-        const place = here === null ? Math.round(lod) : here.lod;
-        const at = curve.points.find((point) => point.lod === place);
-        const text = at === undefined ? curve.name : `${curve.name} ${curve.format(at.value)}`;
-        return name(text, rows.curves + (i + 0.68) * rows.curve);
-      })}
+      ${curves.map((curve, i) => name(curveName(curve), rows.curves + (i + 0.68) * rows.curve))}
     `;
   }
 
@@ -259,6 +267,9 @@ export abstract class WholeAxis<S extends Placed> extends LitElement {
     if (this.press(event)) event.preventDefault();
   }
 }
+
+/** Width of a digit on the axis, in CSS pixels at the usual size of text. */
+const DIGIT = 7;
 
 /** Steps along the axis by arrow keys; undefined for other keys. */
 export function directionOf({ key }: KeyboardEvent): 1 | -1 | undefined {

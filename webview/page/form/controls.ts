@@ -98,6 +98,11 @@ export const controls = css`
     align-items: center;
     gap: 5px;
     white-space: nowrap;
+    flex-wrap: wrap;
+    max-width: 100%;
+  }
+  select {
+    max-width: 100%;
   }
   .number {
     font-family: var(--proof-mono);

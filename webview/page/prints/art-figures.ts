@@ -21,8 +21,22 @@ export function artFigures(art: ArtAnswer | null): readonly CardFigure[] {
     const [x, y] = [axisWords(art.even.x), axisWords(art.even.y)];
     if (x !== null) add(x === y ? t('columns and rows') : t('columns'), x);
     if (y !== null && y !== x) add(t('rows'), y);
+    const { parts } = art.even;
+    if (parts !== null && (x !== null || y !== null)) {
+      add(
+        t('even at'),
+        parts.smaller === null
+          ? scaleText(parts.larger)
+          : t('{smaller} and {larger}', { smaller: scaleText(parts.smaller), larger: scaleText(parts.larger) }),
+      );
+    }
   }
   return figures;
+}
+
+/** The scale 1/n, as the field of sizes takes it. */
+function scaleText(part: number): string {
+  return part === 1 ? '1x' : `1/${part}x`;
 }
 
 /** Null where all are alike. */
