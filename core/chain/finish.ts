@@ -3,7 +3,7 @@ import { type Clipped, newClipped } from '../resample/clip.ts';
 import type { RowsRun } from '../resample/engine.ts';
 import { boundCodes } from './bounds.ts';
 import { placeInCell } from './cell.ts';
-import type { CoverageScale } from './coverage.ts';
+import type { CoverageScale } from './coverage-scale.ts';
 import type { Draft } from './draft.ts';
 import { fillFrom, fillWith } from './fill.ts';
 import { type ChainImage, ImageInWork } from './image.ts';
@@ -20,27 +20,33 @@ export function finishImages(
   drafts: { readonly levels: readonly (Draft | null)[]; readonly targets: readonly Draft[] },
   run: Pick<RowsRun, 'sums'>,
 ): readonly ChainImage[] {
-  const scales = plan.keepsCoverage ? keepAll(plan, drafts) : new Map<Draft, CoverageScale>();
+  const kept = plan.keepsCoverage ? keepAll(plan, drafts) : null;
   if (plan.fill !== 'none') fillAll(plan, drafts, run.sums());
   const images: ChainImage[] = [];
   for (const draft of drafts.levels) {
     if (draft !== null && 'shipped' in draft.planned && draft.planned.shipped)
-      images.push(imageOf(plan, draft, scales, run));
+      images.push(imageOf(plan, draft, kept, run));
   }
-  for (const draft of drafts.targets) images.push(imageOf(plan, draft, scales, run));
+  for (const draft of drafts.targets) images.push(imageOf(plan, draft, kept, run));
   return plan.treatment.height.minmax ? [...images, ...boundsOf(plan, drafts.levels)] : images;
+}
+
+/** Coverage of level 0, and how every other image came to it. */
+interface KeptCoverage {
+  readonly wanted: number;
+  readonly scales: ReadonlyMap<Draft, CoverageScale>;
 }
 
 function keepAll(
   plan: ChainPlan,
   { levels, targets }: { readonly levels: readonly (Draft | null)[]; readonly targets: readonly Draft[] },
-): Map<Draft, CoverageScale> {
+): KeptCoverage {
   const wanted = coverageOf(plan, levels[0]!.raster as StraightRaster);
   const scales = new Map<Draft, CoverageScale>();
   for (const draft of [...levels.slice(1), ...targets]) {
     if (draft !== null) scales.set(draft, keepCoverage(plan, draft.raster as StraightRaster, draft.work, wanted));
   }
-  return scales;
+  return { wanted, scales };
 }
 
 function fillAll(
@@ -85,15 +91,12 @@ function meanTexel(plan: ChainPlan, sums: Float64Array): StraightRaster {
   return work.straight();
 }
 
-function imageOf(
-  plan: ChainPlan,
-  draft: Draft,
-  scales: ReadonlyMap<Draft, CoverageScale>,
-  run: Pick<RowsRun, 'sums'>,
-): ChainImage {
+function imageOf(plan: ChainPlan, draft: Draft, kept: KeptCoverage | null, run: Pick<RowsRun, 'sums'>): ChainImage {
   const { planned, work, raster } = draft;
   const { layout, treatment } = plan;
-  const scale = scales.get(draft);
+  const scale = kept?.scales.get(draft);
+  const coverage = (): number =>
+    kept !== null && scale === undefined ? kept.wanted : coverageOf(plan, straightOf(raster));
   const measured = 'level' in planned && planned.level === 0 ? sumsLight(plan, run.sums()) : null;
   const light = work?.light() ?? measured ?? codesLight(plan, raster);
   const placed = 'place' in planned ? placeInCell(raster, planned.place, layout.alpha) : raster;
@@ -103,7 +106,7 @@ function imageOf(
     ...('level' in planned ? { level: planned.level } : { target: planned.target.name }),
     extent: placed.extent,
     raster: placed,
-    ...(layout.alpha !== null && treatment.alpha.use === 'mask' && { coverage: coverageOf(plan, straightOf(raster)) }),
+    ...(layout.alpha !== null && treatment.alpha.use === 'mask' && { coverage: coverage() }),
     ...(scale !== undefined && { coverageScale: scale }),
     ...(treatment.content === 'color' && holdsColor(layout) && { light }),
     ...(normalLength !== undefined && { normalLength }),

@@ -4,9 +4,10 @@ import { type Clipped, newClipped } from '../resample/clip.ts';
 import type { Encoding } from '../resample/encoding.ts';
 import type { RowCoder } from '../resample/engine.ts';
 import { plainCoder } from './coder.ts';
-import type { CoverageScale, UnscaledAlpha } from './coverage.ts';
+import type { CoverageScale } from './coverage-scale.ts';
 import { holdsColor } from './layout.ts';
 import { type LightSum, lightOf, SUMS_A_ROW } from './light.ts';
+import type { UnscaledAlpha } from './scaled-alpha.ts';
 
 /** One finished level or target, with what was measured on the way. */
 export interface ChainImage {

@@ -1,15 +1,9 @@
 import { maxCode, type StraightRaster } from '../raster/raster.ts';
-import {
-  type AlphaPlane,
-  type CoverageScale,
-  findScale,
-  measureCoverage,
-  passingCode,
-  scaledCode,
-  type UnscaledAlpha,
-} from './coverage.ts';
+import { type AlphaPlane, measureCoverage, passingCode } from './coverage.ts';
+import { type CoverageScale, findScale } from './coverage-scale.ts';
 import type { ImageInWork } from './image.ts';
 import type { ChainPlan } from './plan.ts';
+import { scaledCode, scaledCodes, type UnscaledAlpha } from './scaled-alpha.ts';
 
 /** Coverage of a stored raster, 0..1. */
 export function coverageOf(plan: ChainPlan, raster: StraightRaster): number {
@@ -29,8 +23,12 @@ export function keepCoverage(
   const unscaled = work?.alpha ?? storedAlpha(raster, channel);
   const found = findScale(unscaled, raster.depth, passingCode(alpha, raster.depth), wrap, wanted);
   if (found.scale !== 1) {
-    for (let i = 0, at = channel; i < unscaled.values.length; i++, at += raster.channels) {
-      raster.codes[at] = scaledCode(unscaled.values[i], found.scale, raster.depth);
+    const { values } = unscaled;
+    const { channels, codes, depth } = raster;
+    // Where there are more texels than values, each value is scaled once.
+    const stored = values.length > 65536 ? scaledCodes(found.scale, depth) : null;
+    for (let i = 0, at = channel; i < values.length; i++, at += channels) {
+      codes[at] = stored === null ? scaledCode(values[i], found.scale, depth) : stored[values[i]];
     }
   }
   return found;

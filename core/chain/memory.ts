@@ -1,9 +1,10 @@
-import { type Extent, maxCode } from '../raster/raster.ts';
+import type { Extent } from '../raster/raster.ts';
 import { detailBytes } from '../resample/detail.ts';
 import type { Engine } from '../resample/engine.ts';
 import { majorityBytes } from '../resample/majority.ts';
 import { plainEngine } from '../resample/plain.ts';
 import { type ChainPlan, type PlannedLevel, type PlannedTarget, passOf, pictureExtent } from './plan.ts';
+import { scaleCountsBytes } from './scale-counts.ts';
 
 /** Bytes that building a chain holds at its worst, its source's own raster left out: the base where it is kept, all images,
  *  rows in flight, planes, and what the costliest step holds for itself. */
@@ -80,7 +81,7 @@ function stepBytes(plan: ChainPlan, images: readonly Planned[]): number {
     const ballot = plan.indexed ? area * 4 : majorityBytes(finer, pictureExtent(image));
     return ballot + areaOf(finer) * head.channels + area * sourceTexel(plan);
   });
-  const coverage = plan.keepsCoverage ? largest * (2 + plan.depth / 8) + 4 * (maxCode(16) + 1) : 0;
+  const coverage = plan.keepsCoverage ? 2 * largest + scaleCountsBytes(largest) : 0;
   const bounds = treatment.height.minmax ? areaOf(head.extent) * storedTexel(plan) : 0;
   return Math.max(0, ...found) + coverage + bounds;
 }

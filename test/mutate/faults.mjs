@@ -285,7 +285,7 @@ export const faults = [
   },
   {
     law: 'coverage is what a sampler sees',
-    file: 'core/chain/coverage.ts',
+    file: 'core/chain/samples.ts',
     find: '64 * passing - 32',
     replace: '64 * passing',
     tests: 'test/laws/coverage.test.ts',
@@ -301,11 +301,19 @@ export const faults = [
   },
   {
     law: 'the scale is searched to its end',
-    file: 'core/chain/coverage.ts',
+    file: 'core/chain/coverage-scale.ts',
     find: 'const STEPS = 24;',
     replace: 'const STEPS = 5;',
     tests: 'test/laws/coverage.test.ts',
     name: 'as near to the coverage',
+  },
+  {
+    law: 'a texel is open until it counts the same at both ends',
+    file: 'core/chain/scale-counts.ts',
+    find: 'this.#high.set(this.#last);',
+    replace: 'this.#low.set(this.#last);',
+    tests: 'test/chain/coverage-scale.test.ts',
+    name: 'finds what counting every stored code anew finds',
   },
   {
     law: 'level 0 is never scaled',
