@@ -7,6 +7,7 @@ import type Playwright from 'playwright-core';
 import type { Browser } from 'playwright-core';
 import { cached } from './cache.ts';
 import { type Pinned, unpackPackage } from './package.ts';
+import { PATIENCE_MS } from './patience.ts';
 import { run } from './process.ts';
 
 // A bundle of this lies in dist; what only tests need is installed in the room of the tests.
@@ -24,10 +25,11 @@ const CHROMIUM: Pinned = {
 export async function launchBrowser(more: readonly string[] = []): Promise<Browser> {
   const { executablePath, env } = await findBrowser();
   const { chromium }: typeof Playwright = require('playwright-core');
-  return chromium.launch({
+  const browser = await chromium.launch({
     executablePath,
     env: { ...(process.env as Record<string, string>), ...env },
     headless: true,
+    timeout: PATIENCE_MS,
     args: [
       // Containers of build servers have no user namespaces to make a sandbox of.
       '--no-sandbox',
@@ -42,6 +44,8 @@ export async function launchBrowser(more: readonly string[] = []): Promise<Brows
       ...more,
     ],
   });
+  browser.on('context', (context) => context.setDefaultTimeout(PATIENCE_MS));
+  return browser;
 }
 
 interface Found {

@@ -4,15 +4,13 @@ import { build } from 'esbuild';
 import { describe, expect, test } from 'vitest';
 import { top } from '../house/tree.ts';
 import { launchBrowser } from './browser.ts';
+import { TEST_MS } from './patience.ts';
 import { type Host, startHost } from './server.ts';
 import { isLeftOut, namesOfTests } from './skip.ts';
 import type { Outcome } from './suite/runner.ts';
 import { packVsix } from './vsix.ts';
 import { newPage } from './workbench.ts';
 import { makeWorkspace } from './workspace.ts';
-
-/** The whole suite takes about 20 s. */
-const SUITE_MS = 240_000;
 
 const outcomes = isLeftOut ? null : await runSuite();
 
@@ -72,7 +70,7 @@ async function runIn(host: Host, file: string): Promise<readonly Outcome[]> {
         ['extensionTestsPath', host.remote(suite)],
       ]),
     );
-    const late = new Promise<'late'>((resolve) => setTimeout(resolve, SUITE_MS, 'late').unref());
+    const late = new Promise<'late'>((resolve) => setTimeout(resolve, TEST_MS, 'late').unref());
     const code = await Promise.race([ended, late]);
     if (code === 'late') await page.screenshot({ path: join(top, 'dist', 'test', 'host', 'late.png') });
     if (!existsSync(file)) throw new Error(`No test ran (${code}):\n${said.join('\n')}`);

@@ -97,7 +97,7 @@ describe('the packed extension', () => {
   async function openAndClose(): Promise<void> {
     await host.ask('open', join(folder, 'large.png'));
     const own = 'print-card print-stage[data-painted][data-pixels]:not([data-pixels=""])';
-    await webviewOf(page).locator(own).first().waitFor({ timeout: 60_000 });
+    await webviewOf(page).locator(own).first().waitFor();
     await host.ask('close');
     await page.locator('.tab').first().waitFor({ state: 'detached' });
   }
@@ -111,7 +111,7 @@ describe('the packed extension', () => {
   /** What is held once all that can go is gone: of each figure the least of several looks. The hosts' engine frees buffers in a
    *  thread of its own, and an editor's own work comes and goes; what leaks stays in every look. */
   async function rest() {
-    await expect.poll(workers, { timeout: 30_000 }).toBe(0);
+    await expect.poll(workers).toBe(0);
     const looks = [await look()];
     while (looks.length < LOOKS) looks.push(await look());
     const least = (name: keyof (typeof looks)[0]) => Math.min(...looks.map((each) => each[name]));

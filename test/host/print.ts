@@ -26,7 +26,7 @@ export async function showTrueSize(page: Page, proof: FrameLocator): Promise<voi
 
 /** Waits until the first print is whole and painted at one texel a device pixel. */
 export function waitForPrint(proof: FrameLocator): Promise<void> {
-  return proof.locator('print-card print-stage[data-painted][data-zoom="1"]').first().waitFor({ timeout: 60_000 });
+  return proof.locator('print-card print-stage[data-painted][data-zoom="1"]').first().waitFor();
 }
 
 /** The first print as it stands on the screen, read from a picture of the whole window. */

@@ -1,6 +1,7 @@
 import { existsSync, readFileSync, rmSync } from 'node:fs';
 import { join } from 'node:path';
 import { top } from '../house/tree.ts';
+import { PATIENCE_MS } from './patience.ts';
 import type { HostRest } from './probe/main.ts';
 import { type Host, startHost } from './server.ts';
 import { packProbe, packVsix } from './vsix.ts';
@@ -20,9 +21,6 @@ interface Answers {
   readonly open: null;
   readonly close: null;
 }
-
-/** How long an extension host may take to start. */
-const START_MS = 60_000;
 
 export async function startProbedHost(): Promise<ProbedHost> {
   const made = join(top, 'dist', 'test', 'host');
@@ -50,7 +48,7 @@ export async function startProbedHost(): Promise<ProbedHost> {
 }
 
 async function until(isSo: () => boolean): Promise<void> {
-  const late = Date.now() + START_MS;
+  const late = Date.now() + PATIENCE_MS;
   while (!isSo()) {
     if (Date.now() > late) throw new Error('The extension host did not start');
     await new Promise((resolve) => setTimeout(resolve, 50));

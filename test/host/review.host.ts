@@ -8,7 +8,7 @@ import { top } from '../house/tree.ts';
 import { launchBrowser } from './browser.ts';
 import { type Host, startHost } from './server.ts';
 import { packVsix } from './vsix.ts';
-import { choice, newPage, openWorkbench, runCommand, webviewOf } from './workbench.ts';
+import { choice, keptBy, newPage, openWorkbench, runCommand, webviewOf } from './workbench.ts';
 
 /** Pictures of the last run, to be looked at. */
 const SHOTS = join(top, 'dist', 'test', 'host');
@@ -42,9 +42,9 @@ describe('a review in a workbench', () => {
   test('the two harmful ones of ten stand first', async () => {
     await pickBranch(page, 'work', 'main');
     // Rows that are out of sight are not in the document; the view's message counts them.
-    await page.getByText('0 of 10 looked at').waitFor({ timeout: 60_000 });
+    await page.getByText('0 of 10 looked at').waitFor();
     const first = async () => (await namesOf(rowsOf(page))).slice(0, 2).sort();
-    await expect.poll(first, { timeout: 60_000 }).toEqual(HARMFUL.map((path) => path.split('/')[1]).sort());
+    await expect.poll(first).toEqual(HARMFUL.map((path) => path.split('/')[1]).sort());
     const fern = rowsOf(page).filter({ hasText: 'fern.png' });
     await expect.poll(() => fern.textContent()).toContain('of the coverage is lost at level 3');
   });
@@ -53,7 +53,7 @@ describe('a review in a workbench', () => {
     await rowsOf(page).filter({ hasText: 'fern.png' }).click();
     const review = webviewOf(page);
     const sight = review.getByRole('slider', { name: 'Sight on the size axis' });
-    await expect.poll(() => sight.getAttribute('aria-valuetext'), { timeout: 60_000 }).toContain('level 3');
+    await expect.poll(() => sight.getAttribute('aria-valuetext')).toContain('level 3');
     await review.locator('side-card print-stage[data-painted]').nth(2).waitFor();
     await rowsOf(page).filter({ hasText: 'barrel.png' }).click();
     await expect.poll(() => review.locator('review-top h1').textContent()).toBe('props/barrel.png');
@@ -73,12 +73,13 @@ describe('a review in a workbench', () => {
     await review.getByRole('button', { name: 'Looked at' }).click();
     const path = String(await review.locator('review-top h1').textContent());
     await page.getByText('1 of 10 looked at').waitFor();
-    // A workbench in a browser writes what it keeps every five seconds, and not when it is left.
-    await page.waitForTimeout(7_000);
+    // A workbench in a browser writes what it keeps every few seconds, and not when it is left.
+    await expect.poll(() => keptBy(page)).toMatch(/"review\.lookedAt":\["/);
+    await expect.poll(() => keptBy(page)).toMatch(/mainThreadWebview-sizeproof\.review/);
     await page.reload();
     await page.locator('.monaco-workbench .statusbar').waitFor();
     const after = webviewOf(page);
-    await expect.poll(() => after.locator('review-top h1').textContent(), { timeout: 90_000 }).toBe(path);
+    await expect.poll(() => after.locator('review-top h1').textContent()).toBe(path);
     await expect.poll(() => after.getByRole('button', { name: 'Looked at' }).getAttribute('aria-pressed')).toBe('true');
   });
 
@@ -86,7 +87,7 @@ describe('a review in a workbench', () => {
     write(folder, { 'ui/knob.png': 'no image at all', 'ground/moss.png': null });
     await runCommand(page, 'Sizeproof: Review Texture Changes');
     await choice(page, 'Working tree').click();
-    await expect.poll(() => namesOf(rowsOf(page)), { timeout: 60_000 }).toHaveLength(2);
+    await expect.poll(() => namesOf(rowsOf(page))).toHaveLength(2);
     const knob = rowsOf(page).filter({ hasText: 'knob.png' });
     await expect.poll(() => knob.textContent()).toContain('Cannot be compared');
     const review = webviewOf(page);

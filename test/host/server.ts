@@ -3,6 +3,7 @@ import { mkdirSync, mkdtempSync, readdirSync, rmSync, writeFileSync } from 'node
 import { createServer } from 'node:net';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
+import { PATIENCE_MS } from './patience.ts';
 import { run } from './process.ts';
 import { serverFiles } from './server-files.ts';
 
@@ -34,8 +35,6 @@ export interface HostOptions {
   readonly runs?: 'workbench' | 'extension tests';
 }
 
-/** The server's start takes half a second; a loaded machine may be slow. */
-const START_MS = 90_000;
 const STOP_MS = 5_000;
 
 const QUIET_SETTINGS = {
@@ -144,7 +143,7 @@ function endGroup(child: ChildProcess, signal: NodeJS.Signals): void {
 function listening(child: ChildProcess): Promise<void> {
   return new Promise((resolve, reject) => {
     let printed = '';
-    const timer = setTimeout(() => reject(new Error(`The server did not start:\n${printed}`)), START_MS);
+    const timer = setTimeout(() => reject(new Error(`The server did not start:\n${printed}`)), PATIENCE_MS);
     const take = (data: Buffer) => {
       printed += data;
       if (!printed.includes('Extension host agent listening')) return;

@@ -14,7 +14,7 @@ import { top } from '../house/tree.ts';
 import { launchBrowser } from './browser.ts';
 import { type Host, startHost } from './server.ts';
 import { packVsix } from './vsix.ts';
-import { explorerRow, newPage, openWorkbench, runCommand, webviewOf } from './workbench.ts';
+import { explorerRow, newPage, openWorkbench, reloadWindow, runCommand, webviewOf } from './workbench.ts';
 import { makeWorkspace } from './workspace.ts';
 
 const SHOTS = join(top, 'dist', 'test', 'host');
@@ -65,15 +65,14 @@ describe('an open proof', () => {
     await page.locator(`.tab[data-resource-name="${NAME}"]`).last().click();
     const proof = webviewOf(page);
     await printOf(proof, before);
-    expect(await shownBy(proof)).toEqual(CHOSEN);
+    await expect.poll(() => shownBy(proof)).toEqual(CHOSEN);
   });
 
   test('and after its window was loaded anew', async () => {
-    await runCommand(page, 'Developer: Reload Window');
-    await page.locator('.tab').first().waitFor({ state: 'detached' });
+    await reloadWindow(page);
     const proof = webviewOf(page);
     await printOf(proof, before);
-    expect(await shownBy(proof)).toEqual(CHOSEN);
+    await expect.poll(() => shownBy(proof)).toEqual(CHOSEN);
     await page.screenshot({ path: join(SHOTS, 'state-reloaded.png') });
   });
 
@@ -81,7 +80,7 @@ describe('an open proof', () => {
     const proof = webviewOf(page);
     await write(after);
     await printOf(proof, after);
-    expect(await shownBy(proof)).toEqual(CHOSEN);
+    await expect.poll(() => shownBy(proof)).toEqual(CHOSEN);
   });
 
   test('shows a file that was exchanged while the proof was behind another editor', async () => {
@@ -110,10 +109,7 @@ describe('an open proof', () => {
 async function printOf(proof: FrameLocator, raster: StraightRaster): Promise<void> {
   const level = buildChain(raster, resolveTreatment(null, NAME).treatment).images[LEVEL].raster;
   const hash = hashPixels(level, newHash);
-  await proof
-    .locator(`print-card print-stage[data-painted][data-pixels="${hash}"]`)
-    .first()
-    .waitFor({ timeout: 60_000 });
+  await proof.locator(`print-card print-stage[data-painted][data-pixels="${hash}"]`).first().waitFor();
 }
 
 const viewOf = (proof: FrameLocator) => proof.locator('view-bar').getByRole('combobox', { name: 'View' });

@@ -67,7 +67,7 @@ describe('a print on the screen', () => {
 
   test('of an opaque texture is the built file in every byte', async () => {
     await open('ground.png');
-    expect(await wrongPlaces('ground', asStored)).toEqual([]);
+    await expect.poll(() => wrongPlaces('ground', asStored)).toEqual([]);
   });
 
   test('is found out where one byte of the built file is another', async () => {
@@ -76,7 +76,7 @@ describe('a print on the screen', () => {
     image.data[(37 * image.width + 41) * 4 + 1] ^= 1;
     writeFileSync(fileOf('ground'), PNG.sync.write(image));
     try {
-      expect(await wrongPlaces('ground', asStored)).toEqual([expect.stringMatching(/^41,37 g: /)]);
+      await expect.poll(() => wrongPlaces('ground', asStored)).toEqual([expect.stringMatching(/^41,37 g: /)]);
     } finally {
       writeFileSync(fileOf('ground'), bytes);
     }
@@ -98,11 +98,12 @@ describe('a print on the screen', () => {
     const again = async () => {
       await proof.getByRole('application').first().press('+');
       await showTrueSize(page, proof);
-      return wrongPlaces('ground', asStored);
     };
-    expect(await again()).toEqual([expect.stringMatching(/^10,20 b: /)]);
+    await again();
+    await expect.poll(() => wrongPlaces('ground', asStored)).toEqual([expect.stringMatching(/^10,20 b: /)]);
     await frame?.evaluate(() => (globalThis as unknown as { restore: () => void }).restore());
-    expect(await again()).toEqual([]);
+    await again();
+    await expect.poll(() => wrongPlaces('ground', asStored)).toEqual([]);
   });
 
   test('that the host makes while the file is on its way is the built file too, and is found out where one byte is another', async () => {
@@ -115,15 +116,14 @@ describe('a print on the screen', () => {
       await showTrueSize(other, opened);
       const level = await opened.getByLabel('Level', { exact: true }).inputValue();
       const built: Pixels = PNG.sync.read(readFileSync(join(folder, 'built', `ground.${level}.png`)));
-      expect(differences(await printOnScreen(other, opened, built), built, asStored)).toEqual([
-        expect.stringMatching(/^3,0 r: /),
-      ]);
+      const wrong = async () => differences(await printOnScreen(other, opened, built), built, asStored);
+      await expect.poll(wrong).toEqual([expect.stringMatching(/^3,0 r: /)]);
       const held = await opened.locator('proof-page').elementHandle();
       await held?.evaluate(() => (globalThis as unknown as { release: () => void }).release());
       const count = built.width * built.height * 3;
       await opened.getByText(`differ in 1 of ${count} codes`).waitFor();
       await showTrueSize(other, opened);
-      expect(differences(await printOnScreen(other, opened, built), built, asStored)).toEqual([]);
+      await expect.poll(wrong).toEqual([]);
     } finally {
       await other.context().close();
     }
@@ -137,7 +137,7 @@ describe('a print on the screen', () => {
     ] as const) {
       await proof.getByLabel('Backdrop').selectOption(backdrop);
       await waitForPrint(proof);
-      expect(await wrongPlaces('leaf', asBlended(light))).toEqual([]);
+      await expect.poll(() => wrongPlaces('leaf', asBlended(light))).toEqual([]);
     }
   });
 
@@ -146,7 +146,7 @@ describe('a print on the screen', () => {
     await proof.locator('top-bar [data-built="stale"]').waitFor();
     await proof.getByText('stale: settings changed').first().waitFor();
     await showTrueSize(page, proof);
-    expect(await wrongPlaces('leaf', asBlended(1))).not.toEqual([]);
+    await expect.poll(() => wrongPlaces('leaf', asBlended(1))).not.toEqual([]);
   });
 });
 

@@ -1,4 +1,5 @@
 import { defineConfig } from 'vitest/config';
+import { patience } from './patience.ts';
 import { choice } from './skip.ts';
 
 // Tests in a real host: one at a time, since each has a browser and a server to itself.
@@ -8,8 +9,7 @@ export default defineConfig({
     include: ['**/*.host.ts'],
     pool: 'forks',
     ...choice,
+    ...patience,
     fileParallelism: false,
-    testTimeout: 240_000,
-    hookTimeout: 240_000,
   },
 });

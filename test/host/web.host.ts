@@ -68,8 +68,8 @@ describe('in a host without Node, on a folder without a disk', () => {
       .poll(() => proof.locator('print-card print-stage').first().getAttribute('data-pixels'))
       .toMatch(/^[0-9a-f]{64}$/);
     const build = proof.getByRole('button', { name: 'Build', exact: true });
-    expect(await build.isDisabled()).toBe(true);
-    expect(await build.getAttribute('title')).toContain(NO_DISK);
+    await expect.poll(() => build.isDisabled()).toBe(true);
+    await expect.poll(() => build.getAttribute('title')).toContain(NO_DISK);
   });
 
   test.each(['Build Textures', 'Check Textures', 'Rebuild from Manifests'])('%s says why not', async (command) => {
@@ -91,9 +91,7 @@ describe('in a host without Node, on a folder without a disk', () => {
   test('an explanation names the line that decided', async () => {
     await explorerRow(page, 'leaf.png').click();
     await runCommand(page, 'Sizeproof: Explain Treatment');
-    await expect
-      .poll(() => linesOf(page), { timeout: 20_000 })
-      .toMatch(/kernel\.minify +\{"name":"mitchell".* treatments\[0\] /);
+    await expect.poll(() => linesOf(page)).toMatch(/kernel\.minify +\{"name":"mitchell".* treatments\[0\] /);
   });
 
   test('none of it ran on the server’s Node', () => {

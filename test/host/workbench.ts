@@ -22,11 +22,22 @@ export async function newPage(browser: Browser, host: Host): Promise<Page> {
 
 export async function openWorkbench(page: Page, url: string): Promise<void> {
   await page.goto(url);
-  await page.locator('.monaco-workbench .statusbar').waitFor({ timeout: 90_000 });
+  await page.locator('.monaco-workbench .statusbar').waitFor();
 }
 
-/** Waits for each step of a try. A loading editor may take the focus away, hence several. */
-const STEP_MS = 3_000;
+/** Loads the window anew, and waits until the old one is gone. */
+export async function reloadWindow(page: Page): Promise<void> {
+  await page.evaluate(() => {
+    Object.assign(window, { isOld: true });
+  });
+  await runCommand(page, 'Developer: Reload Window');
+  await page.waitForFunction(() => !('isOld' in window));
+  await page.locator('.monaco-workbench .statusbar').waitFor();
+}
+
+/** Longest wait for a step of a try, in milliseconds. A loading editor may take the focus away, hence several tries; on a slow
+ *  machine a step may be late, hence longer ones. */
+const stepMs = (tries: number): number => Math.min(3_000 * tries, 30_000);
 const TRIES = 20;
 
 /** Runs a command from the palette. Its list is made when it opens: commands of extensions that load later are not in it. */
@@ -34,10 +45,11 @@ export async function runCommand(page: Page, label: string): Promise<void> {
   const input = page.locator('.quick-input-widget input.input');
   for (let tries = 1; ; tries++) {
     try {
+      const step = { timeout: stepMs(tries) };
       await page.keyboard.press('F1');
-      await input.waitFor({ timeout: STEP_MS });
-      await input.fill(`>${label}`, { timeout: STEP_MS });
-      await choice(page, label).click({ timeout: STEP_MS });
+      await input.waitFor(step);
+      await input.fill(`>${label}`, step);
+      await choice(page, label).click(step);
       return;
     } catch (error) {
       if (tries >= TRIES) throw error;
@@ -47,9 +59,12 @@ export async function runCommand(page: Page, label: string): Promise<void> {
   }
 }
 
-/** The first entry of an open list of choices that has a text. */
-export function choice(page: Page, text: string): Locator {
-  return page.locator('.quick-input-list .monaco-list-row').filter({ hasText: text }).first();
+/** The entry of an open list of choices that is called so, where the name may leave out that it asks for more. An entry of a list
+ *  that was open before may hold the same words among others. */
+export function choice(page: Page, name: string): Locator {
+  const whole = new RegExp(`^${name.replaceAll(/[.*+?^${}()|[\]\\]/g, '\\$&')}( ?…|\\.\\.\\.)?$`);
+  const row = page.locator('.quick-input-list .monaco-list-row');
+  return row.filter({ has: page.locator('.label-name').filter({ hasText: whole }) }).first();
 }
 
 /** A notification that holds a text. */
@@ -71,14 +86,15 @@ export function webviewOf(page: Page): FrameLocator {
 export async function pickFromExplorer(page: Page, row: string, label: string): Promise<void> {
   const menu = page.locator('.monaco-menu-container').first();
   for (let tries = 1, isPicked = false; ; tries++) {
+    const step = { timeout: stepMs(tries) };
     try {
       // A slow menu may have gone after its time.
       if (isPicked && !(await menu.isVisible())) return;
-      if (!(await menu.isVisible())) await explorerRow(page, row).click({ button: 'right', timeout: STEP_MS });
-      await page.getByRole('menuitem', { name: 'Sizeproof', exact: true }).hover({ timeout: STEP_MS });
-      await page.getByRole('menuitem', { name: label, exact: true }).click({ timeout: STEP_MS });
+      if (!(await menu.isVisible())) await explorerRow(page, row).click({ button: 'right', ...step });
+      await page.getByRole('menuitem', { name: 'Sizeproof', exact: true }).hover(step);
+      await page.getByRole('menuitem', { name: label, exact: true }).click(step);
       isPicked = true;
-      await menu.waitFor({ state: 'hidden', timeout: STEP_MS });
+      await menu.waitFor({ state: 'hidden', ...step });
       return;
     } catch (error) {
       if (tries >= TRIES) throw error;
@@ -94,4 +110,27 @@ export async function acceptPath(page: Page, name: string): Promise<void> {
     return field?.value.endsWith(ending) ?? false;
   }, name);
   await input.press('Enter');
+}
+
+/** All that the workbench has written into its browser's stores, as text, where quotes inside a value are not escaped. */
+export async function keptBy(page: Page): Promise<string> {
+  const values = await page.evaluate(async () => {
+    const answer = <T>(request: IDBRequest<T>) =>
+      new Promise<T>((resolve, reject) => {
+        request.onsuccess = () => resolve(request.result);
+        request.onerror = () => reject(request.error);
+      });
+    const texts: string[] = [];
+    for (const { name } of await indexedDB.databases()) {
+      if (name === undefined) continue;
+      const database = await answer(indexedDB.open(name));
+      for (const store of Array.from(database.objectStoreNames)) {
+        const all = await answer(database.transaction(store).objectStore(store).getAll());
+        texts.push(...all.filter((each) => typeof each === 'string'));
+      }
+      database.close();
+    }
+    return texts;
+  });
+  return values.join('\n').replaceAll('\\', '');
 }

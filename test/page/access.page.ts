@@ -8,10 +8,11 @@ import { type HostEvent, PROTOCOL } from '../../core/protocol.ts';
 import { deflate } from '../../extension/node/deflate.ts';
 import { noiseRaster } from '../fixtures/noise.ts';
 import { launchBrowser } from '../host/browser.ts';
-import { changeTheme, type Showing, showPage, waitForNumbers, waitForPrints } from './browser.ts';
+import { changeTheme, type Showing, showPage, waitForPrints } from './browser.ts';
 import { firstPrintOf, type Recording, record, recordDemo, stale } from './recorded.ts';
 import { boxOfPrint, troubleOf } from './stage.ts';
 import type { ThemeName } from './themes.ts';
+import { waitForRest } from './unanswered.ts';
 
 const axe = readFileSync(createRequire(import.meta.url).resolve('axe-core/axe.min.js'), 'utf8');
 const themes: readonly ThemeName[] = ['dark', 'light', 'contrast', 'contrast-light'];
@@ -243,8 +244,11 @@ test.each(states)('axe finds nothing in any theme: $name', async (state) => {
   if (prints > 0) await waitForPrints(page, prints);
   if (told !== undefined) await page.evaluate((event) => window.postMessage(event, '*'), told);
   await page.getByText(marker).first().waitFor();
-  if (field !== undefined)
-    expect(await page.getByRole('combobox', { name: field[0], exact: true }).inputValue()).toBe(field[1]);
+  if (field !== undefined) {
+    const [name, value] = field;
+    await expect.poll(() => page.getByRole('combobox', { name, exact: true }).inputValue()).toBe(value);
+  }
+  if (prints > 0) await waitForRest(page);
   for (const theme of themes) {
     await changeTheme(page, theme);
     expect({ theme, violations: await violationsOf(page) }).toEqual({ theme, violations: [] });
@@ -256,6 +260,7 @@ test.each(states)('axe finds nothing in any theme: $name', async (state) => {
 test('everything is reached by Tab, named, and shows that it has the focus', async () => {
   const { page, context } = await showPage(browser, await cobbles({}));
   await waitForPrints(page, 2);
+  await waitForRest(page);
   const seen = new Map<string, string>();
   for (let i = 0; i < 80; i++) {
     await page.keyboard.press('Tab');
@@ -388,6 +393,7 @@ test.each([
     await waitForPrints(page, 2);
     const footer = page.locator('print-card footer').first();
     await footer.getByText('luminance').waitFor();
+    await waitForRest(page);
     const { y, height } = (await footer.boundingBox())!;
     expect(y + height).toBeLessThanOrEqual(700);
     const stage = (await page.locator('print-stage').first().boundingBox())!;
@@ -414,6 +420,7 @@ test.each([
   await waitForPrints(page, 2);
   // Three curves, drawn: coverage, luminance and halo.
   await page.locator('size-axis .curve[points*=","]').nth(2).waitFor({ state: 'attached' });
+  await waitForRest(page);
   const found = await page.evaluate(() => {
     const all: Element[] = [];
     const visit = (root: Document | ShadowRoot): void => {
@@ -476,7 +483,7 @@ test.each([
 test.each(['reduce', 'no-preference'] as const)('nothing moves by itself: %s', async (reducedMotion) => {
   const { page, context } = await showPage(browser, await cobbles({ compare: 'swap' }), { reducedMotion });
   await waitForPrints(page, 2);
-  await waitForNumbers(page);
+  await waitForRest(page);
   const before = await page.locator('print-row').screenshot();
   const moving = await page.evaluate(() => {
     const found: string[] = [];

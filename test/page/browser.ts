@@ -5,6 +5,7 @@ import { pagePolicy } from '../../extension/app/proof/policy.ts';
 import { top } from '../house/tree.ts';
 import { playData, playRecording, type Recording } from './recorded.ts';
 import { type ThemeName, themes } from './themes.ts';
+import { watchWorkers } from './unanswered.ts';
 
 /** The page's own, which stands for `webview.cspSource`. */
 export const ORIGIN = 'http://page.localhost';
@@ -58,6 +59,7 @@ export async function showPage(
     return route.fulfill({ contentType, body: readFileSync(file) });
   });
   await page.addInitScript(playRecording, playData(recording));
+  await page.addInitScript(watchWorkers);
   await page.goto(`${ORIGIN}/`);
   return { page, context };
 }
@@ -87,17 +89,3 @@ export async function waitForPrints(page: Page, count = 1): Promise<void> {
     return stages.length >= wanted && stages.every((stage) => stage?.hasAttribute('data-painted'));
   }, count);
 }
-
-/** Waits until no more numbers come: those of a print follow its picture. Answers the text of all. */
-export async function waitForNumbers(page: Page): Promise<string> {
-  const read = async () => (await page.locator('print-card footer').allTextContents()).join(' ').replace(/\s+/g, ' ');
-  let numbers = await read();
-  for (let before = ''; before !== numbers; numbers = await read()) {
-    before = numbers;
-    await page.waitForTimeout(SETTLED_MS);
-  }
-  return numbers;
-}
-
-/** Longer than any one print of the demo's textures is measured. */
-const SETTLED_MS = 800;

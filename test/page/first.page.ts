@@ -12,6 +12,7 @@ import { launchBrowser } from '../host/browser.ts';
 import { showPage, waitForPrints } from './browser.ts';
 import { firstPrintOf, type Recording, record } from './recorded.ts';
 import { readPrint } from './stage.ts';
+import { waitForRest } from './unanswered.ts';
 
 // The host's worker makes the first print, the page's own makes it again: both must agree, and the page says so if they do not.
 
@@ -55,6 +56,7 @@ test('the host’s print is on the screen before the file is here; the page’s 
   await page.evaluate(() => (window as unknown as { release(): void }).release());
   await expect.poll(async () => (await readPrint(page)).pixels).toBe(hashPixels(level1, newHash));
   expect(Buffer.from((await readPrint(page)).rgb).equals(Buffer.from(level1.codes))).toBe(true);
+  await waitForRest(page);
   expect(await page.locator(banner).count()).toBe(0);
   await context.close();
 });
@@ -94,6 +96,7 @@ test('a print of an older file says nothing about a newer one', async () => {
   const { page, context } = await showPage(browser, recording);
   await waitForPrints(page);
   await expect.poll(async () => (await readPrint(page)).pixels).not.toBe('');
+  await waitForRest(page);
   expect(await page.locator(banner).count()).toBe(0);
   await context.close();
 });

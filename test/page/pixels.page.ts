@@ -15,6 +15,7 @@ import { launchBrowser } from '../host/browser.ts';
 import { ORIGIN, showPage, waitForPrints } from './browser.ts';
 import { record } from './recorded.ts';
 import { boxOfPrint, readPrint, troubleOf } from './stage.ts';
+import { waitForRest } from './unanswered.ts';
 
 const ratios = [1, 1.25, 1.5, 2];
 
@@ -65,6 +66,7 @@ describe.each(ratios)('at %d device pixels a CSS pixel', (ratio) => {
       window: 'own',
     });
     await waitForPrints(page);
+    await waitForRest(page);
     const box = await boxOfPrint(page);
     const screen = PNG.sync.read(await page.screenshot());
     // The canvas begins where the browser snapped its box: the nearest whole device pixel.
@@ -115,13 +117,14 @@ test('numbers on the page are core’s, and what the main thread did is printed'
   const luminance = built.light!.light / built.light!.weight;
   const footer = page.locator('print-card').first().locator('footer');
   await footer.getByText(halo.worst.toFixed(1), { exact: true }).waitFor();
+  await waitForRest(page);
   const text = (await footer.textContent())?.replace(/\s+/g, ' ') ?? '';
   expect(text).toContain(`halo ${halo.worst.toFixed(1)}`);
   expect(text).toContain(`luminance .${luminance.toFixed(3).slice(2)}`);
   const codes = (built.raster as StraightRaster).codes;
   const texel = 29 * 125 + 62;
-  const shown = await page.locator('readings-strip td[data-codes]').first().getAttribute('data-codes');
-  expect(shown).toBe([...codes.slice(texel * 3, texel * 3 + 3)].join(' '));
+  const shown = () => page.locator('readings-strip td[data-codes]').first().getAttribute('data-codes');
+  await expect.poll(shown).toBe([...codes.slice(texel * 3, texel * 3 + 3)].join(' '));
   const { longTasks } = await troubleOf(page);
   console.log(
     `Tasks of 50 ms and more on the page's main thread: ${longTasks.length}, longest ${Math.max(0, ...longTasks)} ms`,

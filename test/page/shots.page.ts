@@ -4,10 +4,11 @@ import type { Browser } from 'playwright-core';
 import { afterAll, beforeAll, expect, test } from 'vitest';
 import { launchBrowser } from '../host/browser.ts';
 import { top } from '../house/tree.ts';
-import { showPage, waitForNumbers, waitForPrints } from './browser.ts';
+import { showPage, waitForPrints } from './browser.ts';
 import { recordDemo } from './recorded.ts';
 import { troubleOf } from './stage.ts';
 import type { ThemeName } from './themes.ts';
+import { waitForRest } from './unanswered.ts';
 
 // Pictures for whoever changes the page to look at, in dist/shots; beside each stands a number that the page must show.
 
@@ -161,10 +162,10 @@ test.each(shots)('$name', async ({ name, texture, theme, state, beside, shows, w
     const footers = await page.locator('print-card footer').allTextContents();
     return footers.join(' ').replace(/\s+/g, ' ');
   };
-  await expect.poll(figures, { timeout: 20_000 }).toMatch(shows);
+  await expect.poll(figures).toMatch(shows);
   await page.locator('section-plot polyline').first().waitFor({ state: 'attached' });
   // Numbers of the other prints come after the first.
-  await waitForNumbers(page);
+  await waitForRest(page);
   await page.screenshot({ path: join(folder, `${name}.png`) });
   expect((await troubleOf(page)).violations).toEqual([]);
   await context.close();

@@ -1,4 +1,5 @@
 import { defineConfig } from 'vitest/config';
+import { patience } from '../host/patience.ts';
 import { choice } from '../host/skip.ts';
 
 // The page alone, in a browser, played with recordings: what a real host would be too slow and too coarse to show.
@@ -8,8 +9,7 @@ export default defineConfig({
     include: ['**/*.page.ts'],
     pool: 'forks',
     ...choice,
+    ...patience,
     fileParallelism: false,
-    testTimeout: 120_000,
-    hookTimeout: 120_000,
   },
 });
