@@ -15,6 +15,8 @@ export interface ReviewRecording {
   readonly open: ReviewOpenReply;
   readonly before: PairSide;
   readonly after: PairSide;
+  /** Whether the host's list moves while the files are on their way, which it tells. */
+  readonly moves?: 'meanwhile';
 }
 
 /** One version of a texture by settings as a file spells them. */
@@ -54,7 +56,7 @@ export function recordReview(
 /** Opens the built page as a review's, with a recording. Every request is kept in `window.asked`. */
 export async function showReview(
   browser: Browser,
-  { open, before, after }: ReviewRecording,
+  { open, before, after, moves }: ReviewRecording,
   { width = 1280, height = 900, theme = 'dark' }: Showing = {},
 ): Promise<{ readonly page: Page; readonly context: BrowserContext }> {
   const context = await browser.newContext({ viewport: { width, height } });
@@ -82,13 +84,14 @@ export async function showReview(
     open,
     before: packed(before),
     after: packed(after),
+    moves: moves !== undefined,
   });
   await page.goto(`${ORIGIN}/`);
   return { page, context };
 }
 
 /** Runs in the page before its script, in VS Code's place. */
-function playReview(data: { protocol: number; open: object; before: object; after: object }): void {
+function playReview(data: { protocol: number; open: object; before: object; after: object; moves: boolean }): void {
   const stage = window as unknown as {
     acquireVsCodeApi: () => unknown;
     asked: { call: string; question: unknown }[];
@@ -108,11 +111,18 @@ function playReview(data: { protocol: number; open: object; before: object; afte
     if (call === 'open') return data.open;
     return call === 'sides' ? { before: unpacked(data.before), after: unpacked(data.after) } : {};
   };
+  const held: object[] = [];
   stage.acquireVsCodeApi = () => ({
     postMessage: ({ id, call, question }: { id: number; call: string; question: unknown }) => {
       stage.asked.push({ call, question });
       const reply = { protocol: data.protocol, kind: 'reply', id, revision: 1, reply: { ok: answer(call) } };
-      setTimeout(() => window.postMessage(reply, '*'), 0);
+      if (call === 'sides' && data.moves) {
+        held.push(reply);
+        window.postMessage({ protocol: data.protocol, kind: 'texture', revision: 2 }, '*');
+        return;
+      }
+      // What was held comes after the page has heard of the list as it is now.
+      for (const each of [reply, ...held.splice(0)]) setTimeout(() => window.postMessage(each, '*'), 0);
     },
     getState: () => stage.kept,
     setState: (state: unknown) => {

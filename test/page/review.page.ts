@@ -121,6 +121,12 @@ test('it opens where the change hurts, and reads both versions where they differ
   await context.close();
 });
 
+test('a list that moves while the files are on their way keeps none from being shown', async () => {
+  const { page, context } = await showReview(browser, { ...thinned(), moves: 'meanwhile' });
+  await waitForSides(page);
+  await context.close();
+});
+
 test('small edits are seen to end: the curve falls under the threshold where core says so', async () => {
   const { page, context } = await showReview(browser, spotted());
   await waitForSides(page);

@@ -52,13 +52,16 @@ export function reviewCommands(
       if (subject === null) return;
       await begin(parts, subject, null, path);
     },
-    reviewOpen: (path) => {
-      if (typeof path === 'string') panel.show(path, 'leave');
+    reviewOpen: async () => {
+      const path = await tree.clicked();
+      if (path !== null) panel.show(path, 'leave');
     },
     reviewNext: () => step(parts, 1),
     reviewPrevious: () => step(parts, -1),
-    reviewToggleLooked: (path) => {
-      const rows = selected(path);
+    reviewToggleLooked: (...given) => {
+      // A row that the host has just replaced comes as nothing, and no other is meant.
+      if (given.length > 0 && typeof given[0] !== 'string') return;
+      const rows = selected(given[0]);
       desk.look(rows, rows.every((row) => desk.isLooked(row)) ? 'no' : 'yes');
     },
     reviewRefresh: () => desk.refresh(),

@@ -15,7 +15,7 @@ export function openReviews(
 ): ReviewParts & vscode.Disposable {
   const report = (error: unknown) => log.error(error instanceof Error ? error : String(error));
   const desk = new ReviewDesk(platform, new LookedAt(context.workspaceState), log);
-  const tree = new ReviewTree(desk);
+  const tree = new ReviewTree(desk, platform.after);
   const pages = vscode.Uri.joinPath(context.extensionUri, 'dist', 'page');
   const panel = new ReviewPanel(desk, { platform, pages, report });
   const gate = new GitGate(() => desk.outdate(), report);

@@ -1,5 +1,6 @@
 import * as vscode from 'vscode';
 import { reportRow } from '../../../core/review/report.ts';
+import type { Platform } from '../platform.ts';
 import { sayProblem } from '../words.ts';
 import type { ReviewDesk } from './desk.ts';
 import type { ReviewRow } from './row.ts';
@@ -10,16 +11,20 @@ export const REVIEW_VIEW = 'sizeproof.review';
 /** The list of changed textures beside source control, the most harmful first. */
 export class ReviewTree implements vscode.TreeDataProvider<string>, vscode.FileDecorationProvider, vscode.Disposable {
   readonly #desk: ReviewDesk;
+  readonly #after: Platform['after'];
   readonly #view: vscode.TreeView<string>;
   readonly #tree = new vscode.EventEmitter<void>();
   readonly #decorations = new vscode.EventEmitter<undefined>();
   readonly #owned: vscode.Disposable;
+  /** Rows as the host has them. */
+  #shown = '';
 
   readonly onDidChangeTreeData = this.#tree.event;
   readonly onDidChangeFileDecorations = this.#decorations.event;
 
-  constructor(desk: ReviewDesk) {
+  constructor(desk: ReviewDesk, after: Platform['after']) {
     this.#desk = desk;
+    this.#after = after;
     this.#view = vscode.window.createTreeView(REVIEW_VIEW, { treeDataProvider: this, canSelectMany: true });
     this.#owned = vscode.Disposable.from(
       this.#view,
@@ -31,6 +36,16 @@ export class ReviewTree implements vscode.TreeDataProvider<string>, vscode.FileD
   /** Paths of the rows that are selected. */
   get selected(): readonly string[] {
     return this.#view.selection;
+  }
+
+  /** The row that was clicked. While the host takes a new list it knows none for a moment; null where it stays so. */
+  async clicked(): Promise<string | null> {
+    for (let tries = 0; tries < TRIES; tries++) {
+      const [path] = this.#view.selection;
+      if (path !== undefined) return path;
+      await new Promise<void>((resolve) => this.#after(TRY_MS, resolve));
+    }
+    return null;
   }
 
   /** Selects a row and leaves the focus where it is. */
@@ -61,7 +76,8 @@ export class ReviewTree implements vscode.TreeDataProvider<string>, vscode.FileD
     item.accessibilityInformation = {
       label: [name, describe(row), looked ? vscode.l10n.t('looked at') : ''].filter(Boolean).join(', '),
     };
-    item.command = { command: 'sizeproof.reviewOpen', title: vscode.l10n.t('Open Review'), arguments: [path] };
+    // Without arguments: the host forgets those of a list that is being replaced, and then refuses a click on it.
+    item.command = { command: 'sizeproof.reviewOpen', title: vscode.l10n.t('Open Review') };
     return item;
   }
 
@@ -92,8 +108,13 @@ export class ReviewTree implements vscode.TreeDataProvider<string>, vscode.FileD
     const { rows, lookedAt, stage, subject } = this.#desk;
     void vscode.commands.executeCommand('setContext', 'sizeproof.reviewing', subject !== null);
     void vscode.commands.executeCommand('setContext', 'sizeproof.reviewStage', stage ?? '');
-    this.#tree.fire();
-    this.#decorations.fire(undefined);
+    const line = (row: ReviewRow) => `${uriOf(row, this.#desk.isLooked(row))} ${describe(row)} ${row.settled}`;
+    const shown = rows.map(line).join('\n');
+    if (shown !== this.#shown) {
+      this.#shown = shown;
+      this.#tree.fire();
+      this.#decorations.fire(undefined);
+    }
     this.#view.message = messageOf(this.#desk);
     const left = rows.length - lookedAt;
     this.#view.badge =
@@ -102,6 +123,9 @@ export class ReviewTree implements vscode.TreeDataProvider<string>, vscode.FileD
 }
 
 const SCHEME = 'sizeproof-review';
+
+/** A list of thousands is taken in a second. */
+const [TRIES, TRY_MS] = [40, 50];
 
 /** Decorations go by address: what a row is marked with stands in it. */
 function uriOf({ item, impact }: ReviewRow, looked: boolean): vscode.Uri {

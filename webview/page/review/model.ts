@@ -19,6 +19,7 @@ export class ReviewModel extends EventTarget {
   #keeping: ReturnType<typeof setTimeout> | undefined;
   #sides: { readonly before: PairSide; readonly after: PairSide } | null = null;
   #asked = 0;
+  #loads = 0;
   open: ReviewOpenReply | null = null;
   /** Why the page cannot show anything. */
   problem: Problem | null = null;
@@ -57,7 +58,7 @@ export class ReviewModel extends EventTarget {
     if (isOther) {
       this.#state = turnTo(this.#state, reply.ok.key);
       this.#keep();
-      await this.#load(asked);
+      await this.#load();
     }
     this.#changed();
   }
@@ -131,11 +132,13 @@ export class ReviewModel extends EventTarget {
     this.#bench?.want(wants);
   }
 
-  async #load(asked: number): Promise<void> {
+  /** A handshake meanwhile that finds the same texture leaves this under way. */
+  async #load(): Promise<void> {
+    const load = ++this.#loads;
     this.#sides = null;
     this.#changed();
     const { reply } = await this.link.ask('sides', null);
-    if (asked !== this.#asked) return;
+    if (load !== this.#loads) return;
     if ('problem' in reply) return this.#fail(reply.problem);
     try {
       this.#bench ??= await this.#makeBench(() => this.#benchChanged());
