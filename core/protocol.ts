@@ -3,6 +3,7 @@
 // ReviewEvent. Every message carries the protocol's version.
 
 import type { SourceHeader } from './codec/source.ts';
+import type { ImageUse } from './manifest/manifest.ts';
 import type { Problem } from './problem.ts';
 import type { BuiltImage, Opening } from './proof/opening.ts';
 import type { Picture, PrintStats } from './proof/want.ts';
@@ -146,6 +147,7 @@ export type BuiltState =
 
 /** A print that a page made: its image, and the hash of its pixels. */
 export interface PrintHash {
+  readonly use: ImageUse;
   readonly level: number | null;
   readonly target: string | null;
   readonly pixels: string;

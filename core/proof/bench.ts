@@ -1,6 +1,7 @@
 import { buildChain, type Chain, type ChainOptions, ChainRun, headOf } from '../chain/chain.ts';
 import type { ChainImage } from '../chain/image.ts';
 import type { TargetPlace } from '../chain/levels.ts';
+import { constantRoughness, roughnessChain, roughnessOfMap } from '../chain/roughness.ts';
 import { decodeImage } from '../codec/decode.ts';
 import { openImage } from '../codec/open.ts';
 import { hashPixels } from '../codec/pixels.ts';
@@ -45,6 +46,7 @@ export class ProofBench {
   readonly header: SourceHeader;
   readonly #source: StraightRaster | IndexedRaster;
   readonly #ports: BenchPorts;
+  #roughness: Uint8Array | null = null;
   readonly #chains = new Shelf<Chain>(CHAIN_BYTES, chainSize);
   /** The same for every kernel. */
   readonly #ranges = new Shelf<readonly Range[]>(RANGE_BYTES, rangeSize);
@@ -57,17 +59,24 @@ export class ProofBench {
     this.#ports = ports;
   }
 
-  /** Reads an image file; `name` tells its extension. Throws Refusal. */
-  static async open(bytes: Uint8Array, name: string, ports: BenchPorts): Promise<ProofBench> {
+  /** Reads an image file; `name` tells its extension, `roughness` is the map that its treatment names. Throws Refusal. */
+  static async open(
+    bytes: Uint8Array,
+    name: string,
+    ports: BenchPorts,
+    roughness: Uint8Array | null = null,
+  ): Promise<ProofBench> {
     const image = openImage(bytes, name, ports.inflate, ports.filters);
-    return new ProofBench(image.header, await decodeImage(image), ports);
+    const bench = new ProofBench(image.header, await decodeImage(image), ports);
+    bench.#roughness = roughness;
+    return bench;
   }
 
   /** Throws Refusal where the treatment does not fit, Cancelled when asked to stop. */
   async answer(want: Want, cancel: Cancel): Promise<Answer> {
     switch (want.kind) {
       case 'print':
-        return this.#print(want.treatment, want.image, cancel);
+        return this.#print(want, cancel);
       case 'levels':
         return this.#levels(want.treatment, cancel);
       case 'halo':
@@ -83,16 +92,37 @@ export class ProofBench {
     }
   }
 
-  async #print(treatment: Treatment, image: PrintImage, cancel: Cancel): Promise<Print> {
-    const chain = await this.#chain(treatmentFor(treatment, image), firstLevelOf(image), cancel);
+  async #print({ treatment, image, output }: Want & { readonly kind: 'print' }, cancel: Cancel): Promise<Print> {
+    const normals = await this.#chain(treatmentFor(treatment, image), firstLevelOf(image), cancel);
+    const chain = output === 'roughness' ? await this.#roughnessOf(normals) : normals;
     if ('lod' in image) {
       const picture = this.#seen(chain, treatment, image.lod, image.extent);
       const stats = statsOf(imageOf(chain, { level: Math.min(Math.round(image.lod), lastLevel(chain)) }));
       return { kind: 'print', picture, pixels: '', stats };
     }
-    const found = imageOf(chain, image);
+    const found = imageOf(chain, image, output === 'roughness' ? 'image' : output);
     const picture = copyPicture(pictureOf(chain.plan, found.raster));
     return { kind: 'print', picture, pixels: hashPixels(found.raster, this.#ports.newHash), stats: statsOf(found) };
+  }
+
+  /** What the build makes of the roughness map beside these normals. */
+  async #roughnessOf(normals: Chain): Promise<Chain> {
+    const { treatment } = normals.plan;
+    const key = `roughness ${JSON.stringify(treatment)}`;
+    const known = this.#chains.get(key);
+    if (known !== undefined) return known;
+    const chain = roughnessChain(await this.#roughnessBase(treatment), treatment, normals, this.#ports.engine);
+    this.#chains.put(key, chain);
+    return chain;
+  }
+
+  async #roughnessBase({ normal: { roughness } }: Treatment): Promise<StraightRaster> {
+    const { extent } = this.header;
+    if (roughness === null) throw new RangeError('Expected a treatment with roughness');
+    if ('constant' in roughness) return constantRoughness(roughness.constant, extent);
+    const { inflate, filters } = this.#ports;
+    const file = openImage(this.#roughness ?? new Uint8Array(), roughness.path, inflate, filters);
+    return roughnessOfMap(await decodeImage(file), roughness.channel, extent);
   }
 
   #seen(chain: Chain, treatment: Treatment, lod: number, extent: Picture['extent']): Picture {
@@ -235,10 +265,10 @@ function* measureMaps(
   return { halos, marks, bytes };
 }
 
-function imageOf(chain: Chain, image: PrintImage): ChainImage {
+function imageOf(chain: Chain, image: PrintImage, use: ChainImage['use'] = 'image'): ChainImage {
   const found = chain.images.find(
     (each) =>
-      each.use === 'image' &&
+      each.use === use &&
       ('level' in image ? each.level === image.level : 'target' in image && each.target === image.target.name),
   );
   if (found === undefined) throw new RangeError(`Expected an image of the chain but received ${JSON.stringify(image)}`);

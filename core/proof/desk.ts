@@ -44,16 +44,17 @@ export class Desk {
     switch (message.kind) {
       case 'open':
         this.#queue.clear();
-        this.#open(new Uint8Array(message.bytes), message.name);
+        this.#open(message);
         return;
       case 'want':
         this.#queue.want(message.wants);
     }
   }
 
-  #open(bytes: Uint8Array, name: string): void {
+  #open({ name, bytes, roughness }: ToBench & { readonly kind: 'open' }): void {
     const revision = this.#revision;
-    const opening = ProofBench.open(bytes, name, this.#ports);
+    const map = roughness && new Uint8Array(roughness);
+    const opening = ProofBench.open(new Uint8Array(bytes), name, this.#ports, map);
     this.#bench = opening;
     opening.then(
       ({ header }) => this.#post({ kind: 'opened', revision, header, slow: this.#slow }, []),

@@ -1,4 +1,5 @@
 import type { SourceHeader } from '../codec/source.ts';
+import type { ImageUse } from '../manifest/manifest.ts';
 import type { Problem } from '../problem.ts';
 import type { ChannelCount, Codes, Depth, Extent } from '../raster/raster.ts';
 import type { Target, Treatment } from '../treatment/treatment.ts';
@@ -12,9 +13,19 @@ export type PrintImage =
   /** What a trilinear sampler shows between two levels: level of detail 0 or more, at an extent of screen pixels. */
   | { readonly lod: number; readonly extent: Extent };
 
+/** What a build writes beside an image: bounds of its heights, of levels from 1 on, and the roughness that takes up what its
+ *  normals lose. */
+export type SideOutput = Exclude<ImageUse, 'image'>;
+
 export type Want =
   /** The codes of one image, as the build stores them. */
-  | { readonly kind: 'print'; readonly treatment: Treatment; readonly image: PrintImage }
+  | {
+      readonly kind: 'print';
+      readonly treatment: Treatment;
+      readonly image: PrintImage;
+      /** Left out for the image itself. */
+      readonly output?: SideOutput;
+    }
   /** What was measured on every level, with a small cut of each. */
   | { readonly kind: 'levels'; readonly treatment: Treatment }
   /** Overshoot of one image before clamping. */
@@ -201,7 +212,14 @@ export function haloSide(mark: number, channel: number): 1 | 0 | -1 {
 
 /** To the worker. Wants replace the ones before them: newest wins. */
 export type ToBench =
-  | { readonly kind: 'open'; readonly revision: number; readonly name: string; readonly bytes: ArrayBuffer }
+  | {
+      readonly kind: 'open';
+      readonly revision: number;
+      readonly name: string;
+      readonly bytes: ArrayBuffer;
+      /** The roughness map that the treatment names; null where it names none. */
+      readonly roughness: ArrayBuffer | null;
+    }
   | {
       readonly kind: 'want';
       readonly revision: number;

@@ -128,6 +128,13 @@ const states: readonly State[] = [
     prints: 2,
   },
   {
+    name: 'roughness beside normals',
+    recording: () => recordDemo('ground/cobbles_normal.png', {}, kept({ output: 'roughness' })),
+    marker: /mean/,
+    prints: 2,
+    field: ['Output', 'roughness'],
+  },
+  {
     name: 'normals lit',
     recording: () => recordDemo('ground/cobbles_normal.png', {}, kept({ show: 'lit' })),
     marker: /Lamp/,

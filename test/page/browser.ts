@@ -51,6 +51,9 @@ export async function showPage(
     if (path === '/recorded.bytes') {
       return route.fulfill({ contentType: 'application/octet-stream', body: Buffer.from(recording.bytes) });
     }
+    if (path === '/recorded.roughness') {
+      return route.fulfill({ contentType: 'application/octet-stream', body: Buffer.from(recording.roughness!) });
+    }
     const asked = themes[path.slice(1, -'.css'.length) as ThemeName];
     if (asked !== undefined) return route.fulfill({ contentType: 'text/css', body: asked.css });
     const file = join(pages, path.slice(1));

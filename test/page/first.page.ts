@@ -112,7 +112,7 @@ test.each([
     () => (window as unknown as { asked: { call: string; question: unknown }[] }).asked,
   );
   expect(asked.filter(({ call }) => call === 'isBuilt').map(({ question }) => question)).toEqual([
-    { level: 1, target: null, pixels: hashPixels(level1, newHash) },
+    { use: 'image', level: 1, target: null, pixels: hashPixels(level1, newHash) },
   ]);
   await context.close();
 });

@@ -16,6 +16,8 @@ import { top } from '../house/tree.ts';
 export interface Recording {
   readonly open: OpenReply | { readonly problem: Problem };
   readonly bytes: Uint8Array;
+  /** The roughness map that the treatment names. */
+  readonly roughness?: Uint8Array;
   /** Shown in place of bytes where the file cannot be read. */
   readonly bytesProblem?: Problem;
   /** What the page kept before. */
@@ -40,7 +42,10 @@ export function recordDemo(path: string, rest: Partial<OpenReply> = {}, kept?: u
   const last = rules[rules.length - 1];
   const matching = last === undefined ? null : { index: rules.length - 1, globs: last.match!, textures: 12 };
   const settingsReply = { file: 'sizeproof.json', treatment, origins, problems: [], matching };
-  return record(readFileSync(join(demo, path)), path, { settings: settingsReply, ...rest }, kept);
+  const { roughness } = treatment.normal;
+  const recording = record(readFileSync(join(demo, path)), path, { settings: settingsReply, ...rest }, kept);
+  if (roughness === null || !('path' in roughness)) return recording;
+  return { ...recording, roughness: readFileSync(join(demo, roughness.path)) };
 }
 
 /** Any bytes under a name, with built-in settings unless they are given. */
@@ -69,6 +74,7 @@ export function playRecording(data: {
   readonly protocol: number;
   readonly open: unknown;
   readonly bytesProblem: unknown;
+  readonly roughness: boolean;
   readonly kept: unknown;
   readonly first: { readonly print: FirstPrint; readonly codes: string; readonly palette: string } | null;
   readonly held: boolean;
@@ -106,7 +112,8 @@ export function playRecording(data: {
         if (data.bytesProblem !== null) return { problem: data.bytesProblem };
         // Not with the script: unpacking it would hold the very thread that is watched.
         const response = await fetch('/recorded.bytes');
-        return { ok: { image: await response.arrayBuffer(), roughness: null } };
+        const roughness = data.roughness ? await (await fetch('/recorded.roughness')).arrayBuffer() : null;
+        return { ok: { image: await response.arrayBuffer(), roughness } };
       }
       case 'firstPrint': {
         if (data.first === null) return { ok: { print: null } };
@@ -153,6 +160,7 @@ export function playData(recording: Recording): Parameters<typeof playRecording>
     protocol: PROTOCOL,
     open: recording.open,
     bytesProblem: recording.bytesProblem ?? null,
+    roughness: recording.roughness !== undefined,
     kept: recording.kept ?? null,
     first: recording.first === undefined ? null : packFirst(recording.first),
     held: recording.held !== undefined,

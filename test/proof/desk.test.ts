@@ -40,7 +40,7 @@ const print = (name: string): { key: string; want: Want } => ({
 
 test('the newest list is worked on; what it does not want any more is not answered', async () => {
   const { desk, told, bytes } = await opened();
-  desk.take({ kind: 'open', revision: 1, name: 'a.png', bytes });
+  desk.take({ kind: 'open', revision: 1, name: 'a.png', bytes, roughness: null });
   await told(1);
   desk.take({ kind: 'want', revision: 1, wants: [print('lanczos3'), print('kaiser')] });
   await new Promise((resolve) => setTimeout(resolve, 0));
@@ -55,7 +55,7 @@ test('the newest list is worked on; what it does not want any more is not answer
 
 test('what is being worked on goes on where it is still wanted, and is answered once', async () => {
   const { desk, told, bytes } = await opened();
-  desk.take({ kind: 'open', revision: 1, name: 'a.png', bytes });
+  desk.take({ kind: 'open', revision: 1, name: 'a.png', bytes, roughness: null });
   await told(1);
   desk.take({ kind: 'want', revision: 1, wants: [print('lanczos3')] });
   await new Promise((resolve) => setTimeout(resolve, 0));
@@ -66,17 +66,17 @@ test('what is being worked on goes on where it is still wanted, and is answered 
 
 test('a file that cannot be read is a problem without a key, a want that cannot be met one with it', async () => {
   const { desk, told, bytes } = await opened();
-  desk.take({ kind: 'open', revision: 1, name: 'a.png', bytes: bytes.slice(0, 100) });
+  desk.take({ kind: 'open', revision: 1, name: 'a.png', bytes: bytes.slice(0, 100), roughness: null });
   expect((await told(1))[0]).toMatchObject({ kind: 'problem', key: null, problem: { code: 'png-file-truncated' } });
-  desk.take({ kind: 'open', revision: 2, name: 'a.png', bytes });
+  desk.take({ kind: 'open', revision: 2, name: 'a.png', bytes, roughness: null });
   desk.take({ kind: 'want', revision: 2, wants: [print('epx')] });
   expect((await told(3))[2]).toMatchObject({ kind: 'problem', key: 'epx', problem: { code: 'kernel-cannot' } });
 });
 
 test('messages of an older revision are passed over', async () => {
   const { desk, told, bytes } = await opened();
-  desk.take({ kind: 'open', revision: 5, name: 'a.png', bytes });
-  desk.take({ kind: 'open', revision: 4, name: 'a.png', bytes: new ArrayBuffer(3) });
+  desk.take({ kind: 'open', revision: 5, name: 'a.png', bytes, roughness: null });
+  desk.take({ kind: 'open', revision: 4, name: 'a.png', bytes: new ArrayBuffer(3), roughness: null });
   expect((await told(1))[0]).toMatchObject({ kind: 'opened', revision: 5 });
 });
 

@@ -71,11 +71,11 @@ export class TextureFacts {
   }
 
   /** Whether the manifest has this hash for an image; null where it has none. */
-  async isBuilt({ level, target, pixels }: PrintHash): Promise<boolean | null> {
+  async isBuilt({ use, level, target, pixels }: PrintHash): Promise<boolean | null> {
     const manifest = (await this.inspect())?.manifest ?? null;
     if (manifest === null) return null;
     const found = [...manifest.levels, ...manifest.targets].find(
-      (image) => image.use === 'image' && (image.level ?? null) === level && (image.target ?? null) === target,
+      (image) => image.use === use && (image.level ?? null) === level && (image.target ?? null) === target,
     );
     return found === undefined ? null : found.pixels === pixels;
   }

@@ -22,7 +22,7 @@ export class HostBench {
     });
     // Who asks for a print hears of it; nobody may have asked yet.
     this.header.catch(() => undefined);
-    worker.post({ kind: 'open', revision: REVISION, name, bytes });
+    worker.post({ kind: 'open', revision: REVISION, name, bytes, roughness: null });
   }
 
   /** Rejects with a Refusal where the treatment does not fit. */

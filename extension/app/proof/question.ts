@@ -88,7 +88,12 @@ const questions: { readonly [K in HostCall]: Shape<Question<K>> } = {
   firstPrint: object<Opening>({ level, target }),
   bytes: nothing,
   build: nothing,
-  isBuilt: object<PrintHash>({ level, target, pixels: text(/^[0-9a-f]{64}$/, 'a pixel hash') }),
+  isBuilt: object<PrintHash>({
+    use: choice('image', 'min', 'max', 'roughness'),
+    level,
+    target,
+    pixels: text(/^[0-9a-f]{64}$/, 'a pixel hash'),
+  }),
   adopt: object<AdoptChange>({ scope: choice('file', 'matching'), settings: plainSettings }),
   showSettings: object<{ key: string | null }>({ key: either<string | null>(nothing, key) }),
   copy: object<{ text: string }>({ text: shortText }),

@@ -46,7 +46,7 @@ export class SizeAxis extends WholeAxis<Stop> {
   protected override pictureAt({ image }: Stop): Picture | null {
     const model = this.model!;
     if ('level' in image) return model.levels()?.levels.find(({ level }) => level === image.level)?.cut ?? null;
-    const told = model.print(model.treatment!, image);
+    const told = model.imagePrint(model.treatment!, image);
     return told === undefined || isProblem(told) ? null : told.picture;
   }
 

@@ -16,6 +16,7 @@ import { changeWords } from '../treatment/change-words.ts';
 import { unfitFor } from '../treatment/fit.ts';
 import { t } from '../words/t.ts';
 import { artFigures } from './art-figures.ts';
+import { besideFigure } from './beside-figure.ts';
 import { afterGesture } from './gesture.ts';
 import './print-card.ts';
 import type { CardAction, CardFacts, CardFigure } from './print-card.ts';
@@ -118,7 +119,7 @@ export class PrintRow extends LitElement {
       compare: state.compare === 'divider' ? 'divider' : this.swapped ? 'partner' : 'beside',
       divider: state.divider,
       view: {
-        show: state.show,
+        show: model.show,
         metric: state.metric,
         blend: treatment.view.blend,
         passing: passingCode(treatment.alpha, depth),
@@ -131,8 +132,8 @@ export class PrintRow extends LitElement {
       tiles: state.tiles,
       zoom: state.zoom,
       pan: state.pan,
-      marks: state.show === 'overshoot' && print !== null ? (model.halo(treatment, seen.image)?.marks ?? null) : null,
-      art: state.show === 'art' && print !== null ? model.told({ kind: 'art', treatment, image: seen.image }) : null,
+      marks: model.show === 'overshoot' && print !== null ? model.marks(treatment, seen.image) : null,
+      art: model.show === 'art' && print !== null ? model.told({ kind: 'art', treatment, image: seen.image }) : null,
       cursor: picture === null || !this.pointing ? null : cursorTexel(state.cursor, seen.extent),
       pins: pinsHere(model).map(({ x, y, number }) => ({ x, y, number })),
       line: state.line === 'drawn' ? lineOf(state, seen.extent) : null,
@@ -183,6 +184,7 @@ function afterAction({ slots }: State, slot: Slot, action: CardAction): Partial<
 }
 
 function figuresOf(model: Model, treatment: Treatment, print: Print): readonly CardFigure[] {
+  if (model.outputAt(model.seen!.image) !== 'image') return [besideFigure(print.picture)];
   const { coverage, luminance, normalLength, coverageScale } = print.stats;
   const base = model.levels()?.levels[0]?.stats;
   const { image } = model.seen!;

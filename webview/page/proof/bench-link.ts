@@ -38,13 +38,14 @@ export class BenchLink {
   }
 
   /** Another file, or other bytes of the same: what was answered before is forgotten. */
-  open(name: string, bytes: ArrayBuffer): void {
+  open(name: string, bytes: ArrayBuffer, roughness: ArrayBuffer | null): void {
     this.#revision++;
     this.#sent = '';
     this.#answers.clear();
     this.#ready = false;
     this.problem = null;
-    this.#post({ kind: 'open', revision: this.#revision, name, bytes }, [bytes]);
+    const buffers = roughness === null ? [bytes] : [bytes, roughness];
+    this.#post({ kind: 'open', revision: this.#revision, name, bytes, roughness }, buffers);
   }
 
   /** In the order in which they are needed. What is known is not asked for again. */

@@ -1,6 +1,7 @@
 import type { PrintImage } from '../../../core/proof/want.ts';
 import type { PrintHash } from '../../../core/protocol.ts';
 import type { ProofLink } from '../../link/proof-link.ts';
+import type { Output } from './output.ts';
 
 /** Whether prints of this page have the pixels that were built. The host is told the hash that the page found and answers yes or
  *  no; the build's own hash never comes here. */
@@ -15,12 +16,12 @@ export class BuiltChecks {
   }
 
   /** Null while nobody knows, or where nothing was built. */
-  equals(image: PrintImage, pixels: string): boolean | null {
+  equals(image: PrintImage, use: Output, pixels: string): boolean | null {
     if (pixels === '' || 'lod' in image) return null;
     const print: PrintHash =
       'level' in image
-        ? { level: image.level, target: null, pixels }
-        : { level: null, target: image.target.name, pixels };
+        ? { use, level: image.level, target: null, pixels }
+        : { use, level: null, target: image.target.name, pixels };
     const key = JSON.stringify(print);
     const known = this.#answers.get(key);
     if (known === undefined) void this.#ask(key, print);

@@ -12,7 +12,8 @@ import { setWords } from '../words/t.ts';
 import { type BenchLink, isProblem, type Told } from './bench-link.ts';
 import { BuiltChecks } from './built-checks.ts';
 import { exportProof } from './export-proof.ts';
-import { readState, type State, writeState } from './state.ts';
+import { type Output, outputsOf } from './output.ts';
+import { readState, type Show, type State, writeState } from './state.ts';
 import { Takeover } from './takeover.ts';
 
 /** All that the page knows, and the one way in which it changes. Fires `change` when something did. */
@@ -180,7 +181,34 @@ export class Model extends EventTarget {
     };
   }
 
+  /** What of the build's outputs prints of an image show: the chosen one where there is such. */
+  outputAt(image: PrintImage): Output {
+    const { treatment } = this;
+    const { output } = this.#state;
+    return treatment !== null && outputsOf(treatment, image).includes(output) ? output : 'image';
+  }
+
+  /** How prints are shown: outputs beside the image have channels of their own. */
+  get show(): Show {
+    const { seen } = this;
+    const { show } = this.#state;
+    const beside = seen !== null && this.outputAt(seen.image) !== 'image';
+    return beside && show !== 'difference' ? 'color' : show;
+  }
+
+  /** The print of an image, in the output that is looked at. */
   print(treatment: Treatment, image: PrintImage): Told<'print'> {
+    const told = this.#bench?.told(this.printWant(treatment, image));
+    return told ?? (this.outputAt(image) === 'image' ? this.takeover.printOf(treatment, image) : undefined);
+  }
+
+  printWant(treatment: Treatment, image: PrintImage): Want & { readonly kind: 'print' } {
+    const output = this.outputAt(image);
+    return { kind: 'print', treatment, image, ...(output !== 'image' && { output }) };
+  }
+
+  /** The image itself, whatever is looked at. */
+  imagePrint(treatment: Treatment, image: PrintImage): Told<'print'> {
     return this.#bench?.told({ kind: 'print', treatment, image }) ?? this.takeover.printOf(treatment, image);
   }
 
@@ -193,6 +221,11 @@ export class Model extends EventTarget {
   halo(treatment: Treatment, image: PrintImage): HaloAnswer | null {
     const told = this.#bench?.told({ kind: 'halo', treatment, image });
     return told === undefined || isProblem(told) ? null : told;
+  }
+
+  /** Marks of overshoot on what is looked at; null where there are none. */
+  marks(treatment: Treatment, image: PrintImage): Uint16Array | null {
+    return this.outputAt(image) === 'image' ? (this.halo(treatment, image)?.marks ?? null) : null;
   }
 
   /** An answer to any other want, null until there is one. */
@@ -216,7 +249,8 @@ export class Model extends EventTarget {
 
   /** Whether a print has the pixels that were built; null where that is not known. */
   equalsBuild(image: PrintImage, pixels: string): boolean | null {
-    return this.built.kind === 'built' || this.built.kind === 'stale' ? this.#checks.equals(image, pixels) : null;
+    if (this.built.kind !== 'built' && this.built.kind !== 'stale') return null;
+    return this.#checks.equals(image, this.outputAt(image), pixels);
   }
 
   /** The host's own print, while the file is still to come. A small file comes as fast. */
@@ -244,7 +278,7 @@ export class Model extends EventTarget {
       const reason = error instanceof Error ? error.message : String(error);
       return this.#fail({ code: 'unexpected', severity: 'error', values: { reason } });
     }
-    this.#bench.open(open.name, reply.ok.image);
+    this.#bench.open(open.name, reply.ok.image, reply.ok.roughness);
     this.#changed();
   }
 
@@ -275,9 +309,13 @@ export class Model extends EventTarget {
           void this.#load();
         }
         break;
-      case 'settings':
+      case 'settings': {
+        const before = this.treatment?.normal.roughness;
         this.settings = event.settings;
+        // The map comes with the file; another one is another file.
+        if (JSON.stringify(before) !== JSON.stringify(this.treatment?.normal.roughness)) void this.#load();
         break;
+      }
       case 'export':
         void exportProof(this, event.form);
         return;

@@ -2,6 +2,7 @@ import { type Sight, type Slot, STATE_VERSION } from '../../../core/proof/slot.t
 import type { Preferences } from '../../../core/protocol.ts';
 import type { Target } from '../../../core/treatment/treatment.ts';
 import type { Pin } from '../readings/pin.ts';
+import type { Output } from './output.ts';
 
 export type Show = 'color' | 'r' | 'g' | 'b' | 'a' | 'bare' | 'mask' | 'lit' | 'difference' | 'overshoot' | 'art';
 
@@ -16,6 +17,8 @@ export interface State {
   readonly typed: readonly Target[];
   readonly slots: readonly Slot[];
   readonly selected: number;
+  /** What of the build's outputs is shown, where there is more than the image. */
+  readonly output: Output;
   readonly show: Show;
   readonly metric: 'oklab' | 'r' | 'g' | 'b' | 'a';
   readonly against: Against;
@@ -50,6 +53,7 @@ export const startState: State = {
   typed: [],
   slots: [{ id: 0, kernel: null, change: {} }],
   selected: 0,
+  output: 'image',
   show: 'color',
   metric: 'oklab',
   against: 'source',

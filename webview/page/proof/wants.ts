@@ -10,12 +10,12 @@ export function wantsOf(model: Model): readonly Want[] {
   const { state, seen, treatment, base } = model;
   if (seen === null || treatment === null || base === null) return [];
   const { image } = seen;
-  const print = (each: Treatment): Want => ({ kind: 'print', treatment: each, image });
+  const print = (each: Treatment): Want => model.printWant(each, image);
   const slots = [...state.slots].sort((one, other) => rank(one.id, state.selected) - rank(other.id, state.selected));
   const treatments = slots.map((slot) => model.treatmentOf(slot)!);
   const wants: Want[] = treatments.map(print);
   const comparing = state.compare !== 'beside' && state.partner === 'source';
-  if (comparing || (state.show === 'difference' && state.against === 'source')) {
+  if (comparing || (model.show === 'difference' && state.against === 'source')) {
     const source = model.sourcePrint(image);
     if (source !== null) wants.push(print(source.treatment));
   }
@@ -25,12 +25,13 @@ export function wantsOf(model: Model): readonly Want[] {
   wants.push({ kind: 'footprint', treatment: own, image, ...cursorTexel(state.cursor, seen.extent) });
   wants.push({ kind: 'section', ...lineOf(state, seen.extent) });
   wants.push({ kind: 'levels', treatment });
-  if (!('lod' in image)) {
+  // What is measured of an image says nothing of what is written beside it.
+  if (!('lod' in image) && model.outputAt(image) === 'image') {
     for (const each of treatments) wants.push({ kind: 'art', treatment: each, image });
     for (const each of treatments) wants.push({ kind: 'halo', treatment: each, image });
   }
   for (const pin of pinsOf(model)) {
-    for (const each of treatments) wants.push({ kind: 'print', treatment: each, image: pin.image });
+    for (const each of treatments) wants.push(model.printWant(each, pin.image));
   }
   for (const stop of model.stops) {
     if (stop.kind !== 'level' && Math.max(stop.extent.width, stop.extent.height) <= THUMB_SIDE) {
@@ -41,7 +42,7 @@ export function wantsOf(model: Model): readonly Want[] {
   if ('level' in image) {
     for (const level of [image.level + 1, image.level - 1]) {
       if (level < 0 || level > lastLevel(model) || isLarge(base, level)) continue;
-      for (const each of treatments) wants.push({ kind: 'print', treatment: each, image: { level } });
+      for (const each of treatments) wants.push(model.printWant(each, { level }));
     }
   }
   return wants;

@@ -105,11 +105,14 @@ export class ReadingsStrip extends LitElement {
     const prints = model.state.slots.flatMap((slot) => {
       const picture = slotPicture(model, slot, model.seen!.image);
       if (picture === null) return [];
-      const marks = model.halo(model.treatmentOf(slot)!, model.seen!.image)?.marks ?? null;
+      const marks = model.marks(model.treatmentOf(slot)!, model.seen!.image);
       const print = { name: slotName(model, slot), selected: slot.id === model.state.selected, picture, marks };
       return [printTrack(print, line, this.letter)];
     });
-    return { source: sourceTrack(t('source'), answer, this.letter), prints };
+    // The source of roughness is another file.
+    const source =
+      model.outputAt(model.seen!.image) === 'roughness' ? null : sourceTrack(t('source'), answer, this.letter);
+    return { source, prints };
   }
 
   #lineChoice(model: Model) {
@@ -128,7 +131,8 @@ export class ReadingsStrip extends LitElement {
   }
 
   #letterChoice(model: Model) {
-    const channels = model.header?.channels ?? 3;
+    const rough = model.outputAt(model.seen!.image) === 'roughness';
+    const channels = rough ? 1 : (model.header?.channels ?? 3);
     const letters: readonly Letter[] = channels >= 3 ? ['r', 'g', 'b'] : ['g'];
     const all = channels % 2 === 0 ? [...letters, 'a' as const] : letters;
     return html`<select

@@ -3,7 +3,7 @@ import { figure } from '../../../core/figures.ts';
 import { controls } from '../form/controls.ts';
 import { textScale } from '../form/text-scale.ts';
 import { t } from '../words/t.ts';
-import { type Section, sectionRows, type Track } from './section.ts';
+import { type Section, sectionRows, sectionTracks, type Track } from './section.ts';
 
 const HEIGHT = 112;
 /** Room for the numbers at the left, at the usual size of text. */
@@ -139,7 +139,7 @@ export class SectionPlot extends LitElement {
             ${code % 128 === 0 || code === 255 ? svg`<text x=${left - 5} y=${y(code) + 3}>${code}</text>` : nothing}`,
         )}
         <line class="here" x1=${x(this.cursor)} x2=${x(this.cursor)} y1="0" y2=${HEIGHT - BOTTOM}></line>
-        <polyline class="source" points=${stairs(section.source, x, y)}></polyline>
+        ${section.source === null ? nothing : svg`<polyline class="source" points=${stairs(section.source, x, y)}></polyline>`}
         ${section.prints.map(
           (track, i) => svg`
             <polyline class=${track.selected ? 'chosen' : ''} stroke-dasharray=${DASHES[i % DASHES.length]} points=${stairs(track, x, y)}></polyline>
@@ -151,11 +151,11 @@ export class SectionPlot extends LitElement {
         )}
       </svg>
       <div class="legend">
-        ${[section.source, ...section.prints].map(
-          (track, i) => html`<span>
+        ${sectionTracks(section).map(
+          (track) => html`<span>
             <svg aria-hidden="true" viewBox="0 0 22 8">
-              ${svg`<polyline class=${i === 0 ? 'source' : track.selected ? 'chosen' : ''} stroke-dasharray=${
-                i === 0 ? '' : DASHES[(i - 1) % DASHES.length]
+              ${svg`<polyline class=${track === section.source ? 'source' : track.selected ? 'chosen' : ''} stroke-dasharray=${
+                track === section.source ? '' : DASHES[section.prints.indexOf(track) % DASHES.length]
               } points="0,4 22,4"></polyline>`}
             </svg>${track.name}
           </span>`,
@@ -169,8 +169,7 @@ export class SectionPlot extends LitElement {
             <thead>
               <tr>
                 <th scope="col">${t('texel')}</th>
-                <th scope="col">${section.source.name}</th>
-                ${section.prints.map(({ name }) => html`<th scope="col">${name}</th>`)}
+                ${sectionTracks(section).map(({ name }) => html`<th scope="col">${name}</th>`)}
               </tr>
             </thead>
             <tbody>

@@ -15,7 +15,8 @@ export interface Track {
 
 /** A cross-section: the source's track first, then one for each print. */
 export interface Section {
-  readonly source: Track;
+  /** Null where the prints are made of another file. */
+  readonly source: Track | null;
   readonly prints: readonly Track[];
 }
 
@@ -52,18 +53,31 @@ export function printTrack(
 
 /** The section as comma-separated values: a row for each print texel, the source's mean under it. */
 export function sectionCsv(section: Section): string {
-  const head = ['texel', section.source.name, ...section.prints.map(({ name }) => name)];
+  const head = ['texel', ...sectionTracks(section).map(({ name }) => name)];
   return csvText([head, ...sectionRows(section).map((row) => row.map((value) => Number(value.toFixed(3))))]);
 }
 
-/** Number of the texel along the line, mean of the source over it, and each print's value. */
+/** The source's track, where there is one, and the prints'. */
+export function sectionTracks({ source, prints }: Section): readonly Track[] {
+  return source === null ? prints : [source, ...prints];
+}
+
+/** Number of the texel along the line, mean of the source over it where there is one, and each print's value. */
 export function sectionRows({ source, prints }: Section): readonly (readonly number[])[] {
   const length = Math.max(1, ...prints.map(({ values }) => values.length));
-  const ratio = source.values.length / length;
+  const means = source === null ? null : meansOf(source, length);
+  return Array.from({ length }, (_, i) => [
+    i,
+    ...(means === null ? [] : [means[i]]),
+    ...prints.map(({ values }) => values[i] ?? Number.NaN),
+  ]);
+}
+
+function meansOf({ values }: Track, length: number): readonly number[] {
+  const ratio = values.length / length;
   return Array.from({ length }, (_, i) => {
     const first = Math.floor(i * ratio);
-    const covered = source.values.slice(first, Math.max(first + 1, Math.floor((i + 1) * ratio)));
-    const mean = covered.reduce((sum, value) => sum + value, 0) / (covered.length || 1);
-    return [i, mean, ...prints.map(({ values }) => values[i] ?? Number.NaN)];
+    const covered = values.slice(first, Math.max(first + 1, Math.floor((i + 1) * ratio)));
+    return covered.reduce((sum, value) => sum + value, 0) / (covered.length || 1);
   });
 }

@@ -12,7 +12,7 @@ export function changeWords(change: Change): readonly string[] {
   }
   if (change.fill !== undefined) words.push(t('fill {fill}', { fill: change.fill }));
   if (change.renormalise !== undefined) {
-    words.push(change.renormalise ? t('level 0 renormalised') : t('level 0 as it is'));
+    words.push(change.renormalise ? t('level 0 renormalized') : t('level 0 as it is'));
   }
   return words;
 }

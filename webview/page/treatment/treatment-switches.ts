@@ -72,7 +72,7 @@ export class TreatmentSwitches extends LitElement {
             ])
           : nothing
       }
-      ${normal ? this.#check('renormalise', t('Renormalise level 0'), now.normal.base === 'renormalise') : nothing}
+      ${normal ? this.#check('renormalise', t('Renormalize level 0'), now.normal.base === 'renormalise') : nothing}
       ${
         Object.keys(slot.change).length > 0
           ? html`<button class="plain" @click=${() => this.#put({})}>${t('As the settings say')}</button>`

@@ -5,6 +5,7 @@ import { DIFFERENCE_RAMP, SIGNED_RAMP } from '../prints/backdrop.ts';
 import { addPrint } from '../prints/print-row.ts';
 import { CODE_SCALE, OKLAB_SCALE } from '../prints/view.ts';
 import type { Model } from '../proof/model.ts';
+import { outputName, outputsOf } from '../proof/output.ts';
 import type { Show, State } from '../proof/state.ts';
 import { t } from '../words/t.ts';
 import './lamp-pad.ts';
@@ -40,21 +41,27 @@ export class ViewBar extends LitElement {
   override render() {
     const { model } = this;
     if (model === null || model.seen === null) return nothing;
-    const { state } = model;
+    const { state, show } = model;
+    const { image } = model.seen;
+    const output = model.outputAt(image);
+    const outputs = outputsOf(model.treatment!, image).map(
+      (each) => [each, outputName(each, model.treatment!)] as const,
+    );
     return html`
       <span class="heading">${t('Prints')}</span>
-      ${choice(t('View'), state.show, viewsOf(model), (show) => model.set({ show }))}
-      ${state.show === 'difference' ? this.#difference(model) : nothing}
+      ${outputs.length === 1 ? nothing : choice(t('Output'), output, outputs, (next) => model.set({ output: next }))}
+      ${choice(t('View'), show, viewsOf(model), (next) => model.set({ show: next }))}
+      ${show === 'difference' ? this.#difference(model) : nothing}
       ${
-        state.show === 'lit'
+        show === 'lit'
           ? html`<lamp-pad
               .lamp=${state.lamp}
               @lamp=${(event: CustomEvent<State['lamp']>) => model.set({ lamp: event.detail })}
             ></lamp-pad>`
           : nothing
       }
-      ${state.show === 'overshoot' ? html`<span class="quiet">${t('/ above, \\ below, × clipped')}</span>` : nothing}
-      ${state.show === 'art' ? html`<span class="quiet">${t('· off the palette, ▬ wider, or behind one left out')}</span>` : nothing}
+      ${show === 'overshoot' ? html`<span class="quiet">${t('/ above, \\ below, × clipped')}</span>` : nothing}
+      ${show === 'art' ? html`<span class="quiet">${t('· off the palette, ▬ wider, or behind one left out')}</span>` : nothing}
       ${
         showsBackdropChoice(model)
           ? choice(t('Backdrop'), state.backdrop, backdropNames(), (backdrop) => model.set({ backdrop }))
@@ -124,6 +131,12 @@ const againstNames = () =>
 
 function viewsOf(model: Model): readonly (readonly [Show, string])[] {
   const { header, treatment } = model;
+  if (model.outputAt(model.seen!.image) !== 'image') {
+    return [
+      ['color', t('codes')],
+      ['difference', t('difference')],
+    ];
+  }
   const normal = treatment?.content === 'normal' || Object.values(treatment?.channels ?? {}).includes('normal');
   return [
     ...pictureViews({
@@ -141,7 +154,7 @@ function viewsOf(model: Model): readonly (readonly [Show, string])[] {
 /** Whether a print can lose what pixel art has: a palette, or even pixels. */
 function marksArt(model: Model): boolean {
   const { state, seen } = model;
-  if (state.show === 'art') return true;
+  if (model.show === 'art') return true;
   return state.slots.some((slot) => {
     const art = model.told({ kind: 'art', treatment: model.treatmentOf(slot)!, image: seen!.image });
     return (
@@ -151,6 +164,10 @@ function marksArt(model: Model): boolean {
 }
 
 function showsBackdropChoice(model: Model): boolean {
-  const { show } = model.state;
-  return (show === 'color' || show === 'mask') && (model.header?.channels ?? 3) % 2 === 0;
+  const { show } = model;
+  return (
+    model.outputAt(model.seen!.image) === 'image' &&
+    (show === 'color' || show === 'mask') &&
+    (model.header?.channels ?? 3) % 2 === 0
+  );
 }
