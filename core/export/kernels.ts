@@ -55,7 +55,7 @@ export function changeWords(change: Change): readonly string[] {
   if (change.keepCoverage !== undefined) words.push(change.keepCoverage ? 'coverage kept' : 'coverage not kept');
   if (change.fill !== undefined) words.push(`fill ${change.fill}`);
   if (change.renormalise !== undefined) {
-    words.push(change.renormalise ? 'level 0 renormalised' : 'level 0 as it is');
+    words.push(change.renormalise ? 'level 0 renormalized' : 'level 0 as it is');
   }
   return words;
 }
