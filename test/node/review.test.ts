@@ -11,6 +11,7 @@ import { gitEnvironment } from '../../extension/node/git/run.ts';
 import { openVersions } from '../../extension/node/git/versions.ts';
 import { nodeDisk } from '../../extension/node/node-disk.ts';
 import { nodePorts } from '../../extension/node/ports.ts';
+import { listFiles } from '../../extension/node/review/files.ts';
 import { type GlancedEntry, glanceEntries } from '../../extension/node/review/glance.ts';
 import { reviewJob, runReviewJob } from '../../extension/node/review/job.ts';
 import { type Judged, judgedReview } from '../../extension/node/review/judge.ts';
@@ -327,6 +328,48 @@ test('Git LFS pointers are followed to the local store, checked, or said to be m
   commit(folder, { 'a.png': was.text, 'b.png': null, 'c.png': null });
   write(folder, { 'a.png': one });
   expect((await glance(folder)).map((each) => each.glance.verdict.kind)).toEqual(['same']);
+});
+
+test.each([
+  ['relative', 'kept/large', (folder: string) => join(folder, '.git/kept/large')],
+  ['absolute', null, () => newFolder()],
+])('Git LFS keeps its files where the repository says: %s', async (_, named, at) => {
+  const folder = newFolder();
+  const [was, is] = [one, two].map(pointerTo);
+  newRepository(folder, { 'a.png': was.text });
+  commit(folder, { 'a.png': is.text, 'copy.png': is.text });
+  const store = at(folder);
+  git(folder, 'config', 'lfs.storage', named ?? store);
+  for (const [{ store: path }, bytes] of [[was, one] as const, [is, two] as const]) {
+    write(store, { [path.slice('.git/lfs/'.length)]: bytes });
+  }
+  const judged = await review(folder, { kind: 'commit', commit: 'HEAD' });
+  expect(judged.flatMap(({ problems }) => problems)).toEqual([]);
+  // Two files are followed there, too.
+  const { entries } = await listFiles(nodeDisk, folder, ['a.png', 'copy.png']);
+  const versions = openVersions(nodeDisk);
+  expect(Buffer.from(await versions.content(entries[0].after!.file, 1e6)).equals(Buffer.from(two))).toBe(true);
+  versions.close();
+});
+
+test('a repository that names its objects by SHA-256 is reviewed like any other', async () => {
+  const folder = newFolder();
+  git(folder, 'init', '--quiet', '--initial-branch=main', '--object-format=sha256');
+  const pointer = pointerTo(two);
+  const first = commit(folder, { 'a.png': one, 'b.png': two, 'c.png': pointer.text });
+  expect(first).toMatch(/^[0-9a-f]{64}$/);
+  expect(await changes(folder, { kind: 'commit', commit: first })).toHaveLength(3);
+  write(folder, { 'a.png': three, [pointer.store]: two, 'c.png': two });
+  expect(await changes(folder)).toEqual(['changed a.png', 'changed c.png']);
+  // A checked-out file is the file that its pointer names.
+  expect((await glance(folder)).map((each) => each.glance.verdict.kind)).toEqual(['unread', 'same']);
+  expect((await review(folder)).map(({ path }) => path)).toContain('a.png');
+  const second = commit(folder, { 'b.png': null, 'd.png': two });
+  expect(await changes(folder, { kind: 'commit', commit: second })).toContain('renamed d.png < b.png');
+  // A file that became the pointer to itself is the same file, by the repository's own hash.
+  write(folder, { 'd.png': pointer.text });
+  const verdicts = (await glance(folder)).map((each) => [each.entry.path, each.glance.verdict.kind]);
+  expect(verdicts).toContainEqual(['d.png', 'same']);
 });
 
 test('submodules are entered: their commits, their files, and those that are not there', async () => {

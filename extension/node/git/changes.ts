@@ -165,7 +165,7 @@ function changeOf(part: Part, entry: RawEntry): Change {
 }
 
 function refOf(repository: Repository, mode: string, id: string, path: string, onDisk = false): FileRef | null {
-  const store = repository.commonFolder;
+  const { store } = repository;
   if (/^0+$/.test(mode)) return null;
   if (mode === LINK) return { kind: 'link' };
   if (mode === SUBMODULE) return { kind: 'submodule' };
@@ -178,7 +178,7 @@ function refOf(repository: Repository, mode: string, id: string, path: string, o
 function newFile(repository: Repository, path: string): FileRef {
   const whole = joinPath(repository.folder, path);
   const stats = lstatSync(whole, { throwIfNoEntry: false });
-  return stats?.isSymbolicLink() ? { kind: 'link' } : { kind: 'file', path: whole, store: repository.commonFolder };
+  return stats?.isSymbolicLink() ? { kind: 'link' } : { kind: 'file', path: whole, store: repository.store };
 }
 
 /** Paths with a merge conflict, and the id of the own side's file, null where that side removed it. A comparison with a working tree
@@ -195,7 +195,7 @@ async function listUnmerged({ folder }: Repository): Promise<Map<string, string 
 
 function unmergedChange(part: Part, path: string, id: string | null): Change {
   const { repository, ends, prefix } = part;
-  const { folder, commonFolder: store } = repository;
+  const { folder, store } = repository;
   const named = `${prefix}${path}`;
   return {
     status: 'unmerged',

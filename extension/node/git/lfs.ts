@@ -4,16 +4,11 @@ import { refuse } from '../../../core/problem.ts';
 import { joinPath } from '../../../core/treatment/paths/path.ts';
 import type { Disk } from '../disk.ts';
 
-/** The file that a Git LFS pointer stands for, from the store beside the repository; its SHA-256 is checked, and nothing is
+/** The file that a Git LFS pointer stands for, from the store of its repository; its SHA-256 is checked, and nothing is
  *  downloaded. Throws Refusal where it is not there, damaged, or larger than `limitBytes`.  [GitLFS, "Specification"] */
-export async function readLfs(
-  disk: Disk,
-  commonFolder: string,
-  pointer: LfsPointer,
-  limitBytes: number,
-): Promise<Uint8Array> {
+export async function readLfs(disk: Disk, store: string, pointer: LfsPointer, limitBytes: number): Promise<Uint8Array> {
   const { oid, bytes } = pointer;
-  const path = joinPath(commonFolder, `lfs/objects/${oid.slice(0, 2)}/${oid.slice(2, 4)}/${oid}`);
+  const path = joinPath(store, `objects/${oid.slice(0, 2)}/${oid.slice(2, 4)}/${oid}`);
   const stat = await disk.stat(path);
   if (stat === null) return refuse('lfs-missing', { bytes });
   if (stat.size > limitBytes) return refuse('side-too-large', { bytes: stat.size, limit: limitBytes });
@@ -27,10 +22,10 @@ export async function readLfs(
 /** The bytes, or the file that they point to. */
 export async function resolveLfs(
   disk: Disk,
-  commonFolder: string,
+  store: string,
   content: Uint8Array,
   limitBytes: number,
 ): Promise<Uint8Array> {
   const pointer = readPointer(content);
-  return pointer === null ? content : readLfs(disk, commonFolder, pointer, limitBytes);
+  return pointer === null ? content : readLfs(disk, store, pointer, limitBytes);
 }

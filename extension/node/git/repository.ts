@@ -1,4 +1,5 @@
 import { refuse } from '../../../core/problem.ts';
+import { resolvePath } from '../../../core/treatment/paths/path.ts';
 import { slashed } from '../node-disk.ts';
 import { runGit, tryGit } from './run.ts';
 
@@ -6,8 +7,8 @@ import { runGit, tryGit } from './run.ts';
 export interface Repository {
   /** The top of the working tree. */
   readonly folder: string;
-  /** Where objects are kept that all working trees share. */
-  readonly commonFolder: string;
+  /** The folder in which Git LFS keeps its files, which all working trees share. */
+  readonly store: string;
   readonly shallow: boolean;
   /** The id of the tree without files, by the repository's hash. */
   readonly emptyTree: string;
@@ -29,7 +30,7 @@ export async function openRepository(folder: string): Promise<Repository> {
   const emptyTree = (await runGit(top, ['hash-object', '-t', 'tree', '--stdin'])).toString().trim();
   return {
     folder: slashed(top),
-    commonFolder: slashed(common),
+    store: await lfsStore(top, slashed(common)),
     shallow: shallow === 'true',
     emptyTree,
     withoutFilters: await filterOptions(top),
@@ -69,6 +70,15 @@ export async function mergeBase(repository: Repository, from: string, to: string
 
 export function checkName(name: string): void {
   if (name.startsWith('-')) refuse('git-ref-dash', { ref: name });
+}
+
+/** The folder that the setting `lfs.storage` names, from the repository's own folder where it is relative.  [GitLFS, "git-lfs-config"] */
+async function lfsStore(folder: string, commonFolder: string): Promise<string> {
+  const { code, stdout, stderr } = await tryGit(folder, ['config', '--null', '--get', 'lfs.storage']);
+  // 1 is none found.
+  if (code > 1) return refuse('git-failed', { reason: stderr || `\`git config\` ended with exit code ${code}` });
+  const named = stdout.toString().replace(/\0$/, '');
+  return resolvePath(commonFolder, slashed(named) || 'lfs');
 }
 
 async function filterOptions(folder: string): Promise<string[]> {

@@ -50,7 +50,7 @@ const TEXT_BYTES = 64 * 1024 * 1024;
 
 async function listFiles({ repository, ends }: Part, side: 'before' | 'after'): Promise<Map<string, FileRef>> {
   const end = ends[side];
-  const { folder, commonFolder: store } = repository;
+  const { folder, store } = repository;
   const object = (mode: string, id: string): FileRef => {
     if (mode === '120000') return { kind: 'link' };
     return mode === '160000' ? { kind: 'submodule' } : { kind: 'object', repository: folder, store, id };

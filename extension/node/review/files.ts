@@ -1,6 +1,8 @@
+import { Refusal } from '../../../core/problem.ts';
 import { baseName, resolvePath } from '../../../core/treatment/paths/path.ts';
 import type { Disk } from '../disk.ts';
 import type { FileRef } from '../git/changes.ts';
+import { openRepository } from '../git/repository.ts';
 import { parentOf } from '../path.ts';
 import type { ReviewList } from './list.ts';
 import { openSettings } from './settings.ts';
@@ -11,7 +13,7 @@ export async function listFiles(disk: Disk, folder: string, paths: readonly stri
   const [one, other] = paths.map((path) => resolvePath(folder, path));
   const [was, is] = [await settingsOf(disk, one), await settingsOf(disk, other)];
   const version = async (path: string, treatment: typeof was.treatment) => {
-    const file: FileRef = { kind: 'file', path, store: await storeOf(disk, path) };
+    const file: FileRef = { kind: 'file', path, store: await storeOf(path) };
     return { file, treatment };
   };
   return {
@@ -42,10 +44,13 @@ async function settingsOf(disk: Disk, path: string) {
   return settings(baseName(path));
 }
 
-/** The folder named `.git` over a file; a place where nothing is, without one. */
-async function storeOf(disk: Disk, path: string): Promise<string> {
-  for (let folder = parentOf(path); ; folder = parentOf(folder)) {
-    const git = resolvePath(folder, '.git');
-    if ((await disk.kind(git)) === 'folder' || parentOf(folder) === folder) return git;
+/** Where the repository of a file keeps what its pointers stand for; a place where nothing is, without one. */
+async function storeOf(path: string): Promise<string> {
+  const folder = parentOf(path);
+  try {
+    return (await openRepository(folder)).store;
+  } catch (error) {
+    if (error instanceof Refusal) return resolvePath(folder, '.git/lfs');
+    throw error;
   }
 }

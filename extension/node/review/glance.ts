@@ -33,11 +33,18 @@ export async function glanceEntries(
     // Files of other lengths differ whatever they hold; a pointer may stand for the file on the other side.
     const whole = sizes[0] === sizes[1] || sizes.some((bytes) => bytes !== null && bytes < POINTER_BYTES);
     const heads = sizes.map((bytes) => ({ bytes, whole }));
-    const before = await sideOf(entry.before, heads[0], disk, versions);
-    const after = await sideOf(entry.after, heads[1], disk, versions);
+    const sides = { disk, versions, hash: hashOf(entry) };
+    const before = await sideOf(entry.before, heads[0], sides);
+    const after = await sideOf(entry.after, heads[1], sides);
     const glance = glanceAt(entry.path, before, after);
     done(index, { entry, glance, content: `${before?.id ?? ''} ${after?.id ?? ''}` });
   }
+}
+
+interface Sides {
+  readonly disk: Disk;
+  readonly versions: Versions;
+  readonly hash: 'sha1' | 'sha256';
 }
 
 /** Larger objects are not read for their header: Git would have to inflate all of them. */
@@ -55,21 +62,21 @@ async function sizeOf(file: FileRef, versions: Versions): Promise<number | null>
 async function sideOf(
   version: ReviewVersion | null,
   { bytes, whole }: { readonly bytes: number | null; readonly whole: boolean },
-  disk: Disk,
-  versions: Versions,
+  sides: Sides,
 ): Promise<GlanceSide | null> {
   if (version === null) return null;
   const { file, treatment } = version;
+  const { disk, versions, hash } = sides;
   const known = { id: idOf(file), fileBytes: bytes, head: null, problem: null, treatment };
   try {
     if (file.kind === 'file' && (!whole || (bytes ?? 0) > MOST_READ)) {
       const head = await disk.readHead(file.path, PEEK_BYTES);
-      if (head !== null) return await followed(known, file, head, disk);
+      if (head !== null) return await followed(known, file, head, sides);
     }
     if (file.kind === 'object' && bytes !== null && bytes > MOST_READ) return known;
     const stored = await versions.stored(file, MOST_READ);
-    const id = file.kind === 'file' ? blobId(stored) : known.id;
-    return await followed({ ...known, id }, file, stored, disk);
+    const id = file.kind === 'file' ? blobId(stored, hash) : known.id;
+    return await followed({ ...known, id }, file, stored, sides);
   } catch (error) {
     if (error instanceof Refusal) return { ...known, problem: error.problem };
     throw error;
@@ -77,13 +84,18 @@ async function sideOf(
 }
 
 /** The file that a Git LFS pointer stands for, where it is here; its SHA-256 is its id, so that it equals the file itself. */
-async function followed(known: GlanceSide, file: FileRef, stored: Uint8Array, disk: Disk): Promise<GlanceSide> {
+async function followed(known: GlanceSide, file: FileRef, stored: Uint8Array, sides: Sides): Promise<GlanceSide> {
   const pointer = readPointer(stored);
   if (pointer === null || !('store' in file)) return { ...known, head: stored.subarray(0, PEEK_BYTES) };
   // Too large to hash for a glance; its pointer tells it from others.
   if (pointer.bytes > MOST_READ) return { ...known, fileBytes: pointer.bytes, id: `lfs ${pointer.oid}` };
-  const content = await readLfs(disk, file.store, pointer, MOST_READ);
-  return { ...known, id: blobId(content), fileBytes: content.length, head: content.subarray(0, PEEK_BYTES) };
+  const content = await readLfs(sides.disk, file.store, pointer, MOST_READ);
+  return {
+    ...known,
+    id: blobId(content, sides.hash),
+    fileBytes: content.length,
+    head: content.subarray(0, PEEK_BYTES),
+  };
 }
 
 function idOf(file: FileRef): string {
@@ -99,7 +111,15 @@ function idOf(file: FileRef): string {
   }
 }
 
+/** The hash of the repository that an entry lies in: its ids are as long.  [Git, "hash-function-transition"] */
+function hashOf({ before, after }: ReviewEntry): Sides['hash'] {
+  const ids = [before, after].flatMap((each) => (each?.file.kind === 'object' ? [each.file.id] : []));
+  return ids.some((id) => id.length === SHA256_DIGITS) ? 'sha256' : 'sha1';
+}
+
+const SHA256_DIGITS = 64;
+
 /** The id that Git gives to a blob of these bytes. */
-function blobId(bytes: Uint8Array): string {
-  return createHash('sha1').update(`blob ${bytes.length}\0`).update(bytes).digest('hex');
+function blobId(bytes: Uint8Array, hash: Sides['hash']): string {
+  return createHash(hash).update(`blob ${bytes.length}\0`).update(bytes).digest('hex');
 }
