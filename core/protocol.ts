@@ -171,7 +171,8 @@ export interface Abilities {
   readonly adopt: true | string | null;
   readonly reveal: true | string | null;
   readonly settings: true | null;
-  readonly export: true | null;
+  /** `page`: a page can be made, a sheet cannot. */
+  readonly export: true | 'page' | null;
 }
 
 /** Settings of the extension that the page follows. */

@@ -82,9 +82,12 @@ function inert(script: string): string {
 
 function blockText(block: CarriedBlock): string {
   if ('bytes' in block) return `<script type="application/base64" id="${block.id}">${base64(block.bytes)}</script>`;
-  // Within JSON a `<` can only stand in a text, where it may be written so.
-  const text = JSON.stringify(block.json).replace(/</g, '\\u003c');
-  return `<script type="application/json" id="${block.id}">${text}</script>`;
+  return `<script type="application/json" id="${block.id}">${inertJson(block.json)}</script>`;
+}
+
+/** JSON that cannot end its element: within it a `<` can only stand in a text, where it may be written so. */
+export function inertJson(value: unknown): string {
+  return JSON.stringify(value).replace(/</g, '\\u003c');
 }
 
 function checkIds(ids: readonly string[]): void {

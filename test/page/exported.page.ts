@@ -60,6 +60,13 @@ async function openExported(
   const code = { script: at('page.js'), worker: at('worker.js'), style: at('page.css') };
   const file = join(folder, 'proof.html');
   writeFileSync(file, proofPage(order, { code, language: 'en', words: {} }, newHash));
+  return openFile(file, { prints, scheme });
+}
+
+async function openFile(
+  file: string,
+  { prints, scheme = 'dark' }: { readonly prints: number; readonly scheme?: 'dark' | 'light' },
+): Promise<{ readonly page: Page; readonly context: BrowserContext; readonly asked: string[] }> {
   const context = await browser.newContext({
     viewport: { width: 1280, height: 900 },
     colorScheme: scheme,
@@ -108,7 +115,7 @@ test('an exported page shows the built level, byte for byte as pngjs reads it, f
   }
   expect((await troubleOf(page)).violations).toEqual([]);
   expect(asked.filter((url) => !/^(file|blob):/.test(url))).toEqual([]);
-  expect(await page.getByRole('button', { name: /^(Build|Adopt|Export)/ }).count()).toBe(0);
+  expect(await page.getByRole('button', { name: /^(Build|Adopt|Export sheet|Reveal)/ }).count()).toBe(0);
   await context.close();
 });
 
@@ -125,6 +132,41 @@ test('what needs no host works: switches, kernels, views, the divider, readings'
   expect((await troubleOf(page)).violations).toEqual([]);
   await context.close();
 });
+
+test('a copy is saved with what the page shows now; it opens as that, and saves the same copy again', async () => {
+  const { page, context } = await openExported(orderOf('ground/cobbles.png', null));
+  await page.getByLabel('Beyond the edges').selectOption('clamp-to-edge');
+  await waitForPrints(page, 2);
+  await page.getByRole('button', { name: 'True size' }).click();
+  const sight = page.getByRole('slider', { name: 'Sight on the size axis' });
+  await sight.focus();
+  await page.keyboard.press('ArrowRight');
+  await expect.poll(() => sight.getAttribute('aria-valuetext')).toContain('level 3');
+  await waitForPrints(page, 2);
+  const print = await readPrint(page, 1);
+  const saved = await savedCopy(page, 'saved.html');
+  const copy = await openFile(saved, { prints: 2 });
+  expect(
+    await copy.page.getByRole('slider', { name: 'Sight on the size axis' }).getAttribute('aria-valuetext'),
+  ).toContain('level 3');
+  expect(await readPrint(copy.page, 1)).toEqual(print);
+  const again = await savedCopy(copy.page, 'again.html');
+  expect(readFileSync(again, 'utf8')).toBe(readFileSync(saved, 'utf8'));
+  expect((await troubleOf(copy.page)).violations).toEqual([]);
+  await copy.context.close();
+  await context.close();
+});
+
+/** Presses the button, and answers where the browser put the file. */
+async function savedCopy(page: Page, name: string): Promise<string> {
+  const [download] = await Promise.all([
+    page.waitForEvent('download'),
+    page.getByRole('button', { name: 'Save a copy' }).click(),
+  ]);
+  expect(download.suggestedFilename()).toBe('cobbles.proof.html');
+  await download.saveAs(join(folder, name));
+  return join(folder, name);
+}
 
 test('names that would end their block are shown as they are', async () => {
   const name = '</script><script>alert(1)</script>.png';

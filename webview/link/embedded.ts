@@ -1,3 +1,4 @@
+import { inertJson } from '../../core/export/document.ts';
 import { type CarriedProof, IMAGE_BLOCK, PROOF_BLOCK, ROUGHNESS_BLOCK } from '../../core/export/proof-page.ts';
 import type { Problem } from '../../core/problem.ts';
 import type { HostCall, HostCalls, OpenReply, Question, Reply } from '../../core/protocol.ts';
@@ -59,12 +60,19 @@ async function answer(
       download(source, name, bytes);
       return { ok: { path: name } };
     }
+    case 'export': {
+      const { form, state } = asked.question as Question<'export'>;
+      if (form !== 'page') return { problem: { code: 'exported-page', severity: 'error', values: {} } };
+      const name = `${proof.name.replace(/\.[^.]*$/, '')}.proof.html`;
+      download(source, name, new TextEncoder().encode(copyOf(source, { ...proof, state })));
+      // Whether and where the browser keeps it, it says itself.
+      return { ok: { path: null } };
+    }
     case 'build':
     case 'adopt':
     case 'showSettings':
     case 'reveal':
     case 'report':
-    case 'export':
       return { problem: { code: 'exported-page', severity: 'error', values: {} } };
   }
 }
@@ -83,15 +91,27 @@ function openReply({ name, path, byteCount, settings, preferences, words, remark
       matching: globs === null ? null : { index: 0, globs, textures: 0 },
     },
     state: { kind: 'unknown' },
-    abilities: { build: null, adopt: null, reveal: null, settings: null, export: null },
+    abilities: { build: null, adopt: null, reveal: null, settings: null, export: 'page' },
     preferences,
     words,
     remark,
   };
 }
 
+/** The document as it was opened, with another state of its proof: code, policy and source are what they are. */
+function copyOf(source: Document, proof: CarriedProof): string {
+  const root = source.documentElement.cloneNode(true) as Element;
+  root.querySelector('proof-page')?.remove();
+  const body = root.querySelector('body')!;
+  // What stands after the body in a file is parsed into it, and would grow from copy to copy.
+  while (body.lastChild instanceof Text) body.lastChild.remove();
+  body.append('\n');
+  root.querySelector(`#${PROOF_BLOCK}`)!.textContent = inertJson(proof);
+  return `<!doctype html>\n${root.outerHTML}\n`;
+}
+
 /** Gives a file to the browser, which asks or not as it is set up. */
-function download(source: Document, name: string, bytes: ArrayBuffer): void {
+function download(source: Document, name: string, bytes: BlobPart): void {
   const url = URL.createObjectURL(new Blob([bytes]));
   const anchor = source.createElement('a');
   anchor.href = url;

@@ -170,6 +170,9 @@ export class TopBar extends LitElement {
     >
       ${text}
     </button>`;
+    if (model.open!.abilities.export === 'page') {
+      return button('page', t('Save a copy'), t('This page as one file, with what it shows now'));
+    }
     return html`
       ${button('sheet', t('Export sheet'), t('One picture: every target at its true size, and the kernels compared'))}
       ${button('page', t('Export page'), t('One HTML file that shows this proof without an editor and without a network'))}
