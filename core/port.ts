@@ -1,3 +1,5 @@
+import type { Crc32 } from './codec/crc.ts';
+import type { Tokens } from './codec/deflate/tokens.ts';
 import type { RowFilters } from './codec/png/filters.ts';
 import type { Engine } from './resample/engine.ts';
 
@@ -25,7 +27,6 @@ export type Inflate = (pieces: Iterable<Uint8Array>, limit: number) => AsyncIter
 export interface DeflateHints {
   /** zlib level 1..9. */
   readonly level: number;
-  readonly strategy: 'default' | 'filtered' | 'huffman' | 'rle';
 }
 
 /** Writes one zlib stream (RFC 1950) of the pieces, in order. A piece is valid until the next one is asked for, so what is kept
@@ -51,11 +52,18 @@ export class Cancelled extends Error {
   }
 }
 
-export interface Ports {
+/** What reading and writing PNG is done by; plain code where one is left out. The bytes are the same. */
+export interface PngTools {
+  /** Undoes and chooses row filters. */
+  readonly filters?: RowFilters;
+  /** Finds and writes what our own deflate is made of. */
+  readonly tokens?: Tokens;
+  readonly crc32?: Crc32;
+}
+
+export interface Ports extends PngTools {
   /** Makes the rows of chains; the plain engine where it is left out. The pixels are the same. */
   readonly engine?: Engine;
-  /** Undoes and chooses the row filters of PNG; the plain ones where they are left out. The bytes are the same. */
-  readonly filters?: RowFilters;
   readonly inflate: Inflate;
   readonly deflate: Deflate;
   readonly newHash: () => Hash;

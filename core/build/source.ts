@@ -18,7 +18,7 @@ export interface OpenedSource {
 
 /** Opens an image file of a job; `path` tells its extension. Throws Refusal. */
 export function openSource(path: string, job: JobSource, ports: Ports): OpenedSource {
-  const image = openImage(job.bytes, path, ports.inflate, ports.filters);
+  const image = openImage(job.bytes, path, ports.inflate, ports);
   return { image, job, facts: factsOf(image, job.bytes.length), palette: paletteOf(image) };
 }
 

@@ -89,8 +89,7 @@ async function emitImage(work: Emission, planned: PlannedImage, image: ChainImag
 }
 
 async function emitPng(work: Emission, path: string, raster: Raster): Promise<ManifestFile> {
-  const { deflate, filters } = work.ports;
-  const bytes = await encodePng(pngRaster(raster), deflate, filters);
+  const bytes = await encodePng(pngRaster(raster), work.ports.deflate, work.ports);
   return emitFile(work, path, { byteCount: bytes.length, pieces: [bytes] });
 }
 

@@ -1,7 +1,18 @@
 /** Adler-32 of what went by.  [RFC1950, 8.2] */
 export class Adler {
-  #low = 1;
-  #high = 0;
+  #low: number;
+  #high: number;
+
+  /** `sum` is that of what came before. */
+  constructor(sum = 1) {
+    this.#low = sum & 0xffff;
+    this.#high = sum >>> 16;
+  }
+
+  /** Unsigned. */
+  get sum(): number {
+    return ((this.#high << 16) | this.#low) >>> 0;
+  }
 
   add(bytes: Uint8Array): void {
     let [low, high] = [this.#low, this.#high];

@@ -1,3 +1,6 @@
+/** CRC-32 as PNG chunks carry it, unsigned. `seed` is the CRC of the bytes that come before `bytes`, 0 for none. */
+export type Crc32 = (bytes: Uint8Array, seed?: number) => number;
+
 /** CRC-32 as PNG chunks carry it, unsigned. `seed` is the CRC of the bytes that come before `bytes`, 0 for none. Eight bytes a step,
  *  by tables of what each of them leaves when those behind it have passed: a quarter of the time that one byte a step takes.
  *  [PNG3, annex D "Sample CRC implementation"; Kounavis08, slicing by 8] */

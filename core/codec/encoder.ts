@@ -1,14 +1,15 @@
 import type { Deflate, Ports } from '../port.ts';
 import { compressions } from './compression.ts';
+import { deflateRuns } from './deflate/stream.ts';
 
-/** Which zlib writes the compressed files: SHA-256 over a fixed sample deflated once in every way that is in use. Equal
- *  fingerprints promise equal bytes for equal pixels; different ones only equal pixels, since zlib's output moves with
- *  its version and platform. */
-export function encoderFingerprint({ deflate, newHash }: Pick<Ports, 'deflate' | 'newHash'>): Promise<string> {
-  let known = fingerprints.get(deflate);
+/** What writes the compressed files: SHA-256 over a fixed sample deflated once in every way that is in use, by the platform's zlib
+ *  and by ourselves. Equal fingerprints promise equal bytes for equal pixels; different ones only equal pixels, since zlib's
+ *  output moves with its version and platform. */
+export function encoderFingerprint(ports: Pick<Ports, 'deflate' | 'newHash' | 'tokens'>): Promise<string> {
+  let known = fingerprints.get(ports.deflate);
   if (known === undefined) {
-    known = takeFingerprint(deflate, newHash);
-    fingerprints.set(deflate, known);
+    known = takeFingerprint(ports);
+    fingerprints.set(ports.deflate, known);
   }
   return known;
 }
@@ -16,12 +17,17 @@ export function encoderFingerprint({ deflate, newHash }: Pick<Ports, 'deflate' |
 /** Taken once for each deflate: it costs as much as a large texture. */
 const fingerprints = new WeakMap<Deflate, Promise<string>>();
 
-async function takeFingerprint(deflate: Deflate, newHash: Ports['newHash']): Promise<string> {
+async function takeFingerprint({
+  deflate,
+  newHash,
+  tokens,
+}: Pick<Ports, 'deflate' | 'newHash' | 'tokens'>): Promise<string> {
   const sample = makeSample();
   const hash = newHash();
   for (const hints of Object.values(compressions)) {
     for await (const piece of deflate([sample], hints)) hash.update(piece);
   }
+  for (const piece of deflateRuns([sample], tokens)) hash.update(piece);
   return hash.hex();
 }
 

@@ -1,7 +1,6 @@
-import type { Inflate } from '../port.ts';
+import type { Inflate, PngTools } from '../port.ts';
 import { refuse } from '../problem.ts';
 import { hasSignature } from './png/chunks.ts';
-import type { RowFilters } from './png/filters.ts';
 import { openPng } from './png/open.ts';
 import { refusePointer } from './pointer.ts';
 import type { ImageSource } from './source.ts';
@@ -14,8 +13,8 @@ export type ImageExtension = (typeof IMAGE_EXTENSIONS)[number];
 
 /** Opens an image file: PNG by its signature whatever its name, TGA by its extension, since it has no signature. `path`
  *  tells the extension and is not put into problems. Throws Refusal. */
-export function openImage(bytes: Uint8Array, path: string, inflate: Inflate, filters?: RowFilters): ImageSource {
-  return formatOf(bytes, path) === 'png' ? openPng(bytes, inflate, filters) : openTga(bytes);
+export function openImage(bytes: Uint8Array, path: string, inflate: Inflate, tools?: PngTools): ImageSource {
+  return formatOf(bytes, path) === 'png' ? openPng(bytes, inflate, tools) : openTga(bytes);
 }
 
 /** Which reader a file is for, from its head and name. Refuses Git LFS pointers and files of another kind. */

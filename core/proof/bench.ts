@@ -8,7 +8,7 @@ import { hashPixels } from '../codec/pixels.ts';
 import type { SourceHeader } from '../codec/source.ts';
 import { obeyedGamma } from '../codec/tag.ts';
 import { type Halo, haloSteps, type KnownRanges, type Range } from '../finding/halo.ts';
-import { type Cancel, Cancelled, type Ports } from '../port.ts';
+import { type Cancel, Cancelled, type PngTools, type Ports } from '../port.ts';
 import type { IndexedRaster, StraightRaster } from '../raster/raster.ts';
 import type { Engine } from '../resample/engine.ts';
 import type { Treatment } from '../treatment/treatment.ts';
@@ -35,7 +35,7 @@ import {
 } from './want.ts';
 
 /** What a bench needs beside the build's ports. */
-export interface BenchPorts extends Pick<Ports, 'engine' | 'filters' | 'inflate' | 'newHash'> {
+export interface BenchPorts extends Pick<Ports, 'engine' | 'inflate' | 'newHash' | keyof PngTools> {
   /** Lets others work; asked for every few million operations. */
   readonly pause: () => Promise<void>;
 }
@@ -66,7 +66,7 @@ export class ProofBench {
     ports: BenchPorts,
     roughness: Uint8Array | null = null,
   ): Promise<ProofBench> {
-    const image = openImage(bytes, name, ports.inflate, ports.filters);
+    const image = openImage(bytes, name, ports.inflate, ports);
     const bench = new ProofBench(image.header, await decodeImage(image), ports);
     bench.#roughness = roughness;
     return bench;

@@ -8,7 +8,7 @@ import { decodeImage } from '../codec/decode.ts';
 import { openImage } from '../codec/open.ts';
 import type { ImageSource, SourceHeader } from '../codec/source.ts';
 import { obeyedGamma } from '../codec/tag.ts';
-import { type Cancel, Cancelled, type Ports } from '../port.ts';
+import { type Cancel, Cancelled, type PngTools, type Ports } from '../port.ts';
 import { refuse } from '../problem.ts';
 import { pictureOf } from '../proof/picture.ts';
 import { gpuBytes } from '../raster/gpu-format.ts';
@@ -46,8 +46,8 @@ export interface OpenedSide {
 }
 
 /** Opens a side; its structure is checked and nothing decoded. Throws Refusal for what a build would refuse. */
-export function openSide(side: ReviewSide, ports: Pick<Ports, 'inflate' | 'filters' | 'engine'>): OpenedSide {
-  const image = openImage(side.bytes, side.path, ports.inflate, ports.filters);
+export function openSide(side: ReviewSide, ports: Pick<Ports, 'inflate' | 'engine' | keyof PngTools>): OpenedSide {
+  const image = openImage(side.bytes, side.path, ports.inflate, ports);
   const facts = factsOf(image, side.bytes.length);
   const plan = planBuild(side.path, facts, side.treatment, ports.engine ?? plainEngine);
   const { width, height } = facts.extent;

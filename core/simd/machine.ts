@@ -11,6 +11,9 @@ export interface Kernels {
   chooseFilter(row: number, above: number, step: number, bytes: number): number;
   filter(type: number, row: number, above: number, step: number, bytes: number, out: number): void;
   swapBytes(codes: number, bytes: number): void;
+  countTokens(block: number, bytes: number, zeros: number, counts: number): void;
+  writeTokens(block: number, bytes: number, zeros: number, codes: number, out: number, bit: number): number;
+  adler(at: number, bytes: number, sum: number): number;
   decodeBytes(codes: number, step: number, table: number, out: number, stride: number, texels: number): void;
   decodeWords(codes: number, step: number, table: number, out: number, stride: number, texels: number): void;
   decodeQuads(codes: number, out: number, texels: number, sums: number): void;

@@ -31,7 +31,7 @@ const MEASURE_BYTES = 16;
 async function measure(job: TextureJob, bench: Bench): Promise<Outcome> {
   try {
     const bytes = await readSource(bench, job.image, job);
-    const source = openImage(bytes, job.image.path, bench.ports.inflate, bench.ports.filters);
+    const source = openImage(bytes, job.image.path, bench.ports.inflate, bench.ports);
     const { extent, channels } = source.header;
     const peakBytes = bytes.length + source.decodeBytes + MEASURE_BYTES * extent.width * extent.height * channels;
     if (peakBytes > job.memoryBytes) refuse('too-much-memory', { bytes: peakBytes, limit: job.memoryBytes });

@@ -6,13 +6,14 @@ import type { BuildPlan } from '../../core/job.ts';
 import { placed, Refusal, refuse } from '../../core/problem.ts';
 import type { Engine } from '../../core/resample/engine.ts';
 import type { Treatment } from '../../core/treatment/treatment.ts';
+import { crc32 } from './crc.ts';
 import type { Disk } from './disk.ts';
 import { inflate } from './inflate.ts';
 import type { TextureJob } from './texture-job.ts';
 
 /** Plans a job from its files, which are checked and not decoded. Throws Refusal. */
 export function planJob(job: TextureJob, image: Uint8Array, roughness: Uint8Array | null, engine?: Engine): BuildPlan {
-  const opened = openImage(image, job.image.path, inflate);
+  const opened = openImage(image, job.image.path, inflate, { crc32 });
   if (job.roughness !== null && roughness !== null) checkImage(roughness, job.roughness.path);
   return planTexture(job.texture, factsOf(opened, image.length + (roughness?.length ?? 0)), job.treatment, engine);
 }
@@ -37,12 +38,12 @@ async function readFacts(disk: Disk, path: string, treatment: Treatment): Promis
   }
   const bytes = await disk.read(path);
   if (bytes === null) return refuse('source-unreadable', { reason: 'it cannot be opened' });
-  return factsOf(openImage(bytes, path, inflate), bytes.length);
+  return factsOf(openImage(bytes, path, inflate, { crc32 }), bytes.length);
 }
 
 function checkImage(bytes: Uint8Array, path: string): void {
   try {
-    openImage(bytes, path, inflate);
+    openImage(bytes, path, inflate, { crc32 });
   } catch (error) {
     throw error instanceof Refusal ? new Refusal(placed(error.problem, path)) : error;
   }

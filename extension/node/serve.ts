@@ -1,9 +1,9 @@
 import type { MessagePort } from 'node:worker_threads';
 import { buildTexture } from '../../core/build/texture.ts';
-import { plainFilters } from '../../core/codec/png/filters.ts';
 import { plainEngine } from '../../core/resample/plain.ts';
 import { createEngine } from '../../core/simd/engine.ts';
 import { createFilters } from '../../core/simd/filters.ts';
+import { createTokens } from '../../core/simd/tokens.ts';
 import { openVersions } from './git/versions.ts';
 import { type Job, runJob } from './measure-job.ts';
 import { nodeDisk } from './node-disk.ts';
@@ -15,7 +15,7 @@ import type { Bench, Outcome } from './texture-job.ts';
 /** Answers a pool's messages: builds one texture after another, by the compiled kernels where there are any. */
 export function serve(port: MessagePort, kernels: WebAssembly.Module | null, isCancelled: () => boolean): void {
   const engine = kernels === null ? plainEngine : createEngine(kernels);
-  const filters = kernels === null ? plainFilters : createFilters(kernels);
+  const compiled = kernels === null ? {} : { filters: createFilters(kernels), tokens: createTokens(kernels) };
   const cancel = {
     get cancelled() {
       return isCancelled();
@@ -31,7 +31,7 @@ export function serve(port: MessagePort, kernels: WebAssembly.Module | null, isC
 
   async function run(job: Job): Promise<Outcome> {
     try {
-      const ports = { ...nodePorts, engine, filters };
+      const ports = { ...nodePorts, ...compiled, engine };
       const plan: Bench['planJob'] = (one, image, roughness) => planJob(one, image, roughness, engine);
       return await runJob(job, { disk: nodeDisk, ports, cancel, buildTexture, planJob: plan, admit, versions });
     } catch (error) {

@@ -1,6 +1,7 @@
 import fc from 'fast-check';
 import { expect, test } from 'vitest';
 import { crc32 } from '../../core/codec/crc.ts';
+import { crc32 as nodeCrc32 } from '../../extension/node/crc.ts';
 
 const ascii = (text: string) => Uint8Array.from(text, (letter) => letter.charCodeAt(0));
 
@@ -26,6 +27,14 @@ test('agrees with the division written bit by bit, for views that start anywhere
   fc.assert(
     fc.property(fc.uint8Array({ minLength: 1, maxLength: 60 }), fc.nat(20), (bytes, at) => {
       expect(crc32(bytes.subarray(at))).toBe(remainder(bytes.subarray(at)));
+    }),
+  );
+});
+
+test("Node's agrees, where it has one", () => {
+  fc.assert(
+    fc.property(fc.uint8Array({ maxLength: 300 }), fc.nat(0xffffffff), (bytes, seed) => {
+      expect(nodeCrc32(bytes, seed)).toBe(crc32(bytes, seed));
     }),
   );
 });

@@ -43,7 +43,7 @@ describe.skipIf(suite === null)('PngSuite', () => {
       const bytes = suite!.read(name);
       const judged = judgeRgba(bytes);
       for (const filters of [plainFilters, simdFilters()]) {
-        const ours = await decodeRgba(openPng(bytes, inflate, filters));
+        const ours = await decodeRgba(openPng(bytes, inflate, { filters }));
         expect(firstDifference(asJudged(ours, bytes), judged)).toBeNull();
       }
     },

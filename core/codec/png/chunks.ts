@@ -1,5 +1,5 @@
 import { refuse } from '../../problem.ts';
-import { crc32 } from '../crc.ts';
+import { type Crc32, crc32 as plainCrc32 } from '../crc.ts';
 
 /** One chunk of a PNG datastream. `offset` is where its length field starts; `body` views the file. */
 export interface Chunk {
@@ -27,7 +27,7 @@ export function checkSignature(bytes: Uint8Array): void {
 
 /** The chunk at `offset`, its name and CRC checked; null where the bytes end before it does.
  *  [PNG3, 5.3 "Chunk layout"] */
-export function readChunk(bytes: Uint8Array, offset: number): Chunk | null {
+export function readChunk(bytes: Uint8Array, offset: number, crc32: Crc32 = plainCrc32): Chunk | null {
   const name = readName(bytes, offset);
   if (name === null) return null;
   const end = offset + CHUNK_FRAME_BYTES + readUint32(bytes, offset);

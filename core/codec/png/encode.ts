@@ -1,7 +1,8 @@
-import type { Deflate } from '../../port.ts';
+import type { Deflate, PngTools } from '../../port.ts';
 import type { ChannelCount, Codes, IndexedRaster, StraightRaster } from '../../raster/raster.ts';
 import { type Compression, chooseCompression, compressions } from '../compression.ts';
-import { crc32 } from '../crc.ts';
+import { type Crc32, crc32 as plainCrc32 } from '../crc.ts';
+import { deflateRuns } from '../deflate/stream.ts';
 import { plainFilters, type RowFilters } from './filters.ts';
 
 /** A PNG file of the raster: gray, gray and alpha, RGB or RGBA of 8 or 16 bits, or indexed with the palette's order, the
@@ -14,14 +15,15 @@ import { plainFilters, type RowFilters } from './filters.ts';
 export async function encodePng(
   raster: StraightRaster | IndexedRaster,
   deflate: Deflate,
-  filters: RowFilters = plainFilters,
+  { filters = plainFilters, tokens, crc32 = plainCrc32 }: PngTools = {},
 ): Promise<Uint8Array> {
   expectFit(raster);
   const compression = chooseCompression(raster);
   const stream: Uint8Array[] = [];
   const rows = filteredRows(raster, compression, filters);
-  for await (const piece of deflate(rows, compressions[compression])) stream.push(piece);
-  return layChunks(headChunks(raster), stream);
+  const pieces = compression === 'painted' ? deflateRuns(rows, tokens) : deflate(rows, compressions[compression]);
+  for await (const piece of pieces) stream.push(piece);
+  return layChunks(headChunks(raster), stream, crc32);
 }
 
 /** IHDR's color type. [PNG3, "Image header"] */
@@ -142,7 +144,7 @@ const CHUNK_FRAME = 12;
 const IDAT_BYTES = 1 << 20;
 
 /** The whole file, written once: signature, head, the stream cut into IDAT chunks, IEND. */
-function layChunks(head: readonly Chunk[], stream: readonly Uint8Array[]): Uint8Array {
+function layChunks(head: readonly Chunk[], stream: readonly Uint8Array[], crc32: Crc32): Uint8Array {
   const streamBytes = stream.reduce((sum, piece) => sum + piece.length, 0);
   const idats = Math.ceil(streamBytes / IDAT_BYTES);
   const headBytes = head.reduce((sum, chunk) => sum + CHUNK_FRAME + chunk.data.length, 0);
@@ -151,20 +153,20 @@ function layChunks(head: readonly Chunk[], stream: readonly Uint8Array[]): Uint8
   let at = SIGNATURE.length;
   for (const { name, data } of head) {
     file.set(data, at + 8);
-    at = closeChunk(file, at, name, data.length);
+    at = closeChunk(file, at, name, data.length, crc32);
   }
   const copy = newGatherer(stream);
   for (let left = streamBytes; left > 0; left -= IDAT_BYTES) {
     const length = Math.min(left, IDAT_BYTES);
     copy(file.subarray(at + 8, at + 8 + length));
-    at = closeChunk(file, at, 'IDAT', length);
+    at = closeChunk(file, at, 'IDAT', length, crc32);
   }
-  closeChunk(file, at, 'IEND', 0);
+  closeChunk(file, at, 'IEND', 0, crc32);
   return file;
 }
 
 /** Puts length, name and CRC round data that stands in its place already. Gives where the next chunk starts. */
-function closeChunk(file: Uint8Array, at: number, name: string, length: number): number {
+function closeChunk(file: Uint8Array, at: number, name: string, length: number, crc32: Crc32): number {
   const view = new DataView(file.buffer, file.byteOffset, file.byteLength);
   view.setUint32(at, length);
   for (let letter = 0; letter < 4; letter++) file[at + 4 + letter] = name.charCodeAt(letter);

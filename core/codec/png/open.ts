@@ -1,9 +1,9 @@
-import type { Inflate } from '../../port.ts';
+import type { Inflate, PngTools } from '../../port.ts';
 import { refuse } from '../../problem.ts';
 import { newCodes } from '../../raster/raster.ts';
 import type { ImageSource, SourceHeader, SourceRow } from '../source.ts';
 import { expansionOf, isExpanded, rowFormat } from './expand.ts';
-import { plainFilters, type RowFilters } from './filters.ts';
+import { plainFilters } from './filters.ts';
 import { type Layout, layoutOf, rowByteCount } from './layout.ts';
 import { type Line, readLines } from './lines.ts';
 import { type PngStructure, readStructure } from './structure.ts';
@@ -11,8 +11,12 @@ import { type PngStructure, readStructure } from './structure.ts';
 /** A PNG whose chunks and header have been checked; its rows inflate as they are asked for. `bytes` is viewed, not copied,
  *  and must not change. Throws Refusal, without a path.
  *  [PNG3: Portable Network Graphics (PNG) Specification, Third Edition, W3C Recommendation, 24 June 2025] */
-export function openPng(bytes: Uint8Array, inflate: Inflate, filters: RowFilters = plainFilters): ImageSource {
-  const structure = readStructure(bytes);
+export function openPng(
+  bytes: Uint8Array,
+  inflate: Inflate,
+  { filters = plainFilters, crc32 }: PngTools = {},
+): ImageSource {
+  const structure = readStructure(bytes, crc32);
   const layout = layoutOf(structure.header);
   checkPromise(structure, layout);
   const interlaced = structure.header.interlaced;

@@ -1,5 +1,6 @@
 import { refuse } from '../../problem.ts';
 import type { Palette } from '../../raster/raster.ts';
+import type { Crc32 } from '../crc.ts';
 import type { ColorChunk } from '../source.ts';
 import { CHUNK_FRAME_BYTES, type Chunk, checkSignature, PNG_SIGNATURE, readChunk, refuseCutChunk } from './chunks.ts';
 import { readColorChunk } from './colorchunk.ts';
@@ -24,12 +25,12 @@ export interface PngStructure {
 
 /** Walks every chunk of a PNG: signature, names, CRCs, order, lengths, presence. Throws Refusal.
  *  [PNG3, 5.6 "Chunk ordering"] */
-export function readStructure(bytes: Uint8Array): PngStructure {
+export function readStructure(bytes: Uint8Array, crc32?: Crc32): PngStructure {
   checkSignature(bytes);
   const walk = newWalk();
   let offset = PNG_SIGNATURE.length;
   while (walk.last !== 'IEND') {
-    const chunk = readChunk(bytes, offset) ?? refuseCutChunk(bytes, offset);
+    const chunk = readChunk(bytes, offset, crc32) ?? refuseCutChunk(bytes, offset);
     takeChunk(walk, chunk);
     offset += CHUNK_FRAME_BYTES + chunk.body.length;
   }
