@@ -120,8 +120,7 @@ export class ProofBench {
     const { extent } = this.header;
     if (roughness === null) throw new RangeError('Expected a treatment with roughness');
     if ('constant' in roughness) return constantRoughness(roughness.constant, extent);
-    const { inflate, filters } = this.#ports;
-    const file = openImage(this.#roughness ?? new Uint8Array(), roughness.path, inflate, filters);
+    const file = openImage(this.#roughness ?? new Uint8Array(), roughness.path, this.#ports.inflate, this.#ports);
     return roughnessOfMap(await decodeImage(file), roughness.channel, extent);
   }
 
