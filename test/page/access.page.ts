@@ -1,6 +1,8 @@
 import { readFileSync } from 'node:fs';
 import { createRequire } from 'node:module';
+import { join } from 'node:path';
 import type { Browser, Page } from 'playwright-core';
+import { PNG } from 'pngjs';
 import { afterAll, beforeAll, expect, test } from 'vitest';
 import { crc32 } from '../../core/codec/crc.ts';
 import { encodePng } from '../../core/codec/png/encode.ts';
@@ -8,6 +10,7 @@ import { type HostEvent, PROTOCOL } from '../../core/protocol.ts';
 import { deflate } from '../../extension/node/deflate.ts';
 import { noiseRaster } from '../fixtures/noise.ts';
 import { launchBrowser } from '../host/browser.ts';
+import { top } from '../house/tree.ts';
 import { changeTheme, type Showing, showPage, waitForPrints } from './browser.ts';
 import { firstPrintOf, type Recording, record, recordDemo, stale } from './recorded.ts';
 import { boxOfPrint, troubleOf } from './stage.ts';
@@ -328,6 +331,43 @@ test('keys move the sight, the cursor, the zoom and the divider; what is kept is
   await expect.poll(() => divider.getAttribute('aria-valuenow')).toBe('52');
   const state = () => page.evaluate(() => (window as unknown as { kept: Record<string, unknown> }).kept);
   await expect.poll(state).toMatchObject({ version: 1, zoom: 1, divider: 0.52, sight: { kind: 'level', level: 4 } });
+  await context.close();
+});
+
+test('the axis is a table too: what it shows is there as numbers, goes to a level and is copied; densities are typed at once', async () => {
+  const { page, context } = await showPage(browser, recordDemo('foliage/alder-twig.png'));
+  await waitForPrints(page);
+  const toggle = page.getByRole('button', { name: 'Table', exact: true });
+  await toggle.focus();
+  await page.keyboard.press('Enter');
+  expect(await toggle.getAttribute('aria-expanded')).toBe('true');
+  const table = page.getByRole('region', { name: 'Table of the size axis' });
+  await expect.poll(() => table.locator('.over').count()).toBe(1);
+  await page.locator('size-axis .curve[points*=","]').nth(2).waitFor({ state: 'attached' });
+  expect(await violationsOf(page)).toEqual([]);
+  await page.getByRole('button', { name: 'Copy CSV of the size axis' }).click();
+  const copied = () =>
+    page.evaluate(() => {
+      const { asked } = window as unknown as { asked: { call: string; question: { text: string } }[] };
+      return asked.find(({ call }) => call === 'copy')?.question.text ?? '';
+    });
+  await expect.poll(copied).not.toBe('');
+  const [head, base, ...rows] = (await copied()).split('\n').map((row) => row.split(','));
+  expect(head.slice(0, 6)).toEqual(['level or target', 'width', 'height', 'bytes', 'meters', 'coverage']);
+  expect(base.slice(0, 4)).toEqual(['0', '256', '256', String(256 * 256 * 4)]);
+  // Coverage of level 0, counted from the file itself by pngjs: alpha of half or more.
+  const { data } = PNG.sync.read(readFileSync(join(top, 'test/demo/foliage/alder-twig.png')));
+  const passing = data.filter((code, i) => i % 4 === 3 && code >= 128).length / (256 * 256);
+  expect(Math.abs(Number(base[5]) - passing)).toBeLessThan(0.01);
+  expect(rows.map((row) => row[row.length - 1])).toEqual(['yes', 'yes', 'yes', 'yes', 'yes', 'no', 'no', 'no']);
+  await table.getByRole('button', { name: '5', exact: true }).click();
+  const sight = page.getByRole('slider', { name: 'Sight on the size axis' });
+  await expect.poll(() => sight.getAttribute('aria-valuetext')).toContain('level 5');
+  const size = page.getByRole('textbox', { name: 'Size', exact: true });
+  await size.fill('0.75x 1.5x 2x');
+  await size.press('Enter');
+  await expect.poll(() => sight.getAttribute('aria-valuetext')).toContain('target 0.75x, 192 by 192');
+  await table.getByRole('button', { name: '1.5x', exact: true }).waitFor();
   await context.close();
 });
 

@@ -87,7 +87,7 @@ test('what is pinned is copied with what is under the cursor, as text and as val
   const boxed = await builtTexel('box', pinned);
   await expect.poll(() => codesOf(page, 1)).toEqual([own, boxed]);
   await page.getByRole('button', { name: 'Copy', exact: true }).click();
-  await page.getByRole('button', { name: 'Copy texels as CSV' }).click();
+  await page.getByRole('button', { name: 'Copy CSV of the texels' }).click();
   await expect.poll(async () => (await copied(page)).length).toBe(2);
   const [text, csv] = await copied(page);
   expect(text.split('\n').slice(3, 5)).toEqual([
@@ -98,6 +98,23 @@ test('what is pinned is copied with what is under the cursor, as text and as val
   expect(head.slice(0, 8)).toEqual(['pin', 'image', 'x', 'y', 'print', 'r', 'g', 'b']);
   expect(rows.map((row) => row.length)).toEqual(rows.map(() => head.length));
   expect(rows[3].slice(0, 8)).toEqual(['1', 'level 2', '3', '4', 'box', ...boxed.split(' ')]);
+  await context.close();
+});
+
+test('weights are copied as values: half a box each', async () => {
+  const state = { ...kept, selected: 1 };
+  const { page, context } = await showPage(browser, record(await encodePng(noise, deflate), 'noise.png', {}, state));
+  await waitForPrints(page, 2);
+  await page.getByRole('button', { name: 'Copy CSV of the weights' }).click();
+  await expect.poll(async () => (await copied(page)).length).toBe(1);
+  // The middle texel of level 1, 22 of 45 by 15 of 30, averages two source texels each way.
+  expect((await copied(page))[0].split('\n')).toEqual([
+    'axis,texel,weight',
+    'x,44,0.5',
+    'x,45,0.5',
+    'y,30,0.5',
+    'y,31,0.5',
+  ]);
   await context.close();
 });
 

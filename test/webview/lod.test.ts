@@ -1,6 +1,6 @@
 import { describe, expect, test } from 'vitest';
 import { distanceOf, lodAt, lodOfRatio } from '../../webview/page/axis/lod.ts';
-import { axisScale, extentAt, readSize, stopNear, stopsOf } from '../../webview/page/axis/scale.ts';
+import { axisScale, extentAt, readSize, readSizes, stopNear, stopsOf } from '../../webview/page/axis/scale.ts';
 
 // Doubles through a tangent and a logarithm.
 const DOUBLES = 1e-12;
@@ -96,6 +96,15 @@ test.each([
   ['wide', null],
 ])('`%s` is a size', (text, target) => {
   expect(readSize(text, { width: 512, height: 256 })).toEqual(target);
+});
+
+test('several scales are a set of densities; anything else among them is none', () => {
+  const base = { width: 64, height: 64 };
+  const names = (text: string) => readSizes(text, base)?.map(({ name }) => name) ?? null;
+  expect(names('1x 1.5x, 2X 2x')).toEqual(['1x', '1.5x', '2x']);
+  expect(names('48x32')).toEqual(['48x32']);
+  expect(names('1x wide')).toBeNull();
+  expect(names(' ')).toBeNull();
 });
 
 test('between levels a texture takes its share of pixels, one at least', () => {

@@ -50,6 +50,19 @@ export function extentAt(base: Extent, lod: number): Extent {
   return { width: of(base.width), height: of(base.height) };
 }
 
+/** One typed size, or several scales with spaces or commas between, as a set of densities is written. Null for anything else. */
+export function readSizes(text: string, base: Extent): readonly Target[] | null {
+  const one = readSize(text, base);
+  if (one !== null) return [one];
+  const words = text.split(/[\s,]+/).filter((word) => word !== '');
+  const scales = words.map((word) => (/x$/i.test(word) ? readSize(word, base) : null));
+  return words.length > 0 && scales.every((scale) => scale !== null) ? distinct(scales) : null;
+}
+
+function distinct(targets: readonly Target[]): readonly Target[] {
+  return targets.filter((target, index) => targets.findIndex(({ name }) => name === target.name) === index);
+}
+
 /** What a typed size means for a texture: `2x` or `1/3x` a scale, `64` the longer side, `64x48` an extent where it has the texture's
  *  proportions and a cell where it has not. Null for anything else. */
 export function readSize(text: string, base: Extent): Target | null {

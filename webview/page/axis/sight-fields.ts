@@ -1,18 +1,23 @@
 import { css, html, LitElement, nothing } from 'lit';
 import { byteText, figure } from '../../../core/figures.ts';
+import type { Target } from '../../../core/treatment/treatment.ts';
 import { controls } from '../form/controls.ts';
 import type { Model } from '../proof/model.ts';
 import { meters } from '../words/meters.ts';
 import { t } from '../words/t.ts';
+import './level-table.ts';
 import { distanceOf, lodAt } from './lod.ts';
-import { readSize } from './scale.ts';
+import { memoryOf } from './memory.ts';
+import { readSizes, type Stop } from './scale.ts';
 import { sightBetween, sightOf } from './sight.ts';
 
 /** Where the sight stands, as numbers that can be typed. */
 export class SightFields extends LitElement {
-  static override properties = { model: { attribute: false }, tick: { type: Number } };
+  static override properties = { model: { attribute: false }, tick: { type: Number }, open: { state: true } };
   declare model: Model | null;
   declare tick: number;
+  /** Whether the table of the axis is shown: it is made only then. */
+  declare open: boolean;
 
   static override styles = [
     controls,
@@ -36,6 +41,10 @@ export class SightFields extends LitElement {
       .gap {
         flex: 1;
       }
+      level-table {
+        flex: 1 1 100%;
+        padding: 0;
+      }
     `,
   ];
 
@@ -43,6 +52,7 @@ export class SightFields extends LitElement {
     super();
     this.model = null;
     this.tick = 0;
+    this.open = false;
   }
 
   override render() {
@@ -57,7 +67,7 @@ export class SightFields extends LitElement {
         <input
           class="size"
           type="text"
-          title=${t('A side such as 48, an extent or cell such as 48x48, or a scale such as 1.5x or 1/3x')}
+          title=${t('A side such as 48, an extent or cell such as 48x48, a scale such as 1.5x or 1/3x, or several scales: 1x 1.5x 2x')}
           .value=${`${width}x${height}`}
           @change=${(event: Event) => this.#typeSize(model, event.target as HTMLInputElement)}
         />
@@ -100,9 +110,15 @@ export class SightFields extends LitElement {
       ${
         seen.stop === null
           ? nothing
-          : html`<span class="quiet number" title=${t('Codes of this image, without a file around them')}>${byteText(memoryOf(model))}</span>`
+          : html`<span class="quiet number" title=${t('Codes of this image, without a file around them')}>${byteText(memoryOf(model, seen.extent))}</span>`
       }
+      <button class="plain" aria-expanded=${this.open} @click=${this.#toggle}>${t('Table')}</button>
+      ${this.open ? html`<level-table .model=${model} .tick=${this.tick}></level-table>` : nothing}
     `;
+  }
+
+  #toggle(): void {
+    this.open = !this.open;
   }
 
   #number(
@@ -133,17 +149,13 @@ export class SightFields extends LitElement {
   }
 
   #typeSize(model: Model, field: HTMLInputElement): void {
-    const target = readSize(field.value, model.base!);
-    const known = model.stops.find((stop) => {
-      if (target === null) return false;
-      if (stop.label === target.name && stop.kind !== 'level') return true;
-      const same =
-        'extent' in target && stop.extent.width === target.extent[0] && stop.extent.height === target.extent[1];
-      return same && stop.kind === 'level';
-    });
-    if (known !== undefined) model.set({ sight: sightOf(known) });
-    else if (target !== null) {
-      model.set({ typed: [...model.state.typed, target], sight: { kind: 'target', name: target.name } });
+    const targets = readSizes(field.value, model.base!) ?? [];
+    const strangers = targets.filter((target) => stopOf(model, target) === undefined);
+    const [first] = targets;
+    if (first !== undefined) {
+      const known = stopOf(model, first);
+      const sight = known === undefined ? ({ kind: 'target', name: first.name } as const) : sightOf(known);
+      model.set({ typed: [...model.state.typed, ...strangers], sight });
     }
     this.#show(field, `${model.seen!.extent.width}x${model.seen!.extent.height}`);
   }
@@ -169,16 +181,18 @@ export class SightFields extends LitElement {
 
 customElements.define('sight-fields', SightFields);
 
+/** The stop that a typed size comes to: a target of its name, or a level of its extent. */
+function stopOf(model: Model, target: Target): Stop | undefined {
+  return model.stops.find(({ kind, label, extent }) => {
+    if (kind !== 'level') return label === target.name;
+    return 'extent' in target && extent.width === target.extent[0] && extent.height === target.extent[1];
+  });
+}
+
 /** Takes a typed target off the axis; the sight goes to the nearest stop that stays. */
 function removeTyped(model: Model, name: string): void {
   const lod = model.seen!.lod;
   const stops = model.stops.filter((stop) => stop.kind !== 'typed' || stop.label !== name);
   const nearest = stops.reduce((best, stop) => (Math.abs(stop.lod - lod) < Math.abs(best.lod - lod) ? stop : best));
   model.set({ typed: model.state.typed.filter((target) => target.name !== name), sight: sightOf(nearest) });
-}
-
-function memoryOf(model: Model): number {
-  const { width, height } = model.seen!.extent;
-  const depth = model.treatment!.depth === 'same' ? model.header!.depth : model.treatment!.depth;
-  return (width * height * model.header!.channels * depth) / 8;
 }

@@ -7,6 +7,7 @@ import { copy } from './copy.ts';
 import './footprint-plot.ts';
 import { cursorTexel, lineOf } from './line.ts';
 import { type Letter, printTrack, type Section, sectionCsv, sourceTrack } from './section.ts';
+import { weightsCsv } from './weights.ts';
 import './section-plot.ts';
 import { slotKernel, slotName, slotPicture } from './slot-picture.ts';
 import './texel-readings.ts';
@@ -76,7 +77,16 @@ export class ReadingsStrip extends LitElement {
     return html`
       <texel-readings .model=${model} .tick=${this.tick}></texel-readings>
       <section class="footprint" aria-label=${t('Footprint')}>
-        <header><span class="heading">${t('Footprint')}</span><span class="quiet">${slotKernel(model, model.slot)}</span></header>
+        <header><span class="heading">${t('Footprint')}</span><span class="quiet">${slotKernel(model, model.slot)}</span>
+          <span class="gap"></span>
+          <button
+            class="plain"
+            aria-label=${t('Copy CSV of the weights')}
+            ?disabled=${footprint?.axes == null}
+            @click=${() => footprint?.axes != null && copy(model, weightsCsv(footprint.axes))}
+          >
+            ${t('Copy CSV')}
+          </button></header>
         <footprint-plot .footprint=${footprint} .why=${whyNoWeights(model)}></footprint-plot>
       </section>
       <section class="cut" aria-label=${t('Cross-section')}>
@@ -86,6 +96,7 @@ export class ReadingsStrip extends LitElement {
           <span class="gap"></span>
           <button
             class="plain"
+            aria-label=${t('Copy CSV of the cross-section')}
             ?disabled=${section === null}
             @click=${() => section !== null && copy(model, sectionCsv(section))}
           >

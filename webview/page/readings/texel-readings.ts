@@ -107,8 +107,8 @@ export class TexelReadings extends LitElement {
           ${pinned === null ? t('Pin') : t('Let go')}
         </button>
         <button class="plain" @click=${() => copy(model, text())}>${t('Copy')}</button>
-        <button class="plain" aria-label=${t('Copy texels as CSV')} @click=${() => copy(model, texelCsv(places))}>
-          CSV
+        <button class="plain" aria-label=${t('Copy CSV of the texels')} @click=${() => copy(model, texelCsv(places))}>
+          ${t('Copy CSV')}
         </button>
       </header>
       <div class="wide" tabindex="0" role="region" aria-label=${t('Codes of the texel by print')}>
