@@ -31,6 +31,10 @@ export const buildTexture: BuildTexture = async (job, ports, cancel, write) => {
   const bytes = peakOf(source.facts, plan) + (job.roughness?.bytes.length ?? 0);
   if (bytes > job.memoryBytes) refuse('too-much-memory', { bytes, limit: job.memoryBytes });
 
+  // Where the platform deflates on a thread of its own, this goes on beside the chain.
+  const encoder = encoderFingerprint(ports);
+  // It is awaited in the end; until then a failure is nobody's.
+  encoder.catch(() => undefined);
   const chains = await buildChains(source, plan, engine, (take) => readSource(source, 'image', ports, cancel, take));
   const roughness = await buildRoughness(job, plan, chains.coded, ports, cancel);
   const sources = roughness?.source ? [chains.source, roughness.source] : [chains.source];
@@ -51,12 +55,11 @@ export const buildTexture: BuildTexture = async (job, ports, cancel, write) => {
     const from = planned.use === 'roughness' ? roughness!.chain.images : null;
     containers.push(await emitContainer(work, planned, from));
   }
-  const encoder = await encoderFingerprint(ports);
   if (cancel.cancelled) throw new Cancelled();
   return {
     format: MANIFEST_FORMAT,
     algorithm: ALGORITHM,
-    encoder,
+    encoder: await encoder,
     sources,
     settings: job.treatment,
     levels: images.filter((image) => image.level !== undefined),
