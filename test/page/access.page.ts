@@ -305,6 +305,33 @@ test('everything is reached by Tab, named, and shows that it has the focus', asy
   await context.close();
 });
 
+test('any print is compared with: by the divider, and as difference; one that is taken off gives way to the settings’', async () => {
+  const more = [...two, { id: 2, kernel: { name: 'box', params: {} }, change: {} }];
+  const { page, context } = await showPage(browser, await cobbles({ slots: more, show: 'difference' }));
+  await waitForPrints(page, 3);
+  const colors = (index: number) =>
+    page.evaluate((at) => {
+      const row = document.querySelector('proof-page')!.shadowRoot!.querySelector('print-row')!.shadowRoot!;
+      const stage = row.querySelectorAll('print-card')[at].shadowRoot!.querySelector<HTMLElement>('print-stage')!;
+      const canvas = stage.shadowRoot!.querySelector<HTMLCanvasElement>('canvas.print')!;
+      const { extent } = (stage as unknown as { scene: { extent: { width: number; height: number } } }).scene;
+      const { zoom, left, top } = stage.dataset;
+      const [width, height] = [extent.width * Number(zoom), extent.height * Number(zoom)];
+      const { data } = canvas.getContext('2d')!.getImageData(Number(left), Number(top), width, height);
+      return new Set(Array.from({ length: data.length / 4 }, (_, i) => data.slice(i * 4, i * 4 + 3).join())).size;
+    }, index);
+  await page.getByRole('combobox', { name: 'from', exact: true }).selectOption('box');
+  // A print does not differ from itself, and from no other print does it differ nowhere.
+  await expect.poll(() => colors(2)).toBe(1);
+  await expect.poll(() => colors(1)).toBeGreaterThan(1);
+  await page.getByRole('combobox', { name: 'Compare', exact: true }).selectOption('divider');
+  const partner = page.getByRole('combobox', { name: 'with', exact: true });
+  await partner.selectOption('lanczos3');
+  await page.getByRole('button', { name: 'Remove the print by lanczos3' }).click();
+  await expect.poll(() => partner.inputValue()).toBe('settings');
+  await context.close();
+});
+
 test('keys move the sight, the cursor, the zoom and the divider; what is kept is kept', async () => {
   const { page, context } = await showPage(browser, await cobbles({ compare: 'divider' }));
   await waitForPrints(page, 2);

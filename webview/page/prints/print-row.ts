@@ -9,9 +9,10 @@ import type { Treatment } from '../../../core/treatment/treatment.ts';
 import { controls } from '../form/controls.ts';
 import { isProblem } from '../proof/bench-link.ts';
 import type { Model } from '../proof/model.ts';
-import type { State } from '../proof/state.ts';
+import { type Against, type State, slotAgainst } from '../proof/state.ts';
 import { cursorTexel, lineOf } from '../readings/line.ts';
 import { pinsHere, togglePin } from '../readings/pin.ts';
+import { slotPicture } from '../readings/slot-picture.ts';
 import { changeWords } from '../treatment/change-words.ts';
 import { unfitFor } from '../treatment/fit.ts';
 import { t } from '../words/t.ts';
@@ -107,15 +108,12 @@ export class PrintRow extends LitElement {
     const { state } = model;
     const seen = model.seen!;
     const picture = failed ? null : (print?.picture ?? this.#shown.get(slot.id) ?? model.takeover.standIn(treatment));
-    const own = model.print(model.treatmentOf(state.slots[0])!, seen.image);
-    const settings = own === undefined || isProblem(own) ? null : own.picture;
-    const source = model.sourcePrint(seen.image)?.print?.picture ?? null;
     const depth = picture?.depth ?? 8;
     return {
       extent: seen.extent,
       picture,
-      reference: state.against === 'source' ? source : settings,
-      partner: state.partner === 'source' ? source : settings,
+      reference: pictureAgainst(model, state.against),
+      partner: pictureAgainst(model, state.partner),
       compare: state.compare === 'divider' ? 'divider' : this.swapped ? 'partner' : 'beside',
       divider: state.divider,
       view: {
@@ -168,6 +166,13 @@ export function addPrint(model: Model, name: string): void {
   const id = Math.max(...model.state.slots.map((slot) => slot.id)) + 1;
   const slot: Slot = { id, kernel: { name: kernel.name, params: defaultParams(kernel) }, change: {} };
   model.set({ slots: [...model.state.slots, slot], selected: id });
+}
+
+/** What prints are compared with, at the sight; null while it is not made. */
+function pictureAgainst(model: Model, against: Against): Picture | null {
+  const { image } = model.seen!;
+  const slot = slotAgainst(against, model.state.slots);
+  return slot === null ? (model.sourcePrint(image)?.print?.picture ?? null) : slotPicture(model, slot, image);
 }
 
 function afterAction({ slots }: State, slot: Slot, action: CardAction): Partial<State> {

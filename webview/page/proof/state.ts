@@ -6,8 +6,13 @@ import type { Output } from './output.ts';
 
 export type Show = 'color' | 'r' | 'g' | 'b' | 'a' | 'bare' | 'mask' | 'lit' | 'difference' | 'overshoot' | 'art';
 
-/** What differences are taken from: the area mean of the source, or the first print. */
-export type Against = 'source' | 'settings';
+/** What prints are compared with: the area mean of the source, the settings' own print, or another print by its id. */
+export type Against = 'source' | 'settings' | `print-${number}`;
+
+/** The print that is compared with, the settings' own where it is none or was taken off; null for the source. */
+export function slotAgainst(against: Against, slots: readonly Slot[]): Slot | null {
+  return against === 'source' ? null : (slots.find(({ id }) => against === `print-${id}`) ?? slots[0]);
+}
 
 export type Backdrop = Preferences['backdrop'];
 
@@ -26,7 +31,7 @@ export interface State {
   readonly magnify: 'nearest' | 'bilinear';
   readonly tiles: boolean;
   readonly compare: 'beside' | 'divider' | 'swap';
-  /** What the divider and the swap show: the source, or the first print. */
+  /** What the divider and the swap show. */
   readonly partner: Against;
   /** Share of a print's width, 0..1. */
   readonly divider: number;

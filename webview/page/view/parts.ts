@@ -23,6 +23,10 @@ export const viewStyles = css`
     align-items: center;
     gap: 4px;
   }
+  .ends {
+    flex-wrap: wrap;
+    gap: 4px 12px;
+  }
   .step {
     width: 1.7em;
     padding: 0;

@@ -6,7 +6,8 @@ import { addPrint } from '../prints/print-row.ts';
 import { CODE_SCALE, OKLAB_SCALE } from '../prints/view.ts';
 import type { Model } from '../proof/model.ts';
 import { outputName, outputsOf } from '../proof/output.ts';
-import type { Show, State } from '../proof/state.ts';
+import { type Against, type Show, type State, slotAgainst } from '../proof/state.ts';
+import { slotName } from '../readings/slot-picture.ts';
 import { t } from '../words/t.ts';
 import './lamp-pad.ts';
 import {
@@ -79,12 +80,15 @@ export class ViewBar extends LitElement {
       ${
         state.compare === 'beside'
           ? nothing
-          : choice(t('with'), state.partner, againstNames(), (partner) => model.set({ partner }))
+          : choice(t('with'), chosenAgainst(model, state.partner), againstNames(model), (partner) =>
+              model.set({ partner }),
+            )
       }
       ${state.compare === 'swap' ? swapButton() : nothing}
       <span class="gap"></span>
-      ${zoomButtons(this.zoom, model.state.zoom, (zoom) => model.set({ zoom }))}
-      <select
+      <span class="group ends">
+        ${zoomButtons(this.zoom, model.state.zoom, (zoom) => model.set({ zoom }))}
+        <select
         aria-label=${t('Add a print by a kernel')}
         @change=${(event: Event) => {
           const list = event.target as HTMLSelectElement;
@@ -94,7 +98,8 @@ export class ViewBar extends LitElement {
       >
         <option value="" selected disabled>${t('+ kernel')}</option>
         ${kernels.map(({ name }) => html`<option value=${name}>${name}</option>`)}
-      </select>
+        </select>
+      </span>
     `;
   }
 
@@ -104,7 +109,7 @@ export class ViewBar extends LitElement {
     const metrics = [['oklab', t('OKLab distance')], ...channels.map((each) => [each, each.toUpperCase()])];
     const most = metric === 'oklab' ? OKLAB_SCALE.toFixed(2) : `+${CODE_SCALE}`;
     return html`
-      ${choice(t('from'), against, againstNames(), (next) => model.set({ against: next }))}
+      ${choice(t('from'), chosenAgainst(model, against), againstNames(model), (next) => model.set({ against: next }))}
       ${choice(t('in'), metric, metrics as [State['metric'], string][], (next) => model.set({ metric: next }))}
       <span class="group number quiet">
         ${metric === 'oklab' ? '0' : `−${CODE_SCALE}`}
@@ -123,11 +128,20 @@ export class ViewBar extends LitElement {
 
 customElements.define('view-bar', ViewBar);
 
-const againstNames = () =>
-  [
+/** A print that was taken off gives way to the settings' own. */
+function chosenAgainst({ state }: Model, against: Against): Against {
+  const slot = slotAgainst(against, state.slots);
+  return slot === null ? 'source' : slot === state.slots[0] ? 'settings' : `print-${slot.id}`;
+}
+
+function againstNames(model: Model): readonly (readonly [Against, string])[] {
+  const [, ...others] = model.state.slots;
+  return [
     ['source', t('source, area mean')],
     ['settings', t('settings’ print')],
-  ] as const;
+    ...others.map((slot) => [`print-${slot.id}`, slotName(model, slot)] as const),
+  ];
+}
 
 function viewsOf(model: Model): readonly (readonly [Show, string])[] {
   const { header, treatment } = model;
