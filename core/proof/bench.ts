@@ -28,9 +28,11 @@ import {
   haloMark,
   type LevelsAnswer,
   type Picture,
+  type PixelsAnswer,
   type Print,
   type PrintImage,
   type PrintStats,
+  type SideOutput,
   type Want,
 } from './want.ts';
 
@@ -77,6 +79,8 @@ export class ProofBench {
     switch (want.kind) {
       case 'print':
         return this.#print(want, cancel);
+      case 'pixels':
+        return this.#pixels(want, cancel);
       case 'levels':
         return this.#levels(want.treatment, cancel);
       case 'halo':
@@ -93,16 +97,34 @@ export class ProofBench {
   }
 
   async #print({ treatment, image, output }: Want & { readonly kind: 'print' }, cancel: Cancel): Promise<Print> {
-    const normals = await this.#chain(treatmentFor(treatment, image), firstLevelOf(image), cancel);
-    const chain = output === 'roughness' ? await this.#roughnessOf(normals) : normals;
+    const chain = await this.#outputChain(treatmentFor(treatment, image), image, output, cancel);
     if ('lod' in image) {
       const picture = this.#seen(chain, treatment, image.lod, image.extent);
       const stats = statsOf(imageOf(chain, { level: Math.min(Math.round(image.lod), lastLevel(chain)) }));
-      return { kind: 'print', picture, pixels: '', stats };
+      return { kind: 'print', picture, stats };
     }
     const found = imageOf(chain, image, output === 'roughness' ? 'image' : output);
-    const picture = copyPicture(pictureOf(chain.plan, found.raster));
-    return { kind: 'print', picture, pixels: hashPixels(found.raster, this.#ports.newHash), stats: statsOf(found) };
+    return { kind: 'print', picture: copyPicture(pictureOf(chain.plan, found.raster)), stats: statsOf(found) };
+  }
+
+  async #pixels(
+    { treatment, image, output }: Want & { readonly kind: 'pixels' },
+    cancel: Cancel,
+  ): Promise<PixelsAnswer> {
+    if ('lod' in image) return { kind: 'pixels', pixels: '' };
+    const chain = await this.#outputChain(treatmentFor(treatment, image), image, output, cancel);
+    const { raster } = imageOf(chain, image, output === 'roughness' ? 'image' : output);
+    return { kind: 'pixels', pixels: hashPixels(raster, this.#ports.newHash) };
+  }
+
+  async #outputChain(
+    treatment: Treatment,
+    image: PrintImage,
+    output: SideOutput | undefined,
+    cancel: Cancel,
+  ): Promise<Chain> {
+    const chain = await this.#chain(treatment, firstLevelOf(image), cancel);
+    return output === 'roughness' ? this.#roughnessOf(chain) : chain;
   }
 
   /** What the build makes of the roughness map beside these normals. */

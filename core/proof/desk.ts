@@ -79,6 +79,7 @@ function buffersOf(answer: Answer): ArrayBuffer[] {
     case 'section':
       return [bufferOf(answer.codes)];
     case 'footprint':
+    case 'pixels':
       return [];
   }
 }

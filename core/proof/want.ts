@@ -26,6 +26,13 @@ export type Want =
       /** Left out for the image itself. */
       readonly output?: SideOutput;
     }
+  /** The pixel hash of one image. Asked for apart: it may take as long as the print, which nobody should wait for. */
+  | {
+      readonly kind: 'pixels';
+      readonly treatment: Treatment;
+      readonly image: PrintImage;
+      readonly output?: SideOutput;
+    }
   /** What was measured on every level, with a small cut of each. */
   | { readonly kind: 'levels'; readonly treatment: Treatment }
   /** Overshoot of one image before clamping. */
@@ -47,6 +54,7 @@ export type WantKind = Want['kind'];
 
 export interface Answers {
   readonly print: Print;
+  readonly pixels: PixelsAnswer;
   readonly levels: LevelsAnswer;
   readonly halo: HaloAnswer;
   readonly art: ArtAnswer;
@@ -94,9 +102,13 @@ export interface PrintStats {
 export interface Print {
   readonly kind: 'print';
   readonly picture: Picture;
-  /** The pixel hash, as manifests hold it. */
-  readonly pixels: string;
   readonly stats: PrintStats;
+}
+
+export interface PixelsAnswer {
+  readonly kind: 'pixels';
+  /** The pixel hash, as manifests hold it; empty between levels. */
+  readonly pixels: string;
 }
 
 export interface LevelsAnswer {

@@ -37,12 +37,11 @@ const recordings = {
 const browser = await launchBrowser();
 try {
   const rounds: PageTimes[] = [];
-  const showing = { pages: values.pages };
   for (let round = 0; round < Number(values.rounds); round++) {
     rounds.push({
       host: await timeHost(recordings.opening),
-      opening: await measurePage(browser, recordings.opening, showing),
-      fine: await measurePage(browser, recordings.fine, showing),
+      opening: await measurePage(browser, recordings.opening, values.pages),
+      fine: await measurePage(browser, recordings.fine, values.pages),
     });
   }
   console.log(JSON.stringify(rounds));

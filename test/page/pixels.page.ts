@@ -44,7 +44,7 @@ describe.each(ratios)('at %d device pixels a CSS pixel', (ratio) => {
     const built = buildChain(noise, treatment).images[1];
     const print = await readPrint(page);
     expect(Buffer.from(print.rgb).equals(Buffer.from((built.raster as StraightRaster).codes))).toBe(true);
-    expect(print.pixels).toBe(hashPixels(built.raster, newHash));
+    await expect.poll(async () => (await readPrint(page)).pixels).toBe(hashPixels(built.raster, newHash));
     const choice = { name: 'box', params: {} };
     const boxed = buildChain(noise, { ...treatment, kernel: { minify: choice, magnify: choice } }).images[1];
     const other = await readPrint(page, 1);

@@ -80,6 +80,8 @@ export function playRecording(data: {
   readonly held: boolean;
   readonly isBuilt: boolean | null;
   readonly bytesRevision: number;
+  /** Paths at which the file and the first print's codes are served; null where they come with the script and its page. */
+  readonly served: { readonly bytes: string; readonly first: string } | null;
 }): void {
   const stage = window as unknown as {
     acquireVsCodeApi: () => unknown;
@@ -90,6 +92,27 @@ export function playRecording(data: {
     release: () => void;
   };
   const unpacked = (text: string) => Uint8Array.from(atob(text), (letter) => letter.charCodeAt(0));
+  // As from an editor, whose messages other threads make ready: begun at once, and nothing of it is done on the page's thread.
+  const serving =
+    data.served &&
+    new Worker(
+      URL.createObjectURL(
+        new Blob([
+          'onmessage = async ({ data }) => { for (const path of data) { const read = await (await fetch(path)).arrayBuffer(); postMessage(read, [read]); } }',
+        ]),
+      ),
+    );
+  const [servedFirst, servedBytes] = [0, 1].map(
+    (index) =>
+      new Promise<ArrayBuffer>((resolve) => {
+        let count = 0;
+        serving?.addEventListener('message', (event) => {
+          if (count++ === index) resolve(event.data);
+          if (count === 2) serving.terminate();
+        });
+      }),
+  );
+  serving?.postMessage([data.served!.first, data.served!.bytes].map((path) => new URL(path, location.href).href));
   const released = new Promise<void>((resolve) => {
     stage.release = resolve;
     if (!data.held) resolve();
@@ -111,14 +134,14 @@ export function playRecording(data: {
       case 'bytes': {
         if (data.bytesProblem !== null) return { problem: data.bytesProblem };
         // Not with the script: unpacking it would hold the very thread that is watched.
-        const response = await fetch('/recorded.bytes');
+        const image = data.served ? await servedBytes : await (await fetch('/recorded.bytes')).arrayBuffer();
         const roughness = data.roughness ? await (await fetch('/recorded.roughness')).arrayBuffer() : null;
-        return { ok: { image: await response.arrayBuffer(), roughness } };
+        return { ok: { image, roughness } };
       }
       case 'firstPrint': {
         if (data.first === null) return { ok: { print: null } };
         const { print, codes, palette } = data.first;
-        const { buffer } = unpacked(codes);
+        const buffer = data.served ? await servedFirst : unpacked(codes).buffer;
         const picture = {
           ...print.picture,
           codes: print.picture.depth === 8 ? new Uint8Array(buffer) : new Uint16Array(buffer),
@@ -145,7 +168,13 @@ export function playRecording(data: {
       void ready
         .then(() => answer(request.call))
         .then((reply) =>
-          window.postMessage({ protocol: data.protocol, kind: 'reply', id: request.id, revision, reply }, '*'),
+          window.postMessage(
+            { protocol: data.protocol, kind: 'reply', id: request.id, revision, reply },
+            '*',
+            request.call === 'bytes' && 'ok' in (reply as object)
+              ? [(reply as { ok: { image: ArrayBuffer } }).ok.image]
+              : [],
+          ),
         );
     },
     getState: () => stage.kept,
@@ -155,25 +184,33 @@ export function playRecording(data: {
   });
 }
 
-export function playData(recording: Recording): Parameters<typeof playRecording>[0] {
+type PlayData = Parameters<typeof playRecording>[0];
+
+export function playData(recording: Recording, served: PlayData['served'] = null): PlayData {
   return {
+    served,
     protocol: PROTOCOL,
     open: recording.open,
     bytesProblem: recording.bytesProblem ?? null,
     roughness: recording.roughness !== undefined,
     kept: recording.kept ?? null,
-    first: recording.first === undefined ? null : packFirst(recording.first),
+    first: recording.first === undefined ? null : packFirst(recording.first, served === null ? 'with' : 'without'),
     held: recording.held !== undefined,
     isBuilt: recording.isBuilt ?? null,
     bytesRevision: recording.bytesRevision ?? 1,
   };
 }
 
-function packFirst(print: FirstPrint) {
+function packFirst(print: FirstPrint, codes: 'with' | 'without') {
   const packed = ({ buffer, byteOffset, byteLength }: Codes) =>
     Buffer.from(buffer as ArrayBuffer, byteOffset, byteLength).toString('base64');
   const { indexed } = print.header;
-  return { print, codes: packed(print.picture.codes), palette: indexed === null ? '' : packed(indexed.palette) };
+  return {
+    // As text, a typed array would be a list of names and numbers.
+    print: { ...print, picture: { ...print.picture, codes: new Uint8Array(0) } },
+    codes: codes === 'with' ? packed(print.picture.codes) : '',
+    palette: indexed === null ? '' : packed(indexed.palette),
+  };
 }
 
 /** What the host's worker would make first, by the host's own code. */

@@ -2,8 +2,9 @@ import type { Browser, Page } from 'playwright-core';
 import { encodePng } from '../../core/codec/png/encode.ts';
 import { deflate } from '../../extension/node/deflate.ts';
 import { noiseRaster } from '../fixtures/noise.ts';
-import { type Showing, showPage, waitForPrints } from './browser.ts';
-import { firstPrintOf, type Recording, record } from './recorded.ts';
+import { waitForPrints } from './browser.ts';
+import { firstPrintOf, playData, playRecording, type Recording, record } from './recorded.ts';
+import { SERVED, servePage } from './served.ts';
 import { troubleOf } from './stage.ts';
 
 /** How fast a page is, in milliseconds, and how long it held its thread. */
@@ -32,14 +33,18 @@ export async function speedRecording(side: number, level: number): Promise<Recor
   return { ...recording, first: await firstPrintOf(recording, { level, target: null }) };
 }
 
-/** Opens a recording and changes kernels on it, in a browser that does nothing else. */
-export async function measurePage(browser: Browser, recording: Recording, showing: Showing = {}): Promise<PageSpeed> {
-  const { page, context } = await showPage(browser, recording, showing);
+/** Opens a recording on the page in a folder and changes kernels on it, in a browser that does nothing else. The file and the host's
+ *  first print are at hand when the page asks for them: the way from an editor is not in it. */
+export async function measurePage(browser: Browser, recording: Recording, pages: string): Promise<PageSpeed> {
+  const served = await servePage(recording, pages);
+  const context = await browser.newContext({ viewport: { width: 1280, height: 900 } });
   try {
-    const [first, own] = await Promise.all([
-      timeOf(page, '[data-painted]'),
-      timeOf(page, '[data-painted][data-pixels]:not([data-pixels=""])'),
-    ]);
+    const page = await context.newPage();
+    await page.addInitScript(playRecording, playData(recording, SERVED));
+    await page.addInitScript(watchPrints);
+    await page.goto(served.url);
+    await page.waitForFunction(() => (window as unknown as Watched).painted.own !== undefined);
+    const { first, own } = await page.evaluate(() => (window as unknown as Watched).painted);
     await waitForPrints(page, 2);
     const { longTasks: openTasks } = await quiet(page);
     const times: number[] = [];
@@ -47,35 +52,40 @@ export async function measurePage(browser: Browser, recording: Recording, showin
     const { longTasks } = await quiet(page);
     const sorted = [...times].sort((a, b) => a - b);
     return {
-      first,
-      own,
+      first: first!,
+      own: own!,
       kernel: sorted[sorted.length >> 1],
       openTasks,
       kernelTasks: longTasks.slice(openTasks.length),
     };
   } finally {
     await context.close();
+    await served.close();
   }
 }
 
-/** Milliseconds since the page's start at which the first print matches a selector. */
-function timeOf(page: Page, state: string): Promise<number> {
-  return page.evaluate(
-    (wanted) =>
-      new Promise<number>((resolve) => {
-        const look = (): void => {
-          const row = document.querySelector('proof-page')?.shadowRoot?.querySelector('print-row')?.shadowRoot;
-          const stage = row?.querySelector('print-card')?.shadowRoot?.querySelector('print-stage');
-          if (stage?.matches(wanted)) resolve(performance.now());
-          else requestAnimationFrame(look);
-        };
-        look();
-      }),
-    state,
-  );
+interface Watched {
+  painted: { first?: number; own?: number };
 }
 
-/** Chooses a kernel for the second print, and waits for the frame in which the print is painted whole. */
+/** Runs in the page before its script: notes the frames, in milliseconds since the page's start, in which the first print is seen to be
+ *  painted, and with a hash, which only the page's own has. */
+function watchPrints(): void {
+  const painted: Watched['painted'] = {};
+  (window as unknown as Watched).painted = painted;
+  const look = (): void => {
+    const row = document.querySelector('proof-page')?.shadowRoot?.querySelector('print-row')?.shadowRoot;
+    const stage = row?.querySelector('print-card')?.shadowRoot?.querySelector<HTMLElement>('print-stage');
+    if (stage?.hasAttribute('data-painted')) {
+      painted.first ??= performance.now();
+      if (stage.dataset.pixels) painted.own ??= performance.now();
+    }
+    if (painted.own === undefined) requestAnimationFrame(look);
+  };
+  look();
+}
+
+/** Chooses a kernel for the second print, and waits for the frame in which its print is painted whole. */
 function timeKernel(page: Page, kernel: string): Promise<number> {
   return page.evaluate(
     (name) =>
@@ -83,17 +93,16 @@ function timeKernel(page: Page, kernel: string): Promise<number> {
         const row = document.querySelector('proof-page')!.shadowRoot!.querySelector('print-row')!.shadowRoot!;
         const card = row.querySelectorAll('print-card')[1].shadowRoot!;
         const list = card.querySelector('select')!;
-        const before = card.querySelector<HTMLElement>('print-stage')!.dataset.pixels;
         const start = performance.now();
         list.value = name;
         list.dispatchEvent(new Event('change'));
         const look = (): void => {
           const stage = card.querySelector<HTMLElement>('print-stage')!;
-          const isNew = stage.dataset.pixels !== '' && stage.dataset.pixels !== before;
-          if (isNew && stage.hasAttribute('data-painted')) resolve(performance.now() - start);
+          if (stage.dataset.made === name && stage.hasAttribute('data-painted')) resolve(performance.now() - start);
           else requestAnimationFrame(look);
         };
-        look();
+        // What stands there now is the kernel before.
+        requestAnimationFrame(look);
       }),
     kernel,
   );

@@ -42,7 +42,7 @@ function faultOf(error: TypeError, feed: Feed, sum: Adler): 'corrupt' | 'truncat
 /** Hands pieces to a stream one by one, as it takes them. */
 class Feed {
   readonly #pieces: Iterable<Uint8Array>;
-  #fed = new Uint8Array(0);
+  #fed: readonly Uint8Array[] = [];
 
   constructor(pieces: Iterable<Uint8Array>) {
     this.#pieces = pieces;
@@ -52,15 +52,23 @@ class Feed {
     const writer = writable.getWriter();
     for (const piece of this.#pieces) {
       if (piece.length === 0) continue;
-      this.#fed = joined(this.#fed.subarray(-KEPT_BYTES), piece);
+      this.#keep(piece);
       await writer.write(piece as Uint8Array<ArrayBuffer>);
     }
     await writer.close();
   }
 
+  /** Keeps the last pieces, which hold `KEPT_BYTES` at least where there were so many. They are views of the file. */
+  #keep(piece: Uint8Array): void {
+    const fed = [...this.#fed, piece];
+    let bytes = fed.reduce((sum, { length }) => sum + length, 0);
+    while (fed.length > 1 && bytes - fed[0].length >= KEPT_BYTES) bytes -= fed.shift()!.length;
+    this.#fed = fed;
+  }
+
   /** Whether the last bytes fed hold a sum anywhere but at their very end. */
   holds(sum: Uint8Array): boolean {
-    const bytes = this.#fed;
+    const bytes = joined(this.#fed);
     for (let at = 0; at + 4 < bytes.length; at++) {
       if (sum.every((byte, i) => bytes[at + i] === byte)) return true;
     }
@@ -70,9 +78,12 @@ class Feed {
 
 const KEPT_BYTES = 1 << 16;
 
-function joined(one: Uint8Array, other: Uint8Array): Uint8Array<ArrayBuffer> {
-  const both = new Uint8Array(one.length + other.length);
-  both.set(one);
-  both.set(other, one.length);
-  return both;
+function joined(pieces: readonly Uint8Array[]): Uint8Array {
+  const all = new Uint8Array(pieces.reduce((sum, { length }) => sum + length, 0));
+  let at = 0;
+  for (const piece of pieces) {
+    all.set(piece, at);
+    at += piece.length;
+  }
+  return all;
 }

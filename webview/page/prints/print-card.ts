@@ -77,7 +77,11 @@ export class PrintCard extends LitElement {
               </button>`
         }
       </header>
-      <print-stage .scene=${scene} data-pixels=${facts.pixels}></print-stage>
+      <print-stage
+        .scene=${scene}
+        data-made=${status === null ? kernel.name : ''}
+        data-pixels=${facts.pixels}
+      ></print-stage>
       <footer class=${facts.tall ? 'tall' : ''}>
         ${
           status !== null

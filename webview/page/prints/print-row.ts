@@ -85,6 +85,7 @@ export class PrintRow extends LitElement {
     const told = model.print(treatment, seen.image);
     const print = told === undefined || isProblem(told) ? null : told;
     if (print !== null) this.#shown.set(slot.id, print.picture);
+    const pixels = print === null ? '' : model.pixels(treatment, seen.image);
     const shrinks = seen.lod > 0 || (seen.lod === 0 && 'level' in seen.image);
     const kernel = shrinks ? treatment.kernel.minify : treatment.kernel.magnify;
     const unfit = slot.kernel === null ? null : unfitFor(slot.kernel, seen.stop, model.base!);
@@ -98,8 +99,8 @@ export class PrintRow extends LitElement {
       status: problem ?? (print === null ? t('Computing …') : null),
       failed: problem !== null,
       changes: changeWords(slot.change),
-      built: slot.id === 0 && print !== null ? builtWords(model, print) : null,
-      pixels: print?.pixels ?? '',
+      built: slot.id === 0 && print !== null ? builtWords(model, pixels) : null,
+      pixels,
       tall: treatment.alpha.use === 'mask' && model.header!.channels % 2 === 0,
     };
   }
@@ -217,8 +218,8 @@ function figuresOf(model: Model, treatment: Treatment, print: Print): readonly C
   return figures;
 }
 
-function builtWords(model: Model, print: Print): string | null {
-  const equal = model.equalsBuild(model.seen!.image, print.pixels);
+function builtWords(model: Model, pixels: string): string | null {
+  const equal = model.equalsBuild(model.seen!.image, pixels);
   return equal === null ? null : equal ? t('equals the build') : t('differs from the build');
 }
 

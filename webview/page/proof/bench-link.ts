@@ -115,5 +115,7 @@ function sizeOf(answer: Answer | { readonly problem: Problem }): number {
       return answer.codes.byteLength;
     case 'footprint':
       return 4096;
+    case 'pixels':
+      return 64;
   }
 }

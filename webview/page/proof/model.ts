@@ -21,6 +21,7 @@ export class Model extends EventTarget {
   readonly link: ProofLink;
   readonly #makeBench: (changed: () => void) => Promise<BenchLink>;
   #bench: BenchLink | null = null;
+  #starting: Promise<BenchLink> | null = null;
   #state: State;
   #stops: {
     readonly base: Extent;
@@ -68,10 +69,12 @@ export class Model extends EventTarget {
     this.#changed();
   }
 
-  /** Handshake, then the file's bytes. Also what trying again does. */
+  /** Handshake, then the file's bytes. Also what trying again does. The host's first print hangs on nothing that the handshake says, and is
+   *  asked for with it. */
   async start(): Promise<void> {
     this.problem = null;
     this.#changed();
+    const first = this.#askFirst();
     const { reply } = await this.link.ask('open', null);
     if ('problem' in reply) return this.#fail(reply.problem);
     this.open = reply.ok;
@@ -81,13 +84,17 @@ export class Model extends EventTarget {
     if (this.#state.backdrop === 'checker') this.#state = { ...this.#state, backdrop: reply.ok.preferences.backdrop };
     this.#checks.forget();
     this.#changed();
-    await this.#askFirst(reply.ok.byteCount);
+    // Who asks for it below hears of a failure.
+    this.#startBench().catch(() => undefined);
+    // A small file comes as fast as a print.
+    if (reply.ok.byteCount > FAST_BYTES)
+      await Promise.race([first, new Promise((go) => setTimeout(go, FIRST_PRINT_MS))]);
     await this.#load();
   }
 
   close(): void {
     clearTimeout(this.#keeping);
-    this.#bench?.close();
+    this.#starting?.then((bench) => bench.close()).catch(() => undefined);
     this.link.close();
   }
 
@@ -207,6 +214,10 @@ export class Model extends EventTarget {
     return { kind: 'print', treatment, image, ...(output !== 'image' && { output }) };
   }
 
+  pixelsWant(treatment: Treatment, image: PrintImage): Want & { readonly kind: 'pixels' } {
+    return { ...this.printWant(treatment, image), kind: 'pixels' };
+  }
+
   /** The image itself, whatever is looked at. */
   imagePrint(treatment: Treatment, image: PrintImage): Told<'print'> {
     return this.#bench?.told({ kind: 'print', treatment, image }) ?? this.takeover.printOf(treatment, image);
@@ -226,6 +237,12 @@ export class Model extends EventTarget {
   /** Marks of overshoot on what is looked at; null where there are none. */
   marks(treatment: Treatment, image: PrintImage): Uint16Array | null {
     return this.outputAt(image) === 'image' ? (this.halo(treatment, image)?.marks ?? null) : null;
+  }
+
+  /** The pixel hash of a print, in the output that is looked at, as the page's own worker found it; empty until it has. */
+  pixels(treatment: Treatment, image: PrintImage): string {
+    const told = this.#bench?.told(this.pixelsWant(treatment, image));
+    return told === undefined || isProblem(told) ? '' : told.pixels;
   }
 
   /** An answer to any other want, null until there is one. */
@@ -253,16 +270,14 @@ export class Model extends EventTarget {
     return this.#checks.equals(image, this.outputAt(image), pixels);
   }
 
-  /** The host's own print, while the file is still to come. A small file comes as fast. */
-  async #askFirst(byteCount: number): Promise<void> {
+  /** The host's own print, while the file is still to come. */
+  async #askFirst(): Promise<void> {
     this.takeover.reset();
-    const asked = this.link.ask('firstPrint', openingOf(this.#state.sight)).then(({ revision, reply }) => {
-      if ('problem' in reply) return;
-      this.takeover.take(reply.ok.print, revision);
-      this.#judgeFirst();
-      this.#changed();
-    });
-    if (byteCount > FAST_BYTES) await Promise.race([asked, new Promise((go) => setTimeout(go, FIRST_PRINT_MS))]);
+    const { revision, reply } = await this.link.ask('firstPrint', openingOf(this.#state.sight));
+    if ('problem' in reply) return;
+    this.takeover.take(reply.ok.print, revision);
+    this.#judgeFirst();
+    this.#changed();
   }
 
   async #load(): Promise<void> {
@@ -273,13 +288,28 @@ export class Model extends EventTarget {
     this.present = true;
     this.takeover.arrive(revision);
     try {
-      this.#bench ??= await this.#makeBench(() => this.#benchChanged());
+      (await this.#startBench()).open(open.name, reply.ok.image, reply.ok.roughness);
     } catch (error) {
       const reason = error instanceof Error ? error.message : String(error);
       return this.#fail({ code: 'unexpected', severity: 'error', values: { reason } });
     }
-    this.#bench.open(open.name, reply.ok.image, reply.ok.roughness);
     this.#changed();
+  }
+
+  /** The page's worker. It takes a while to start, and the file may still be on its way. */
+  #startBench(): Promise<BenchLink> {
+    if (this.#starting !== null) return this.#starting;
+    const starting = this.#makeBench(() => this.#benchChanged());
+    this.#starting = starting;
+    starting.then(
+      (bench) => {
+        this.#bench = bench;
+      },
+      () => {
+        this.#starting = null;
+      },
+    );
+    return starting;
   }
 
   #benchChanged(): void {

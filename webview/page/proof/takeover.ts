@@ -49,11 +49,11 @@ export class Takeover {
     return { kind: 'print', treatment, image: this.#first!.print.image };
   }
 
-  /** The host's print of an image. It has no hash: what the page says of pixels, it found itself. */
+  /** The host's print of an image. */
   printOf(treatment: Treatment, image: PrintImage): Print | undefined {
     if (!this.#isOf(treatment) || JSON.stringify(this.#first!.print.image) !== JSON.stringify(image)) return undefined;
     const { picture, stats } = this.#first!.print;
-    return { kind: 'print', picture, pixels: '', stats };
+    return { kind: 'print', picture, stats };
   }
 
   /** Any print by this treatment, to stand in, stretched, for one that is not made yet. */

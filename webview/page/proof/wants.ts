@@ -5,7 +5,8 @@ import { cursorTexel, lineOf } from '../readings/line.ts';
 import { pinsOf } from '../readings/pin.ts';
 import type { Model } from './model.ts';
 
-/** What the page needs to show its state, most urgent first: the selected print, the others, the axis, then measurements. */
+/** What the page needs to show its state, most urgent first: the selected print, the others, hashes, the axis, then
+ *  measurements. */
 export function wantsOf(model: Model): readonly Want[] {
   const { state, seen, treatment, base } = model;
   if (seen === null || treatment === null || base === null) return [];
@@ -24,6 +25,7 @@ export function wantsOf(model: Model): readonly Want[] {
   const own = model.treatmentOf(model.slot)!;
   wants.push({ kind: 'footprint', treatment: own, image, ...cursorTexel(state.cursor, seen.extent) });
   wants.push({ kind: 'section', ...lineOf(state, seen.extent) });
+  if (!('lod' in image)) for (const each of treatments) wants.push(model.pixelsWant(each, image));
   wants.push({ kind: 'levels', treatment });
   // What is measured of an image says nothing of what is written beside it.
   if (!('lod' in image) && model.outputAt(image) === 'image') {
