@@ -2,6 +2,9 @@
 export interface Kernels {
   along(row: number, phases: number, out: number, texels: number, stride: number): void;
   alongFours(row: number, phases: number, out: number, texels: number): void;
+  alongSixes(row: number, phases: number, out: number, texels: number): void;
+  alongTens(row: number, phases: number, out: number, texels: number): void;
+  alongTwelves(row: number, phases: number, out: number, texels: number): void;
   alongHalves(row: number, phases: number, out: number, texels: number): void;
   alongSix(row: number, phases: number, out: number, texels: number): void;
   acrossEqual(rows: number, weights: number, taps: number, out: number, floats: number): void;

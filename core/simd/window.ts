@@ -13,8 +13,7 @@ export class Window {
   readonly #across: Filter;
   readonly #stride: number;
   readonly #phases: number;
-  /** Taps of each phase where they are 2:1 and all the same; otherwise 0. */
-  readonly #halves: number;
+  readonly #along: AlongFours;
   /** How many texels at the left read beyond the row's edge. */
   readonly #inner: number;
   /** For each part of a row that there was, how far it reaches. */
@@ -49,7 +48,7 @@ export class Window {
     }
     this.#weights = machine.keep(step.y.weights);
     this.#phases = writePhases(machine, along, stride);
-    this.#halves = stride === 16 && isHalves(along) ? step.x.count[0] : 0;
+    this.#along = alongFours(along);
     this.#inner = lastOutside(step.x) + 1;
   }
 
@@ -90,9 +89,7 @@ export class Window {
     const phases = this.#phases + from * PHASE_BYTES;
     // A fifth channel goes first: the vectors that hold it reach over the four of the next texel.
     if (stride > 16) kernels.along(row + 16, phases, out + 16, to - from, stride);
-    if (this.#halves === 12) kernels.alongSix(row, phases, out, to - from);
-    else if (this.#halves > 0) kernels.alongHalves(row, phases, out, to - from);
-    else if (stride === 16) kernels.alongFours(row, phases, out, to - from);
+    if (stride === 16) kernels[this.#along](row, phases, out, to - from);
     else kernels.along(row, phases, out, to - from, stride);
   }
 
@@ -153,6 +150,18 @@ function writePhases(machine: Machine, { taps, symmetric }: Filter, stride: numb
     integers[at++] = symmetric[phase];
   }
   return phases;
+}
+
+/** The kernels that filter four channels along x: all do the same, each for some counts of taps. */
+type AlongFours = 'alongFours' | 'alongSixes' | 'alongTens' | 'alongTwelves' | 'alongHalves' | 'alongSix';
+
+function alongFours(filter: Filter): AlongFours {
+  const { count } = filter.taps;
+  if (isHalves(filter)) return count[0] === 12 ? 'alongSix' : 'alongHalves';
+  const [least, most] = [count.reduce((a, b) => Math.min(a, b)), maxTaps(filter.taps)];
+  if (least === 6 && most === 6) return 'alongSixes';
+  if (least >= 8 && most <= 10) return 'alongTens';
+  return least === 12 && most <= 13 ? 'alongTwelves' : 'alongFours';
 }
 
 /** Whether every phase is the first, two texels on, symmetric and of an even count. */

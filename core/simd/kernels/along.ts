@@ -49,7 +49,6 @@ export function alongFours(row: usize, phases: usize, out: usize, texels: i32): 
     const l = row + <usize>load<i32>(phases, 0);
     const w = <usize>load<u32>(phases, 4);
     if (load<i32>(phases, 12)) v128.store(out, sumEqual(l, w, taps));
-    else if (taps === 12) v128.store(out, sumTwelve(l, w));
     else v128.store(out, sumPairs(l, w, taps));
     phases += 16;
     out += 16;
@@ -105,7 +104,83 @@ function sumPairs(first: usize, weights: usize, taps: i32): v128 {
   return taps & 1 ? f32x4.add(sum, f32x4.mul(v128.load(l), v128.load32_splat(w))) : sum;
 }
 
-/** Lanczos3 and a Kaiser of width 3 near 2:1. Weights come four at a time: loads are what there is too much of. */
+// Without a loop over taps where their counts are common ones, and with weights that come four at a time: loads are what there is too
+// much of. That takes 0.7 to 0.8 of the time of `alongFours`, which does the phases that are symmetric or of another count.
+
+/** Four channels, phases of six taps each, which Lanczos3 and a Kaiser of width 3 have where they magnify. */
+export function alongSixes(row: usize, phases: usize, out: usize, texels: i32): void {
+  const end = phases + ((<usize>texels) << 4);
+  while (phases < end) {
+    const l = row + <usize>load<i32>(phases, 0);
+    const w = <usize>load<u32>(phases, 4);
+    if (load<i32>(phases, 12)) alongFours(row, phases, out, 1);
+    else v128.store(out, sumSix(l, w));
+    phases += 16;
+    out += 16;
+  }
+}
+
+function sumSix(l: usize, weights: usize): v128 {
+  const f = v128.load(weights);
+  const g = v128.load(weights, 8);
+  let left = f32x4.mul(v128.load(l), v128.shuffle<f32>(f, f, 0, 0, 0, 0));
+  let sum = f32x4.add(
+    f32x4.splat(0),
+    f32x4.add(left, f32x4.mul(v128.load(l, 80), v128.shuffle<f32>(g, g, 3, 3, 3, 3))),
+  );
+  left = f32x4.mul(v128.load(l, 16), v128.shuffle<f32>(f, f, 1, 1, 1, 1));
+  sum = f32x4.add(sum, f32x4.add(left, f32x4.mul(v128.load(l, 64), v128.shuffle<f32>(g, g, 2, 2, 2, 2))));
+  left = f32x4.mul(v128.load(l, 32), v128.shuffle<f32>(f, f, 2, 2, 2, 2));
+  return f32x4.add(sum, f32x4.add(left, f32x4.mul(v128.load(l, 48), v128.shuffle<f32>(g, g, 1, 1, 1, 1))));
+}
+
+/** Four channels, phases of eight to ten taps each, which kernels of width 2 have near 2:1 and wider ones at smaller ratios. */
+export function alongTens(row: usize, phases: usize, out: usize, texels: i32): void {
+  const end = phases + ((<usize>texels) << 4);
+  while (phases < end) {
+    const l = row + <usize>load<i32>(phases, 0);
+    const w = <usize>load<u32>(phases, 4);
+    if (load<i32>(phases, 12)) alongFours(row, phases, out, 1);
+    else v128.store(out, sumTen(l, w, load<i32>(phases, 8)));
+    phases += 16;
+    out += 16;
+  }
+}
+
+function sumTen(l: usize, weights: usize, taps: i32): v128 {
+  const r = l + ((<usize>(taps - 4)) << 4);
+  const f = v128.load(weights);
+  const g = v128.load(weights + ((<usize>(taps - 4)) << 2));
+  let left = f32x4.mul(v128.load(l), v128.shuffle<f32>(f, f, 0, 0, 0, 0));
+  let sum = f32x4.add(
+    f32x4.splat(0),
+    f32x4.add(left, f32x4.mul(v128.load(r, 48), v128.shuffle<f32>(g, g, 3, 3, 3, 3))),
+  );
+  left = f32x4.mul(v128.load(l, 16), v128.shuffle<f32>(f, f, 1, 1, 1, 1));
+  sum = f32x4.add(sum, f32x4.add(left, f32x4.mul(v128.load(r, 32), v128.shuffle<f32>(g, g, 2, 2, 2, 2))));
+  left = f32x4.mul(v128.load(l, 32), v128.shuffle<f32>(f, f, 2, 2, 2, 2));
+  sum = f32x4.add(sum, f32x4.add(left, f32x4.mul(v128.load(r, 16), v128.shuffle<f32>(g, g, 1, 1, 1, 1))));
+  left = f32x4.mul(v128.load(l, 48), v128.shuffle<f32>(f, f, 3, 3, 3, 3));
+  sum = f32x4.add(sum, f32x4.add(left, f32x4.mul(v128.load(r), v128.shuffle<f32>(g, g, 0, 0, 0, 0))));
+  if (taps === 8) return sum;
+  left = f32x4.mul(v128.load(l, 64), v128.load32_splat(weights, 16));
+  if (taps === 9) return f32x4.add(sum, left);
+  return f32x4.add(sum, f32x4.add(left, f32x4.mul(v128.load(l, 80), v128.load32_splat(weights, 20))));
+}
+
+/** Four channels, phases of twelve taps nearly all, which Lanczos3 and a Kaiser of width 3 have near 2:1. */
+export function alongTwelves(row: usize, phases: usize, out: usize, texels: i32): void {
+  const end = phases + ((<usize>texels) << 4);
+  while (phases < end) {
+    const l = row + <usize>load<i32>(phases, 0);
+    const w = <usize>load<u32>(phases, 4);
+    if (load<i32>(phases, 12) || load<i32>(phases, 8) !== 12) alongFours(row, phases, out, 1);
+    else v128.store(out, sumTwelve(l, w));
+    phases += 16;
+    out += 16;
+  }
+}
+
 function sumTwelve(l: usize, weights: usize): v128 {
   const f = v128.load(weights);
   const g = v128.load(weights, 16);
