@@ -376,8 +376,8 @@ export const faults = [
   {
     law: 'minima bound from below',
     file: 'core/chain/bounds.ts',
-    find: "if (bound === 'min' ? code < found : code > found)",
-    replace: "if (bound === 'min' ? code > found : code < found)",
+    find: 'return other + (distance & ((distance >> 31) ^ sign));',
+    replace: 'return other + (distance & ((distance >> 31) ^ ~sign));',
     tests: 'test/laws/height.test.ts',
     name: 'bounds every source texel',
   },
