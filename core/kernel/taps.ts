@@ -23,11 +23,30 @@ const MAX_EXTENT = 16384;
 
 /** Taps that make `to` texels from `from`, both integers 1..16384, for kernels of the kinds weights, area and point. Equal
  *  extents are a copy whatever the kernel. `params` holds a value for each of the kernel's parameters. Throws RangeError for
- *  extents and parameters out of range, TypeError for a kernel that has no taps. */
+ *  extents and parameters out of range, TypeError for a kernel that has no taps. Both axes of a square, and thousands of textures
+ *  of a few sizes, share what was made once. */
 export function buildTaps(kernel: Kernel, params: KernelParams, from: number, to: number): Taps {
   checkExtent(from, 'from');
   checkExtent(to, 'to');
   checkParams(kernel, params);
+  const key = [from, to, ...kernel.params.map(({ name }) => params[name])].join(' ');
+  const shelf = shelves.get(kernel) ?? new Map<string, Taps>();
+  shelves.set(kernel, shelf);
+  const taps = shelf.get(key) ?? makeTaps(kernel, params, from, to);
+  // A few sizes are all that most projects have; what is large is soon made beside what is made with it.
+  if (tapBytes(taps) > KEPT_BYTES) return taps;
+  if (shelf.size === KEPT_TAPS) shelf.clear();
+  shelf.set(key, taps);
+  return taps;
+}
+
+const shelves = new WeakMap<Kernel, Map<string, Taps>>();
+
+/** Per kernel: sizes from 1 to 2048 on both axes, several times over. Together they hold a few megabytes at most. */
+const KEPT_TAPS = 64;
+const KEPT_BYTES = 2 ** 15;
+
+function makeTaps(kernel: Kernel, params: KernelParams, from: number, to: number): Taps {
   if (from === to) return pointTaps(from, to);
   switch (kernel.kind) {
     case 'point':

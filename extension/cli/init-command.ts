@@ -26,6 +26,7 @@ export async function runInit(args: Arguments, shell: Shell): Promise<Result> {
       await orRefuse(settings, text.length, async () => {
         await nodeDisk.makeFolder(folder);
         await nodeDisk.write(settings, text);
+        await nodeDisk.flush([settings]);
       });
       lines.push(`wrote ${nameOf(settings)}`);
     } else {
@@ -53,6 +54,7 @@ async function addLine(path: string, present: string): Promise<void> {
   const temporary = temporaryFor(path);
   await orRefuse(path, text.length, async () => {
     await nodeDisk.write(temporary, text);
+    await nodeDisk.flush([temporary]);
     await nodeDisk.rename(temporary, path);
   });
 }

@@ -52,11 +52,13 @@ export interface Disk extends FileTree {
   folderStamp(path: string): Promise<FolderStamp | null>;
   /** Whether all of these are files whose stats are the numbers that `statNumbers` gives, three a file in order. */
   areStill(paths: readonly string[], numbers: ArrayLike<number>): Promise<boolean>;
-  /** Makes a new file of these bytes and flushes it; answers its stat, which it keeps when it is renamed. An existing file is
-   *  refused, and a failed one leaves nothing behind. */
-  write(path: string, bytes: Uint8Array): Promise<FileStat>;
+  /** Makes a new file of these bytes. An existing file is refused, and a failed one leaves nothing behind. */
+  write(path: string, bytes: Uint8Array): Promise<void>;
   /** The same of a file that comes in pieces, each written before the next is asked for. What the pieces throw is thrown on. */
-  writePieces(path: string, pieces: AsyncIterable<Uint8Array>): Promise<FileStat>;
+  writePieces(path: string, pieces: AsyncIterable<Uint8Array>): Promise<void>;
+  /** Makes what was written last through a power cut; answers the files' stats, which they keep when they are renamed. Many at a
+   *  time: a system that journals takes hardly longer for twenty than for one. */
+  flush(paths: readonly string[]): Promise<FileStat[]>;
   /** Puts a file in the place of another, whole, at once. */
   rename(from: string, to: string): Promise<void>;
   /** Removes a file; a missing one is fine. */

@@ -1,6 +1,6 @@
 import { pathBelow } from '../../core/treatment/paths/path.ts';
 import type { Disk, FolderStamp } from './disk.ts';
-import { cacheFile, FRESH_MS, replaceFile } from './stat-index.ts';
+import { cacheFile, FRESH_MS, replaceFiles } from './stat-index.ts';
 import { type FolderTraces, tracesIn } from './sweep.ts';
 
 // What builds left in the folders of outputs when they were last listed, so that a folder in which no entry came or went since is
@@ -66,7 +66,7 @@ export async function openFolderRecord(
   async function save(): Promise<void> {
     if (file === null || !changed) return;
     const folders = { ...Object.fromEntries(known), ...Object.fromEntries(used) };
-    await replaceFile(disk, file, Buffer.from(JSON.stringify({ form: FORM, folders })));
+    await replaceFiles(disk, [{ file, print: () => Buffer.from(JSON.stringify({ form: FORM, folders })) }]);
   }
 }
 

@@ -14,7 +14,8 @@ import { nextOf, temporaryFor } from './temporary.ts';
 // How the outputs of one texture take the place of the former ones. Every file is at every instant wholly old or wholly new, and
 // a mixture is never without its mark:
 //
-//   files    written beside their places, flushed           the old build stands, whole
+//   files    written beside their places                    the old build stands, whole
+//   flush    of all of them and the new manifest at once
 //   .next    the new manifest, laid down                    from here on `check` says `interrupted`
 //   renames  of every file, then files no longer listed are removed
 //   manifest .next takes its place                          the new build stands, whole
@@ -52,9 +53,16 @@ export type Pause = (ms: number) => Promise<void>;
 
 export const pause: Pause = (ms) => new Promise((done) => setTimeout(done, ms));
 
+/** A file that was written and waits for its place. */
+interface Staged {
+  readonly temporary: string;
+  readonly path: string;
+  readonly bytes: number;
+}
+
 export function openLaydown(disk: Disk, place: Place, wait: Pause = pause): Laydown {
   const next = nextOf(place.manifestPath);
-  const staged: { readonly temporary: string; readonly path: string }[] = [];
+  const staged: Staged[] = [];
   const madeFolders: string[] = [];
   const checkedFolders = new Set<string>();
   const stats = new Map<string, FileStat>();
@@ -67,16 +75,13 @@ export function openLaydown(disk: Disk, place: Place, wait: Pause = pause): Layd
     const temporary = temporaryFor(path);
     if (file.byteCount > JOINED_BYTES) {
       const { byteCount, pieces } = file;
-      stats.set(
-        path,
-        await orRefuse(path, byteCount, () => inFolder(temporary, () => disk.writePieces(temporary, pieces))),
-      );
+      await orRefuse(path, byteCount, () => inFolder(temporary, () => disk.writePieces(temporary, pieces)));
     } else {
       const bytes = await wholeFile({ path, ...file });
       if (await holds(path, bytes)) return;
-      stats.set(path, await orRefuse(path, bytes.length, () => writeNew(temporary, bytes)));
+      await orRefuse(path, bytes.length, () => writeNew(temporary, bytes));
     }
-    staged.push({ temporary, path });
+    staged.push({ temporary, path, bytes: file.byteCount });
   }
 
   async function commit(manifest: Manifest) {
@@ -93,8 +98,9 @@ export function openLaydown(disk: Disk, place: Place, wait: Pause = pause): Layd
     const warnings = await removeUnedited(disk, forgotten, place.within);
     const wasMarked = (await disk.kind(next)) !== null;
     const temporary = temporaryFor(manifestPath);
-    stats.set(manifestPath, await orRefuse(manifestPath, text.length, () => writeNew(temporary, text)));
-    staged.unshift({ temporary, path: next });
+    await orRefuse(manifestPath, text.length, () => writeNew(temporary, text));
+    staged.unshift({ temporary, path: manifestPath, bytes: text.length });
+    await flush();
     await replace(temporary, next, manifestPath);
     staged.shift();
     marked = wasMarked ? 'for good' : 'by us';
@@ -109,7 +115,7 @@ export function openLaydown(disk: Disk, place: Place, wait: Pause = pause): Layd
     }
     for (const path of forgotten.keys()) dropped.delete(path);
     warnings.push(...(await removeUnedited(disk, dropped, place.within)));
-    for (const folder of folders) await disk.flushFolder(folder);
+    await Promise.all([...folders].map((folder) => disk.flushFolder(folder)));
     await replace(next, manifestPath, manifestPath);
     await disk.flushFolder(parentOf(manifestPath));
     marked = 'no';
@@ -120,6 +126,18 @@ export function openLaydown(disk: Disk, place: Place, wait: Pause = pause): Layd
       return stat === undefined ? [] : [{ path, sha256, stat }];
     });
     return { warnings, files };
+  }
+
+  /** Everything that was staged, before anything of it takes its place. */
+  async function flush(): Promise<void> {
+    const all = [...staged];
+    try {
+      const flushed = await disk.flush(all.map(({ temporary }) => temporary));
+      for (const [at, stat] of flushed.entries()) stats.set(all[at].path, stat);
+    } catch (error) {
+      const file = all.find(({ temporary }) => error instanceof DiskError && temporary === error.path) ?? all[0];
+      await orRefuse(file.path, file.bytes, () => Promise.reject(error));
+    }
   }
 
   async function abort(): Promise<void> {
@@ -147,7 +165,7 @@ export function openLaydown(disk: Disk, place: Place, wait: Pause = pause): Layd
     return true;
   }
 
-  function writeNew(path: string, bytes: Uint8Array): Promise<FileStat> {
+  function writeNew(path: string, bytes: Uint8Array): Promise<void> {
     return inFolder(path, () => disk.write(path, bytes));
   }
 

@@ -5,7 +5,7 @@ import type { Treatment } from '../../core/treatment/treatment.ts';
 import { type Disk, statNumbers } from './disk.ts';
 import { parentOf, relative, startOf } from './path.ts';
 import type { ProjectTexture } from './project.ts';
-import { cacheFile, replaceFile, type StatIndex, sha256Of } from './stat-index.ts';
+import { cacheFile, type NewFile, replaceFiles, type StatIndex, sha256Of } from './stat-index.ts';
 import type { PresentSource } from './state.ts';
 
 // Which textures a build found as their manifests say, so that the next one stats their files and reads none of them. One file
@@ -92,9 +92,11 @@ export function openRunRecord(disk: Disk, cacheFolder: string | null, root: stri
   }
 
   async function save(): Promise<void> {
+    const news: NewFile[] = [];
     for (const page of pages.values()) {
-      if (page.file !== null && page.changed) await replaceFile(disk, page.file, print(page));
+      if (page.file !== null && page.changed) news.push({ file: page.file, print: () => print(page) });
     }
+    await replaceFiles(disk, news);
   }
 
   async function openPage(folder: string): Promise<Page> {

@@ -104,10 +104,13 @@ export async function openStatIndex(
   }
 
   async function save(): Promise<void> {
+    const news: NewFile[] = [];
     for (const shard of shards.values()) {
       if (shard.file === null || !shard.changed) continue;
-      if (await replaceFile(disk, shard.file, print(shard.entries))) shard.changed = false;
+      news.push({ file: shard.file, print: () => print(shard.entries) });
+      shard.changed = false;
     }
+    await replaceFiles(disk, news);
   }
 
   async function shardOf(path: string): Promise<Shard> {
@@ -146,18 +149,27 @@ export function cacheFile(cacheFolder: string | null, root: string, folder: stri
   return joinPath(cacheFolder, `${sha256Of(Buffer.from(`${root}\n${folder}`)).slice(0, 24)}.${ending}`);
 }
 
-/** Writes a file of the cache anew, whole at each instant. Failing is harmless; answers whether it went well. */
-export async function replaceFile(disk: Disk, file: string, bytes: Uint8Array): Promise<boolean> {
-  const temporary = temporaryFor(file);
+/** A file of the cache that is to be written anew. */
+export interface NewFile {
+  readonly file: string;
+  readonly print: () => Uint8Array;
+}
+
+/** Writes files of the cache anew, each whole at each instant. Failing is harmless: what is not kept is found out again. */
+export async function replaceFiles(disk: Disk, news: readonly NewFile[]): Promise<void> {
+  const written: { readonly temporary: string; readonly file: string }[] = [];
   try {
-    await disk.makeFolder(parentOf(file));
-    await disk.write(temporary, bytes);
-    await disk.rename(temporary, file);
-    return true;
+    for (const { file, print } of news) {
+      const temporary = temporaryFor(file);
+      await disk.makeFolder(parentOf(file));
+      await disk.write(temporary, print());
+      written.push({ temporary, file });
+    }
+    await disk.flush(written.map(({ temporary }) => temporary));
+    for (const { temporary, file } of written) await disk.rename(temporary, file);
   } catch (error) {
     if (!(error instanceof DiskError)) throw error;
-    await disk.remove(temporary).catch(() => undefined);
-    return false;
+    for (const { temporary } of written) await disk.remove(temporary).catch(() => undefined);
   }
 }
 

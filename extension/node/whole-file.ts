@@ -10,6 +10,7 @@ export async function writeWhole(disk: Disk, path: string, bytes: Uint8Array): P
   await orRefuse(path, bytes.length, async () => {
     await disk.makeFolder(parentOf(path));
     await disk.write(temporary, bytes);
+    await disk.flush([temporary]);
   });
   try {
     await replaceFile(disk, { from: temporary, to: path, named: path }, pause);

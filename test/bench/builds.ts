@@ -31,7 +31,7 @@ async function ofSide(folder: string, side: number, rounds: number) {
   };
   await build(1)();
   const bytes = pngBytes(join(folder, 'out'));
-  const packing = await packingFor(sharp, join(folder, 'a.png'), join(folder, 'sharp'), bytes);
+  const packing = await packingFor(sharp, [join(folder, 'a.png')], join(folder, 'sharp'), bytes);
   let theirs = 0;
   const contenders: Contender[] = [
     { name: '**ours, one worker**', run: build(1) },

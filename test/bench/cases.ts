@@ -15,8 +15,13 @@ export interface Cases {
   readonly folder: { readonly counts: readonly (readonly [side: number, count: number])[]; readonly rounds: number };
   /** Textures of a large project, their side, and rounds. */
   readonly project: { readonly count: number; readonly side: number; readonly rounds: number };
-  /** Textures that one commit changes, their side, and rounds. */
-  readonly review: { readonly count: number; readonly side: number; readonly rounds: number };
+  /** Textures that one commit changes, their side, rounds of listing them, and how many of these compare them, too. */
+  readonly review: {
+    readonly count: number;
+    readonly side: number;
+    readonly rounds: number;
+    readonly wholeRounds: number;
+  };
   /** Side of the image whose memory is measured. */
   readonly memory: { readonly side: number };
   /** Side of the images that are held against double precision. */
@@ -61,19 +66,19 @@ export const fullCases: Cases = {
   phases: { side: 2048, rounds: 7, cases: phaseCases(2048) },
   builds: { sides: [1024, 4096], rounds: 5 },
   folder: {
-    // A thousand, most of them small.
+    // A thousand, most of them small; half of all texels are those of the two largest sizes.
     counts: [
-      [64, 300],
-      [128, 250],
-      [256, 200],
-      [512, 150],
-      [1024, 80],
-      [2048, 20],
+      [64, 400],
+      [128, 300],
+      [256, 180],
+      [512, 90],
+      [1024, 24],
+      [2048, 6],
     ],
-    rounds: 3,
+    rounds: 2,
   },
   project: { count: 10_000, side: 32, rounds: 5 },
-  review: { count: 2000, side: 128, rounds: 3 },
+  review: { count: 2000, side: 128, rounds: 3, wholeRounds: 1 },
   memory: { side: 4096 },
   accuracy: { side: 1024 },
   cold: { side: 1024, rounds: 11 },
@@ -94,7 +99,7 @@ export const smokeCases: Cases = {
     rounds: 1,
   },
   project: { count: 6, side: 8, rounds: 1 },
-  review: { count: 4, side: 16, rounds: 1 },
+  review: { count: 4, side: 16, rounds: 1, wholeRounds: 1 },
   memory: { side: 64 },
   accuracy: { side: 32 },
   cold: { side: 64, rounds: 1 },

@@ -8,10 +8,14 @@ export interface Contender {
 /** Milliseconds of each round, in the order of the rounds. */
 export type Times = readonly number[];
 
-/** Runs all contenders once to warm up, then in turn, one run of each a round: a machine whose speed drifts drifts for all of
+/** Runs all contenders once to warm up, unless they have run already, then in turn, one run of each a round: a machine whose speed drifts drifts for all of
  *  them. Nothing but the call is inside the clock. */
-export async function alternate(contenders: readonly Contender[], rounds: number): Promise<readonly Times[]> {
-  for (const { run } of contenders) await run();
+export async function alternate(
+  contenders: readonly Contender[],
+  rounds: number,
+  state: 'cold' | 'ready' = 'cold',
+): Promise<readonly Times[]> {
+  if (state === 'cold') for (const { run } of contenders) await run();
   const times = contenders.map((): number[] => []);
   for (let round = 0; round < rounds; round++) {
     for (let step = 0; step < contenders.length; step++) {

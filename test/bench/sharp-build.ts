@@ -39,11 +39,18 @@ function words(bytes: Buffer): Uint16Array {
   return new Uint16Array(bytes.buffer.slice(bytes.byteOffset, bytes.byteOffset + bytes.byteLength));
 }
 
-/** Of all its packings the one whose files come nearest to a size. */
-export async function packingFor(sharp: typeof Sharp, file: string, out: string, wanted: number): Promise<Packing> {
+/** Of all its packings the one whose files come nearest to a size: that of the levels of some files together. */
+export async function packingFor(
+  sharp: typeof Sharp,
+  files: readonly string[],
+  out: string,
+  wanted: number,
+): Promise<Packing> {
   let best: { packing: Packing; miss: number } | null = null;
   for (const packing of PACKINGS) {
-    const miss = Math.abs(Math.log((await buildBySharp(sharp, file, out, packing)) / wanted));
+    let bytes = 0;
+    for (const file of files) bytes += await buildBySharp(sharp, file, out, packing);
+    const miss = Math.abs(Math.log(bytes / wanted));
     if (best === null || miss < best.miss) best = { packing, miss };
   }
   return best!.packing;

@@ -325,3 +325,30 @@ test.each<[string, Record<string, number>, number, number, RegExp]>([
 test.each(['monotone', 'detail', 'majority', 'epx'])('%s has no taps', (name) => {
   expect(() => build(name, 4, 2)).toThrow(TypeError);
 });
+
+describe('taps that were made before', () => {
+  test('are shared by who asks for the same, and by nobody else', () => {
+    const kernel = kernelNamed('mitchell');
+    const params = defaultParams(kernel);
+    const taps = buildTaps(kernel, params, 64, 32);
+    expect(buildTaps(kernel, { ...params }, 64, 32)).toBe(taps);
+    const [name] = Object.keys(params);
+    for (const other of [
+      buildTaps(kernel, { ...params, [name]: params[name] / 2 }, 64, 32),
+      buildTaps(kernelNamed('b-spline'), defaultParams(kernelNamed('b-spline')), 64, 32),
+    ]) {
+      expect([other.from, other.to]).toEqual([64, 32]);
+      expect(tapsOf(other, 7)).not.toEqual(tapsOf(taps, 7));
+    }
+    expect([buildTaps(kernel, params, 64, 16).to, buildTaps(kernel, params, 63, 32).from]).toEqual([16, 63]);
+  });
+
+  test('are few', () => {
+    const kernel = kernelNamed('box');
+    const first = buildTaps(kernel, {}, 1000, 1);
+    for (let from = 2; from < 100; from++) buildTaps(kernel, {}, from, 1);
+    expect(buildTaps(kernel, {}, 1000, 1)).not.toBe(first);
+    const large = buildTaps(kernel, {}, 16383, 8191);
+    expect(buildTaps(kernel, {}, 16383, 8191)).not.toBe(large);
+  });
+});

@@ -8,6 +8,7 @@ export class Died extends Error {}
 const changing = [
   'write',
   'writePieces',
+  'flush',
   'rename',
   'remove',
   'makeFolder',

@@ -2,7 +2,7 @@ import * as fs from 'node:fs';
 import { expect, test } from 'vitest';
 import { writeManifest } from '../../core/manifest/write.ts';
 import { Refusal } from '../../core/problem.ts';
-import type { Disk } from '../../extension/node/disk.ts';
+import { type Disk, DiskError } from '../../extension/node/disk.ts';
 import { openLaydown } from '../../extension/node/laydown.ts';
 import { nodeDisk } from '../../extension/node/node-disk.ts';
 import { findTraces, sweep } from '../../extension/node/sweep.ts';
@@ -85,12 +85,14 @@ test('the .next manifest is there before the first rename, and goes last', async
   const folder = newFolder(built(old));
   const calls: string[] = [];
   await lay(countingDisk(calls), folder, now);
-  const steps = calls.map((call) => call.replace(folder, '').replace(/\.[0-9a-z]+-[0-9a-f]{12}\.tmp/, ''));
+  const steps = calls.map((call) => call.replaceAll(folder, '').replaceAll(/\.[0-9a-z]+-[0-9a-f]{12}\.tmp/g, ''));
   expect(steps).toEqual([
     'write /.leaf.0.png',
     'write /.leaf.1.png',
     'write /.leaf.3.png',
     'write /.leaf.mips.json',
+    // All that was written, at once.
+    'flush /.leaf.mips.json,/.leaf.0.png,/.leaf.1.png,/.leaf.3.png',
     'rename /.leaf.mips.json',
     `flushFolder `,
     'rename /.leaf.0.png',
@@ -170,6 +172,20 @@ test('a full disk is named with the file and its bytes, and nothing is touched',
     });
     expect(filesBelow(folder)).toEqual(built(old));
   }
+});
+
+test('a disk that is full when files are flushed is named, and nothing is touched', async () => {
+  const folder = newFolder(built(old));
+  const disk: Disk = {
+    ...nodeDisk,
+    flush: async (paths) => {
+      throw new DiskError('full', paths.find((path) => path.includes('leaf.1.png'))!, 'no space is left');
+    },
+  };
+  const bytes = now['leaf.1.png'].length;
+  const path = `${folder}/leaf.1.png`;
+  expect(await problemOf(lay(disk, folder, now))).toMatchObject({ code: 'disk-full', path, values: { bytes } });
+  expect(filesBelow(folder)).toEqual(built(old));
 });
 
 test('a refused folder is named, and nothing is touched', async () => {
