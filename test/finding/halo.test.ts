@@ -1,6 +1,6 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
-import { measureHalo } from '../../core/finding/halo.ts';
+import { haloSteps, type KnownRanges, measureHalo, type Range } from '../../core/finding/halo.ts';
 import { expandIndexed, type IndexedRaster, type StraightRaster } from '../../core/raster/raster.ts';
 import { kernels, LINEAR, oneOf, POSITIVE, seeds, smallExtents, wraps } from '../fixtures/arbitrary.ts';
 import { noiseRaster, withAlpha } from '../fixtures/noise.ts';
@@ -219,3 +219,42 @@ it('never says that fewer texels overshoot than are clipped', () => {
     }
   });
 });
+
+it('is left every few rows, while ranges are bounded as well as while rows are filtered', () => {
+  const raster = noiseRaster(3, { width: 2048, height: 512 }, 1, 8, 'noise');
+  const settings = treatment({ kernel: both('lanczos3'), levels: { first: 0, last: 1 } });
+  const known = keptRanges();
+  const stops = (): number => [...haloSteps(raster, settings, undefined, undefined, known)].length;
+  const first = stops();
+  expect(known.kept).toBe(1);
+  // Ranges are known the second time: what is left are 2^20 texels, filtered 2^17 at a time. Each of their two bounds compares four rows for
+  // each that it makes, 2^21 codes, 2^20 at a time.
+  const rows = stops();
+  expect(known.kept).toBe(1);
+  expect(rows).toBe(8);
+  expect(first - rows).toBeGreaterThanOrEqual(4);
+});
+
+it('is the same against ranges that another kernel left', () => {
+  const raster = withAlpha(noiseRaster(4, { width: 45, height: 31 }, 4, 8, 'extremes'), 2, 3, 3);
+  const known = keptRanges();
+  for (const name of ['lanczos3', 'catmull-rom']) {
+    const settings = treatment({ kernel: both(name) });
+    const steps = haloSteps(raster, settings, undefined, undefined, known);
+    let step = steps.next();
+    while (step.done !== true) step = steps.next();
+    expect(step.value).toEqual(measureHalo(raster, settings));
+  }
+  expect(known.kept).toBe(1);
+});
+
+function keptRanges(): KnownRanges & { readonly kept: number } {
+  const ranges = new Map<string, readonly Range[]>();
+  return {
+    get: (key) => ranges.get(key),
+    put: (key, range) => void ranges.set(key, range),
+    get kept() {
+      return ranges.size;
+    },
+  };
+}
