@@ -1,6 +1,7 @@
 import { passingCode } from '../chain/coverage.ts';
 import { roundedCode, srgbEncoder } from '../color/encoder.ts';
 import { decodeTable } from '../color/transfer.ts';
+import { eightBits, lampDirection } from '../proof/screen.ts';
 import type { Picture } from '../proof/want.ts';
 import { maxCode } from '../raster/raster.ts';
 import type { Treatment } from '../treatment/treatment.ts';
@@ -36,14 +37,13 @@ export function isSeenThrough({ meaning }: Picture, show: SheetShow): boolean {
   return meaning.alpha !== null && (show === 'color' || show === 'mask');
 }
 
-/** floor(v 255 / 65535 + 1/2).  [PNG3, Sample depth rescaling] */
-function eightBits(code: number, picture: Picture): number {
-  return picture.depth === 8 ? code : Math.floor((code * 255) / 65535 + 0.5);
+function shown(code: number, { depth }: Picture): number {
+  return depth === 8 ? code : eightBits(code);
 }
 
 function codesOf(picture: Picture): (texel: number) => Rgb {
   const { channels, codes, meaning } = picture;
-  const at = (texel: number, index: number): number => eightBits(codes[texel * channels + index], picture);
+  const at = (texel: number, index: number): number => shown(codes[texel * channels + index], picture);
   if (channels >= 3) return (texel) => [at(texel, 0), at(texel, 1), at(texel, 2)];
   // Two channels without alpha are the x and y of a normal.
   if (channels === 2 && meaning.alpha === null) return (texel) => [at(texel, 0), at(texel, 1), 255];
@@ -77,7 +77,7 @@ function channel(picture: Picture, letter: 'r' | 'g' | 'b' | 'a'): Shade {
   const front = channels >= 3 ? 'rgb'.indexOf(letter) : 0;
   const index = letter === 'a' ? (channels % 2 === 0 ? channels - 1 : null) : front;
   return (texel) => {
-    const code = index === null ? 255 : eightBits(codes[texel * channels + index], picture);
+    const code = index === null ? 255 : shown(codes[texel * channels + index], picture);
     return [code, code, code];
   };
 }
@@ -100,10 +100,7 @@ function lit(
   const { normal } = meaning;
   if (normal === null) return codesOf(picture);
   const max = maxCode(depth);
-  const radius = Math.sqrt(lamp.x * lamp.x + lamp.y * lamp.y);
-  const scale = radius > LOWEST_LAMP ? LOWEST_LAMP / radius : 1;
-  const [lx, ly] = [lamp.x * scale, lamp.y * scale];
-  const lz = Math.sqrt(1 - lx * lx - ly * ly);
+  const { x: lx, y: ly, z: lz } = lampDirection(lamp);
   const up = treatment.normal.y === 'up' ? 1 : -1;
   const encoder = srgbEncoder(8);
   return (texel) => {
@@ -115,6 +112,3 @@ function lit(
     return [code, code, code];
   };
 }
-
-/** The lamp never sinks below some ten degrees, where nothing but ridges would be lit. */
-const LOWEST_LAMP = 0.985;

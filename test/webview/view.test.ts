@@ -1,12 +1,13 @@
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import { decodeSrgb, encodeSrgb } from '../../core/color/transfer.ts';
+import { eightBits, lampDirection } from '../../core/proof/screen.ts';
 import { haloMark, type Meaning, type Picture } from '../../core/proof/want.ts';
 import type { ChannelCount } from '../../core/raster/raster.ts';
 import { type Rgb, rampAt } from '../../webview/page/prints/backdrop.ts';
 import { fittingZoom, place, visibleSpan } from '../../webview/page/prints/frame.ts';
-import { codeOfLight, eightBits } from '../../webview/page/prints/texel.ts';
-import { colorDistance, lampDirection, shaderOf, type View } from '../../webview/page/prints/view.ts';
+import { codeOfLight } from '../../webview/page/prints/texel.ts';
+import { colorDistance, shaderOf, type View } from '../../webview/page/prints/view.ts';
 import { printTrack, sectionCsv } from '../../webview/page/readings/section.ts';
 
 const plain: Meaning = { transfer: 'srgb', color: true, alpha: null, premultiplied: false, normal: null };

@@ -1,4 +1,4 @@
-import { html, LitElement, nothing } from 'lit';
+import { html, nothing } from 'lit';
 import { passingCode } from '../../../core/chain/coverage.ts';
 import { light, percent } from '../../../core/figures.ts';
 import { defaultParams, findKernel, kernels } from '../../../core/kernel/table.ts';
@@ -6,7 +6,6 @@ import { say } from '../../../core/problem.ts';
 import type { Slot } from '../../../core/proof/slot.ts';
 import type { Picture, Print } from '../../../core/proof/want.ts';
 import type { Treatment } from '../../../core/treatment/treatment.ts';
-import { controls } from '../form/controls.ts';
 import { isProblem } from '../proof/bench-link.ts';
 import type { Model } from '../proof/model.ts';
 import { type Against, type State, slotAgainst } from '../proof/state.ts';
@@ -21,49 +20,19 @@ import { besideFigure } from './beside-figure.ts';
 import { afterGesture } from './gesture.ts';
 import './print-card.ts';
 import type { CardAction, CardFacts, CardFigure } from './print-card.ts';
-import { rowStyles } from './print-row.styles.ts';
 import type { Scene, StageGesture } from './print-stage.ts';
+import { WholeRow } from './whole-row.ts';
 
 /** The row of prints: the settings' own first, then what is tried beside it, all at one place and one zoom. */
-export class PrintRow extends LitElement {
-  static override properties = {
-    model: { attribute: false },
-    tick: { type: Number },
-    swapped: { type: Boolean },
-    pointing: { state: true },
-  };
-  declare model: Model | null;
-  declare tick: number;
-  /** Whether partners are shown in place of the prints, while a key is held. */
-  declare swapped: boolean;
-  /** Whether the hand is on a print: only then is the cursor drawn, and the art is left alone otherwise. */
-  declare pointing: boolean;
+export class PrintRow extends WholeRow<Model> {
   /** What each print last showed: it stands in, stretched, until the next is made. */
   readonly #shown = new Map<number, Picture>();
-
-  static override styles = [controls, rowStyles];
-
-  constructor() {
-    super();
-    this.model = null;
-    this.tick = 0;
-    this.swapped = false;
-    this.pointing = false;
-  }
 
   override render() {
     const { model } = this;
     if (model === null || model.seen === null || model.treatment === null) return nothing;
-    return html`<div
-      class="row"
-      role="list"
-      aria-label=${t('Prints')}
-      @pointerenter=${() => this.#point('on')}
-      @pointerleave=${() => this.#point('off')}
-      @focusin=${() => this.#point('on')}
-      @focusout=${() => this.#point('off')}
-    >
-      ${model.state.slots.map((slot) => {
+    return this.row(
+      model.state.slots.map((slot) => {
         const facts = this.#facts(model, slot);
         return html`<print-card
           role="listitem"
@@ -75,8 +44,8 @@ export class PrintRow extends LitElement {
           @focusin=${() => model.state.selected !== slot.id && model.set({ selected: slot.id })}
           @pointerdown=${() => model.state.selected !== slot.id && model.set({ selected: slot.id })}
         ></print-card>`;
-      })}
-    </div>`;
+      }),
+    );
   }
 
   #facts(model: Model, slot: Slot): CardFacts {
@@ -142,10 +111,6 @@ export class PrintRow extends LitElement {
         ...seen.extent,
       }),
     };
-  }
-
-  #point(which: 'on' | 'off'): void {
-    this.pointing = which === 'on';
   }
 
   #gesture(model: Model, gesture: StageGesture): void {

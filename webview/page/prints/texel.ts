@@ -1,4 +1,5 @@
 import { decodeTable, encodeSrgb } from '../../../core/color/transfer.ts';
+import { eightBits } from '../../../core/proof/screen.ts';
 import type { Picture } from '../../../core/proof/want.ts';
 import { maxCode } from '../../../core/raster/raster.ts';
 
@@ -38,11 +39,6 @@ export function texelReader(picture: Picture): TexelReader {
     },
     alpha,
   };
-}
-
-/** floor(v 255 / 65535 + 1/2).  [PNG3, Sample depth rescaling] */
-export function eightBits(code: number): number {
-  return Math.floor((code * 255) / 65535 + 0.5);
 }
 
 /** Linear light of an 8-bit sRGB code. */

@@ -1,10 +1,11 @@
 import { luminance } from '../../../core/color/luminance.ts';
 import { oklabDistance, oklabOfLight } from '../../../core/color/oklab.ts';
+import { eightBits, lampDirection } from '../../../core/proof/screen.ts';
 import type { Picture } from '../../../core/proof/want.ts';
 import { maxCode } from '../../../core/raster/raster.ts';
 import type { Show } from '../proof/state.ts';
 import { DIFFERENCE_RAMP, type Rgb, rampAt, SIGNED_RAMP } from './backdrop.ts';
-import { codeOfLight, eightBits, LIGHT_OF_CODE, texelReader } from './texel.ts';
+import { codeOfLight, LIGHT_OF_CODE, texelReader } from './texel.ts';
 
 /** How texels are turned into pixels of the screen. */
 export interface View {
@@ -124,17 +125,6 @@ function lit(view: View, picture: Picture): Shader {
     out[0] = out[1] = out[2] = codeOfLight(0.04 + 0.76 * light);
   };
 }
-
-/** A unit vector from a point on the disc of the lamp; the middle is straight above. */
-export function lampDirection(lamp: View['lamp']): { readonly x: number; readonly y: number; readonly z: number } {
-  const radius = Math.hypot(lamp.x, lamp.y);
-  const scale = radius > LOWEST_LAMP ? LOWEST_LAMP / radius : 1;
-  const [x, y] = [lamp.x * scale, lamp.y * scale];
-  return { x, y, z: Math.sqrt(1 - x * x - y * y) };
-}
-
-/** The lamp never sinks below some ten degrees, where nothing but ridges would be lit. */
-const LOWEST_LAMP = 0.985;
 
 function difference(view: View, picture: Picture, reference: Picture): Shader {
   if (view.metric !== 'oklab') return signed(picture, reference, view.metric);

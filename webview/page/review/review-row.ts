@@ -1,4 +1,4 @@
-import { html, LitElement, nothing } from 'lit';
+import { html, nothing } from 'lit';
 import { passingCode } from '../../../core/chain/coverage.ts';
 import { light, percent } from '../../../core/figures.ts';
 import { say } from '../../../core/problem.ts';
@@ -6,10 +6,9 @@ import type { Picture } from '../../../core/proof/want.ts';
 import { JUST_SEEN } from '../../../core/review/lab.ts';
 import type { SizeFigures } from '../../../core/review/sizes.ts';
 import type { PairAnswer } from '../../../core/review/want.ts';
-import { controls } from '../form/controls.ts';
 import { afterGesture } from '../prints/gesture.ts';
-import { rowStyles } from '../prints/print-row.styles.ts';
 import type { Scene, StageGesture } from '../prints/print-stage.ts';
+import { WholeRow } from '../prints/whole-row.ts';
 import { t } from '../words/t.ts';
 import { type DifferencePicture, differencePicture } from './difference-picture.ts';
 import type { ReviewModel } from './model.ts';
@@ -19,30 +18,8 @@ import { distance } from './sizes.ts';
 import { sizeName } from './survival-axis.ts';
 
 /** Before, after and difference at the sight's size, at one place and one zoom. */
-export class ReviewPrints extends LitElement {
-  static override properties = {
-    model: { attribute: false },
-    tick: { type: Number },
-    swapped: { type: Boolean },
-    pointing: { state: true },
-  };
-  declare model: ReviewModel | null;
-  declare tick: number;
-  /** Whether the other version is shown in place of each, while a key is held. */
-  declare swapped: boolean;
-  /** Whether the hand is on a print: only then is the cursor drawn. */
-  declare pointing: boolean;
+export class ReviewPrints extends WholeRow<ReviewModel> {
   #made: { readonly marks: Uint8Array; readonly made: DifferencePicture } | null = null;
-
-  static override styles = [controls, rowStyles];
-
-  constructor() {
-    super();
-    this.model = null;
-    this.tick = 0;
-    this.swapped = false;
-    this.pointing = false;
-  }
 
   override render() {
     const { model } = this;
@@ -53,24 +30,16 @@ export class ReviewPrints extends LitElement {
     const problem = pair !== null && 'problem' in pair ? say(pair.problem) : null;
     const cards = [this.#side(model, 'before', made, problem), this.#side(model, 'after', made, problem)];
     if (model.missing('before') === null && model.missing('after') === null) cards.push(this.#difference(model, made));
-    return html`<div
-      class="row"
-      role="list"
-      aria-label=${t('Prints')}
-      @pointerenter=${() => this.#point('on')}
-      @pointerleave=${() => this.#point('off')}
-      @focusin=${() => this.#point('on')}
-      @focusout=${() => this.#point('off')}
-    >
-      ${cards.map(
+    return this.row(
+      cards.map(
         (facts) => html`<side-card
           role="listitem"
           aria-label=${facts.name}
           .facts=${facts}
           @gesture=${(event: CustomEvent<StageGesture>) => model.set(afterGesture(event.detail) ?? {})}
         ></side-card>`,
-      )}
-    </div>`;
+      ),
+    );
   }
 
   #side(model: ReviewModel, side: 'before' | 'after', pair: PairAnswer | null, problem: string | null): SideFacts {
@@ -175,10 +144,6 @@ export class ReviewPrints extends LitElement {
         ...seen.extent,
       }),
     };
-  }
-
-  #point(which: 'on' | 'off'): void {
-    this.pointing = which === 'on';
   }
 }
 
