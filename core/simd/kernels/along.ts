@@ -105,7 +105,7 @@ function sumPairs(first: usize, weights: usize, taps: i32): v128 {
 }
 
 // Without a loop over taps where their counts are common ones, and with weights that come four at a time: loads are what there is too
-// much of. That takes 0.7 to 0.8 of the time of `alongFours`, which does the phases that are symmetric or of another count.
+// much of. That takes 0.65 to 0.85 of the time of `alongFours`, which does the phases that are symmetric or of another count.
 
 /** Four channels, phases of six taps each, which Lanczos3 and a Kaiser of width 3 have where they magnify. */
 export function alongSixes(row: usize, phases: usize, out: usize, texels: i32): void {
