@@ -45,13 +45,17 @@ export interface DiskDoor {
   inspect(path: string, unsaved: ReadonlyMap<string, string>): Promise<Inspection | null>;
 }
 
-export interface Order {
-  /** Files or folders. */
-  readonly paths: readonly string[];
+/** What work may take. */
+export interface Allowance {
   /** Null leaves it to the machine. */
   readonly jobs: number | null;
   /** Null leaves it to the machine. */
   readonly memoryBytes: number | null;
+}
+
+export interface Order extends Allowance {
+  /** Files or folders. */
+  readonly paths: readonly string[];
 }
 
 export interface BuildOrder extends Order {
@@ -162,6 +166,7 @@ export interface ReviewSession {
   /** Compares the pixels of items at every size, in any order. Ends early when asked to stop. */
   review(
     indexes: readonly number[],
+    allowance: Allowance,
     cancel: CancelToken,
     done: (index: number, known: ReviewedItem) => void,
   ): Promise<void>;

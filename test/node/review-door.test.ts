@@ -3,9 +3,11 @@ import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { pathToFileURL } from 'node:url';
 import { afterAll, beforeAll, expect, test } from 'vitest';
+import type { Problem } from '../../core/problem.ts';
 import { openReviewDoor } from '../../extension/node/review/door.ts';
 import { makeMixedBranch } from '../fixtures/branch.ts';
 import { commit, git, newRepository } from '../fixtures/repository.ts';
+import { bundleOnce } from './bundle.ts';
 
 const never = { isCancellationRequested: false, onCancellationRequested: () => ({ dispose() {} }) };
 const door = openReviewDoor(pathToFileURL('/nowhere/pool.worker.js'));
@@ -55,5 +57,20 @@ test('sides of a page are the files of both commits, as long as Git says', async
   expect(sizeOf(after)).toBe(Number(git(folder, 'cat-file', '-s', 'work:foliage/fern.png')));
   const added = session.items.findIndex(({ path }) => path === 'ui/fresh.png');
   expect((await session.sides(added)).before).toEqual({ kind: 'none' });
+  session.close();
+});
+
+test('a review holds no more memory than it is allowed', async () => {
+  const real = openReviewDoor(pathToFileURL(`${await bundleOnce()}/pool.worker.js`));
+  const range = { kind: 'branch', base: 'main', tip: 'work' } as const;
+  const session = await real.open({ kind: 'range', folder, range }, never);
+  const at = session.items.findIndex(({ path }) => path === 'foliage/fern.png');
+  const codesOf = async (memoryBytes: number | null) => {
+    const problems: Problem[] = [];
+    await session.review([at], { jobs: 1, memoryBytes }, never, (_, known) => problems.push(...known.problems));
+    return problems.map(({ code }) => code);
+  };
+  expect(await codesOf(1000)).toContain('too-much-memory');
+  expect(await codesOf(null)).not.toContain('too-much-memory');
   session.close();
 });

@@ -1,6 +1,7 @@
 import * as vscode from 'vscode';
 import { type Problem, Refusal } from '../../../core/problem.ts';
 import type { GlancedItem, Platform, ReviewSession, ReviewSubject } from '../platform.ts';
+import { readConfiguration } from '../settings/configuration.ts';
 import type { LookedAt } from './looked.ts';
 import { openRow, type ReviewRow, sortRows } from './row.ts';
 
@@ -106,7 +107,8 @@ export class ReviewDesk implements vscode.Disposable {
     this.#to('pixels');
     try {
       const indexes = open.map(({ index }) => index);
-      await session.review(indexes, token, (index, { verdict, impact, review, problems }) => {
+      const { jobs, memoryBytes } = readConfiguration(vscode.Uri.file(session.folder));
+      await session.review(indexes, { jobs, memoryBytes }, token, (index, { verdict, impact, review, problems }) => {
         if (token.isCancellationRequested) return;
         this.#put(index, { verdict, impact, review, problems, settled: true });
       });

@@ -72,6 +72,7 @@ function sessionOf(list: ReviewList, versions: Versions, workerUrl: URL) {
     },
     async review(
       indexes: readonly number[],
+      allowance: { readonly jobs: number | null; readonly memoryBytes: number | null },
       token: CancelToken,
       done: (index: number, known: Reviewed) => void,
     ): Promise<void> {
@@ -79,8 +80,9 @@ function sessionOf(list: ReviewList, versions: Versions, workerUrl: URL) {
       const stop = () => Atomics.store(new Int32Array(flag), 0, 1);
       if (token.isCancellationRequested) stop();
       const listening = token.onCancellationRequested(stop);
-      const memoryBytes = defaultMemoryBytes();
-      const run = runInWorkers({ workerUrl, workers: defaultWorkers(), memoryBytes, cancel: flag });
+      const memoryBytes = allowance.memoryBytes ?? defaultMemoryBytes();
+      const workers = allowance.jobs ?? defaultWorkers();
+      const run = runInWorkers({ workerUrl, workers, memoryBytes, cancel: flag });
       try {
         const asked = indexes.map((index) => entries[index]);
         await reviewEntries(asked, { run, memoryBytes }, (at, reviewed) => {
