@@ -5,12 +5,24 @@ import { type Codes, type Extent, expandIndexed, type Raster } from '../raster/r
  *  byte first whatever the host's order. Lower-case hexadecimal. An indexed raster is hashed as the colors it stands for
  *  (RGBA where it carries alpha, else RGB), so an indexed file and its expanded twin agree, and a palette may be reordered. */
 export function hashPixels(raster: Raster, newHash: () => Hash): string {
+  const steps = hashSteps(raster, newHash);
+  for (;;) {
+    const { done, value } = steps.next();
+    if (done === true) return value;
+  }
+}
+
+/** The same in pieces of less than a millisecond, so that others can work between them, or it can be left. */
+export function* hashSteps(raster: Raster, newHash: () => Hash): Generator<undefined, string> {
   const { width, height } = raster.extent;
   const form = raster.kind === 'indexed' ? expandedForm(raster.alphaCount) : raster;
   const hash = new PixelHash(raster.extent, form.channels, form.depth, newHash);
   // In bands of rows, so that neither expansion nor byte order needs a second image.
   const bandRows = Math.max(1, Math.floor(BAND_TEXELS / width));
-  for (let top = 0; top < height; top += bandRows) hash.update(band(raster, top, Math.min(bandRows, height - top)));
+  for (let top = 0; top < height; top += bandRows) {
+    hash.update(band(raster, top, Math.min(bandRows, height - top)));
+    yield;
+  }
   return hash.hex();
 }
 

@@ -4,7 +4,7 @@ import type { TargetPlace } from '../chain/levels.ts';
 import { constantRoughness, roughnessChain, roughnessOfMap } from '../chain/roughness.ts';
 import { decodeImage } from '../codec/decode.ts';
 import { openImage } from '../codec/open.ts';
-import { hashPixels } from '../codec/pixels.ts';
+import { hashSteps } from '../codec/pixels.ts';
 import type { SourceHeader } from '../codec/source.ts';
 import { obeyedGamma } from '../codec/tag.ts';
 import { type Halo, haloSteps, type KnownRanges, type Range } from '../finding/halo.ts';
@@ -114,7 +114,7 @@ export class ProofBench {
     if ('lod' in image) return { kind: 'pixels', pixels: '' };
     const chain = await this.#outputChain(treatmentFor(treatment, image), image, output, cancel);
     const { raster } = imageOf(chain, image, output === 'roughness' ? 'image' : output);
-    return { kind: 'pixels', pixels: hashPixels(raster, this.#ports.newHash) };
+    return { kind: 'pixels', pixels: await this.#inSteps(hashSteps(raster, this.#ports.newHash), cancel) };
   }
 
   async #outputChain(
@@ -196,15 +196,18 @@ export class ProofBench {
     const known = this.#halos.get(key);
     if (known !== undefined) return known;
     const steps = measureMaps(this.#source, treatment, this.#ports.engine, this.#ranges);
-    let step = steps.next();
-    while (step.done !== true) {
-      await this.#ports.pause();
-      if (cancel.cancelled) throw new Cancelled();
-      step = steps.next();
-    }
-    const maps = step.value;
+    const maps = await this.#inSteps(steps, cancel);
     this.#halos.put(key, maps);
     return maps;
+  }
+
+  async #inSteps<T>(steps: Generator<undefined, T>, cancel: Cancel): Promise<T> {
+    for (;;) {
+      const { done, value } = steps.next();
+      if (done === true) return value;
+      await this.#ports.pause();
+      if (cancel.cancelled) throw new Cancelled();
+    }
   }
 
   /** The chain from a level on: what is finer than a print takes most of the time, and nobody looks at it. */

@@ -215,6 +215,22 @@ test('what is no longer wanted ends', async () => {
   await expect(bench.answer({ kind: 'levels', treatment: treatment() }, cancel)).rejects.toBeInstanceOf(Cancelled);
 });
 
+test('a hash that is no longer wanted ends, though its print is made', async () => {
+  const cancel = { cancelled: false };
+  let cancels = false;
+  const tall = noiseRaster(4, { width: 256, height: 512 }, 3, 8, 'noise');
+  const bench = await ProofBench.open(await encodePng(tall, deflate), 'a.png', {
+    ...ports,
+    pause: async () => {
+      cancel.cancelled = cancels;
+    },
+  });
+  const want = { treatment: treatment(), image: { level: 0 } } as const;
+  await bench.answer({ kind: 'print', ...want }, cancel);
+  cancels = true;
+  await expect(bench.answer({ kind: 'pixels', ...want }, cancel)).rejects.toBeInstanceOf(Cancelled);
+});
+
 test('levels come with a cut of each and the overshoot of those made from weights', async () => {
   const bench = await benchOf(opaque);
   const { levels, halo } = await ask(bench, { kind: 'levels', treatment: treatment() });
