@@ -1,11 +1,12 @@
 import { mkdirSync } from 'node:fs';
 import { join } from 'node:path';
-import type { Browser, Locator, Page } from 'playwright-core';
+import type { Browser, Page } from 'playwright-core';
 import { afterAll, afterEach, beforeAll, describe, expect, test } from 'vitest';
 import { HARMFUL, makeMixedBranch } from '../fixtures/branch.ts';
 import { write } from '../fixtures/repository.ts';
 import { top } from '../house/tree.ts';
 import { launchBrowser } from './browser.ts';
+import { namesOf, rowsOf } from './changed-textures.ts';
 import { type Host, startHost } from './server.ts';
 import { packVsix } from './vsix.ts';
 import { choice, keptBy, newPage, openWorkbench, runCommand, webviewOf } from './workbench.ts';
@@ -104,12 +105,4 @@ async function pickBranch(page: Page, tip: string, base: string): Promise<void> 
   await choice(page, tip).click();
   await page.locator('.quick-input-widget input[placeholder*="Since it left"]').waitFor();
   await choice(page, base).click();
-}
-
-function rowsOf(page: Page): Locator {
-  return page.locator('.pane').filter({ hasText: 'Changed Textures' }).locator('.monaco-list-row');
-}
-
-async function namesOf(rows: Locator): Promise<readonly string[]> {
-  return rows.locator('.label-name').allTextContents();
 }

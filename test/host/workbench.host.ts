@@ -84,9 +84,12 @@ describe('the packed extension in a workbench', () => {
     expect(statSync(vsix).size).toBeLessThan(MOST_BYTES);
   });
 
-  test('an untrusted folder can be checked and not built, and it says why', async () => {
+  test('an untrusted folder can be checked, and neither built nor reviewed, and it says why', async () => {
     await runCommand(page, 'Sizeproof: Build Textures');
     await toast(page, 'This workspace is not trusted').waitFor();
+    await runCommand(page, 'Notifications: Clear All Notifications');
+    await runCommand(page, 'Sizeproof: Review Texture Changes');
+    await toast(page, 'This workspace is not trusted, and a review runs Git').waitFor();
     await runCommand(page, 'Notifications: Clear All Notifications');
     await runCommand(page, 'Sizeproof: Check Textures');
     await toast(page, '0 as built, 2 not').waitFor();

@@ -1,4 +1,5 @@
 import type { Browser, FrameLocator, Locator, Page } from 'playwright-core';
+import { PATIENCE_MS } from './patience.ts';
 import type { Host } from './server.ts';
 
 /** A page on a host, each webview at an origin of its own, as in the product. */
@@ -38,11 +39,11 @@ export async function reloadWindow(page: Page): Promise<void> {
 /** Longest wait for a step of a try, in milliseconds. A loading editor may take the focus away, hence several tries; on a slow
  *  machine a step may be late, hence longer ones. */
 const stepMs = (tries: number): number => Math.min(3_000 * tries, 30_000);
-const TRIES = 20;
 
 /** Runs a command from the palette. Its list is made when it opens: commands of extensions that load later are not in it. */
 export async function runCommand(page: Page, label: string): Promise<void> {
   const input = page.locator('.quick-input-widget input.input');
+  const end = Date.now() + PATIENCE_MS;
   for (let tries = 1; ; tries++) {
     try {
       const step = { timeout: stepMs(tries) };
@@ -52,7 +53,7 @@ export async function runCommand(page: Page, label: string): Promise<void> {
       await choice(page, label).click(step);
       return;
     } catch (error) {
-      if (tries >= TRIES) throw error;
+      if (Date.now() > end) throw error;
       await page.keyboard.press('Escape');
       await page.locator('.part.titlebar').click({ position: { x: 200, y: 10 } });
     }
@@ -82,24 +83,45 @@ export function webviewOf(page: Page): FrameLocator {
   return page.frameLocator('iframe.webview.ready:visible').last().frameLocator('iframe#active-frame');
 }
 
-/** Picks from the extension's part of the explorer's menu. A menu that has only just opened takes no click, hence several tries. */
-export async function pickFromExplorer(page: Page, row: string, label: string): Promise<void> {
+/** Picks from the extension's part of the explorer's menu. */
+export function pickFromExplorer(page: Page, row: string, label: string): Promise<void> {
+  return pickFromMenu(page, explorerRow(page, row), ['Sizeproof', label]);
+}
+
+/** Picks from a row's menu, through those inside it. A menu that has only just opened takes no click, hence several tries. */
+export async function pickFromMenu(page: Page, row: Locator, labels: readonly string[]): Promise<void> {
   const menu = page.locator('.monaco-menu-container').first();
+  const item = (name: string) => page.getByRole('menuitem', { name, exact: true });
+  const end = Date.now() + PATIENCE_MS;
   for (let tries = 1, isPicked = false; ; tries++) {
     const step = { timeout: stepMs(tries) };
     try {
       // A slow menu may have gone after its time.
       if (isPicked && !(await menu.isVisible())) return;
-      if (!(await menu.isVisible())) await explorerRow(page, row).click({ button: 'right', ...step });
-      await page.getByRole('menuitem', { name: 'Sizeproof', exact: true }).hover(step);
-      await page.getByRole('menuitem', { name: label, exact: true }).click(step);
+      if (!(await menu.isVisible())) await row.click({ button: 'right', ...step });
+      for (const label of labels.slice(0, -1)) await item(label).hover(step);
+      await item(labels[labels.length - 1]).click(step);
       isPicked = true;
       await menu.waitFor({ state: 'hidden', ...step });
       return;
     } catch (error) {
-      if (tries >= TRIES) throw error;
+      if (Date.now() > end) throw error;
     }
   }
+}
+
+/** Whether the palette has a command, once it lists those that there are. */
+export async function hasCommand(page: Page, label: string): Promise<boolean> {
+  const input = page.locator('.quick-input-widget input.input');
+  await page.keyboard.press('F1');
+  await input.fill(`>${label}`);
+  // Where there is none, others that are like it are offered, if there are any.
+  const others = page.locator('.quick-input-list .monaco-list-row').filter({ hasText: /similar commands|No matching/ });
+  await choice(page, label).or(others).first().waitFor();
+  const isThere = await choice(page, label).isVisible();
+  await page.keyboard.press('Escape');
+  await input.waitFor({ state: 'hidden' });
+  return isThere;
 }
 
 /** Takes the path that the host's file dialog offers, which ends in this name. */

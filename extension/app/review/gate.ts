@@ -77,12 +77,13 @@ export class GitGate implements vscode.Disposable {
 
   #tell(): void {
     const has = this.#api?.repositories.some(({ state }) => changesOf(state).some(isTexture)) ?? false;
-    void vscode.commands.executeCommand('setContext', HAS_CHANGES, has);
+    void vscode.commands.executeCommand('setContext', TEXTURE_CHANGES, has ? 'some' : 'none');
   }
 }
 
-/** Whether a repository that is open has textures among its changes: menus hang on it. */
-const HAS_CHANGES = 'sizeproof.hasTextureChanges';
+/** Whether a repository that is open has textures among its changes: menus hang on it. Until the extension is awake nobody knows, and
+ *  they are there, since nothing else of them would wake it. */
+const TEXTURE_CHANGES = 'sizeproof.textureChanges';
 
 function changesOf(state: GitRepository['state']): readonly GitChange[] {
   const { workingTreeChanges, indexChanges, mergeChanges, untrackedChanges = [] } = state;

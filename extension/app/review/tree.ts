@@ -105,7 +105,7 @@ export class ReviewTree implements vscode.TreeDataProvider<string>, vscode.FileD
   }
 
   #update(): void {
-    const { rows, lookedAt, stage, subject } = this.#desk;
+    const { rows, stage, subject } = this.#desk;
     void vscode.commands.executeCommand('setContext', 'sizeproof.reviewing', subject !== null);
     void vscode.commands.executeCommand('setContext', 'sizeproof.reviewStage', stage ?? '');
     const line = (row: ReviewRow) => `${uriOf(row, this.#desk.isLooked(row))} ${describe(row)} ${row.settled}`;
@@ -116,9 +116,6 @@ export class ReviewTree implements vscode.TreeDataProvider<string>, vscode.FileD
       this.#decorations.fire(undefined);
     }
     this.#view.message = messageOf(this.#desk);
-    const left = rows.length - lookedAt;
-    this.#view.badge =
-      left === 0 ? undefined : { value: left, tooltip: vscode.l10n.t('{left} textures to look at', { left }) };
   }
 }
 
