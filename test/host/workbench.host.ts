@@ -1,5 +1,5 @@
 import { execFileSync } from 'node:child_process';
-import { existsSync, readdirSync, readFileSync, statSync } from 'node:fs';
+import { existsSync, readdirSync, readFileSync, statSync, writeFileSync } from 'node:fs';
 import { join } from 'node:path';
 import type { Browser, Page } from 'playwright-core';
 import { afterAll, afterEach, beforeAll, describe, expect, test } from 'vitest';
@@ -163,4 +163,27 @@ describe('the packed extension in a workbench', () => {
     const exported = readFileSync(join(folder, 'icon.proof.html'), 'utf8');
     expect(exported).toBe(readFileSync(join(folder, 'built', 'cli.proof.html'), 'utf8'));
   });
+
+  test('a page that would be larger than 50 MB asks first, and carries the middle where that is chosen', async () => {
+    writeFileSync(join(folder, 'large.tga'), plainTga(4096, 4300));
+    await pickFromExplorer(page, 'large.tga', 'Export Proof');
+    await choice(page, 'Page').click();
+    const dialog = page.locator('.monaco-dialog-box');
+    await dialog.getByText('The page would carry 53 MB of large.tga.').waitFor();
+    await page.screenshot({ path: join(SHOTS, 'export-asks.png') });
+    await dialog.getByRole('button', { name: 'Carry Its Middle' }).click();
+    await acceptPath(page, 'large.proof.html');
+    const file = join(folder, 'large.proof.html');
+    await expect.poll(() => existsSync(file)).toBe(true);
+    expect(readFileSync(file, 'utf8')).toContain('2048');
+    expect(statSync(file).size).toBeLessThan(50e6);
+  });
 });
+
+/** An uncompressed TGA of one color.  [TGA2, type 2] */
+function plainTga(width: number, height: number): Uint8Array {
+  const file = new Uint8Array(18 + width * height * 3).fill(90, 18);
+  file[2] = 2;
+  file.set([width & 255, width >> 8, height & 255, height >> 8, 24, 0x20], 12);
+  return file;
+}
