@@ -2,11 +2,11 @@ import { randomBytes } from 'node:crypto';
 import { pathToFileURL } from 'node:url';
 import * as vscode from 'vscode';
 import { activateApp } from './app/activate.ts';
-import { startBenchWorker } from './node/bench-worker.ts';
 import { openDoor } from './node/door.ts';
-import { nodePorts } from './node/ports.ts';
+import { nodePorts } from './node/ports/ports.ts';
 import { openReviewDoor } from './node/review/door.ts';
-import { drawSheetInThread } from './node/sheet.ts';
+import { startBenchWorker } from './node/workers/bench-worker.ts';
+import { drawSheetInThread } from './node/workers/sheet.ts';
 
 /** The extension on Node: on the desktop, or on the machine of a remote workspace. */
 export function activate(context: vscode.ExtensionContext): void {

@@ -1,7 +1,7 @@
-import { type Action, type BuildReport, buildProject, type TextureReport } from '../node/build.ts';
-import { defaultMemoryBytes } from '../node/memory.ts';
-import { rebuildProject } from '../node/rebuild.ts';
-import { cacheFolder } from '../node/stat-index.ts';
+import { type Action, type BuildReport, buildProject, type TextureReport } from '../node/project/build.ts';
+import { rebuildProject } from '../node/project/rebuild.ts';
+import { cacheFolder } from '../node/project/stat-index.ts';
+import { defaultMemoryBytes } from '../node/workers/memory.ts';
 import type { Arguments } from './arguments.ts';
 import { nameFrom } from './print.ts';
 import { openProgress } from './progress.ts';

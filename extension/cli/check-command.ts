@@ -1,7 +1,7 @@
-import { type CheckedTexture, checkProject } from '../node/check.ts';
-import { defaultMemoryBytes } from '../node/memory.ts';
-import { nodePorts } from '../node/ports.ts';
-import { cacheFolder } from '../node/stat-index.ts';
+import { nodePorts } from '../node/ports/ports.ts';
+import { type CheckedTexture, checkProject } from '../node/project/check.ts';
+import { cacheFolder } from '../node/project/stat-index.ts';
+import { defaultMemoryBytes } from '../node/workers/memory.ts';
 import type { Arguments } from './arguments.ts';
 import { nameFrom } from './print.ts';
 import { queryOf } from './query.ts';

@@ -1,6 +1,6 @@
 import { explainTexture } from '../../core/treatment/explain.ts';
-import { nodeDisk } from '../node/node-disk.ts';
-import { openProject, type ProjectRoot, type ProjectTexture } from '../node/project.ts';
+import { nodeDisk } from '../node/files/node-disk.ts';
+import { openProject, type ProjectRoot, type ProjectTexture } from '../node/project/project.ts';
 import type { Arguments } from './arguments.ts';
 import { nameFrom } from './print.ts';
 import { queryOf } from './query.ts';

@@ -1,5 +1,5 @@
 import { version } from '../../package.json';
-import { slashed } from '../node/node-disk.ts';
+import { slashed } from '../node/files/node-disk.ts';
 import { runCommand } from './run.ts';
 
 const cancel = new SharedArrayBuffer(4);

@@ -1,6 +1,6 @@
 import { relative as relativeNative } from 'node:path';
 import { type Problem, say } from '../../core/problem.ts';
-import { slashed } from '../node/node-disk.ts';
+import { slashed } from '../node/files/node-disk.ts';
 
 /** A path as people and scripts read it: relative to the working directory where there is a way, "/"-separated. */
 export function nameFrom(folder: string): (path: string) => string {

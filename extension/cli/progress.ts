@@ -1,4 +1,4 @@
-import type { Reporter } from '../node/build.ts';
+import type { Reporter } from '../node/project/build.ts';
 
 /** What a bar is drawn on: standard error, if it is a terminal. */
 export interface Terminal {

@@ -1,5 +1,5 @@
 import type { Query } from '../../core/treatment/find/select.ts';
-import { slashed } from '../node/node-disk.ts';
+import { slashed } from '../node/files/node-disk.ts';
 import type { Arguments } from './arguments.ts';
 import type { Shell } from './shell.ts';
 

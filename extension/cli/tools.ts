@@ -1,6 +1,6 @@
-import type { BuildTools } from '../node/build.ts';
-import { nodeDisk } from '../node/node-disk.ts';
-import { defaultWorkers, runInWorkers } from '../node/pool.ts';
+import { nodeDisk } from '../node/files/node-disk.ts';
+import type { BuildTools } from '../node/project/build.ts';
+import { defaultWorkers, runInWorkers } from '../node/workers/pool.ts';
 import type { Arguments } from './arguments.ts';
 import type { Shell } from './shell.ts';
 

@@ -1,6 +1,6 @@
 import { type FSWatcher, watch } from 'node:fs';
 import type { Problem } from '../../core/problem.ts';
-import { slashed } from '../node/node-disk.ts';
+import { slashed } from '../node/files/node-disk.ts';
 
 /** A change comes as many events: they are waited out for this long. */
 const QUIET_MS = 150;

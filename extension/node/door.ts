@@ -1,14 +1,14 @@
 import type { FileTree } from '../../core/port.ts';
-import { type BuildReport, type BuildTools, buildProject, type Reporter } from './build.ts';
-import { type CheckReport, checkProject } from './check.ts';
-import type { Disk } from './disk.ts';
-import { inspectTexture } from './inspect.ts';
-import { defaultMemoryBytes } from './memory.ts';
-import { nodeDisk } from './node-disk.ts';
-import { defaultWorkers, runInWorkers } from './pool.ts';
-import { nodePorts } from './ports.ts';
-import { rebuildProject } from './rebuild.ts';
-import { cacheFolder } from './stat-index.ts';
+import type { Disk } from './files/disk.ts';
+import { nodeDisk } from './files/node-disk.ts';
+import { nodePorts } from './ports/ports.ts';
+import { type BuildReport, type BuildTools, buildProject, type Reporter } from './project/build.ts';
+import { type CheckReport, checkProject } from './project/check.ts';
+import { inspectTexture } from './project/inspect.ts';
+import { rebuildProject } from './project/rebuild.ts';
+import { cacheFolder } from './project/stat-index.ts';
+import { defaultMemoryBytes } from './workers/memory.ts';
+import { defaultWorkers, runInWorkers } from './workers/pool.ts';
 
 /** What is to be worked on. Paths are absolute. Null leaves a number to the machine. */
 interface Order {

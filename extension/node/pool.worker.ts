@@ -1,9 +1,9 @@
 import { parentPort, workerData } from 'node:worker_threads';
-import type { BenchData } from './bench-worker.ts';
-import type { WorkerData } from './pool.ts';
-import { serve } from './serve.ts';
-import { serveBench } from './serve-bench.ts';
-import { type SheetData, serveSheet } from './sheet.ts';
+import type { BenchData } from './workers/bench-worker.ts';
+import type { WorkerData } from './workers/pool.ts';
+import { serve } from './workers/serve.ts';
+import { serveBench } from './workers/serve-bench.ts';
+import { type SheetData, serveSheet } from './workers/sheet.ts';
 
 const given = workerData as WorkerData | BenchData | SheetData;
 

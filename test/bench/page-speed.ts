@@ -1,7 +1,7 @@
 import { pathToFileURL } from 'node:url';
 import { parseArgs } from 'node:util';
 import { HostBench } from '../../extension/app/proof/host-bench.ts';
-import { startBenchWorker } from '../../extension/node/bench-worker.ts';
+import { startBenchWorker } from '../../extension/node/workers/bench-worker.ts';
 import { launchBrowser } from '../host/browser.ts';
 import type { Recording } from '../page/recorded.ts';
 import { measurePage, type PageSpeed, speedRecording } from '../page/speed.ts';

@@ -4,7 +4,7 @@ import { openSource } from '../../core/build/source.ts';
 import type { ChannelCount, Depth, IndexedRaster, StraightRaster } from '../../core/raster/raster.ts';
 import { plainEngine } from '../../core/resample/plain.ts';
 import type { Treatment } from '../../core/treatment/treatment.ts';
-import { nodePorts } from '../../extension/node/ports.ts';
+import { nodePorts } from '../../extension/node/ports/ports.ts';
 import { build, pngOf } from '../fixtures/built.ts';
 import { noiseRaster, withAlpha } from '../fixtures/noise.ts';
 import { both, treatment } from '../fixtures/treatment.ts';

@@ -5,7 +5,7 @@ import { buildTexture } from '../../core/build/texture.ts';
 import { openImage } from '../../core/codec/open.ts';
 import type { Cancel, Ports } from '../../core/port.ts';
 import { Cancelled } from '../../core/port.ts';
-import { nodePorts } from '../../extension/node/ports.ts';
+import { nodePorts } from '../../extension/node/ports/ports.ts';
 import { build, pngOf } from '../fixtures/built.ts';
 import { noiseRaster } from '../fixtures/noise.ts';
 import { problemOf } from '../fixtures/refusal.ts';

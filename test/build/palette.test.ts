@@ -2,7 +2,7 @@ import { describe, expect, it } from 'vitest';
 import { decodeImage } from '../../core/codec/decode.ts';
 import { openImage } from '../../core/codec/open.ts';
 import { expandIndexed, type IndexedRaster } from '../../core/raster/raster.ts';
-import { inflate } from '../../extension/node/inflate.ts';
+import { inflate } from '../../extension/node/ports/inflate.ts';
 import { build, container, judged, pngOf } from '../fixtures/built.ts';
 import { texelAt } from '../fixtures/picture.ts';
 import { both, treatment } from '../fixtures/treatment.ts';

@@ -5,7 +5,7 @@ import { buildTexture } from '../../core/build/texture.ts';
 import type { BuildPlan } from '../../core/job.ts';
 import type { IndexedRaster } from '../../core/raster/raster.ts';
 import type { Treatment } from '../../core/treatment/treatment.ts';
-import { nodePorts } from '../../extension/node/ports.ts';
+import { nodePorts } from '../../extension/node/ports/ports.ts';
 import { pngOf } from '../fixtures/built.ts';
 import { mostHeld } from '../fixtures/held.ts';
 import { noiseRaster, withAlpha } from '../fixtures/noise.ts';

@@ -3,7 +3,7 @@ import { describe, expect, it } from 'vitest';
 import { hashPixels } from '../../core/codec/pixels.ts';
 import type { ManifestImage } from '../../core/manifest/manifest.ts';
 import type { Treatment } from '../../core/treatment/treatment.ts';
-import { newHash } from '../../extension/node/hash.ts';
+import { newHash } from '../../extension/node/ports/hash.ts';
 import { type Built, build, container, judged, pngOf } from '../fixtures/built.ts';
 import { noiseRaster, withAlpha } from '../fixtures/noise.ts';
 import { flat, painted, texelAt } from '../fixtures/picture.ts';

@@ -1,6 +1,6 @@
 import { describe, expect, test } from 'vitest';
 import { openPng } from '../../core/codec/png/open.ts';
-import { inflate } from '../../extension/node/inflate.ts';
+import { inflate } from '../../extension/node/ports/inflate.ts';
 import { asJudged, decodeRgba, firstDifference, judgeRgba } from '../fixtures/judge.ts';
 import { problemOf } from '../fixtures/refusal.ts';
 import { openTestData } from '../fixtures/testdata.ts';

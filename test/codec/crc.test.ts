@@ -1,7 +1,7 @@
 import fc from 'fast-check';
 import { expect, test } from 'vitest';
 import { crc32 } from '../../core/codec/crc.ts';
-import { crc32 as nodeCrc32 } from '../../extension/node/crc.ts';
+import { crc32 as nodeCrc32 } from '../../extension/node/ports/crc.ts';
 
 const ascii = (text: string) => Uint8Array.from(text, (letter) => letter.charCodeAt(0));
 

@@ -5,7 +5,7 @@ import { crc32 } from '../../core/codec/crc.ts';
 import { decodeImage } from '../../core/codec/decode.ts';
 import { openImage } from '../../core/codec/open.ts';
 import { openPng } from '../../core/codec/png/open.ts';
-import { inflate } from '../../extension/node/inflate.ts';
+import { inflate } from '../../extension/node/ports/inflate.ts';
 import { chunk, concat, filteredBytes, ihdr, joinPng, writePng } from '../fixtures/rawpng.ts';
 import { problemOf } from '../fixtures/refusal.ts';
 import { writeTga } from '../fixtures/tga.ts';

@@ -5,8 +5,8 @@ import { compressions } from '../../core/codec/compression.ts';
 import { deflateRuns } from '../../core/codec/deflate/stream.ts';
 import { encoderFingerprint, makeSample } from '../../core/codec/encoder.ts';
 import type { Deflate } from '../../core/port.ts';
-import { deflate } from '../../extension/node/deflate.ts';
-import { newHash } from '../../extension/node/hash.ts';
+import { deflate } from '../../extension/node/ports/deflate.ts';
+import { newHash } from '../../extension/node/ports/hash.ts';
 import { simdTokens } from '../fixtures/simd.ts';
 
 describe('the sample', () => {

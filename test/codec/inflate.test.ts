@@ -1,7 +1,7 @@
 import { deflateSync } from 'node:zlib';
 import { describe, expect, test } from 'vitest';
 import { InflateError } from '../../core/port.ts';
-import { inflate } from '../../extension/node/inflate.ts';
+import { inflate } from '../../extension/node/ports/inflate.ts';
 import { concat } from '../fixtures/rawpng.ts';
 
 /** Small: read at once. Large: read in steps. Both have to behave alike. */

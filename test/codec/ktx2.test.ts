@@ -7,7 +7,7 @@ import { formats, type Ktx2Layout, layoutKtx2, type TexelMeaning } from '../../c
 import type { Ktx2Level } from '../../core/codec/ktx2/texels.ts';
 import type { Deflate } from '../../core/port.ts';
 import type { ChannelCount, Extent } from '../../core/raster/raster.ts';
-import { deflate } from '../../extension/node/deflate.ts';
+import { deflate } from '../../extension/node/ports/deflate.ts';
 import { noiseRaster } from '../fixtures/noise.ts';
 import { brokenRules, type Rule, ruleNames } from './ktx2-rules.ts';
 

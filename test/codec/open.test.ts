@@ -2,7 +2,7 @@ import { describe, expect, test } from 'vitest';
 import { imageExtension, openImage } from '../../core/codec/open.ts';
 import { PEEK_BYTES, peekImage } from '../../core/codec/peek.ts';
 import { readPointer } from '../../core/codec/pointer.ts';
-import { inflate } from '../../extension/node/inflate.ts';
+import { inflate } from '../../extension/node/ports/inflate.ts';
 import { chunk, concat, writePng } from '../fixtures/rawpng.ts';
 import { problemOf } from '../fixtures/refusal.ts';
 import { writeTga } from '../fixtures/tga.ts';

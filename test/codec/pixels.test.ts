@@ -3,7 +3,7 @@ import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import { hashPixels } from '../../core/codec/pixels.ts';
 import { expandIndexed, type IndexedRaster, type Raster, type StraightRaster } from '../../core/raster/raster.ts';
-import { newHash } from '../../extension/node/hash.ts';
+import { newHash } from '../../extension/node/ports/hash.ts';
 import { noiseRaster } from '../fixtures/noise.ts';
 
 const hash = (raster: Raster) => hashPixels(raster, newHash);

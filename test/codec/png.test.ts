@@ -2,7 +2,7 @@ import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import { decodeImage } from '../../core/codec/decode.ts';
 import { openPng } from '../../core/codec/png/open.ts';
-import { inflate } from '../../extension/node/inflate.ts';
+import { inflate } from '../../extension/node/ports/inflate.ts';
 import { asJudged, decodeRgba, firstDifference, judgeRgba } from '../fixtures/judge.ts';
 import { chunk, concat, ihdr, type PngRecipe, writePng } from '../fixtures/rawpng.ts';
 

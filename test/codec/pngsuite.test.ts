@@ -2,7 +2,7 @@ import { describe, expect, test } from 'vitest';
 import { decodeImage } from '../../core/codec/decode.ts';
 import { plainFilters } from '../../core/codec/png/filters.ts';
 import { openPng } from '../../core/codec/png/open.ts';
-import { inflate } from '../../extension/node/inflate.ts';
+import { inflate } from '../../extension/node/ports/inflate.ts';
 import { asJudged, decodeRgba, firstDifference, judgeRgba } from '../fixtures/judge.ts';
 import { problemOf } from '../fixtures/refusal.ts';
 import { simdFilters } from '../fixtures/simd.ts';

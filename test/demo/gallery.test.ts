@@ -5,7 +5,7 @@ import { expect, test } from 'vitest';
 import { decodeImage } from '../../core/codec/decode.ts';
 import { openImage } from '../../core/codec/open.ts';
 import type { IndexedRaster, StraightRaster } from '../../core/raster/raster.ts';
-import { inflate } from '../../extension/node/inflate.ts';
+import { inflate } from '../../extension/node/ports/inflate.ts';
 import { readTree, top } from '../house/tree.ts';
 import { gallery } from './paint/gallery.ts';
 import { paintIcon } from './paint/icon.ts';

@@ -4,7 +4,7 @@ import { describe, expect, test } from 'vitest';
 import { base64 } from '../../core/export/base64.ts';
 import { type CarriedBlock, documentOf } from '../../core/export/document.ts';
 import { encodeUtf8 } from '../../core/treatment/paths/utf8.ts';
-import { newHash } from '../../extension/node/hash.ts';
+import { newHash } from '../../extension/node/ports/hash.ts';
 
 const code = { script: 'document.title += "!";', worker: 'self.close();', style: 'body { margin: 0; }' };
 

@@ -4,7 +4,7 @@ import { openImage } from '../../core/codec/open.ts';
 import { isLarge, keepMiddle } from '../../core/export/keep.ts';
 import { SOURCE_LIMIT } from '../../core/export/order.ts';
 import type { StraightRaster } from '../../core/raster/raster.ts';
-import { inflate } from '../../extension/node/inflate.ts';
+import { inflate } from '../../extension/node/ports/inflate.ts';
 import { noiseRaster } from '../fixtures/noise.ts';
 import { demoOrder, rasterOrder } from './orders.ts';
 

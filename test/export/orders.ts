@@ -6,9 +6,9 @@ import type { BenchPorts } from '../../core/proof/bench.ts';
 import type { IndexedRaster, StraightRaster } from '../../core/raster/raster.ts';
 import { resolveTreatment } from '../../core/treatment/resolve.ts';
 import { parseSettings } from '../../core/treatment/settings.ts';
-import { deflate } from '../../extension/node/deflate.ts';
-import { newHash } from '../../extension/node/hash.ts';
-import { inflate } from '../../extension/node/inflate.ts';
+import { deflate } from '../../extension/node/ports/deflate.ts';
+import { newHash } from '../../extension/node/ports/hash.ts';
+import { inflate } from '../../extension/node/ports/inflate.ts';
 import { top } from '../house/tree.ts';
 
 export const ports: BenchPorts = { inflate, newHash, pause: async () => undefined };

@@ -11,7 +11,7 @@ import type { ProofOrder } from '../../core/export/order.ts';
 import { makeSheet, type Sheet } from '../../core/export/sheet.ts';
 import { expandIndexed, type StraightRaster } from '../../core/raster/raster.ts';
 import type { Treatment } from '../../core/treatment/treatment.ts';
-import { inflate } from '../../extension/node/inflate.ts';
+import { inflate } from '../../extension/node/ports/inflate.ts';
 import { noiseRaster } from '../fixtures/noise.ts';
 import { problemOf } from '../fixtures/refusal.ts';
 import { top } from '../house/tree.ts';

@@ -5,7 +5,7 @@ import { startPreferences } from '../../core/export/order.ts';
 import { OWN_SLOT, STATE_VERSION } from '../../core/proof/slot.ts';
 import { resolveTreatment } from '../../core/treatment/resolve.ts';
 import { parseSettings } from '../../core/treatment/settings.ts';
-import { readState, startState, writeState } from '../../webview/page/proof/state.ts';
+import { readState, startState, writeState } from '../../webview/page/state/state.ts';
 import { problemOf } from '../fixtures/refusal.ts';
 
 const { settings } = parseSettings(

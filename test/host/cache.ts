@@ -1,6 +1,6 @@
 import { existsSync, mkdirSync, mkdtempSync, renameSync, rmSync } from 'node:fs';
 import { join } from 'node:path';
-import { cacheFolder } from '../../extension/node/stat-index.ts';
+import { cacheFolder } from '../../extension/node/project/stat-index.ts';
 
 /** A folder of the user's cache, made once and whole: `make` fills an empty one, which then takes its place. */
 export async function cached(name: string, make: (folder: string) => Promise<void>): Promise<string> {

@@ -4,7 +4,7 @@ import type { Browser, CDPSession, Page } from 'playwright-core';
 import { afterAll, beforeAll, describe, expect, test } from 'vitest';
 import { encodePng } from '../../core/codec/png/encode.ts';
 import type { StraightRaster } from '../../core/raster/raster.ts';
-import { deflate } from '../../extension/node/deflate.ts';
+import { deflate } from '../../extension/node/ports/deflate.ts';
 import { noiseRaster } from '../fixtures/noise.ts';
 import { top } from '../house/tree.ts';
 import { launchBrowser } from './browser.ts';

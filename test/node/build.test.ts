@@ -1,8 +1,8 @@
 import * as fs from 'node:fs';
 import { expect, test } from 'vitest';
-import { nodeDisk } from '../../extension/node/node-disk.ts';
-import { nodePorts } from '../../extension/node/ports.ts';
-import { temporaryFor } from '../../extension/node/temporary.ts';
+import { nodeDisk } from '../../extension/node/files/node-disk.ts';
+import { temporaryFor } from '../../extension/node/files/temporary.ts';
+import { nodePorts } from '../../extension/node/ports/ports.ts';
 import { countingDisk, faultyDisk } from './disks.ts';
 import { filesBelow, newFolder, putFiles } from './folder.ts';
 import { build, check, settingsText, smallPng, told } from './project.ts';

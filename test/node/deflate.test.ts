@@ -2,7 +2,7 @@ import { inflateSync } from 'node:zlib';
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
 import type { DeflateHints } from '../../core/port.ts';
-import { deflate } from '../../extension/node/deflate.ts';
+import { deflate } from '../../extension/node/ports/deflate.ts';
 import { numbers } from '../fixtures/noise.ts';
 
 const anyHints: fc.Arbitrary<DeflateHints> = fc.record({ level: fc.integer({ min: 1, max: 9 }) });

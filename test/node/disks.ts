@@ -1,6 +1,6 @@
 import * as fs from 'node:fs';
-import { type Disk, DiskError, type DiskFault } from '../../extension/node/disk.ts';
-import { nodeDisk } from '../../extension/node/node-disk.ts';
+import { type Disk, DiskError, type DiskFault } from '../../extension/node/files/disk.ts';
+import { nodeDisk } from '../../extension/node/files/node-disk.ts';
 
 /** Stands for the end of the process: nothing in the house catches it. */
 export class Died extends Error {}

@@ -1,8 +1,8 @@
 import * as fs from 'node:fs';
 import { expect, test } from 'vitest';
-import type { Disk } from '../../extension/node/disk.ts';
-import { openFolderRecord } from '../../extension/node/folder-record.ts';
-import { nodeDisk } from '../../extension/node/node-disk.ts';
+import type { Disk } from '../../extension/node/files/disk.ts';
+import { nodeDisk } from '../../extension/node/files/node-disk.ts';
+import { openFolderRecord } from '../../extension/node/project/folder-record.ts';
 import { newFolder, putFiles } from './folder.ts';
 
 const files = { 'a/leaf.mips.json': '{}', 'a/leaf.1.png': 'x', 'a/b/moss.mips.json': '{}' };

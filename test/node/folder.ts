@@ -2,7 +2,7 @@ import * as fs from 'node:fs';
 import { tmpdir } from 'node:os';
 import { dirname, join } from 'node:path';
 import { afterEach } from 'vitest';
-import { slashed } from '../../extension/node/node-disk.ts';
+import { slashed } from '../../extension/node/files/node-disk.ts';
 
 const made: string[] = [];
 

@@ -1,6 +1,6 @@
 import { expect, test } from 'vitest';
 import { resolvePath } from '../../core/treatment/paths/path.ts';
-import { parentOf, relative } from '../../extension/node/path.ts';
+import { parentOf, relative } from '../../extension/node/files/path.ts';
 
 test.each([
   ['/a/b', '/a'],

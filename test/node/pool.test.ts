@@ -1,10 +1,10 @@
 import * as fs from 'node:fs';
 import { pathToFileURL } from 'node:url';
 import { expect, test } from 'vitest';
-import { defaultMemoryBytes, openMemoryGate } from '../../extension/node/memory.ts';
-import { runInWorkers } from '../../extension/node/pool.ts';
-import { temporaryFor } from '../../extension/node/temporary.ts';
-import type { Outcome, TextureJob } from '../../extension/node/texture-job.ts';
+import { temporaryFor } from '../../extension/node/files/temporary.ts';
+import { defaultMemoryBytes, openMemoryGate } from '../../extension/node/workers/memory.ts';
+import { runInWorkers } from '../../extension/node/workers/pool.ts';
+import type { Outcome, TextureJob } from '../../extension/node/workers/texture-job.ts';
 import { treatment } from '../fixtures/treatment.ts';
 import { filesBelow, newFolder } from './folder.ts';
 import { build, smallPng, told } from './project.ts';

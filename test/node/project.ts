@@ -1,15 +1,20 @@
 import { buildTexture } from '../../core/build/texture.ts';
 import type { Inflate } from '../../core/port.ts';
 import type { Query } from '../../core/treatment/find/select.ts';
-import { type BuildOptions, type BuildReport, buildProject, type Reporter } from '../../extension/node/build.ts';
-import { type CheckReport, checkProject } from '../../extension/node/check.ts';
-import type { Disk } from '../../extension/node/disk.ts';
-import { runJob } from '../../extension/node/measure-job.ts';
-import { nodeDisk } from '../../extension/node/node-disk.ts';
-import { planJob } from '../../extension/node/plan-job.ts';
-import type { RunJobs } from '../../extension/node/pool.ts';
-import { nodePorts } from '../../extension/node/ports.ts';
-import { type RebuildOptions, rebuildProject } from '../../extension/node/rebuild.ts';
+import type { Disk } from '../../extension/node/files/disk.ts';
+import { nodeDisk } from '../../extension/node/files/node-disk.ts';
+import { nodePorts } from '../../extension/node/ports/ports.ts';
+import {
+  type BuildOptions,
+  type BuildReport,
+  buildProject,
+  type Reporter,
+} from '../../extension/node/project/build.ts';
+import { type CheckReport, checkProject } from '../../extension/node/project/check.ts';
+import { type RebuildOptions, rebuildProject } from '../../extension/node/project/rebuild.ts';
+import { runJob } from '../../extension/node/workers/measure-job.ts';
+import { planJob } from '../../extension/node/workers/plan-job.ts';
+import type { RunJobs } from '../../extension/node/workers/pool.ts';
 import { writePng } from '../fixtures/rawpng.ts';
 
 /** A small RGBA picture whose colors follow from `seed`. */

@@ -1,7 +1,7 @@
 import * as fs from 'node:fs';
 import { expect, test } from 'vitest';
-import type { Disk } from '../../extension/node/disk.ts';
-import { nodeDisk } from '../../extension/node/node-disk.ts';
+import type { Disk } from '../../extension/node/files/disk.ts';
+import { nodeDisk } from '../../extension/node/files/node-disk.ts';
 import { filesBelow, newFolder } from './folder.ts';
 import { build, settingsText, smallPng } from './project.ts';
 

@@ -2,7 +2,7 @@ import { pathToFileURL } from 'node:url';
 import { expect, test } from 'vitest';
 import { makeSheet } from '../../core/export/sheet.ts';
 import { Cancelled } from '../../core/port.ts';
-import { drawSheetInThread } from '../../extension/node/sheet.ts';
+import { drawSheetInThread } from '../../extension/node/workers/sheet.ts';
 import { demoOrder, goOn, ports } from '../export/orders.ts';
 import { problemOf } from '../fixtures/refusal.ts';
 import { bundleOnce } from './bundle.ts';

@@ -1,8 +1,8 @@
 import * as fs from 'node:fs';
 import { expect, test } from 'vitest';
-import type { Disk } from '../../extension/node/disk.ts';
-import { nodeDisk } from '../../extension/node/node-disk.ts';
-import { cacheFolder, openStatIndex } from '../../extension/node/stat-index.ts';
+import type { Disk } from '../../extension/node/files/disk.ts';
+import { nodeDisk } from '../../extension/node/files/node-disk.ts';
+import { cacheFolder, openStatIndex } from '../../extension/node/project/stat-index.ts';
 import { sha256 } from '../manifest/sample.ts';
 import { faultyDisk } from './disks.ts';
 import { filesBelow, newFolder } from './folder.ts';

@@ -7,7 +7,7 @@ import { afterAll, beforeAll, expect, test } from 'vitest';
 import { crc32 } from '../../core/codec/crc.ts';
 import { encodePng } from '../../core/codec/png/encode.ts';
 import { type HostEvent, PROTOCOL } from '../../core/protocol.ts';
-import { deflate } from '../../extension/node/deflate.ts';
+import { deflate } from '../../extension/node/ports/deflate.ts';
 import { noiseRaster } from '../fixtures/noise.ts';
 import { launchBrowser } from '../host/browser.ts';
 import { top } from '../house/tree.ts';

@@ -5,7 +5,7 @@ import { buildChain } from '../../core/chain/chain.ts';
 import { encodePng } from '../../core/codec/png/encode.ts';
 import type { StraightRaster } from '../../core/raster/raster.ts';
 import { resolveTreatment } from '../../core/treatment/resolve.ts';
-import { deflate } from '../../extension/node/deflate.ts';
+import { deflate } from '../../extension/node/ports/deflate.ts';
 import { noiseRaster } from '../fixtures/noise.ts';
 import { launchBrowser } from '../host/browser.ts';
 import { showPage, waitForPrints } from './browser.ts';

@@ -8,8 +8,8 @@ import { type BuiltState, FIRST_PRINT_BYTES, type FirstPrint, type OpenReply, PR
 import type { Codes } from '../../core/raster/raster.ts';
 import { resolveTreatment } from '../../core/treatment/resolve.ts';
 import { parseSettings } from '../../core/treatment/settings.ts';
-import { newHash } from '../../extension/node/hash.ts';
-import { inflate } from '../../extension/node/inflate.ts';
+import { newHash } from '../../extension/node/ports/hash.ts';
+import { inflate } from '../../extension/node/ports/inflate.ts';
 import { top } from '../house/tree.ts';
 
 /** What a host would answer: a recording that a page is played with. */

@@ -6,7 +6,7 @@ import { pathToFileURL } from 'node:url';
 import type { Browser } from 'playwright-core';
 import { afterAll, beforeAll, expect, test } from 'vitest';
 import { type ReviewTexture, reviewPage } from '../../core/export/review-page.ts';
-import { newHash } from '../../extension/node/hash.ts';
+import { newHash } from '../../extension/node/ports/hash.ts';
 import { encodePng } from '../demo/paint/png.ts';
 import { grain, HARMFUL, halved, makeMixedBranch } from '../fixtures/branch.ts';
 import { testGitEnvironment } from '../fixtures/repository.ts';

@@ -1,6 +1,6 @@
 import type { Browser, Page } from 'playwright-core';
 import { encodePng } from '../../core/codec/png/encode.ts';
-import { deflate } from '../../extension/node/deflate.ts';
+import { deflate } from '../../extension/node/ports/deflate.ts';
 import { noiseRaster } from '../fixtures/noise.ts';
 import { waitForPrints } from './browser.ts';
 import { firstPrintOf, playData, playRecording, type Recording, record } from './recorded.ts';

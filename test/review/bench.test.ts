@@ -4,7 +4,7 @@ import { openImage } from '../../core/codec/open.ts';
 import { ProofBench } from '../../core/proof/bench.ts';
 import { ReviewBench } from '../../core/review/bench.ts';
 import { HIDDEN_MARK, type PairAnswer, type PairSide } from '../../core/review/want.ts';
-import { nodePorts } from '../../extension/node/ports.ts';
+import { nodePorts } from '../../extension/node/ports/ports.ts';
 import { encodePng } from '../demo/paint/png.ts';
 import { disc, grain, halved } from '../fixtures/branch.ts';
 import { treatment } from '../fixtures/treatment.ts';

@@ -3,7 +3,7 @@ import { fileURLToPath } from 'node:url';
 import sharp, { type KernelEnum } from 'sharp';
 import { expect, it } from 'vitest';
 import { reviewTexture } from '../../core/review/review.ts';
-import { nodePorts } from '../../extension/node/ports.ts';
+import { nodePorts } from '../../extension/node/ports/ports.ts';
 import { treatment } from '../fixtures/treatment.ts';
 
 const running = { cancelled: false };

@@ -7,7 +7,7 @@ import type { ReviewSide } from '../../core/review/subject.ts';
 import { sayVerdict } from '../../core/review/verdict.ts';
 import { seenAt } from '../../core/review/visible.ts';
 import type { Treatment } from '../../core/treatment/treatment.ts';
-import { nodePorts } from '../../extension/node/ports.ts';
+import { nodePorts } from '../../extension/node/ports/ports.ts';
 import { encodePng } from '../demo/paint/png.ts';
 import { encodeTga } from '../demo/paint/tga.ts';
 import { blades, disc, grain, halved, paint, recut, withChunk } from '../fixtures/branch.ts';

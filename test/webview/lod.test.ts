@@ -1,6 +1,6 @@
 import { describe, expect, test } from 'vitest';
-import { distanceOf, lodAt, lodOfRatio } from '../../webview/page/axis/lod.ts';
-import { axisScale, extentAt, readSize, readSizes, stopNear, stopsOf } from '../../webview/page/axis/scale.ts';
+import { distanceOf, lodAt, lodOfRatio } from '../../webview/page/state/lod.ts';
+import { axisScale, extentAt, readSize, readSizes, stopNear, stopsOf } from '../../webview/page/state/scale.ts';
 
 // Doubles through a tangent and a logarithm.
 const DOUBLES = 1e-12;

@@ -1,7 +1,7 @@
 import { afterEach, beforeEach, expect, test, vi } from 'vitest';
 import { treatmentOf } from '../../core/proof/slot.ts';
-import { readState, startState, writeState } from '../../webview/page/proof/state.ts';
-import { LEAST_DWELL, SwapHold } from '../../webview/page/proof/swap-hold.ts';
+import { readState, startState, writeState } from '../../webview/page/state/state.ts';
+import { LEAST_DWELL, SwapHold } from '../../webview/page/state/swap-hold.ts';
 import { adoptable, tidied } from '../../webview/page/treatment/change.ts';
 import { setWords, t } from '../../webview/page/words/t.ts';
 import { kernel, treatment } from '../fixtures/treatment.ts';

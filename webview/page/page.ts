@@ -8,12 +8,12 @@ import { openHostLink, type VsCodeApi } from '../link/host.ts';
 import type { ProofLink } from '../link/proof-link.ts';
 import type { ReviewLink } from '../link/review-link.ts';
 import './page.css';
-import { BenchLink } from './proof/bench-link.ts';
-import { Model } from './proof/model.ts';
 import { ProofPage } from './proof/proof-page.ts';
 import { ReviewBenchLink } from './review/bench-link.ts';
 import { ReviewModel } from './review/model.ts';
 import { ReviewPage } from './review/review-page.ts';
+import { BenchLink } from './state/bench-link.ts';
+import { Model } from './state/model.ts';
 
 declare function acquireVsCodeApi(): VsCodeApi;
 

@@ -2,7 +2,7 @@ import { createHash } from 'node:crypto';
 import { type LfsPointer, readPointer } from '../../../core/codec/pointer.ts';
 import { refuse } from '../../../core/problem.ts';
 import { joinPath } from '../../../core/treatment/paths/path.ts';
-import type { Disk } from '../disk.ts';
+import type { Disk } from '../files/disk.ts';
 
 /** The file that a Git LFS pointer stands for, from the store of its repository; its SHA-256 is checked, and nothing is
  *  downloaded. Throws Refusal where it is not there, damaged, or larger than `limitBytes`.  [GitLFS, "Specification"] */

@@ -1,6 +1,6 @@
 import { refuse } from '../../../core/problem.ts';
 import { resolvePath } from '../../../core/treatment/paths/path.ts';
-import { slashed } from '../node-disk.ts';
+import { slashed } from '../files/node-disk.ts';
 import { runGit, tryGit } from './run.ts';
 
 /** A repository with a working tree. Paths are absolute, "/"-separated. */

@@ -1,7 +1,7 @@
 import type { FileTree } from '../../../core/port.ts';
 import { Refusal } from '../../../core/problem.ts';
 import { joinPath, pathBelow } from '../../../core/treatment/paths/path.ts';
-import type { Disk } from '../disk.ts';
+import type { Disk } from '../files/disk.ts';
 import type { FileRef, Part } from './changes.ts';
 import { runGit } from './run.ts';
 import type { Versions } from './versions.ts';

@@ -1,5 +1,5 @@
 import { refuse } from '../../../core/problem.ts';
-import type { Disk } from '../disk.ts';
+import type { Disk } from '../files/disk.ts';
 import type { FileRef } from './changes.ts';
 import { resolveLfs } from './lfs.ts';
 import { type Objects, openObjects } from './objects.ts';

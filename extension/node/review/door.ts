@@ -1,12 +1,12 @@
 import { type Cancel, Cancelled } from '../../../core/port.ts';
+import { nodeDisk } from '../files/node-disk.ts';
+import { parentOf } from '../files/path.ts';
 import { listBranches, listCommits } from '../git/log.ts';
 import type { Range } from '../git/range.ts';
 import { openRepository } from '../git/repository.ts';
 import { openVersions, type Versions } from '../git/versions.ts';
-import { defaultMemoryBytes } from '../memory.ts';
-import { nodeDisk } from '../node-disk.ts';
-import { parentOf } from '../path.ts';
-import { defaultWorkers, runInWorkers } from '../pool.ts';
+import { defaultMemoryBytes } from '../workers/memory.ts';
+import { defaultWorkers, runInWorkers } from '../workers/pool.ts';
 import { listFiles } from './files.ts';
 import { type GlancedEntry, glanceEntries } from './glance.ts';
 import { judgedReview } from './judge.ts';

@@ -1,9 +1,9 @@
 import { Refusal } from '../../../core/problem.ts';
 import { baseName, resolvePath } from '../../../core/treatment/paths/path.ts';
-import type { Disk } from '../disk.ts';
+import type { Disk } from '../files/disk.ts';
+import { parentOf } from '../files/path.ts';
 import type { FileRef } from '../git/changes.ts';
 import { openRepository } from '../git/repository.ts';
-import { parentOf } from '../path.ts';
 import type { ReviewList } from './list.ts';
 import { openSettings } from './settings.ts';
 

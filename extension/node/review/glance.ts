@@ -5,11 +5,12 @@ import { POINTER_BYTES } from '../../../core/finding/not-downloaded.ts';
 import { type Cancel, Cancelled } from '../../../core/port.ts';
 import { Refusal } from '../../../core/problem.ts';
 import { type Glance, type GlanceSide, glanceAt } from '../../../core/review/glance.ts';
-import type { Disk } from '../disk.ts';
+import type { Disk } from '../files/disk.ts';
 import type { FileRef } from '../git/changes.ts';
 import { readLfs } from '../git/lfs.ts';
 import type { Versions } from '../git/versions.ts';
-import type { ReviewEntry, ReviewVersion } from './list.ts';
+import type { ReviewVersion } from '../workers/review-job.ts';
+import type { ReviewEntry } from './list.ts';
 
 export interface GlancedEntry {
   readonly entry: ReviewEntry;

@@ -5,12 +5,13 @@ import { Cancelled } from '../../../core/port.ts';
 import type { Problem } from '../../../core/problem.ts';
 import { SETTINGS_NAME } from '../../../core/treatment/find/root.ts';
 import { baseName, pathBelow } from '../../../core/treatment/paths/path.ts';
-import type { ReviewLimits, Treatment } from '../../../core/treatment/treatment.ts';
-import type { Disk } from '../disk.ts';
+import type { ReviewLimits } from '../../../core/treatment/treatment.ts';
+import type { Disk } from '../files/disk.ts';
 import { type Change, type ChangeList, type FileRef, listChanges, type Part } from '../git/changes.ts';
 import type { Range } from '../git/range.ts';
 import { openTree } from '../git/tree.ts';
 import type { Versions } from '../git/versions.ts';
+import type { ReviewVersion } from '../workers/review-job.ts';
 import { openSettings, type SettingsOf } from './settings.ts';
 
 /** A texture that a range changes: its file, or what the settings make of it. */
@@ -29,13 +30,6 @@ export interface ReviewEntry {
   readonly manifest: 'none' | 'fresh' | 'stale';
   /** What is wrong with the settings that apply. Paths are absolute. */
   readonly problems: readonly Problem[];
-}
-
-/** One version of a texture and the treatment that it has. */
-export interface ReviewVersion {
-  readonly file: FileRef;
-  /** Where the settings of this end cannot be read, those of the other; null where neither can. */
-  readonly treatment: Treatment | null;
 }
 
 export interface ReviewList {

@@ -1,7 +1,7 @@
 import { exitCode, type Problem } from '../../../core/problem.ts';
 import { overReviewLimits } from '../../../core/review/limits.ts';
 import type { Review } from '../../../core/review/review.ts';
-import type { RunJobs } from '../pool.ts';
+import type { RunJobs } from '../workers/pool.ts';
 import { reviewJob } from './job.ts';
 import type { ReviewEntry } from './list.ts';
 

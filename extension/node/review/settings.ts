@@ -6,8 +6,8 @@ import { globMatcher } from '../../../core/treatment/paths/glob.ts';
 import { joinPath, pathBelow } from '../../../core/treatment/paths/path.ts';
 import { resolveTreatment } from '../../../core/treatment/resolve.ts';
 import type { ReviewLimits, Treatment } from '../../../core/treatment/treatment.ts';
+import { parentOf } from '../files/path.ts';
 import type { EndTree } from '../git/tree.ts';
-import { parentOf } from '../path.ts';
 
 /** What the settings of one end say of a file. */
 export interface SettingsOf {

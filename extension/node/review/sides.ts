@@ -1,7 +1,8 @@
 import { Refusal } from '../../../core/problem.ts';
 import type { PairSide } from '../../../core/review/want.ts';
 import type { Versions } from '../git/versions.ts';
-import type { ReviewEntry, ReviewVersion } from './list.ts';
+import type { ReviewVersion } from '../workers/review-job.ts';
+import type { ReviewEntry } from './list.ts';
 
 /** A file that a page is given: moving more takes many seconds. */
 const PAGE_BYTES = 256 * 1024 * 1024;

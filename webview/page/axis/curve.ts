@@ -1,5 +1,5 @@
 import { svg } from 'lit';
-import type { AxisScale } from './scale.ts';
+import type { AxisScale } from '../state/scale.ts';
 
 /** One thing that is followed along the axis. */
 export interface Curve {

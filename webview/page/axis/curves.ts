@@ -1,7 +1,7 @@
 import { light, percent } from '../../../core/figures.ts';
 import { findKernel } from '../../../core/kernel/table.ts';
 import type { PrintStats } from '../../../core/proof/want.ts';
-import type { Model } from '../proof/model.ts';
+import type { Model } from '../state/model.ts';
 import { t } from '../words/t.ts';
 import type { Curve } from './curve.ts';
 

@@ -1,17 +1,17 @@
 import { css, html, LitElement, nothing } from 'lit';
 import { byteText, extentText } from '../../../core/figures.ts';
 import { controls } from '../form/controls.ts';
-import type { Model } from '../proof/model.ts';
 import { copy } from '../readings/copy.ts';
 import { csvText } from '../readings/csv.ts';
+import { distanceOf } from '../state/lod.ts';
+import type { Model } from '../state/model.ts';
+import type { Stop } from '../state/scale.ts';
 import { meters } from '../words/meters.ts';
 import { t } from '../words/t.ts';
 import { type Curve, isBeyond } from './curve.ts';
 import { curvesOf } from './curves.ts';
-import { distanceOf } from './lod.ts';
 import { memoryOf } from './memory.ts';
 import { isShipped } from './rows.ts';
-import type { Stop } from './scale.ts';
 import { sightOf } from './sight.ts';
 
 /** The axis as a table: every level and target with its size, its memory and what the curves show of it. */

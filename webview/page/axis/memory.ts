@@ -1,5 +1,5 @@
 import type { Extent } from '../../../core/raster/raster.ts';
-import type { Model } from '../proof/model.ts';
+import type { Model } from '../state/model.ts';
 
 /** Bytes of the codes of an image, without a file around them. */
 export function memoryOf(model: Model, { width, height }: Extent): number {

@@ -1,6 +1,6 @@
 import { svg } from 'lit';
 import type { Treatment } from '../../../core/treatment/treatment.ts';
-import type { Placed, Stop } from './scale.ts';
+import type { Placed, Stop } from '../state/scale.ts';
 
 /** Height of the thumbs, in CSS pixels. */
 export const THUMB_HEIGHT = 74;

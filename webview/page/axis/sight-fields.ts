@@ -2,13 +2,13 @@ import { css, html, LitElement, nothing } from 'lit';
 import { byteText, figure } from '../../../core/figures.ts';
 import type { Target } from '../../../core/treatment/treatment.ts';
 import { controls } from '../form/controls.ts';
-import type { Model } from '../proof/model.ts';
+import type { Model } from '../state/model.ts';
 import { meters } from '../words/meters.ts';
 import { t } from '../words/t.ts';
 import './level-table.ts';
-import { distanceOf, lodAt } from './lod.ts';
+import { distanceOf, lodAt } from '../state/lod.ts';
+import { readSizes, type Stop } from '../state/scale.ts';
 import { memoryOf } from './memory.ts';
-import { readSizes, type Stop } from './scale.ts';
 import { sightBetween, sightOf } from './sight.ts';
 
 /** Where the sight stands, as numbers that can be typed. */

@@ -1,8 +1,8 @@
 import { figure } from '../../../core/figures.ts';
 import type { Sight } from '../../../core/proof/slot.ts';
-import type { Model } from '../proof/model.ts';
+import type { Model } from '../state/model.ts';
+import type { Stop } from '../state/scale.ts';
 import { t } from '../words/t.ts';
-import type { Stop } from './scale.ts';
 
 export function sightOf(stop: Stop): Sight {
   return 'level' in stop.image

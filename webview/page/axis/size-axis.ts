@@ -1,13 +1,13 @@
 import type { Picture } from '../../../core/proof/want.ts';
-import { isProblem } from '../proof/bench-link.ts';
-import type { Model } from '../proof/model.ts';
+import { isProblem } from '../state/bench-link.ts';
+import { distanceOf } from '../state/lod.ts';
+import type { Model } from '../state/model.ts';
+import { type Stop, stopNear } from '../state/scale.ts';
 import { meters } from '../words/meters.ts';
 import { t } from '../words/t.ts';
 import type { Curve } from './curve.ts';
 import { curvesOf } from './curves.ts';
-import { distanceOf } from './lod.ts';
 import { isShipped } from './rows.ts';
-import { type Stop, stopNear } from './scale.ts';
 import { goToWorst, sightBetween, sightOf, stepFrom, valueText } from './sight.ts';
 import { type AxisFacts, directionOf, WholeAxis } from './whole-axis.ts';
 

@@ -3,7 +3,7 @@ import type { Picture } from '../../../core/proof/want.ts';
 import type { Treatment } from '../../../core/treatment/treatment.ts';
 import { BACKDROPS, CHECKER_SIDE } from '../prints/backdrop.ts';
 import { shaderOf } from '../prints/view.ts';
-import type { State } from '../proof/state.ts';
+import type { State } from '../state/state.ts';
 
 /** Paints a picture, or the middle of it, one texel a device pixel, into a canvas of its own size. */
 export function paintThumb(

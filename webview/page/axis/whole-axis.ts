@@ -4,11 +4,11 @@ import type { Picture } from '../../../core/proof/want.ts';
 import type { Treatment } from '../../../core/treatment/treatment.ts';
 import { controls } from '../form/controls.ts';
 import { textScale } from '../form/text-scale.ts';
-import type { State } from '../proof/state.ts';
+import { type AxisScale, axisScale, type Placed } from '../state/scale.ts';
+import type { State } from '../state/state.ts';
 import { t } from '../words/t.ts';
 import { type Curve, drawCurve, isBeyond } from './curve.ts';
 import { drawSight, isFirstAt, labelsAt, type Rows, rowsOf, SAME_PLACE, sizeText, THUMB_HEIGHT } from './rows.ts';
-import { type AxisScale, axisScale, type Placed } from './scale.ts';
 import { axisStyles } from './size-axis.styles.ts';
 import { paintThumb } from './thumb.ts';
 

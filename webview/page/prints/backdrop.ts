@@ -1,4 +1,4 @@
-import type { Backdrop } from '../proof/state.ts';
+import type { Backdrop } from '../state/state.ts';
 
 // The only literal colors of the page: what stands behind transparent texels, the tints of channels, and the scales of
 // differences. They are content, judged by eye, and do not follow the theme.

@@ -1,4 +1,4 @@
-import type { State } from '../proof/state.ts';
+import type { State } from '../state/state.ts';
 import type { StageGesture } from './print-stage.ts';
 
 /** What every page with prints keeps of how they are looked at. */

@@ -2,7 +2,7 @@ import type { Wrap } from '../../../core/kernel/wrap.ts';
 import { bilinearSampler, isCoded } from '../../../core/proof/sample.ts';
 import type { Picture } from '../../../core/proof/want.ts';
 import { type Extent, newCodes } from '../../../core/raster/raster.ts';
-import type { Backdrop } from '../proof/state.ts';
+import type { Backdrop } from '../state/state.ts';
 import { BACKDROPS, CHECKER_SIDE, type Rgb } from './backdrop.ts';
 import { type Placement, type Span, visibleSpan } from './frame.ts';
 import { codeOfLight } from './texel.ts';

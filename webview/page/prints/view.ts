@@ -3,7 +3,7 @@ import { oklabDistance, oklabOfLight } from '../../../core/color/oklab.ts';
 import { eightBits, lampDirection } from '../../../core/proof/screen.ts';
 import type { Picture } from '../../../core/proof/want.ts';
 import { maxCode } from '../../../core/raster/raster.ts';
-import type { Show } from '../proof/state.ts';
+import type { Show } from '../state/state.ts';
 import { DIFFERENCE_RAMP, type Rgb, rampAt, SIGNED_RAMP } from './backdrop.ts';
 import { codeOfLight, LIGHT_OF_CODE, texelReader } from './texel.ts';
 

@@ -9,11 +9,11 @@ import type { PrintStage } from '../prints/print-stage.ts';
 import '../readings/readings-strip.ts';
 import '../treatment/treatment-switches.ts';
 import '../view/view-bar.ts';
+import type { Model } from '../state/model.ts';
+import { disagreementNote, goneNote, loadingNote, type Note, noteOf, settingsNote } from '../state/note.ts';
 import { t } from '../words/t.ts';
-import type { Model } from './model.ts';
-import { disagreementNote, goneNote, loadingNote, type Note, noteOf, settingsNote } from './note.ts';
 import './top-bar.ts';
-import { wantsOf } from './wants.ts';
+import { wantsOf } from '../state/wants.ts';
 import { pageStyles, WholePage } from './whole-page.ts';
 
 /** The whole page: one axis, one row of prints, one strip of readings. */

@@ -2,10 +2,10 @@ import { css, html, LitElement, nothing } from 'lit';
 import { say } from '../../../core/problem.ts';
 import type { AdoptChange, ExportOrder, HostCall, Question } from '../../../core/protocol.ts';
 import { controls } from '../form/controls.ts';
+import { exportProof } from '../state/export-proof.ts';
+import type { Model } from '../state/model.ts';
 import { adoptable } from '../treatment/change.ts';
 import { t } from '../words/t.ts';
-import { exportProof } from './export-proof.ts';
-import type { Model } from './model.ts';
 
 /** What the file is, what the settings make of it, whether that is built, and the page's three actions. */
 export class TopBar extends LitElement {

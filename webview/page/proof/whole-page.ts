@@ -1,7 +1,7 @@
 import { css, LitElement, type PropertyDeclarations } from 'lit';
 import { controls } from '../form/controls.ts';
 import type { PrintStage } from '../prints/print-stage.ts';
-import { SwapHold } from './swap-hold.ts';
+import { SwapHold } from '../state/swap-hold.ts';
 
 /** What a page shows: it tells by `change` that something in it is another. */
 export interface WholeModel extends EventTarget {

@@ -1,4 +1,4 @@
-import type { Model } from '../proof/model.ts';
+import type { Model } from '../state/model.ts';
 import { t } from '../words/t.ts';
 
 /** Has the host put a text on the clipboard, and says what became of it. */

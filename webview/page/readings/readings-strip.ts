@@ -1,15 +1,15 @@
 import { css, html, LitElement, nothing } from 'lit';
 import { controls } from '../form/controls.ts';
-import type { Model } from '../proof/model.ts';
-import type { State } from '../proof/state.ts';
+import type { Model } from '../state/model.ts';
+import type { State } from '../state/state.ts';
 import { t } from '../words/t.ts';
 import { copy } from './copy.ts';
 import './footprint-plot.ts';
-import { cursorTexel, lineOf } from './line.ts';
+import { cursorTexel, lineOf } from '../state/line.ts';
 import { type Letter, printTrack, type Section, sectionCsv, sourceTrack } from './section.ts';
 import { weightsCsv } from './weights.ts';
 import './section-plot.ts';
-import { slotKernel, slotName, slotPicture } from './slot-picture.ts';
+import { slotKernel, slotName, slotPicture } from '../prints/slot-picture.ts';
 import './texel-readings.ts';
 
 /** What is under the cursor, as numbers: the texel, where it comes from, and a cut through source and prints. */

@@ -1,8 +1,8 @@
 import { haloSide, type Picture, type SectionAnswer } from '../../../core/proof/want.ts';
 import { maxCode } from '../../../core/raster/raster.ts';
 import { channelAt } from '../prints/view.ts';
+import { type Line, texelsAlong } from '../state/line.ts';
 import { csvText } from './csv.ts';
-import { type Line, texelsAlong } from './line.ts';
 
 /** Values of one channel along a line, in 8-bit codes; 16-bit codes are divided by 257. */
 export interface Track {

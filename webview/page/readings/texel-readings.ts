@@ -3,13 +3,13 @@ import { light } from '../../../core/figures.ts';
 import type { PrintImage } from '../../../core/proof/want.ts';
 import type { Extent } from '../../../core/raster/raster.ts';
 import { controls } from '../form/controls.ts';
+import { slotName, slotPicture } from '../prints/slot-picture.ts';
 import { colorDistance } from '../prints/view.ts';
-import type { Model } from '../proof/model.ts';
+import { cursorTexel } from '../state/line.ts';
+import type { Model } from '../state/model.ts';
+import { letGo, pinnedAt, pinsOf, togglePin } from '../state/pin.ts';
 import { t } from '../words/t.ts';
 import { copy } from './copy.ts';
-import { cursorTexel } from './line.ts';
-import { letGo, pinnedAt, pinsOf, togglePin } from './pin.ts';
-import { slotName, slotPicture } from './slot-picture.ts';
 import { readTexel, type TexelPlace, type TexelReading, texelCsv, texelText } from './texel.ts';
 
 /** The texel under the cursor as each print has it, and below it those that are pinned. */

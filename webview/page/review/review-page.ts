@@ -1,7 +1,7 @@
 import { css, html, nothing } from 'lit';
 import type { PrintStage } from '../prints/print-stage.ts';
-import { noteOf } from '../proof/note.ts';
 import { pageStyles, WholePage } from '../proof/whole-page.ts';
+import { noteOf } from '../state/note.ts';
 import { t } from '../words/t.ts';
 import type { ReviewModel } from './model.ts';
 import './review-bar.ts';

@@ -4,7 +4,7 @@ import { JUST_SEEN } from '../../../core/review/lab.ts';
 import type { Review } from '../../../core/review/review.ts';
 import type { SizeReview } from '../../../core/review/sizes.ts';
 import type { Curve } from '../axis/curve.ts';
-import { lodOfExtent, type Placed } from '../axis/scale.ts';
+import { lodOfExtent, type Placed } from '../state/scale.ts';
 import { t } from '../words/t.ts';
 import type { ReviewSight } from './state.ts';
 

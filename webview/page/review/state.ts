@@ -1,5 +1,5 @@
 import type { ReviewPreferences } from '../../../core/review/want.ts';
-import type { Show } from '../proof/state.ts';
+import type { Show } from '../state/state.ts';
 
 /** The size that is looked at. */
 export type ReviewSight =

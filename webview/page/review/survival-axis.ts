@@ -1,7 +1,7 @@
 import type { Picture } from '../../../core/proof/want.ts';
 import type { Curve } from '../axis/curve.ts';
-import { stopNear } from '../axis/scale.ts';
 import { type AxisFacts, directionOf, WholeAxis } from '../axis/whole-axis.ts';
+import { stopNear } from '../state/scale.ts';
 import { t } from '../words/t.ts';
 import type { ReviewModel } from './model.ts';
 import { curvesOf, distance, type SizeStop, sightOf } from './sizes.ts';

@@ -1,7 +1,7 @@
 import { findKernel } from '../../../core/kernel/table.ts';
 import type { Extent } from '../../../core/raster/raster.ts';
 import type { KernelChoice } from '../../../core/treatment/treatment.ts';
-import type { Stop } from '../axis/scale.ts';
+import type { Stop } from '../state/scale.ts';
 
 /** What a kernel would have to do here and cannot; null where it can make the image from the source. */
 export function unfitFor(choice: KernelChoice, stop: Stop | null, base: Extent): 'minify' | 'magnify' | null {

@@ -3,7 +3,7 @@ import type { Wrap } from '../../../core/kernel/wrap.ts';
 import type { Change } from '../../../core/proof/slot.ts';
 import type { Treatment } from '../../../core/treatment/treatment.ts';
 import { controls } from '../form/controls.ts';
-import type { Model } from '../proof/model.ts';
+import type { Model } from '../state/model.ts';
 import { t } from '../words/t.ts';
 import { tidied } from './change.ts';
 

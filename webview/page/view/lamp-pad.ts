@@ -1,7 +1,7 @@
 import { css, html, LitElement } from 'lit';
 import { figure } from '../../../core/figures.ts';
 import { controls } from '../form/controls.ts';
-import type { State } from '../proof/state.ts';
+import type { State } from '../state/state.ts';
 import { t } from '../words/t.ts';
 
 /** A disc on which the lamp is moved: its middle is straight above the surface. */

@@ -1,7 +1,7 @@
 import { css, html } from 'lit';
 import type { DIFFERENCE_RAMP } from '../prints/backdrop.ts';
 import { ZOOMS } from '../prints/frame.ts';
-import type { Show } from '../proof/state.ts';
+import type { Show } from '../state/state.ts';
 import { t } from '../words/t.ts';
 
 // What the view bars of a proof and of a review are made of.

@@ -3,11 +3,11 @@ import { kernels } from '../../../core/kernel/table.ts';
 import { controls } from '../form/controls.ts';
 import { DIFFERENCE_RAMP, SIGNED_RAMP } from '../prints/backdrop.ts';
 import { addPrint } from '../prints/print-row.ts';
+import { slotName } from '../prints/slot-picture.ts';
 import { CODE_SCALE, OKLAB_SCALE } from '../prints/view.ts';
-import type { Model } from '../proof/model.ts';
-import { outputName, outputsOf } from '../proof/output.ts';
-import { type Against, type Show, type State, slotAgainst } from '../proof/state.ts';
-import { slotName } from '../readings/slot-picture.ts';
+import type { Model } from '../state/model.ts';
+import { outputName, outputsOf } from '../state/output.ts';
+import { type Against, type Show, type State, slotAgainst } from '../state/state.ts';
 import { t } from '../words/t.ts';
 import './lamp-pad.ts';
 import {
