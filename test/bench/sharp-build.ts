@@ -15,7 +15,9 @@ export async function buildBySharp(sharp: typeof Sharp, file: string, out: strin
   mkdirSync(out, { recursive: true });
   const { width, height, channels, depth } = await sharp(file).metadata();
   const wide = depth === 'ushort';
-  const decoded = sharp(file).raw({ depth: wide ? 'ushort' : 'uchar' });
+  // Without being asked, sharp brings 16 bits to 8 as it decodes.
+  const read = wide ? sharp(file).toColourspace('rgb16') : sharp(file);
+  const decoded = read.raw({ depth: wide ? 'ushort' : 'uchar' });
   let from: { codes: Buffer; extent: Extent } = { codes: await decoded.toBuffer(), extent: { width, height } };
   let bytes = 0;
   for (const [index, extent] of extentsBelow(from.extent).entries()) {
