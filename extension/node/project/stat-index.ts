@@ -157,6 +157,7 @@ export interface NewFile {
 
 /** Writes files of the cache anew, each whole at each instant. Failing is harmless: what is not kept is found out again. */
 export async function replaceFiles(disk: Disk, news: readonly NewFile[]): Promise<void> {
+  if (news.length === 0) return;
   const written: { readonly temporary: string; readonly file: string }[] = [];
   try {
     for (const { file, print } of news) {

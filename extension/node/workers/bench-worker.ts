@@ -4,7 +4,7 @@ import type { FromBench, ToBench } from '../../../core/proof/want.ts';
 /** Starts a thread that makes prints. `workerUrl` is the bundled pool.worker.ts, with the compiled kernels beside it. */
 export function startBenchWorker(workerUrl: URL) {
   const worker = new Worker(workerUrl, {
-    workerData: { kind: 'bench', kernels: new URL('../engine.wasm', workerUrl).href },
+    workerData: { kind: 'bench', kernels: new URL('./engine.wasm', workerUrl).href },
   });
   return {
     post: (message: ToBench) => worker.postMessage(message),

@@ -35,7 +35,7 @@ export function runInWorkers({ workerUrl, workers, memoryBytes, cancel }: PoolOp
   const flag = new Int32Array(cancel);
   return async (jobs, done) => {
     const gate = openMemoryGate(memoryBytes);
-    const { kernels, missing } = readKernels(new URL('../engine.wasm', workerUrl));
+    const { kernels, missing } = readKernels(new URL('./engine.wasm', workerUrl));
     let unsaid = missing;
     let next = 0;
     const lane = async () => {

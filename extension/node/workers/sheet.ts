@@ -31,7 +31,7 @@ type SheetReply = { readonly png: Uint8Array } | { readonly problem: Problem };
 /** The same in a thread of its own, so that this one stays free. `workerUrl` is the bundled pool.worker.ts, with the compiled
  *  kernels beside it. */
 export function drawSheetInThread(order: ProofOrder, workerUrl: URL, token: CancelToken): Promise<Uint8Array> {
-  const { kernels } = readKernels(new URL('../engine.wasm', workerUrl));
+  const { kernels } = readKernels(new URL('./engine.wasm', workerUrl));
   const workerData: SheetData = { kind: 'sheet', sheet: order, kernels };
   const worker = new Worker(workerUrl, { workerData });
   return new Promise<Uint8Array>((resolve, reject) => {
