@@ -7,7 +7,7 @@ const OLDEST_NODE_MAJOR = 20;
 const BUNDLES = [
   { entry: 'extension/cli/main.ts', file: 'dist/cli.js', head: '#!/usr/bin/env node\n' },
   { entry: 'extension/node/pool.worker.ts', file: 'dist/pool.worker.js', head: '' },
-  // CommonJS, which every host loads; the package is of ES modules, hence the ending.
+  // CommonJS, which every host loads; what is made beside it are ES modules, hence the ending.
   { entry: 'extension/main.ts', file: 'dist/extension.cjs', head: '' },
 ];
 
@@ -20,7 +20,8 @@ const PAGE_BUNDLES = [
 /** VS Code 1.100, the oldest that the extension supports, is built on Chromium 132. */
 const FOR_BROWSERS = { platform: 'browser', target: 'chrome132', minify: true };
 
-/** The extension for a host in a browser; it loads nothing that does not end in `.js`. */
+/** The extension for a host in a browser, in CommonJS: the oldest one loads nothing that does not end in `.js`, and newer ones take that for an
+ *  ES module where the manifest says `"type": "module"`. So the manifest does not, and dist/package.json says it to Node. */
 const WEB_BUNDLE = { entry: 'extension/main.web.ts', file: 'dist/extension.web.js' };
 
 /** The SIMD engine's kernels, compiled; the bundles read it where it lies beside them. */
@@ -307,7 +308,10 @@ async function bundle() {
   });
 }
 
-function bundleOne({ entry, file, head }) {
+async function bundleOne({ entry, file, head }) {
+  const { mkdirSync, writeFileSync } = await import('node:fs');
+  mkdirSync('dist', { recursive: true });
+  writeFileSync('dist/package.json', '{ "type": "module" }\n');
   const isModule = file.endsWith('.js');
   return runEsbuild(entry, {
     outfile: file,

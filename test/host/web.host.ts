@@ -84,7 +84,7 @@ describe('in a host without Node, on a folder without a disk', () => {
     await proof.getByRole('button', { name: 'Adopt for this file only' }).click();
     await page.locator('.tab.dirty[data-resource-name="sizeproof.json"]').waitFor();
     await expect.poll(() => linesOf(page)).toContain('mitchell');
-    await runCommand(page, 'File: Save All');
+    await runCommand(page, 'File: Save All Files');
     await page.locator('.tab[data-resource-name="sizeproof.json"]:not(.dirty)').waitFor();
   });
 

@@ -68,6 +68,7 @@ describe('the packed extension in a workbench', () => {
       'dist/extension.cjs',
       'dist/extension.web.js',
       'dist/l10n/bundle.l10n.json',
+      'dist/package.json',
       'dist/page/page.css',
       'dist/page/page.js',
       'dist/page/worker.js',
