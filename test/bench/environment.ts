@@ -33,7 +33,17 @@ export function readEnvironment(before: number, note: string | null): Environmen
 function commit(): string {
   const git = (...args: string[]): string => execFileSync('git', args, { encoding: 'utf8' }).trim();
   try {
-    const changed = git('status', '--porcelain', '--untracked-files=no', '--', 'core', 'extension', 'test/bench');
+    const changed = git(
+      'status',
+      '--porcelain',
+      '--untracked-files=no',
+      '--',
+      'core',
+      'extension',
+      'webview',
+      'test/bench',
+      ':!test/bench/RESULTS.md',
+    );
     return git('rev-parse', '--short=10', 'HEAD') + (changed === '' ? '' : ', with changes');
   } catch {
     return 'none: not a repository';
