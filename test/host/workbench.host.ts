@@ -179,7 +179,42 @@ describe('the packed extension in a workbench', () => {
     expect(readFileSync(file, 'utf8')).toContain('2048');
     expect(statSync(file).size).toBeLessThan(50e6);
   });
+
+  test('an open proof follows the theme', async () => {
+    await explorerRow(page, 'icon.png').dblclick();
+    await page.locator('.tab[data-resource-name="icon.png"]').waitFor();
+    await runCommand(page, 'Sizeproof: Open Proof');
+    const proof = webviewOf(page);
+    await proof.locator('print-card canvas').first().waitFor();
+    const lightness = async () => {
+      const color = await proof.locator('body').evaluate((body) => getComputedStyle(body).backgroundColor);
+      const [red] = color.match(/\d+/g) ?? [];
+      return Number(red);
+    };
+    await expect.poll(lightness).toBeLessThan(DARK);
+    await runCommand(page, 'Preferences: Toggle between Light/Dark Themes');
+    await expect.poll(lightness).toBeGreaterThan(LIGHT);
+    await page.screenshot({ path: join(SHOTS, 'theme-light.png') });
+    await runCommand(page, 'Preferences: Toggle between Light/Dark Themes');
+    await expect.poll(lightness).toBeLessThan(DARK);
+  });
+
+  test('a settings file is completed as it is typed', async () => {
+    await explorerRow(page, 'sizeproof.json').dblclick();
+    await page.locator('.tab.active[data-resource-name="sizeproof.json"]').waitFor();
+    await page.locator('.editor-instance .view-lines').last().click();
+    await page.keyboard.press('Control+Home');
+    await page.keyboard.press('End');
+    await page.keyboard.type('\n"');
+    const offered = page.locator('.suggest-widget.visible .monaco-list-row');
+    await offered.filter({ hasText: 'outDir' }).first().waitFor();
+    await page.screenshot({ path: join(SHOTS, 'settings-completed.png') });
+    await page.keyboard.press('Escape');
+  });
 });
+
+/** Red of a page's ground in a dark theme is less than this, and in a light one more; of 255. */
+const [DARK, LIGHT] = [80, 200];
 
 /** An uncompressed TGA of one color.  [TGA2, type 2] */
 function plainTga(width: number, height: number): Uint8Array {
