@@ -7,7 +7,7 @@ import { top } from '../house/tree.ts';
 import { launchBrowser } from './browser.ts';
 import { type Host, startHost } from './server.ts';
 import { packMemlab, packVsix } from './vsix.ts';
-import { explorerRow, newPage, openWorkbench, runCommand, toast, webviewOf } from './workbench.ts';
+import { explorerRow, heard, newPage, openWorkbench, runCommand, webviewOf } from './workbench.ts';
 import { makeWorkspace } from './workspace.ts';
 
 const SHOTS = join(top, 'dist', 'test', 'host');
@@ -74,7 +74,7 @@ describe('in a host without Node, on a folder without a disk', () => {
 
   test.each(['Build Textures', 'Check Textures', 'Rebuild from Manifests'])('%s says why not', async (command) => {
     await runCommand(page, `Sizeproof: ${command}`);
-    await toast(page, NO_DISK).waitFor();
+    await heard(page, NO_DISK);
     await runCommand(page, 'Notifications: Clear All Notifications');
   });
 

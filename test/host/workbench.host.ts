@@ -11,11 +11,11 @@ import {
   acceptPath,
   choice,
   explorerRow,
+  heard,
   newPage,
   openWorkbench,
   pickFromExplorer,
   runCommand,
-  toast,
   webviewOf,
 } from './workbench.ts';
 import { makeWorkspace } from './workspace.ts';
@@ -87,13 +87,13 @@ describe('the packed extension in a workbench', () => {
 
   test('an untrusted folder can be checked, and neither built nor reviewed, and it says why', async () => {
     await runCommand(page, 'Sizeproof: Build Textures');
-    await toast(page, 'This workspace is not trusted').waitFor();
+    await heard(page, 'This workspace is not trusted');
     await runCommand(page, 'Notifications: Clear All Notifications');
     await runCommand(page, 'Sizeproof: Review Texture Changes');
-    await toast(page, 'This workspace is not trusted, and a review runs Git').waitFor();
+    await heard(page, 'This workspace is not trusted, and a review runs Git');
     await runCommand(page, 'Notifications: Clear All Notifications');
     await runCommand(page, 'Sizeproof: Check Textures');
-    await toast(page, '0 as built, 2 not').waitFor();
+    await heard(page, '0 as built, 2 not');
     expect(readdirSync(folder).sort()).toEqual(['icon.png', 'leaf.png']);
   });
 
@@ -108,7 +108,7 @@ describe('the packed extension in a workbench', () => {
     await page.keyboard.press('Escape');
     await runCommand(page, 'Notifications: Clear All Notifications');
     await pickFromExplorer(page, 'icon.png', 'Build Textures');
-    await toast(page, '1 built, 0 unchanged, 0 failed').waitFor();
+    await heard(page, '1 built, 0 unchanged, 0 failed');
     expect(readdirSync(join(folder, 'built'))).toContain('icon.mips.json');
   });
 

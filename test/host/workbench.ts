@@ -69,8 +69,29 @@ export function choice(page: Page, name: string): Locator {
 }
 
 /** A notification that holds a text. */
-export function toast(page: Page, text: string): Locator {
+function toast(page: Page, text: string): Locator {
   return page.locator('.notifications-toasts .notification-list-item-message').filter({ hasText: text }).first();
+}
+
+/** Waits until a notification says a text. One whose toast was missed lies in the list of notifications. */
+export async function heard(page: Page, text: string): Promise<void> {
+  const listed = page
+    .locator('.notifications-center .notification-list-item-message')
+    .filter({ hasText: text })
+    .first();
+  const end = Date.now() + PATIENCE_MS;
+  for (let tries = 1; ; tries++) {
+    try {
+      await toast(page, text)
+        .or(listed)
+        .first()
+        .waitFor({ timeout: 5 * stepMs(tries) });
+      return;
+    } catch (error) {
+      if (Date.now() > end) throw error;
+      await runCommand(page, 'Notifications: Show Notifications');
+    }
+  }
 }
 
 /** A row of the explorer. */
