@@ -18,6 +18,13 @@ for (const signal of ['SIGINT', 'SIGTERM', 'SIGHUP'] as const) {
   });
 }
 
+// Who reads the output may have read enough and be gone, as `head` is: what is left is said to nobody, and the work goes on.
+for (const stream of [process.stdout, process.stderr]) {
+  stream.on('error', (error: NodeJS.ErrnoException) => {
+    if (error.code !== 'EPIPE') throw error;
+  });
+}
+
 process.exitCode = await runCommand(process.argv.slice(2), version, {
   folder: slashed(process.cwd()),
   env: process.env,

@@ -200,6 +200,13 @@ test('Ctrl-C ends with 130, tidied, and the next build goes on', async () => {
   expect((await sizeproof(['check', '.'], { folder })).code).toBe(0);
 });
 
+test('who reads the output may leave before its end, and the build goes on', async () => {
+  const folder = newFolder(files);
+  const ran = await sizeproof(['build', '.'], { folder, running: (child) => child.stdout?.destroy() });
+  expect(ran).toMatchObject({ code: 0, stderr: '' });
+  expect((await sizeproof(['check', '.'], { folder })).code).toBe(0);
+});
+
 test('watch builds now and on a change, and ends with Ctrl-C', async () => {
   const folder = newFolder(files);
   let heard = '';

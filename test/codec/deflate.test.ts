@@ -83,13 +83,12 @@ describe('a stream', () => {
     }
   });
 
-  // zlib begins new codes every 16 384 tokens and a block here is 65 520 bytes, so that either may come out shorter; where all is
-  // runs, zlib tells its codes once and we tell ours in each block, in 64 bytes or less.
+  // Where all is runs, zlib tells its codes once and we tell ours in each block, in 64 bytes or less.
   test('is not longer than zlib makes it where it looks for runs alone', () => {
     for (const character of ['small', 'runs', 'long', 'one', 'doubling'] as const) {
       const bytes = bytesOf(character, 3, 500_000);
       const judge = deflateSync(bytes, { level: 6, strategy: constants.Z_RLE });
-      expect(written([bytes]).length).toBeLessThan(1.005 * judge.length + 64 * 8);
+      expect(written([bytes]).length).toBeLessThanOrEqual(judge.length + 64 * Math.ceil(bytes.length / BLOCK_BYTES));
     }
   });
 
@@ -186,6 +185,7 @@ describe('lengths of codes', () => {
       const lengths = codeLengths(counts, 14);
       expectComplete(lengths, counts, 14);
       if (Math.max(...codeLengths(counts, 40)) > 14) bound++;
+      // Measured: 1.2 % at most, over 3000 of them. The method has no bound that is known to us.
       expect(costOf(lengths, counts)).toBeLessThanOrEqual(1.02 * leastCost(counts, 14));
     });
     expect(bound).toBeGreaterThan(20);

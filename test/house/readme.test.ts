@@ -31,6 +31,33 @@ describe('README', () => {
     expect(names.filter((name) => !readme.includes(name))).toEqual([]);
   });
 
+  test('quotes of speed what stands in the results, to two digits', () => {
+    const results = readFileSync(join(top, 'test', 'bench', 'RESULTS.md'), 'utf8');
+    const measured = (name: string): string => {
+      const row = results.split('\n').find((line) => line.startsWith(`| ${name}`));
+      // Name, target, stretch, measured.
+      const [value, unit] = row?.split('|')[4].trim().split(' ') ?? [];
+      if (unit === 'ms') return `${Math.round(Number(value))} ms`;
+      return `${Number(value).toPrecision(2)} ${unit === 'x' ? 'times' : unit}`;
+    };
+    const text = readme.replaceAll('\n', ' ');
+    const quoted = [
+      [
+        'the same chain of 4096x4096, against sharp in linear light',
+        (it: string) => `${it} as fast as sharp in linear light`,
+      ],
+      [
+        'the same chain of 4096x4096, against sharp in code space',
+        (it: string) => `${it} as fast as sharp in code space`,
+      ],
+      ['whole build of a 4096x4096 PNG', (it: string) => `PNG levels out, ${it} as fast`],
+      ['second build of 10 000 textures of which none', (it: string) => `of which none changed takes ${it}`],
+      ['a 2048x2048 PNG opened in the editor', (it: string) => `first print of a 2048 x 2048 texture takes ${it}`],
+      ['another kernel, to its print', (it: string) => `another kernel takes ${it}`],
+    ] as const;
+    for (const [name, say] of quoted) expect(text).toContain(say(measured(name)));
+  });
+
   test('shows pictures that are there', () => {
     const pictures = [...readme.matchAll(/!\[[^\]]*\]\(([^)]+)\)/g)].map(([, path]) => path);
     expect(pictures.length).toBeGreaterThan(0);

@@ -38,6 +38,7 @@ export function writeBlock(
   return { bit: writer.write(bytes, zeros, tokenCodes(own), bits.end()), zeros: next };
 }
 
+/** Bits; measured, with ShortestRun. */
 const SHORT_CODE = 2;
 
 /** Two lengths, behind up to 7 bits that fill a byte. [RFC1951, 3.2.4] */

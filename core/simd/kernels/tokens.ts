@@ -12,8 +12,8 @@ const RUN: usize = 254 << 2;
 const TABLE: i32 = 513 << 2;
 const BYTES: i32 = 256 << 2;
 
-/** How often each token stands in a block, where runs of zeros have `zeros` bytes at least, 3 or 5. Behind the 513 counts is room for three times 256: equal bytes that follow each other
- *  would wait for one counter. */
+/** How often each token stands in a block, where runs of zeros have `zeros` bytes at least, 3 or 5. Behind the 513 counts is room
+ *  for three times 256: equal bytes that follow each other would wait for one counter. */
 export function countTokens(block: usize, bytes: i32, zeros: i32, counts: usize): void {
   const second = counts + TABLE;
   const third = second + BYTES;

@@ -1,6 +1,7 @@
-import { css, html, LitElement, nothing } from 'lit';
+import { css, html, nothing } from 'lit';
 import { byteText, extentText } from '../../../core/figures.ts';
 import { controls } from '../form/controls.ts';
+import { ModelView } from '../form/model-view.ts';
 import { copy } from '../readings/copy.ts';
 import { csvText } from '../readings/csv.ts';
 import { distanceOf } from '../state/lod.ts';
@@ -15,11 +16,7 @@ import { isShipped } from './rows.ts';
 import { sightOf } from './sight.ts';
 
 /** The axis as a table: every level and target with its size, its memory and what the curves show of it. */
-export class LevelTable extends LitElement {
-  static override properties = { model: { attribute: false }, tick: { type: Number } };
-  declare model: Model | null;
-  declare tick: number;
-
+export class LevelTable extends ModelView<Model> {
   static override styles = [
     controls,
     css`
@@ -64,12 +61,6 @@ export class LevelTable extends LitElement {
     `,
   ];
 
-  constructor() {
-    super();
-    this.model = null;
-    this.tick = 0;
-  }
-
   override render() {
     const { model } = this;
     const seen = model?.seen;
@@ -86,7 +77,7 @@ export class LevelTable extends LitElement {
               <th scope="col">${t('memory')}</th>
               ${outlook === null ? nothing : html`<th scope="col">${t('meters')}</th>`}
               ${curves.map(({ name }) => html`<th scope="col">${name}</th>`)}
-              <th scope="col">${t('built')}</th>
+              <th scope="col">${t('written')}</th>
             </tr>
           </thead>
           <tbody>
@@ -101,7 +92,7 @@ export class LevelTable extends LitElement {
                 <td class="number">${byteText(memoryOf(model, stop.extent))}</td>
                 ${outlook === null ? nothing : html`<td class="number">${meters(distanceOf(stop.lod, outlook))}</td>`}
                 ${curves.map((curve) => valueCell(curve, stop))}
-                <td>${isBuilt(model, stop) ? t('yes') : t('no')}</td>
+                <td>${isWritten(model, stop) ? t('yes') : t('no')}</td>
               </tr>`,
             )}
           </tbody>
@@ -128,13 +119,14 @@ function valueAt(curve: Curve, stop: Stop): number | null {
   return stop.kind === 'level' ? (curve.points.find(({ lod }) => lod === stop.lod)?.value ?? null) : null;
 }
 
-function isBuilt(model: Model, stop: Stop): boolean {
+/** Whether a build writes a file of it. */
+function isWritten(model: Model, stop: Stop): boolean {
   return stop.kind !== 'typed' && isShipped(model.treatment!, stop);
 }
 
 function axisCsv(model: Model, curves: readonly Curve[]): string {
   const { stops, outlook } = model;
-  const head = ['level or target', 'width', 'height', 'bytes', 'meters', ...curves.map(({ name }) => name), 'built'];
+  const head = ['level or target', 'width', 'height', 'bytes', 'meters', ...curves.map(({ name }) => name), 'written'];
   const rows = stops.map((stop) => [
     stop.label,
     stop.extent.width,
@@ -145,7 +137,7 @@ function axisCsv(model: Model, curves: readonly Curve[]): string {
       const value = valueAt(curve, stop);
       return value === null ? '' : Number(value.toPrecision(6));
     }),
-    isBuilt(model, stop) ? 'yes' : 'no',
+    isWritten(model, stop) ? 'yes' : 'no',
   ]);
   return csvText([head, ...rows]);
 }

@@ -1,7 +1,8 @@
-import { css, html, LitElement, nothing } from 'lit';
+import { css, html, nothing } from 'lit';
 import { byteText, figure } from '../../../core/figures.ts';
 import type { Target } from '../../../core/treatment/treatment.ts';
 import { controls } from '../form/controls.ts';
+import { ModelView } from '../form/model-view.ts';
 import type { Model } from '../state/model.ts';
 import { meters } from '../words/meters.ts';
 import { t } from '../words/t.ts';
@@ -12,10 +13,8 @@ import { memoryOf } from './memory.ts';
 import { sightBetween, sightOf } from './sight.ts';
 
 /** Where the sight stands, as numbers that can be typed. */
-export class SightFields extends LitElement {
-  static override properties = { model: { attribute: false }, tick: { type: Number }, open: { state: true } };
-  declare model: Model | null;
-  declare tick: number;
+export class SightFields extends ModelView<Model> {
+  static override properties = { open: { state: true } };
   /** Whether the table of the axis is shown: it is made only then. */
   declare open: boolean;
 
@@ -50,8 +49,6 @@ export class SightFields extends LitElement {
 
   constructor() {
     super();
-    this.model = null;
-    this.tick = 0;
     this.open = false;
   }
 

@@ -3,6 +3,7 @@ import { figure } from '../../../core/figures.ts';
 import type { Picture } from '../../../core/proof/want.ts';
 import type { Treatment } from '../../../core/treatment/treatment.ts';
 import { controls } from '../form/controls.ts';
+import { Room } from '../form/room.ts';
 import { textScale } from '../form/text-scale.ts';
 import { type AxisScale, axisScale, type Placed } from '../state/scale.ts';
 import type { State } from '../state/state.ts';
@@ -37,15 +38,11 @@ export abstract class WholeAxis<S extends Placed> extends LitElement {
   static override properties: PropertyDeclarations = {
     model: { attribute: false },
     tick: { type: Number },
-    width: { state: true },
     textScale: { state: true },
   };
   declare tick: number;
-  declare width: number;
   declare textScale: number;
-  readonly #observer = new ResizeObserver(([entry]) => {
-    this.width = entry.contentRect.width;
-  });
+  readonly #room = new Room(this);
   readonly #painted = new WeakMap<HTMLCanvasElement, string>();
 
   static override styles = [controls, axisStyles];
@@ -53,7 +50,6 @@ export abstract class WholeAxis<S extends Placed> extends LitElement {
   constructor() {
     super();
     this.tick = 0;
-    this.width = 0;
     this.textScale = 1;
   }
 
@@ -80,28 +76,22 @@ export abstract class WholeAxis<S extends Placed> extends LitElement {
   /** Answers whether the key was one of the axis. */
   protected abstract press(event: KeyboardEvent): boolean;
 
-  override connectedCallback(): void {
-    super.connectedCallback();
-    this.#observer.observe(this);
-  }
-
-  override disconnectedCallback(): void {
-    super.disconnectedCallback();
-    this.#observer.disconnect();
-  }
-
   /** Room at the left for the names of rows; narrow pages put the names into the rows. */
   get #gutter(): number {
-    return this.width < 620 * this.textScale ? 0 : this.nameWidth * this.textScale;
+    return this.#room.width < 620 * this.textScale ? 0 : this.nameWidth * this.textScale;
   }
 
   #scale(stops: readonly S[]): AxisScale {
-    return axisScale(stops, Math.max(120, this.width - this.#gutter), (this.#gutter === 0 ? 26 : 54) * this.textScale);
+    return axisScale(
+      stops,
+      Math.max(120, this.#room.width - this.#gutter),
+      (this.#gutter === 0 ? 26 : 54) * this.textScale,
+    );
   }
 
   override render() {
     const facts = this.facts();
-    if (facts === null || this.width === 0) return html`<div class="plot"></div>`;
+    if (facts === null || this.#room.width === 0) return html`<div class="plot"></div>`;
     const { stops, curves, lod } = facts;
     const scale = this.#scale(stops);
     const targets = stops.some(({ kind }) => kind !== 'level');

@@ -1,18 +1,15 @@
-import { html, LitElement, type PropertyDeclarations, type TemplateResult } from 'lit';
+import { html, type PropertyDeclarations, type TemplateResult } from 'lit';
 import { controls } from '../form/controls.ts';
+import { ModelView } from '../form/model-view.ts';
 import { t } from '../words/t.ts';
 import { rowStyles } from './print-row.styles.ts';
 
 /** What the rows of prints of a proof and of a review share: what they show, and whether the hand is on a print. */
-export abstract class WholeRow<Model> extends LitElement {
+export abstract class WholeRow<Model> extends ModelView<Model> {
   static override properties: PropertyDeclarations = {
-    model: { attribute: false },
-    tick: { type: Number },
     swapped: { type: Boolean },
     pointing: { state: true },
   };
-  declare model: Model | null;
-  declare tick: number;
   /** Whether what prints are compared with is shown in their place, while a key is held. */
   declare swapped: boolean;
   /** Whether the hand is on a print: only then is the cursor drawn, and the art is left alone otherwise. */
@@ -22,8 +19,6 @@ export abstract class WholeRow<Model> extends LitElement {
 
   constructor() {
     super();
-    this.model = null;
-    this.tick = 0;
     this.swapped = false;
     this.pointing = false;
   }

@@ -1,17 +1,16 @@
-import { css, html, LitElement, nothing } from 'lit';
+import { css, html, nothing } from 'lit';
 import { say } from '../../../core/problem.ts';
 import type { AdoptChange, ExportOrder, HostCall, Question } from '../../../core/protocol.ts';
 import { controls } from '../form/controls.ts';
+import { ModelView } from '../form/model-view.ts';
 import { exportProof } from '../state/export-proof.ts';
 import type { Model } from '../state/model.ts';
 import { adoptable } from '../treatment/change.ts';
 import { t } from '../words/t.ts';
 
 /** What the file is, what the settings make of it, whether that is built, and the page's three actions. */
-export class TopBar extends LitElement {
-  static override properties = { model: { attribute: false }, tick: { type: Number }, busy: { state: true } };
-  declare model: Model | null;
-  declare tick: number;
+export class TopBar extends ModelView<Model> {
+  static override properties = { busy: { state: true } };
   /** The call that is being answered. */
   declare busy: HostCall | null;
 
@@ -61,8 +60,6 @@ export class TopBar extends LitElement {
 
   constructor() {
     super();
-    this.model = null;
-    this.tick = 0;
     this.busy = null;
   }
 

@@ -1,5 +1,6 @@
-import { css, html, LitElement, nothing } from 'lit';
+import { css, html, nothing } from 'lit';
 import { controls } from '../form/controls.ts';
+import { ModelView } from '../form/model-view.ts';
 import type { Model } from '../state/model.ts';
 import type { State } from '../state/state.ts';
 import { t } from '../words/t.ts';
@@ -13,10 +14,8 @@ import { slotKernel, slotName, slotPicture } from '../prints/slot-picture.ts';
 import './texel-readings.ts';
 
 /** What is under the cursor, as numbers: the texel, where it comes from, and a cut through source and prints. */
-export class ReadingsStrip extends LitElement {
-  static override properties = { model: { attribute: false }, tick: { type: Number }, letter: { state: true } };
-  declare model: Model | null;
-  declare tick: number;
+export class ReadingsStrip extends ModelView<Model> {
+  static override properties = { letter: { state: true } };
   declare letter: Letter;
 
   static override styles = [
@@ -61,8 +60,6 @@ export class ReadingsStrip extends LitElement {
 
   constructor() {
     super();
-    this.model = null;
-    this.tick = 0;
     this.letter = 'g';
   }
 

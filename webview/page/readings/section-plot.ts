@@ -1,6 +1,7 @@
 import { css, html, LitElement, nothing, svg } from 'lit';
 import { figure } from '../../../core/figures.ts';
 import { controls } from '../form/controls.ts';
+import { Room } from '../form/room.ts';
 import { textScale } from '../form/text-scale.ts';
 import { t } from '../words/t.ts';
 import { type Section, sectionRows, sectionTracks, type Track } from './section.ts';
@@ -15,18 +16,14 @@ export class SectionPlot extends LitElement {
   static override properties = {
     section: { attribute: false },
     cursor: { type: Number },
-    width: { state: true },
     open: { state: true },
   };
   declare section: Section | null;
   /** Share of the line at which the cursor stands. */
   declare cursor: number;
-  declare width: number;
   /** Whether the table is shown: it is made only then. */
   declare open: boolean;
-  readonly #observer = new ResizeObserver(([entry]) => {
-    this.width = entry.contentRect.width;
-  });
+  readonly #room = new Room(this);
 
   static override styles = [
     controls,
@@ -112,22 +109,12 @@ export class SectionPlot extends LitElement {
     super();
     this.section = null;
     this.cursor = 0;
-    this.width = 0;
     this.open = false;
   }
 
-  override connectedCallback(): void {
-    super.connectedCallback();
-    this.#observer.observe(this);
-  }
-
-  override disconnectedCallback(): void {
-    super.disconnectedCallback();
-    this.#observer.disconnect();
-  }
-
   override render() {
-    const { section, width } = this;
+    const { section } = this;
+    const { width } = this.#room;
     if (section === null || width < 40) return html`<svg aria-hidden="true"></svg>`;
     const left = LEFT * textScale(this);
     const x = (share: number): number => left + share * (width - left - 4);

@@ -1,8 +1,9 @@
-import { css, html, LitElement, nothing } from 'lit';
+import { css, html, nothing } from 'lit';
 import { light } from '../../../core/figures.ts';
 import type { PrintImage } from '../../../core/proof/want.ts';
 import type { Extent } from '../../../core/raster/raster.ts';
 import { controls } from '../form/controls.ts';
+import { ModelView } from '../form/model-view.ts';
 import { slotName, slotPicture } from '../prints/slot-picture.ts';
 import { colorDistance } from '../prints/view.ts';
 import { cursorTexel } from '../state/line.ts';
@@ -13,11 +14,7 @@ import { copy } from './copy.ts';
 import { readTexel, type TexelPlace, type TexelReading, texelCsv, texelText } from './texel.ts';
 
 /** The texel under the cursor as each print has it, and below it those that are pinned. */
-export class TexelReadings extends LitElement {
-  static override properties = { model: { attribute: false }, tick: { type: Number } };
-  declare model: Model | null;
-  declare tick: number;
-
+export class TexelReadings extends ModelView<Model> {
   static override styles = [
     controls,
     css`
@@ -77,12 +74,6 @@ export class TexelReadings extends LitElement {
       }
     `,
   ];
-
-  constructor() {
-    super();
-    this.model = null;
-    this.tick = 0;
-  }
 
   override render() {
     const { model } = this;

@@ -1,5 +1,6 @@
-import { html, LitElement, nothing } from 'lit';
+import { html, nothing } from 'lit';
 import { controls } from '../form/controls.ts';
+import { ModelView } from '../form/model-view.ts';
 import { DIFFERENCE_RAMP } from '../prints/backdrop.ts';
 import '../view/lamp-pad.ts';
 import {
@@ -18,10 +19,8 @@ import type { ReviewModel } from './model.ts';
 import type { ReviewShow, ReviewState } from './state.ts';
 
 /** How the two versions are looked at. */
-export class ReviewBar extends LitElement {
-  static override properties = { model: { attribute: false }, tick: { type: Number }, zoom: { type: Number } };
-  declare model: ReviewModel | null;
-  declare tick: number;
+export class ReviewBar extends ModelView<ReviewModel> {
+  static override properties = { zoom: { type: Number } };
   /** Device pixels a texel, as shown. */
   declare zoom: number;
 
@@ -29,8 +28,6 @@ export class ReviewBar extends LitElement {
 
   constructor() {
     super();
-    this.model = null;
-    this.tick = 0;
     this.zoom = 1;
   }
 

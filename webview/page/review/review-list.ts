@@ -1,15 +1,12 @@
-import { css, html, LitElement, nothing } from 'lit';
+import { css, html, nothing } from 'lit';
 import { controls } from '../form/controls.ts';
+import { ModelView } from '../form/model-view.ts';
 import { t } from '../words/t.ts';
 import type { ReviewModel } from './model.ts';
 import { harmText, statusWord, verdictWords } from './words.ts';
 
 /** The list of changed textures, most harmful first, in a page that has no editor beside it. */
-export class ReviewList extends LitElement {
-  static override properties = { model: { attribute: false }, tick: { type: Number } };
-  declare model: ReviewModel | null;
-  declare tick: number;
-
+export class ReviewList extends ModelView<ReviewModel> {
   static override styles = [
     controls,
     css`
@@ -58,12 +55,6 @@ export class ReviewList extends LitElement {
       }
     `,
   ];
-
-  constructor() {
-    super();
-    this.model = null;
-    this.tick = 0;
-  }
 
   override render() {
     const { model } = this;

@@ -1,10 +1,11 @@
-import { css, html, LitElement, nothing } from 'lit';
+import { css, html, nothing } from 'lit';
 import { light, percent } from '../../../core/figures.ts';
 import type { Picture } from '../../../core/proof/want.ts';
 import { JUST_SEEN } from '../../../core/review/lab.ts';
 import type { PairAnswer } from '../../../core/review/want.ts';
 import { HIDDEN_MARK, MARK_SCALE } from '../../../core/review/want.ts';
 import { controls } from '../form/controls.ts';
+import { ModelView } from '../form/model-view.ts';
 import { t } from '../words/t.ts';
 import type { ReviewModel } from './model.ts';
 import { cursorOf } from './review-row.ts';
@@ -12,11 +13,7 @@ import { distance, type SizeStop, sightOf } from './sizes.ts';
 import { sizeName } from './survival-axis.ts';
 
 /** The texel under the cursor on both sides, and the table of all sizes: the twin of the axis. */
-export class ReviewReadings extends LitElement {
-  static override properties = { model: { attribute: false }, tick: { type: Number } };
-  declare model: ReviewModel | null;
-  declare tick: number;
-
+export class ReviewReadings extends ModelView<ReviewModel> {
   static override styles = [
     controls,
     css`
@@ -85,12 +82,6 @@ export class ReviewReadings extends LitElement {
       }
     `,
   ];
-
-  constructor() {
-    super();
-    this.model = null;
-    this.tick = 0;
-  }
 
   override render() {
     const { model } = this;

@@ -1,20 +1,17 @@
-import { css, html, LitElement, nothing } from 'lit';
+import { css, html, nothing } from 'lit';
 import { byteText } from '../../../core/figures.ts';
 import { say } from '../../../core/problem.ts';
 import { describeFile } from '../../../core/review/describe.ts';
 import type { Review } from '../../../core/review/review.ts';
 import { seenAt } from '../../../core/review/visible.ts';
 import { controls } from '../form/controls.ts';
+import { ModelView } from '../form/model-view.ts';
 import { t } from '../words/t.ts';
 import type { ReviewModel } from './model.ts';
 import { harmText, statusWord, verdictWords } from './words.ts';
 
 /** What changed, what it does, and the way to the next texture. */
-export class ReviewTop extends LitElement {
-  static override properties = { model: { attribute: false }, tick: { type: Number } };
-  declare model: ReviewModel | null;
-  declare tick: number;
-
+export class ReviewTop extends ModelView<ReviewModel> {
   static override styles = [
     controls,
     css`
@@ -56,12 +53,6 @@ export class ReviewTop extends LitElement {
       }
     `,
   ];
-
-  constructor() {
-    super();
-    this.model = null;
-    this.tick = 0;
-  }
 
   override render() {
     const { model } = this;

@@ -1,19 +1,16 @@
-import { css, html, LitElement, nothing } from 'lit';
+import { css, html, nothing } from 'lit';
 import type { Wrap } from '../../../core/kernel/wrap.ts';
 import type { Change } from '../../../core/proof/slot.ts';
 import type { Treatment } from '../../../core/treatment/treatment.ts';
 import { controls } from '../form/controls.ts';
+import { ModelView } from '../form/model-view.ts';
 import type { Model } from '../state/model.ts';
 import { t } from '../words/t.ts';
 import { tidied } from './change.ts';
 
 /** What the selected print does with light, alpha and edges. Turning a switch on the settings' own print begins a new one beside
  *  it, so that the two can be compared. */
-export class TreatmentSwitches extends LitElement {
-  static override properties = { model: { attribute: false }, tick: { type: Number } };
-  declare model: Model | null;
-  declare tick: number;
-
+export class TreatmentSwitches extends ModelView<Model> {
   static override styles = [
     controls,
     css`
@@ -32,12 +29,6 @@ export class TreatmentSwitches extends LitElement {
       }
     `,
   ];
-
-  constructor() {
-    super();
-    this.model = null;
-    this.tick = 0;
-  }
 
   override render() {
     const { model } = this;

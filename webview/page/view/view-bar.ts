@@ -1,6 +1,7 @@
-import { html, LitElement, nothing } from 'lit';
+import { html, nothing } from 'lit';
 import { kernels } from '../../../core/kernel/table.ts';
 import { controls } from '../form/controls.ts';
+import { ModelView } from '../form/model-view.ts';
 import { DIFFERENCE_RAMP, SIGNED_RAMP } from '../prints/backdrop.ts';
 import { addPrint } from '../prints/print-row.ts';
 import { slotName } from '../prints/slot-picture.ts';
@@ -23,10 +24,8 @@ import {
 } from './parts.ts';
 
 /** How prints are looked at: the view, what stands behind, how texels are magnified, what is compared. */
-export class ViewBar extends LitElement {
-  static override properties = { model: { attribute: false }, tick: { type: Number }, zoom: { type: Number } };
-  declare model: Model | null;
-  declare tick: number;
+export class ViewBar extends ModelView<Model> {
+  static override properties = { zoom: { type: Number } };
   /** Device pixels a texel, as shown. */
   declare zoom: number;
 
@@ -34,8 +33,6 @@ export class ViewBar extends LitElement {
 
   constructor() {
     super();
-    this.model = null;
-    this.tick = 0;
     this.zoom = 1;
   }
 
